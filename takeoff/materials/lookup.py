@@ -1,0 +1,264 @@
+"""Material text, as people type it, to a material; or to the candidates where the text does not settle it. Rank 2.
+
+In order: a key or designation; an alias; the same after trade words, conditions and standards' names are set aside
+(`S355J2+N`, `stainless 316`, `EN AW-6082 T6`); then suggestions. A name that several materials answer to is shown with
+its candidates, never decided, unless the caller's hint or the text's own words (`C35 steel`) leave one. A similar name is
+only a suggestion: the caller treats it as assumed.
+"""
+
+from __future__ import annotations
+
+import re
+from dataclasses import dataclass, replace
+from typing import Literal
+
+from takeoff.materials.material import Material
+from takeoff.materials.nameindex import fold
+from takeoff.materials.own import OwnTable
+from takeoff.materials.reinforced import CONTENT, STEEL_LIMITS, with_steel
+from takeoff.materials.table import by_key, family_of, kind_of, name_of, table
+from takeoff.materials.words import CONDITION, STRENGTH_CLASS, words
+from takeoff.names import NormalName, digits_of, has_hidden_marks, has_lookalikes, normal_name, plain_text, suggest
+
+Match = Literal["exact", "alias", "similar", "ambiguous", "none"]
+
+#: No material has a longer name; a longer text is not searched.
+MAX_LENGTH = 120
+#: A suggestion at or above this score, in the lead by `LEAD` over the next other material, is taken as similar.
+SIMILAR, LEAD, FLOOR = 84.0, 4.0, 60.0
+_OR = re.compile(r"[\s(]+(?:or|and|oder|und|ou|et|o|y|of|en|e)\s+|\s*[/&;|]\s*|\s+\+\s+|,\s+")
+
+
+@dataclass(frozen=True, slots=True)
+class Candidate:
+    """A material the text may mean, with its likeness in percent."""
+
+    key: str
+    name: str
+    score: float
+
+
+@dataclass(frozen=True, slots=True)
+class MaterialMatch:
+    """What a text was taken for.
+
+    `material` is None where the match is ambiguous or none; `candidates` then says what it may mean. `reason` says in
+    words why a match is less than exact, where words are needed.
+    """
+
+    query: str
+    match: Match
+    score: float
+    material: Material | None
+    candidates: tuple[Candidate, ...] = ()
+    reason: str = ""
+
+
+def lookup(text: str, *, hint: str | None = None, own: OwnTable | None = None) -> MaterialMatch:
+    """Find the material that `text` names.
+
+    `hint` is a kind (`metal`, `wood`, `concrete` ...) or a family that the context asks for: it settles a clash, and
+    overrules nothing else. `own` is the user's own table, asked before ours. Never raises on any text.
+    """
+    name = normal_name(plain_text(text)[: MAX_LENGTH + 1])
+    if not name or len(name) > MAX_LENGTH or not any(c.isalnum() for c in name):
+        return MaterialMatch(text, "none", 0.0, None, reason="this is no name of a material")
+    found = _with_steel(text, hint, own) or _Search(text, hint, own).run(name)
+    if found.match in ("exact", "alias") and (has_hidden_marks(text) or has_lookalikes(text)):
+        return MaterialMatch(
+            text, "similar", found.score, found.material, found.candidates,
+            "the text holds hidden marks or letters of another script",
+        )  # fmt: skip
+    return found
+
+
+def _with_steel(text: str, hint: str | None, own: OwnTable | None) -> MaterialMatch | None:
+    """`reinforced concrete 150 kg/m3`: the row, with that steel content in place of the usual one."""
+    stated = CONTENT.search(text)
+    if not stated:
+        return None
+    rest = lookup((text[: stated.start()] + text[stated.end() :]).strip(" ,;()"), hint=hint, own=own)
+    steel = float(stated.group(1).replace(",", "."))
+    if rest.material is None or rest.material.key != "concrete-reinforced" or not steel <= STEEL_LIMITS[1]:
+        return None
+    return replace(rest, query=text, match="alias", material=with_steel(rest.material, steel))
+
+
+class _Search:
+    """One look-up: the text, the hint, the two tables."""
+
+    def __init__(self, text: str, hint: str | None, own: OwnTable | None) -> None:
+        self.text = text
+        self.hint = hint.strip().casefold() if hint else None
+        self.own = own
+
+    def run(self, name: NormalName) -> MaterialMatch:
+        for reading, allowed in _readings(name):
+            answer = self._named(reading, allowed, plain=reading == name)
+            if answer:
+                return answer
+        parts = self._parts()
+        if parts:
+            return parts
+        return self._suggested(name)
+
+    # -- names that stand in a table -------------------------------------------------------------------------------
+
+    def _named(self, name: NormalName, allowed: frozenset[str] | None, *, plain: bool) -> MaterialMatch | None:
+        """The answer where the tables hold this very name; `allowed` families come from the text's own words."""
+        if self.own:
+            mine = self.own.index.find(name)
+            if mine:
+                key, exact = next(iter(mine.items()))
+                return self._hit(self.own.materials[key], exact and plain)
+        keys = self._keys(name)
+        if allowed is not None:
+            keys = {key: exact for key, exact in keys.items() if family_of(key) in allowed}
+        if len(keys) > 1 and self.hint:
+            keys = self._fitting(keys) or keys
+        if not keys:
+            return None
+        if len(keys) == 1:
+            key, exact = next(iter(keys.items()))
+            return self._hit(by_key(key), exact and plain)
+        candidates = tuple(Candidate(key, name_of(key), 100.0) for key in keys)
+        return MaterialMatch(self.text, "ambiguous", 100.0, None, candidates, "several materials answer to this name")
+
+    def _keys(self, name: NormalName) -> dict[str, bool]:
+        clash = table().clashes.get(fold(name))
+        if clash and (digits_of(name) == digits_of(normal_name(table().clash_names[fold(name)]))):
+            return dict.fromkeys(clash, False)
+        return table().index.find(name)
+
+    def _fitting(self, keys: dict[str, bool]) -> dict[str, bool]:
+        return {key: exact for key, exact in keys.items() if self.hint in (kind_of(key), family_of(key), key)}
+
+    def _hit(self, found: Material, exact: bool) -> MaterialMatch:
+        return MaterialMatch(self.text, "exact" if exact else "alias", 100.0, found)
+
+    # -- a name within a longer text -------------------------------------------------------------------------------
+
+    def _parts(self) -> MaterialMatch | None:
+        """Texts that name several materials (`PVC or aluminium tube`), or one among unknown words."""
+        pieces = [p for p in _OR.split(plain_text(self.text).casefold()) if not _says_nothing(normal_name(p))]
+        if len(pieces) < 2:
+            return None
+        answers = [self.within(normal_name(piece)) for piece in pieces[:6]]
+        keys = list(dict.fromkeys(key for answer in answers for key in answer))
+        candidates = tuple(Candidate(key, name_of(key), 100.0) for key in keys)
+        if len(keys) > 1:
+            return MaterialMatch(self.text, "ambiguous", 100.0, None, candidates, "the text names several materials")
+        if keys and all(answers):
+            return self._hit(by_key(keys[0]), exact=False)
+        if keys:
+            return MaterialMatch(self.text, "none", 50.0, None, candidates, "the text also names something unknown")
+        return None
+
+    def within(self, name: NormalName) -> tuple[str, ...]:
+        """Keys of ours that this text names, as a whole or after words set aside."""
+        for reading, allowed in _readings(name):
+            keys = self._keys(reading)
+            if allowed is not None:
+                keys = {key: exact for key, exact in keys.items() if family_of(key) in allowed}
+            if keys:
+                return tuple(keys)
+        return ()
+
+    # -- suggestions -----------------------------------------------------------------------------------------------
+
+    def _suggested(self, name: NormalName) -> MaterialMatch:
+        """The nearest names, by likeness of the whole and by known names inside the text."""
+        tokens = name.split()
+        if words().negations.intersection(tokens):
+            return MaterialMatch(self.text, "none", 0.0, None, reason="the text says what it is not")
+        scores: dict[str, float] = {}
+        digits = digits_of(name)
+        index = table().index
+        for suggestion in suggest(NormalName(fold(name)), index.folded_names(), floor=FLOOR, limit=12):
+            for key, text, _ in index.entries(suggestion.name):
+                if digits_of(normal_name(text)) == digits and suggestion.score > scores.get(key, 0.0):
+                    scores[key] = suggestion.score
+        inside, sure = self._inside(tokens)
+        ranked = sorted(scores.items(), key=lambda item: -item[1])
+        if ranked and ranked[0][1] >= SIMILAR:
+            fitting = [(k, s) for k, s in ranked if self.hint in (kind_of(k), family_of(k))] if self.hint else []
+            lead = (fitting or ranked) if fitting and fitting[0][1] >= SIMILAR else ranked
+            candidates = tuple(Candidate(k, name_of(k), s) for k, s in ranked[:5])
+            if len(lead) == 1 or lead[0][1] - lead[1][1] >= LEAD:
+                return MaterialMatch(
+                    self.text, "similar", lead[0][1], by_key(lead[0][0]), candidates, "a similar name, to be confirmed"
+                )
+            close = tuple(c for c in candidates if c.score >= SIMILAR)
+            return MaterialMatch(self.text, "ambiguous", close[0].score, None, close, "several names are similar")
+        if inside:
+            candidates = tuple(Candidate(k, name_of(k), s) for k, s in inside.items())
+            score = max(inside.values())
+            if sure and len(inside) == 1:
+                found = by_key(next(iter(inside)))
+                return MaterialMatch(self.text, "similar", score, found, candidates, "a known name among unknown words")
+            return MaterialMatch(self.text, "none", score, None, candidates[:5], "a general name among unknown words")
+        candidates = tuple(Candidate(k, name_of(k), s) for k, s in ranked[:5])
+        return MaterialMatch(
+            self.text, "none", candidates[0].score if candidates else 0.0, None, candidates,
+            "no material of the table has such a name",
+        )  # fmt: skip
+
+    def _inside(self, tokens: list[str]) -> tuple[dict[str, float], bool]:
+        """The longest known names among the words, and whether one may be taken: a single one, no number left over, no
+        mere general word such as steel or glass, which an unknown word beside it may turn into something else, and no
+        general word beside it that speaks of another group (silicon steel is no silicon)."""
+        whole = len("".join(tokens))
+        groups = words().groups
+        for size in range(len(tokens) - 1, 0, -1):
+            found: dict[str, float] = {}
+            sure = True
+            for start in range(len(tokens) - size + 1):
+                window = tokens[start : start + size]
+                phrase = NormalName(" ".join(window))
+                keys = self._keys(phrase) if len(phrase) > 2 else {}
+                if not keys:
+                    continue
+                rest = tokens[:start] + tokens[start + size :]
+                unread = any(c.isdigit() for token in rest for c in token)
+                other = any(family_of(key) not in groups[t] for t in rest if t in groups for key in keys)
+                sure = sure and not unread and not other and not (size == 1 and window[0] in groups)
+                found.update(dict.fromkeys(keys, round(100.0 * len("".join(window)) / whole, 1)))
+            if found:
+                return found, sure
+        return {}, False
+
+
+def _says_nothing(name: NormalName) -> bool:
+    """Whether a piece of text holds no more than shapes, finishes and numbers."""
+    return all(token in words().set_aside or not any(c.isalpha() for c in token) for token in name.split())
+
+
+def _readings(name: NormalName) -> list[tuple[NormalName, frozenset[str] | None]]:
+    """The name, then with less and less around it; each with the families its own words allow (None: any)."""
+    known = words()
+    readings: list[tuple[NormalName, frozenset[str] | None]] = [(name, None)]
+
+    def offer(tokens: list[str], allowed: frozenset[str] | None = None) -> None:
+        reading = NormalName(" ".join(tokens))
+        if reading and (reading, allowed) not in readings:
+            readings.append((reading, allowed))
+
+    bare = NormalName(CONDITION.sub("", name).strip())
+    tokens = bare.split()
+    offer(tokens)
+    headless = tokens
+    while headless and headless[0] in known.standards:
+        headless = headless[1:]
+        offer(headless)
+    kept = [t for t in tokens if t not in known.set_aside]
+    offer(kept)
+    offer([t for t in kept if not STRENGTH_CLASS.fullmatch(t)])
+    plain = [t for t in kept if t not in known.standards]
+    offer(plain)
+    groups = [known.groups[t] for t in plain if t in known.groups]
+    if groups:
+        allowed = frozenset.intersection(*groups) or frozenset.union(*groups)
+        core = [t for t in plain if t not in known.groups]
+        offer(core, allowed)
+        offer([t for t in kept if t not in known.groups], allowed)
+    return readings

@@ -1,0 +1,53 @@
+"""The words that stand around a material's name in lists: which may be set aside, and which families they name. Rank 2.
+
+They are read from `words.csv`, in the form `normal_name` gives: lower case, no accents. Its roles:
+`set aside` a shape, finish or condition that leaves the material what it is; `standard` the name of a standard or the like
+in front of a designation; `group` a word that narrows the families a designation beside it may belong to; `negation` a
+word that turns a name into its opposite.
+"""
+
+from __future__ import annotations
+
+import re
+from dataclasses import dataclass
+from functools import cache
+
+from takeoff.datafiles import data_folder, read_table
+from takeoff.errors import DataError
+from takeoff.materials.material import split_names
+
+#: Delivery conditions and tempers behind a designation, standards' numbers, and sizes: they change no density.
+CONDITION = re.compile(
+    r"\s*\+\s*[a-z]{1,3}\d{0,3}(?:\s*\+\s*[a-z]{1,3}\d{0,3})*\b"  # +N, +AR, +QT, +Z275
+    r"|\s+(?:t\d{1,4}|h\d{2,3}|t\d{1,2}x\d{1,3})$"  # aluminium tempers at the end
+    r"|\s+(?:to\s+|acc\.?\s+(?:to\s+)?|nach\s+|selon\s+)?(?:bs\s+)?(?:en|din|iso|astm|nf|uni|jis)(?:\s+(?:en|iso))?\s+"
+    r"(?:[ab]\s?)?\d{3,5}(?:\s?\d{1,2})?(?::?\s?\d{4})?$"  # EN 10025-2 behind the grade
+    r"|^(?:bs\s+|nf\s+|din\s+)?(?:en|din|iso)(?:\s+iso)?\s+\d{4,5}(?:\s\d{1,2})?\s+(?=\S)"  # EN 10025-2 before it
+    r"|\b\d+(?:[.,]\d+)?\s?mm\b(?:\s+(?:thick|thk|dick))?"
+)
+#: A concrete's strength class beside its name.
+STRENGTH_CLASS = re.compile(r"[rl]?c\d{1,3}/\d{1,3}")
+
+
+@dataclass(frozen=True, slots=True)
+class Words:
+    """The words by role; `groups` maps a word to the families it may speak of."""
+
+    set_aside: frozenset[str]
+    standards: frozenset[str]
+    negations: frozenset[str]
+    groups: dict[str, frozenset[str]]
+
+
+@cache
+def words() -> Words:
+    """The words of words.csv, read once. Raises DataError on a role that is none."""
+    path = data_folder() / "words.csv"
+    by_role: dict[str, dict[str, frozenset[str]]] = {"set aside": {}, "standard": {}, "negation": {}, "group": {}}
+    for line, row in read_table(path):
+        if row["role"] not in by_role:
+            raise DataError(f"line {line}: no such role", file=path, read=row["role"], right="one of " + ", ".join(by_role))
+        by_role[row["role"]][row["word"]] = frozenset(split_names(row["families"]))
+    return Words(
+        frozenset(by_role["set aside"]), frozenset(by_role["standard"]), frozenset(by_role["negation"]), by_role["group"]
+    )
