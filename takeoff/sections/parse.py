@@ -1,0 +1,457 @@
+"""From tokens to the parts of a section text: family and kind words, rows of sizes, labelled sizes, standards, grades. Rank 2.
+
+Nothing is decided here. Every number of the text ends in exactly one part, so that a number nobody asked for is seen.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+
+from takeoff.sections import words
+from takeoff.sections.tokens import MM_PER, Token
+
+_STANDARD_BODIES = frozenset(
+    ("en", "bs", "din", "iso", "nf", "uni", "nen", "pn", "ss-en", "astm", "csa", "jis", "as", "nzs", "asme", "gb", "is")
+)
+_STEEL_GRADES = frozenset((185, 195, 220, 235, 250, 260, 275, 300, 320, 350, 355, 390, 420, 450, 460, 500, 550, 620, 690, 890, 960))
+_OLD_GRADES = frozenset((33, 37, 42, 44, 50, 52, 60, 70))
+_WOOD_GRADES = {
+    "c": frozenset((14, 16, 18, 20, 22, 24, 27, 30, 35, 40, 45, 50)),
+    "d": frozenset((18, 24, 27, 30, 35, 40, 45, 50, 55, 60, 65, 70, 75, 80)),
+    "gl": frozenset((20, 22, 24, 26, 28, 30, 32)),
+}
+_ASTM_GRADES = frozenset(
+    (36, 53, 106, 242, 283, 312, 325, 490, 500, 501, 514, 516, 529, 572, 588, 606, 618, 653, 709, 786, 847, 913, 992, 1011, 1085)
+)
+_GRADE_WORDS = frozenset(
+    (
+        "aisi",
+        "ss",
+        "inox",
+        "grade",
+        "gr",
+        "type",
+        "edelstahl",
+        "stainless",
+        "class",
+        "sae",
+        "cl",
+        "alu",
+        "aluminium",
+        "aluminum",
+        "al",
+        "aw",
+    )
+)
+_GRADE_TAILS = frozenset(
+    (
+        "jr",
+        "jo",
+        "j",
+        "k",
+        "k2",
+        "j2",
+        "h",
+        "n",
+        "nl",
+        "m",
+        "ml",
+        "l",
+        "ln",
+        "w",
+        "wp",
+        "g",
+        "q",
+        "ql",
+        "mc",
+        "c",
+        "d",
+        "u",
+        "t",
+        "b",
+        "ti",
+        "a",
+        "jrh",
+        "jh",
+        "nh",
+        "nlh",
+        "mh",
+        "mlh",
+    )
+)
+_APPROXIMATE = frozenset("~≈≥≤<>±")
+#: "(" to ")" only repeats sizes in other units, or is a remark.
+_OPENING, _CLOSING = frozenset("([{"), frozenset(")]}")
+
+
+@dataclass(slots=True)
+class Chain:
+    """Numbers joined by separators: ``457x191x67``. `joins` holds the sign before each number after the first."""
+
+    numbers: list[Token] = field(default_factory=list)
+    joins: list[str] = field(default_factory=list)
+    bracketed: bool = False
+    after_diameter: bool = False
+    kg: bool = False
+
+    def spread_units(self) -> None:
+        """A bare number takes the unit of the next number that has one (``2x1x0.120in``)."""
+        unit = ""
+        for index in range(len(self.numbers) - 1, -1, -1):
+            token = self.numbers[index]
+            if token.unit:
+                unit = token.unit
+            elif unit:
+                self.numbers[index] = token._replace(unit=unit)
+
+    @property
+    def texts(self) -> tuple[str, ...]:
+        return tuple(t.text for t in self.numbers)
+
+    @property
+    def mm(self) -> list[float]:
+        return [t.mm for t in self.numbers]
+
+
+@dataclass(slots=True)
+class Parsed:
+    """The parts of one section text."""
+
+    families: list[tuple[str, str]] = field(default_factory=list)
+    kinds: list[str] = field(default_factory=list)
+    properties: set[str] = field(default_factory=set)
+    letters: list[str] = field(default_factory=list)
+    chains: list[Chain] = field(default_factory=list)
+    labels: dict[str, Token] = field(default_factory=dict)
+    standards: list[str] = field(default_factory=list)
+    grades: list[str] = field(default_factory=list)
+    mass: tuple[str, float] | None = None
+    changed: list[str] = field(default_factory=list)
+    bought: list[str] = field(default_factory=list)
+    metal: bool = False
+    wood: bool = False
+    glass: bool = False
+    others: list[str] = field(default_factory=list)
+    problem: str = ""
+
+    @property
+    def open_number(self) -> Token | None:
+        numbers = [t for c in self.chains for t in c.numbers] + list(self.labels.values())
+        return next((t for t in numbers if t.open), None)
+
+
+class Parser:
+    """One walk over the tokens, left to right."""
+
+    def __init__(self, tokens: list[Token]) -> None:
+        self.tokens = tokens
+        self.at = 0
+        self.out = Parsed()
+        self.depth = 0
+        self.diameter = False
+        self.solid = any(t.kind == "word" and words.KIND_WORDS.get(t.text) in ("arch", "wedge") for t in tokens)
+
+    def peek(self, ahead: int = 1) -> Token | None:
+        index = self.at + ahead
+        return self.tokens[index] if 0 <= index < len(self.tokens) else None
+
+    def run(self) -> Parsed:
+        while self.at < len(self.tokens) and not self.out.problem:
+            token = self.tokens[self.at]
+            if token.kind == "num":
+                self.number(token)
+            elif token.kind == "word":
+                self.word(token)
+            elif token.kind == "sep":
+                self.separator(token)
+            else:
+                self.mark(token)
+            self.at += 1
+        for chain in self.out.chains:
+            chain.spread_units()
+        self.drop_repeats()
+        return self.out
+
+    # -- numbers ------------------------------------------------------------------------------------------------------
+    def number(self, token: Token) -> None:
+        if len(token.raw) == 6 and token.raw.startswith(("1.0", "1.4")) and not self.out.chains:
+            self.out.grades.append(token.raw)
+            return
+        if self.stated_mass(token):
+            return
+        chain = Chain([token], bracketed=self.depth > 0, after_diameter=self.diameter)
+        self.diameter = False
+        while True:
+            self.skip_kg(chain)
+            join, number = self.peek(1), self.peek(2)
+            if join is None or number is None or join.kind != "sep":
+                break
+            if number.kind == "word" and number.text == "ø" and (after := self.peek(3)) is not None and after.kind == "num":
+                chain.after_diameter = True
+                self.at += 1
+                number = after
+            if number.kind != "num":
+                break
+            chain.joins.append(join.text)
+            chain.numbers.append(number)
+            self.at += 2
+        join = self.peek(1)
+        if join is not None and join.kind == "sep" and join.text in ("x", "*") and self.missing_after():
+            self.out.problem = f"a number is missing after {join.raw!r}"
+        follower, label = self.peek(1), None
+        if follower is not None and follower.kind == "word":
+            label = words.LABELS.get(follower.text)
+        if (
+            len(chain.numbers) == 1
+            and label
+            and follower is not None
+            and (len(follower.text) > 1 or follower.text == "ø")
+            and not self.number_after(2)
+        ):
+            self.label(label, token)
+            if follower.text in words.PROPERTY_WORDS:
+                self.out.properties.add(words.PROPERTY_WORDS[follower.text])
+            self.at += 1
+            return
+        self.out.chains.append(chain)
+
+    def number_after(self, ahead: int) -> bool:
+        found = self.peek(ahead)
+        return found is not None and found.kind == "num"
+
+    def missing_after(self) -> bool:
+        """No number follows the separator: only a word that is itself a label (``x W200``) may."""
+        follower = self.peek(2)
+        return (
+            follower is None
+            or follower.kind in ("sep", "mark")
+            or (follower.kind == "word" and follower.text not in words.LABELS and follower.text not in words.FAMILY_WORDS)
+        )
+
+    def skip_kg(self, chain: Chain) -> None:
+        """``254x146x37KG``: the kg of a size row's last number only says what that number is."""
+        if len(chain.numbers) < 2:
+            return
+        unit = self.peek(1)
+        if unit is not None and unit.text in ("kg", "kgm"):
+            chain.kg = True
+            self.at += 1
+            after, metre = self.peek(1), self.peek(2)
+            if after is not None and metre is not None and after.text == "/" and metre.text == "m":
+                self.at += 2
+
+    def stated_mass(self, token: Token) -> bool:
+        """``30 kg/m2``, ``4.2 kg/m``, ``0.42 kg``, ``19 lb/ft``: a mass that the text states."""
+        unit = self.peek(1)
+        if unit is None or unit.kind != "word" or unit.text not in ("kg", "lb", "lbs", "kgs", "g"):
+            return False
+        factor = {"kg": 1.0, "kgs": 1.0, "lb": 0.45359237, "lbs": 0.45359237, "g": 0.001}[unit.text]
+        over, per = self.peek(2), self.peek(3)
+        used, form = 1, "each"
+        if over is not None and over.text in ("/", "per") and per is not None:
+            power = self.peek(4)
+            squared = power is not None and (power.text in ("2", "^") and power.glued)
+            if per.text in ("m", "lm", "rm", "mb", "ml"):
+                form, used = ("area mass", 4) if squared and per.text == "m" else ("length mass", 3)
+                if squared and power is not None and power.text == "^":
+                    used = 5
+            elif per.text in ("sqm", "qm"):
+                form, used = "area mass", 3
+            elif per.text == "ft":
+                form, used = ("area mass", 4) if squared else ("length mass", 3)
+                factor /= 0.3048**2 if squared else 0.3048
+            elif per.text in ("pc", "pcs", "each", "piece", "stk", "st"):
+                used = 3
+            else:
+                return False
+        if self.out.mass is not None:
+            self.out.problem = "two masses are stated"
+        self.out.mass = (form, token.value * factor)
+        self.at += used
+        return True
+
+    # -- words --------------------------------------------------------------------------------------------------------
+    def word(self, token: Token) -> None:
+        text = token.text
+        if text in _STANDARD_BODIES and self.standard(token):
+            return
+        if self.grade(token) or self.labelled(token):
+            return
+        out = self.out
+        if text in words.FAMILY_WORDS:
+            family, variant = words.FAMILY_WORDS[text]
+            if not (len(text) == 1 and out.families):
+                if (family, variant) not in out.families:
+                    out.families.append((family, variant))
+                return
+        if text in words.CHANGED:
+            out.changed.append(token.raw)
+        if text in words.BOUGHT:
+            out.bought.append(token.raw)
+        if text in words.METAL_WORDS:
+            out.metal = True
+        if text in words.WOOD_WORDS:
+            out.wood = True
+        if text in words.GLASS_WORDS:
+            out.glass = True
+        known = text in words.CHANGED or text in words.BOUGHT or text in words.METAL_WORDS or text in words.WOOD_WORDS
+        if text in words.KIND_WORDS:
+            out.kinds.append(words.KIND_WORDS[text])
+            known = True
+        if text in words.PROPERTY_WORDS:
+            out.properties.add(words.PROPERTY_WORDS[text])
+            if words.PROPERTY_WORDS[text] == "round":
+                self.diameter = True
+            known = True
+        if (len(text) <= 2 and text.upper() in _ALL_VARIANTS) or (text in words.PROPERTY_WORDS and words.PROPERTY_WORDS[text] == "letter"):
+            out.letters.append(text.upper())
+            known = True
+        if not known and text not in words.LABELS:
+            out.others.append(token.raw)
+
+    def standard(self, token: Token) -> bool:
+        """``EN 10219-2``, ``BS EN 10210``, ``ASTM A500``, with a part and a year."""
+        ahead, parts = 1, [token.text]
+        while (found := self.peek(ahead)) is not None and found.kind == "word" and (found.text in _STANDARD_BODIES or len(found.text) == 1):
+            parts.append(found.text)
+            ahead += 1
+        number = self.peek(ahead)
+        if (
+            number is None
+            or number.kind != "num"
+            or not (number.value >= 1000 or len(parts) > 1 or token.text in ("din", "iso", "astm", "jis"))
+        ):
+            return False
+        if "x" in (after.text if (after := self.peek(ahead + 1)) is not None and after.glued else ""):
+            return False
+        parts.append(number.text)
+        self.at += ahead
+        while (
+            (sign := self.peek(1)) is not None
+            and sign.text in ("-", ":")
+            and sign.glued
+            and (part := self.peek(2)) is not None
+            and part.kind == "num"
+            and part.glued
+        ):
+            parts.append(part.text)
+            self.at += 2
+        self.out.standards.append(" ".join(parts))
+        return True
+
+    def grade(self, token: Token) -> bool:
+        """A material grade inside a section text: read past, and kept for a note."""
+        number, after = self.peek(1), self.peek(2)
+        if number is None or number.kind != "num" or number.unit not in ("", "m"):
+            return False
+        joined = after is not None and after.kind == "sep" and after.text in ("x", "*", "/")
+        text, value = token.text, number.value
+        fits = number.glued and (
+            (text == "s" and value in _STEEL_GRADES)
+            or (text == "st" and value in _OLD_GRADES)
+            or (text in _WOOD_GRADES and value in _WOOD_GRADES[text] and not self.solid)
+            or (text == "a" and value in _ASTM_GRADES)
+        )
+        named = text in ("grade", "gr", "type", "class", "cl", "aisi") or (text in _GRADE_WORDS and value >= 200)
+        if joined or not (fits or named):
+            return False
+        raw = token.raw + number.raw
+        self.at += 1
+        while (tail := self.peek(1)) is not None and (
+            tail.glued
+            and (
+                tail.kind == "num"
+                or (tail.kind == "word" and tail.text in _GRADE_TAILS)
+                or (tail.text in ("+", "-") and self.at + 2 < len(self.tokens))
+            )
+        ):
+            raw += tail.raw
+            self.at += 1
+        self.out.grades.append(raw)
+        return True
+
+    def labelled(self, token: Token) -> bool:
+        """``t=12``, ``ép. 4``, ``wall 5``, ``OD 19``, and in arch stones and wedges ``R3500``."""
+        name = words.LABELS.get(token.text)
+        if token.text in ("l", "c") and self.solid:
+            name = {"l": "length", "c": "chord"}[token.text]
+        if name is None and token.text == "l" and (sign := self.peek(1)) is not None and sign.text in ("=", ":"):
+            name = "length"
+        if name is None:
+            return False
+        ahead = 1
+        sign = self.peek(1)
+        signed = sign is not None and sign.text in ("=", ":", ".")
+        if signed:
+            ahead = 2
+        number = self.peek(ahead)
+        if number is None or number.kind != "num":
+            return False
+        after = self.peek(ahead + 1)
+        joined = after is not None and after.kind == "sep" and self.number_after(ahead + 2)
+        if len(token.text) == 1 and token.text != "ø" and not (sign is not None and sign.text in ("=", ":")) and not self.solid:
+            return False
+        if (name in ("diameter", "outer diameter") and joined) or (token.text == "ø" and not self.out.chains and not self.solid):
+            return False  # Ø48.3x3.2 is a row of sizes; a lone Ø20 too, so that the kind decides
+        self.label(name, number)
+        if token.text in words.PROPERTY_WORDS and words.PROPERTY_WORDS[token.text] != "letter":
+            self.out.properties.add(words.PROPERTY_WORDS[token.text])
+        self.at += ahead
+        return True
+
+    def label(self, name: str, number: Token) -> None:
+        if name in self.out.labels and self.out.labels[name].mm != number.mm:
+            self.out.problem = f"the {name} is given twice"
+        self.out.labels[name] = number
+
+    # -- signs --------------------------------------------------------------------------------------------------------
+    def separator(self, token: Token) -> None:
+        """A separator that does not stand between two numbers."""
+        follower = self.peek(1)
+        if token.text in ("x", "*") and follower is not None and follower.kind == "num":
+            before = self.peek(-1)
+            if before is None or before.kind != "word" or before.text not in words.LABELS:
+                self.out.problem = f"a number is missing before {token.raw!r}"
+
+    def mark(self, token: Token) -> None:
+        if token.text in _OPENING:
+            self.depth += 1
+        elif token.text in _CLOSING:
+            self.depth = max(0, self.depth - 1)
+        elif token.text in _APPROXIMATE:
+            self.out.problem = f"{token.raw!r} makes the size approximate"
+        elif token.text == "-":
+            before, number = self.peek(-1), self.peek(1)
+            if number is None or number.kind != "num" or not number.glued:
+                return
+            if before is not None and before.kind == "num" and token.glued:
+                self.out.problem = "a dash between two numbers is a range, or a sign nobody can be sure of"
+            elif not token.glued or (before is not None and before.kind == "sep"):
+                self.out.problem = f"a size cannot be negative (-{number.raw})"
+
+    def drop_repeats(self) -> None:
+        """A bracketed row of sizes that repeats the one before it in other units says nothing new."""
+        chains = self.out.chains
+        if (
+            len(chains) == 2
+            and chains[1].bracketed
+            and not chains[0].bracketed
+            and len(chains[0].numbers) == len(chains[1].numbers)
+            and all(abs(a - b) <= 0.012 * max(a, b) for a, b in zip(chains[0].mm, chains[1].mm, strict=True))
+        ):
+            del chains[1]
+
+
+_ALL_VARIANTS = frozenset().union(*words.VARIANTS.values())
+
+
+def parse(tokens: list[Token]) -> Parsed:
+    return Parser(tokens).run()
+
+
+def words_only(tokens: list[Token]) -> Parsed:
+    """The words of a heading or caption, its numbers left out."""
+    return Parser([t for t in tokens if t.kind == "word"]).run()
+
+
+__all__ = ["MM_PER", "Chain", "Parsed", "parse", "words_only"]

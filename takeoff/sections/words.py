@@ -1,0 +1,186 @@
+"""The words people use for sections, in nine languages, each brought to a family, a kind or a property. Rank 2.
+
+This is the one place to touch for another spelling. Words are folded: small letters, no accents.
+"""
+
+from __future__ import annotations
+
+
+def _by_word(groups: dict[str, str]) -> dict[str, str]:
+    """From meaning -> words to word -> meaning."""
+    return {word: meaning for meaning, words in groups.items() for word in words.split()}
+
+
+#: A family's own names; a second word is the variant letters the name carries.
+_FAMILIES: dict[str, str] = _by_word(
+    {
+        "UB": "ub ukb",
+        "UC": "uc ukc",
+        "UBP": "ubp ukbp",
+        "PFC": "pfc ukpfc",
+        "IPE": "ipe",
+        "IPE A": "ipea",
+        "IPE AA": "ipeaa",
+        "IPE O": "ipeo",
+        "IPE V": "ipev",
+        "IPN": "ipn inp",
+        "HE": "he",
+        "HE A": "hea ipbl",
+        "HE AA": "heaa ipbll",
+        "HE B": "heb ipb",
+        "HE M": "hem ipbv",
+        "HE C": "hec",
+        "HL": "hl",
+        "HL A": "hla",
+        "HL B": "hlb",
+        "HL M": "hlm",
+        "HL R": "hlr",
+        "HL AA": "hlaa",
+        "HD": "hd",
+        "HP": "hp",
+        "UPN": "upn unp",
+        "UPE": "upe",
+        "L": "l rsa ea ua",
+        "T": "t",
+        "SHS": "shs",
+        "RHS": "rhs",
+        "CHS": "chs",
+        "FL": "fl fb fla",
+        "PL": "pl plt bl",
+        "RD": "rd rb",
+        "SQ": "sq sb",
+        "HEX": "hex",
+    }
+)
+#: word -> (family, variant)
+FAMILY_WORDS: dict[str, tuple[str, str]] = {word: (meaning.split(" ")[0], meaning.partition(" ")[2]) for word, meaning in _FAMILIES.items()}
+
+#: Variant letters that may stand apart from the family's word, by family.
+VARIANTS: dict[str, frozenset[str]] = {
+    "IPE": frozenset(("A", "AA", "O", "V", "R")),
+    "HE": frozenset(("A", "AA", "B", "M", "C")),
+    "HL": frozenset(("A", "AA", "B", "M", "R")),
+}
+
+#: word -> kind: a group of families or a made shape.
+KIND_WORDS: dict[str, str] = _by_word(
+    {
+        "angle": (
+            "angle angles angleiron corniere cornieres winkel winkelstahl winkelprofil angular angulo angolare hoekstaal hoekprofiel "
+            "hoeklijn katownik cantoneira vinkel vinkelstang hoek"
+        ),
+        "channel": "channel channels",
+        "beam": "beam beams joist poutrelle trager viga balk",
+        "column": "column columns stanchion stutze pilar poteau kolom",
+        "tee": "tee tees",
+        "tube": (
+            "tube tubes tubing hollow koker kokerprofiel tubo tubos hohlprofil profilrohr tubolare tubulaire tubular profil buisprofiel "
+            "kokerbuis"
+        ),
+        "box": "box",
+        "round tube": "pipe pipes rohr rohre rundrohr stahlrohr buis buizen rura rury ror cano rondbuis",
+        "square tube": "quadratrohr vierkantrohr vierkantbuis",
+        "rectangular tube": "rechteckrohr",
+        "flat": (
+            "flat flats flatbar flach flachstahl flacheisen flachstab plat plats strip pletina llanta piatto plattstang platstaal "
+            "strippen plaskownik chata flachprofil bandstahl solera"
+        ),
+        "plate": (
+            "plate plates blech bleche grobblech tole toles chapa chapas placa lamiera lamiere plaat platen plaatstaal blacha platta "
+            "platte stahlblech"
+        ),
+        "sheet": "sheet sheets feinblech blachy",
+        "pane": "pane panes glass glas glazing scheibe verre vitre vidrio vetro szklo vidro",
+        "panel": "panel panels plywood ply osb mdf chipboard plasterboard hardboard multiplex sperrholz",
+        "bar": "bar bars stab barre barra barras staaf pret stang varao billet fer",
+        "rod": "rod rods rundstahl rundeisen rundstab rondstaal rundstang shaft welle eixo",
+        "hexagon": "hexagon hexagonal sechskant hexagono esagono zeskant sexkant sechskantstahl",
+        "square bar": "vierkantstahl quadratstahl vierkantstab vierkantstaal",
+        "block": (
+            "block blocks coping copings kerb kerbs curb curbs slab slabs lintel lintels sill sills step steps stone stones padstone "
+            "plinth paver pavers flagstone capstone cap pad brick ashlar stein bloc bloque blocco blok quader cuboid footing dalle losa "
+            "sleeper sleepers ballast counterweight"
+        ),
+        "board": (
+            "board boards plank planks decking batten battens brett bretter bohle planche tabla tavola deska deski bradda reglar regel "
+            "rafter rafters purlin purlins stud studs scantling kantholz timber lumber sawn"
+        ),
+        "wedge": "wedge keil",
+        "arch": "voussoir voussoirs arch arched archstone",
+    }
+)
+
+#: word -> property that picks among the shapes of a kind.
+PROPERTY_WORDS: dict[str, str] = _by_word(
+    {
+        "square": (
+            "square quadratisch carre cuadrado cuadrada quadrato quadrado quadro kwadratowy kwadratowa kvadratisk vierkant vierkante "
+            "kwadrat"
+        ),
+        "rectangular": (
+            "rectangular rect rectangulaire rettangolare rechthoekig rechthoekige rechteckig retangular prostokatny prostokatna rektangular"
+        ),
+        "round": (
+            "round circular rund rond ronde rondo redondo redonda tondo tonda rotondo okragly okragla runt cylindrical dia diameter diam "
+            "ø od durchmesser diametre diametro"
+        ),
+        "legs": "equal unequal equale egales inegales",
+        "hot": "hot hf warmgewalzt warmgefertigt warm",
+        "cold": "cold cf kaltgefertigt kaltgewalzt kalt",
+        "seamless": "seamless nahtlos smls naadloos",
+        "letter": "h i u c",
+    }
+)
+
+#: Words beside a size: which size it is.
+LABELS: dict[str, str] = _by_word(
+    {
+        "thickness": ("t thk thick thickness ep epaisseur dicke dick starke gr grubosc espesor dikte spessore espessura tjocklek"),
+        "wall": "wall wd",
+        "width": "w width wide b breite largeur ancho largura breedte",
+        "height": "h height high depth deep",
+        "length": "lg long length len lange longueur largo lengte",
+        "outer diameter": "od ad",
+        "inner diameter": "id",
+        "diameter": "ø dia diam diameter durchmesser",
+        "radius": "r radius rayon",
+        "depth": "d",
+        "angle": "a deg",
+    }
+)
+
+#: Words that change what the piece is, so that the section's own mass would be wrong.
+CHANGED: frozenset[str] = frozenset(
+    (
+        "built caillebotis castellated cellular checker checkered chequer chequered composite corrugated double expanded fabricated "
+        "gitterrost grating half halved haunch haunched hollowcore honeycomb insulated laced laminated lip lipped lochblech louvre mesh "
+        "pair perforated profiled riffel sandwich slotted split t-slot tapered threaded tranen trapezoidal tread twin wellblech"
+    ).split()
+)
+
+#: Bought-out things that are told by their own mass, not by sizes.
+BOUGHT: frozenset[str] = frozenset(
+    (
+        "anchor anchors assembly bearing bearings bolt bolts boulon boulons bout bracket cable chain clamp clip eyebolt fabric film "
+        "fixing fixings gitterrost grating grout hinge kit lamp lock luminaire membrane mesh motor mutter nail nails nipple nut nuts "
+        "paint perno rivet rivets roost rope schraube schrauben screw screws sealant set sets shackle sign studbolt tornillo tray unit "
+        "valve vis vite washer washers"
+    ).split()
+)
+
+#: Words that say the piece is of metal.
+METAL_WORDS: frozenset[str] = frozenset(
+    (
+        "acciaio acero acier aco alu aluminium aluminum brass bronze copper edelstahl galv galvanised galvanized inox mild ms staal stahl "
+        "stainless stal stal. steel structural verzinkt"
+    ).split()
+)
+#: Words that say the piece is of wood.
+WOOD_WORDS: frozenset[str] = frozenset(
+    (
+        "ash azobe beech cedar chene chipboard douglas eiche ekki elm fichte fir glulam greenheart hardwood iroko kiefer larch larche mdf "
+        "multiplex oak osb pine pino ply plywood redwood roble sapele sapin softwood sperrholz spruce teak timber whitewood wood"
+    ).split()
+)
+#: Words that say the piece is of glass.
+GLASS_WORDS: frozenset[str] = frozenset(("glas glass glazing szklo verre vetro vidrio vidro").split())
