@@ -1,0 +1,3 @@
+"""A spreadsheet becomes members: sheets (the only reader of workbooks), headings, rows, members, recognition. Rank 3."""
+
+from __future__ import annotations

@@ -1,0 +1,165 @@
+"""Each distinct combination of section text and material text is recognised once, and serves every row that holds it.
+
+The order: the section's own readings first; the material with the hint the section gives; then a section still open is
+settled by the material. What stays open is refused with the readings offered.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass, field
+from typing import TYPE_CHECKING
+
+from takeoff import materials, sections
+from takeoff.findings import Finding
+from takeoff.names import normal_name
+
+if TYPE_CHECKING:
+    from takeoff.job import Job
+    from takeoff.materials import Material, MaterialMatch, OwnTable
+    from takeoff.sections import Section, SectionMatch, Table
+
+#: what a section whose standard is itself a steel standard is made of where the list names no material
+DEFAULT_STEEL = "steel-structural"
+
+
+@dataclass(slots=True)
+class Recognition:
+    """One distinct (section text, material text): what it is, or why it is not known.
+
+    text_length_mm : a piece length carried by the section text.
+    section_refusal, material_refusal : why a mass cannot be computed, where it cannot; a stated mass may still serve.
+    notes : findings of every row with these texts, with the field they are about.
+    assumed : something here was inferred.
+    """
+
+    section: Section | None = None
+    material: Material | None = None
+    section_match: str | None = None
+    material_match: str | None = None
+    text_length_mm: float | None = None
+    section_refusal: Finding | None = None
+    material_refusal: Finding | None = None
+    notes: list[tuple[Finding, str]] = field(default_factory=list)
+    assumed: bool = False
+
+
+class Recogniser:
+    """Recognises texts under a job's settings. `strict` refuses similar names instead of assuming them."""
+
+    def __init__(self, job: Job, own: OwnTable | None = None, own_sections: Table | None = None, strict: bool = False) -> None:
+        self.job, self.own, self.own_sections, self.strict = job, own, own_sections, strict
+        self._materials = {normal_name(k): v for k, v in job.names.materials.items()}
+        self._sections = {normal_name(k): v for k, v in job.names.sections.items()}
+
+    def all(
+        self, section_texts: Sequence[str | None], material_texts: Sequence[str | None], headings: Sequence[str | None]
+    ) -> tuple[list[Recognition], list[int]]:
+        """The distinct recognitions, and for each row which one is its own. `headings`: of each row's section column."""
+        order: dict[tuple[str | None, str | None, str | None], int] = {}
+        codes = [order.setdefault(key, len(order)) for key in zip(section_texts, material_texts, headings, strict=True)]
+        return [self.one(*key) for key in order], codes
+
+    def one(self, section_text: str | None, material_text: str | None, heading: str | None = None) -> Recognition:
+        """What one pair of texts stands for, under a heading of the section column."""
+        found = Recognition()
+        wanted_section = (self._sections.get(normal_name(section_text)) if section_text else None) or section_text
+        wanted_material = self._material_text(material_text, found)
+        section = self._read_section(wanted_section, heading, None)
+        material = self._look_up(wanted_material, section)
+        if material is not None and material.material is not None:
+            # The kind settles an open reading, and which thickness and size tolerances apply.
+            section = self._read_section(wanted_section, heading, material.material.kind)
+        self._take_section(section, section_text, found)
+        self._take_material(material, wanted_material, found)
+        return found
+
+    def _read_section(self, text: str | None, heading: str | None, kind: str | None) -> SectionMatch | None:
+        if text is None:
+            return None
+        return sections.read(text, hollow=self.job.names.hollow, material_kind=kind, heading=heading, own=self.own_sections)
+
+    def _material_text(self, text: str | None, found: Recognition) -> str | None:
+        if text:
+            return self._materials.get(normal_name(text), text)
+        if self.job.reading.material:
+            found.notes.append((
+                Finding("note", "material-from-caption", f"no material in the row: {self.job.reading.material!r}, as the job file says"),
+                "material",
+            ))
+            return self.job.reading.material
+        return None
+
+    def _look_up(self, text: str | None, section: SectionMatch | None) -> MaterialMatch | None:
+        if text is None:
+            return None
+        hint = section.section.material_hint if section and section.section else None
+        return materials.lookup(text, hint=hint, own=self.own)
+
+    def _take_section(self, match: SectionMatch | None, text: str | None, found: Recognition) -> None:
+        if match is None:
+            found.section_refusal = Finding("refused", "missing-size", "the row names no section or shape",
+                                            right="a section such as UB 203x133x25, PL 10 or Block 600x300x200")
+            return
+        found.section_match = match.match
+        offered = ", ".join(c.designation for c in match.candidates[:4]) or None
+        if match.section is None:
+            found.section_refusal = Finding(
+                "refused", match.kind or "unknown-section", match.reason or "the section is not known", read=text,
+                right=f"one of {offered}" if offered else "a designation in the tables, the sizes in figures, or a unit mass",
+            )
+            return
+        if match.match in ("similar", "ambiguous"):
+            if self.strict and match.match == "similar":
+                found.section_refusal = Finding("refused", "similar-section", "only similar to a known section, and --strict was asked",
+                                                read=text, right=f"one of {offered}" if offered else None)
+                return
+            found.assumed = True
+            kind = "similar-section" if match.match == "similar" else "ambiguous-section"
+            found.notes.append((Finding("assumed", kind, f"taken as {match.section.designation}"
+                                        + (f": {match.reason}" if match.reason else ""), read=text,
+                                        right=f"one of {offered}" if offered else None), "section"))
+        found.section = match.section
+        found.text_length_mm = match.length_mm
+        for note in match.notes:
+            found.notes.append((Finding("note", "section-note", note, read=text), "section"))
+        if match.section.hollow_standard_assumed:
+            found.notes.append((Finding(
+                "note", "hollow-standard-assumed", "a hollow section without a standard: hot finished (EN 10210-2) is nominal, "
+                "light reaches down to cold formed", right='EN 10219 in the text, or [names] hollow = "cold" in the job file'), "section"))
+
+    def _take_material(self, match: MaterialMatch | None, text: str | None, found: Recognition) -> None:
+        if match is None:
+            if found.section is not None and found.section.is_steel_standard:
+                found.material = materials.by_key(DEFAULT_STEEL)
+                found.material_match = "none"
+                found.assumed = True
+                found.notes.append((Finding("assumed", "material-absent", "no material is named: taken as carbon steel, "
+                                            "since the section's standard is a steel standard", right="a material in the row"), "material"))
+            else:
+                found.material_refusal = Finding("refused", "material-absent", "no material is named",
+                                                 right="a material in the row, or [reading] material in the job file")
+            return
+        found.material_match = match.match
+        offered = ", ".join(c.name for c in match.candidates[:4]) or None
+        if match.match == "ambiguous" or match.material is None:
+            kind = "ambiguous-material" if match.match == "ambiguous" else "unknown-material"
+            message = "the text names several materials" if match.match == "ambiguous" else "the material is not known"
+            right = f"one of {offered}" if offered else "a material of the table"
+            found.material_refusal = Finding("refused", kind, message, read=text, right=right)
+            return
+        if match.match == "similar":
+            if self.strict:
+                found.material_refusal = Finding("refused", "similar-material", "only similar to a known material, and --strict was asked",
+                                                 read=text, right=f"one of {offered}" if offered else None)
+                return
+            found.assumed = True
+            found.notes.append((Finding("assumed", "similar-material", f"taken as {match.material.name}", read=text,
+                                        right=f"one of {offered}" if offered else None), "material"))
+        if match.material.density.nominal is None:
+            found.material_refusal = Finding("refused", "no-density", "no source gives this material one density", read=text,
+                                             right="a density, in a row of your own table ([own] materials)")
+            return
+        if match.material.own:
+            found.notes.append((Finding("note", "own-material", "the density is from your own table", read=text), "material"))
+        found.material = match.material
