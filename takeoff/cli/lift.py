@@ -1,0 +1,44 @@
+"""`takeoff lift`: what each pick weighs and what hangs on the hook."""
+
+from __future__ import annotations
+
+import typer
+
+from takeoff.cli import console
+from takeoff.cli.options import JobOption, JsonOption, OneList, QuietOption, StrictOption, UnitsOption, with_units
+from takeoff.errors import InputError
+
+
+def lift(
+    member_list: OneList,
+    job: JobOption = None,
+    pick: str | None = typer.Option(None, metavar="NAME", help="This pick only."),
+    units: UnitsOption = None,
+    strict: StrictOption = False,
+    json: JsonOption = False,
+    quiet: QuietOption = False,
+) -> None:
+    """Print the pick sheet: each pick's mass and its hook load, line by line.
+
+    Example: takeoff lift cutting_list.xlsx --pick MS1
+    """
+    from takeoff import pipeline
+    from takeoff.job import find_job
+    from takeoff.lifting.hook import CAUTIONS
+    from takeoff.reports import terminal
+
+    the_job = with_units(find_job([member_list], job), units)
+    result = pipeline.schedule([member_list], the_job, strict=strict)
+    picks = [p for p in result.picks if pick is None or p.name == pick]
+    if not picks:
+        names = ", ".join(p.name for p in result.picks)
+        raise InputError(
+            "there is no such pick" if pick else "the list names no assembly and no pick", file=member_list, read=pick,
+            right=f"one of {names}" if names else "a column Assembly or Pick",
+        )
+    if json:
+        console.out_json({"picks": [p.as_record() for p in picks], "cautions": list(CAUTIONS)})
+    elif not quiet:
+        console.out(terminal.pick_sheet(picks, console.width(), units=the_job.job.units, cautions=CAUTIONS, title=the_job.job.title))
+    if any(p.not_weighed for p in picks) or (strict and any(p.verdict != "within" for p in picks)):
+        raise typer.Exit(3)

@@ -1,0 +1,29 @@
+"""Arguments and options that several commands share."""
+
+from __future__ import annotations
+
+from pathlib import Path
+from typing import TYPE_CHECKING, Annotated, Literal
+
+import typer
+
+if TYPE_CHECKING:
+    from takeoff.job import Job
+
+Units = Literal["si", "us"]
+
+Lists = Annotated[list[Path], typer.Argument(metavar="LIST...", help="Member lists: .xlsx or .csv files.")]
+OneList = Annotated[Path, typer.Argument(metavar="LIST", help="A member list: an .xlsx or .csv file.")]
+JobOption = Annotated[Path | None, typer.Option(help="The job file; else the job.toml beside the list, if there is one.")]
+UnitsOption = Annotated[Units | None, typer.Option(help="Units for print: si or us. JSON is always SI.")]
+QuietOption = Annotated[bool, typer.Option("--quiet", help="Print nothing that was not asked for.")]
+StrictOption = Annotated[bool, typer.Option("--strict", help="Refuse similar names instead of assuming them.")]
+JsonOption = Annotated[bool, typer.Option("--json", help="Print JSON alone, SI units.")]
+MaterialOption = Annotated[str | None, typer.Option(help="The material; else carbon steel, where the section is of a steel standard.")]
+
+
+def with_units(job: Job, units: Units | None) -> Job:
+    """The job with the print units an option asks for."""
+    if units is None:
+        return job
+    return job.model_copy(update={"job": job.job.model_copy(update={"units": units})})

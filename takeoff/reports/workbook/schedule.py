@@ -1,0 +1,275 @@
+"""The sheet with one row a member: what it is, what one piece and all of them weigh, and on what basis. Rank 9."""
+
+from __future__ import annotations
+
+import re
+from collections import Counter
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+from takeoff.reports import rounding
+from takeoff.reports.wording import ROUNDED, shown
+from takeoff.reports.workbook.sheet import BASIS, SCHEDULE, Book, Sheet, cell_text, letters, place
+
+if TYPE_CHECKING:
+    import pandas as pd
+
+    from takeoff.pipeline import Result
+
+WORDS = ("light", "nominal", "heavy")
+
+_TITLE, _SUBTITLE, _NOTE, TOTAL, _SHOWN, _HEADINGS, FIRST = range(7)
+
+#: names that stand in the schedule where the list has a blank, so that the summary's sums can find those rows
+BLANKS = {"material": "(no material)", "section": "(no section)", "assembly": "(no assembly)"}
+
+_STATUS_STYLE = {"weighed": "cell", "assumed": "cell italic", "not weighed": "cell bold"}
+_SIZES = {
+    "length_mm": "Length", "width_mm": "Width", "thickness_mm": "Thickness", "height_mm": "Height",
+    "diameter_mm": "Diameter",
+}
+
+
+@dataclass(frozen=True, slots=True)
+class Column:
+    """One column: the key others refer to it by, its heading, width in characters, and whether figures stand in it."""
+
+    key: str
+    heading: str
+    width: float
+    figures: bool = False
+
+
+class Names:
+    """The names in one column of the schedule, with how often each comes once cells have cleaned it, and once case is gone."""
+
+    def __init__(self, key: str, names: Iterable[str]) -> None:
+        self.key = key
+        names = list(names)
+        self.cleaned = Counter(map(cell_text, names))
+        self.folded = Counter(name.casefold() for name in names)
+
+
+@dataclass(frozen=True, slots=True)
+class Plan:
+    """Where things lie on the schedule sheet, for those who refer to it."""
+
+    columns: tuple[Column, ...]
+    last: int
+    headings: int = _HEADINGS
+
+    def index(self, key: str) -> int:
+        return next(i for i, column in enumerate(self.columns) if column.key == key)
+
+    def span(self, key: str, *, here: bool = False) -> str:
+        """All rows of a column, ``'Weight schedule'!$H$7:$H$75``."""
+        letter = letters(self.index(key))
+        sheet = "" if here else f"'{SCHEDULE}'!"
+        return f"{sheet}${letter}${FIRST + 1}:${letter}${self.last + 1}"
+
+    def total(self, key: str) -> str:
+        return place(SCHEDULE, TOTAL, self.index(key))
+
+    def one_of(self, names: Names, name: str, name_cell: str, what: str) -> str | None:
+        """A formula over the rows where the column of `names` holds `name`: the sum of column `what`.
+
+        `what` may also be ``pieces`` (of rows weighed) or ``not weighed`` (rows). None where no formula could tell this
+        name from another, or where it would be too slow to be live.
+        """
+        if names.cleaned[cell_text(name)] != 1:
+            return None
+        span, status, pieces = self.span(names.key), self.span("status"), self.span("quantity")
+        if names.folded[name.casefold()] == 1 and _plain_criterion(name):
+            if what == "not weighed":
+                return f'=COUNTIFS({span},{name_cell},{status},"not weighed")'
+            if what == "pieces":
+                return f'=SUMIFS({pieces},{span},{name_cell},{status},"<>not weighed")'
+            return f"=SUMIF({span},{name_cell},{self.span(what)})"
+        # SUMIF would read this name as a number, a date, a comparison or a pattern; EXACT takes it letter by letter.
+        if self.last - FIRST > _MOST_EXACT:
+            return None
+        if what == "not weighed":
+            return f'=SUMPRODUCT(EXACT({span},{name_cell})*({status}="not weighed"))'
+        if what == "pieces":
+            return f'=SUMPRODUCT(EXACT({span},{name_cell})*({status}<>"not weighed"),{pieces})'
+        return f"=SUMPRODUCT(--EXACT({span},{name_cell}),{self.span(what)})"
+
+
+_MOST_EXACT = 20_000
+_TWO_LETTERS = re.compile(r"[^\W\d_]{2}")
+_DATE_WORDS = re.compile(r"jan|feb|m[aä]r|apr|ma[iy]|jun|jul|aug|sep|o[ck]t|nov|de[cz]|true|false|\b[ap]m\b", re.IGNORECASE)
+_PATTERN = re.compile(r"^[=<>]|[*?~]")
+
+
+def _plain_criterion(name: str) -> bool:
+    """True where a spreadsheet's SUMIF takes this name for this text and nothing else.
+
+    SUMIF reads ``=<>`` in front as a comparison, ``*?~`` as a pattern, and text like a number, date, time or truth value as
+    one; a name of more than 255 characters it refuses. It folds case too: see `Names.folded`.
+    """
+    if len(name) > 250 or _PATTERN.search(name) or name != name.strip():
+        return False
+    if not _TWO_LETTERS.search(name):
+        return False
+    if _DATE_WORDS.search(name) and any(c.isdigit() for c in name):
+        return False
+    return name.casefold() not in {"true", "false"}
+
+
+def columns_for(result: Result) -> tuple[Column, ...]:
+    """The columns this list needs: those always there, and those it has something for."""
+    frame, us = result.members, result.job.job.units == "us"
+    unit = rounding.mass_unit(result.job.job.units)
+    columns: list[Column] = []
+    if len(result.inputs) > 1:
+        columns.append(Column("file", "List", _fit(frame, "file", 10, 26)))
+    if frame["sheet"].notna().any():
+        columns.append(Column("sheet", "Sheet", _fit(frame, "sheet", 7, 18)))
+    columns += [
+        Column("row", "Row", 6, figures=True), Column("mark", "Mark", _fit(frame, "mark", 7, 18)),
+        Column("assembly", "Assembly", _fit(frame, "assembly", 10, 22)),
+        Column("quantity", "Pieces", 7.5, figures=True), Column("section", "Section", _fit(frame, "section", 14, 30)),
+        Column("material", "Material", _fit(frame, "material", 13, 28)),
+    ]
+    for key, heading in _SIZES.items():
+        if key == "length_mm" or frame[key].notna().any():
+            length = us and key == "length_mm"
+            size_unit = "ft-in" if length else "in" if us else "mm"
+            columns.append(Column(key, f"{heading} ({size_unit})", 13 if length else 10.5 if key == "thickness_mm" else 9.5, figures=True))
+    for part, heading in (("each", "One piece"), ("total", "All pieces")):
+        columns += [
+            Column(f"{part}_{word}_kg", f"{heading}, {word} ({unit})", 11.5 if part == "each" else 12, figures=True) for word in WORDS
+        ]
+    columns += [
+        Column("status", "State", 11), Column("basis", "Basis no.", 7), Column("note", "What to know", 34),
+        Column("section_text", "Section in the list", _fit(frame, "section_text", 16, 34)),
+        Column("material_text", "Material in the list", _fit(frame, "material_text", 16, 30)),
+    ]
+    for key, heading in {
+        "pick": "Pick", "phase": "Phase", "run": "Run", "bundle": "Bundle", "finish": "Finish", "contents": "Contents",
+        "remarks": "Remarks",
+    }.items():
+        if frame[key].notna().any():
+            columns.append(Column(key, heading, _fit(frame, key, 9, 30)))
+    return tuple(columns)
+
+
+def _fit(frame: pd.DataFrame, key: str, least: float, most: float) -> float:
+    lengths = [len(v) for v in frame[key].dropna().unique() if isinstance(v, str)]
+    if key in BLANKS and frame[key].isna().any():
+        lengths.append(len(BLANKS[key]))
+    return min(most, max(least, max(lengths, default=0) * 1.06 + 1.5))
+
+
+def plan_for(result: Result) -> Plan:
+    """Where things will lie on the sheet of this result."""
+    return Plan(columns_for(result), FIRST + max(len(result.members), 1) - 1)
+
+
+def write(book: Book, result: Result, plan: Plan, basis_rows: Sequence[int]) -> None:
+    """Write the sheet; `basis_rows` are the rows where the bases stand on their sheet."""
+    sheet, columns = book.sheets[SCHEDULE], plan.columns
+    sheet.widths([column.width for column in columns])
+    _top(sheet, book, result, plan)
+    _rows(sheet, result, plan, basis_rows)
+    last_printed = plan.index("note")
+    sheet.raw.freeze_panes(FIRST, plan.index("mark") + 1)
+    sheet.raw.autofilter(_HEADINGS, 0, plan.last, len(columns) - 1)
+    sheet.raw.repeat_rows(_HEADINGS)
+    sheet.raw.print_area(0, 0, plan.last, last_printed)
+
+
+def _top(sheet: Sheet, book: Book, result: Result, plan: Plan) -> None:
+    files = ", ".join(shown(i.file) for i in result.inputs)
+    sheet.raw.set_row(_TITLE, 24)
+    sheet.text(_TITLE, 0, f"Weight schedule: {book.title}" if book.title != SCHEDULE else SCHEDULE, "title")
+    sheet.text(_SUBTITLE, 0, "; ".join(p for p in (book.subtitle, f"list: {files}") if p), "subtitle")
+    sheet.text(
+        _NOTE, 0, f"{ROUNDED} Lifting and axle checks use heavy. Row is the row of the list. "
+        "Columns right of “What to know” help a checker on screen and are not printed.", "quiet",
+    )
+    units = book.units
+    for row, label, function, style in (
+        (TOTAL, "Total, all rows weighed", "SUM(", "total"), (_SHOWN, "Of the rows the filter shows", "SUBTOTAL(109,", "shown"),
+    ):
+        for index, column in enumerate(plan.columns):
+            if column.key == "quantity" and row == TOTAL:
+                # Pieces of rows that are not weighed are no part of the total.
+                states, pieces = plan.span("status", here=True), plan.span("quantity", here=True)
+                sheet.formula(row, index, f'=SUMIF({states},"<>not weighed",{pieces})', result.totals.quantity, f"{style} whole")
+            elif column.key.startswith("total_"):
+                word = column.key.split("_")[1]
+                value = rounding.in_mass_unit(getattr(result.totals.mass_kg, word), units)
+                sheet.formula(row, index, f"={function}{plan.span(column.key, here=True)})", value, f"{style} mass")
+            else:
+                sheet.text(row, index, label if index == 0 else None, style)
+    sheet.raw.set_row(_HEADINGS, 42)
+    for index, column in enumerate(plan.columns):
+        sheet.text(_HEADINGS, index, column.heading, "head right" if column.figures else "head")
+
+
+def _rows(sheet: Sheet, result: Result, plan: Plan, basis_rows: Sequence[int]) -> None:
+    frame, units = result.members, sheet.book.units
+    us = units == "us"
+    notes = _notes(result)
+    values = {column.key: frame[column.key].tolist() for column in plan.columns if column.key not in {"basis", "note"}}
+    basis_ids, statuses = frame["basis_id"].tolist(), frame["status"].tolist()
+    at = {column.key: index for index, column in enumerate(plan.columns)}
+    # A text that wraps makes its row taller, so those beyond the printed columns stay on one line.
+    printed = at["note"]
+    quantity_letter = letters(at["quantity"])
+    each_letters = {word: letters(at[f"each_{word}_kg"]) for word in WORDS}
+    for number in range(len(frame)):
+        row, weighed = FIRST + number, statuses[number] != "not weighed"
+        for index, column in enumerate(plan.columns):
+            key = column.key
+            if key == "basis":
+                if basis_ids[number] >= 0:
+                    there = place(BASIS, basis_rows[basis_ids[number]], 0, fixed=False)
+                    sheet.link(row, index, there, basis_ids[number] + 1)
+                else:
+                    sheet.text(row, index, None, "cell")
+            elif key == "note":
+                sheet.text(row, index, notes.get(number), "cell wrap")
+            elif key == "status":
+                sheet.text(row, index, statuses[number], _STATUS_STYLE[statuses[number]])
+            elif key in {"row", "quantity"}:
+                sheet.number(row, index, values[key][number], "whole")
+            elif key.startswith("each_"):
+                value = rounding.in_mass_unit(values[key][number], units) if weighed else None
+                sheet.number(row, index, value, "mass heavy" if key == "each_heavy_kg" else "mass")
+            elif key.startswith("total_"):
+                _, word, _ = key.split("_")
+                style = "mass heavy" if word == "heavy" else "mass"
+                value = values[key][number]
+                if weighed and value == value:  # noqa: PLR0124  (not NaN)
+                    formula = f"={quantity_letter}{row + 1}*{each_letters[word]}{row + 1}"
+                    sheet.formula(row, index, formula, rounding.in_mass_unit(value, units), style)
+                else:
+                    sheet.text(row, index, None, style)
+            elif key in _SIZES:
+                value = values[key][number]
+                if us and key == "length_mm":
+                    sheet.text(row, index, rounding.feet_inches(value) if value == value else None, "cell right")  # noqa: PLR0124
+                else:
+                    sheet.number(row, index, value / rounding.MM_PER_IN if us else value, "size")
+            else:
+                value = values[key][number]
+                text = value if isinstance(value, str) and value else BLANKS.get(key)
+                sheet.text(row, index, text, "cell wrap" if index < printed else "cell")
+
+
+def _notes(result: Result) -> dict[int, str]:
+    """What was refused or assumed in each row, in one line."""
+    notes: dict[int, str] = {}
+    for index, findings in result.row_findings.items():
+        said = [f.message for f in findings if f.level in {"refused", "assumed"}]
+        if said:
+            notes[index] = shown("; ".join(said))
+    frame = result.members
+    for index in frame.index[frame["status"].eq("not weighed")]:
+        reason = frame.at[index, "reason"]
+        if isinstance(reason, str) and int(index) not in notes:
+            notes[int(index)] = shown(reason)
+    return notes
