@@ -175,7 +175,7 @@ def test_ten_thousand_designations_in_two_seconds() -> None:
     texts = [row.designation for family in FAMILIES for row in rows(family)]
     texts += [f"PL {t}x{w}" for t in range(3, 63) for w in range(100, 200)]
     texts += [f"FL {w}x{t}" for w in range(20, 120) for t in range(3, 13)]
-    texts = [t for t in dict.fromkeys(texts + [f"Block {n}x600x150" for n in range(200, 4000)])][:10_000]
+    texts = list(dict.fromkeys(texts + [f"Block {n}x600x150" for n in range(200, 4000)]))[:10_000]
     assert len(texts) == 10_000
     start = time.process_time()
     found = [read(text) for text in texts]

@@ -9,16 +9,18 @@ only a suggestion: the caller treats it as assumed.
 from __future__ import annotations
 
 import re
+from collections.abc import Iterator
 from dataclasses import dataclass, replace
-from typing import Literal
+from typing import TYPE_CHECKING, Literal
 
 from takeoff.materials.material import Material
 from takeoff.materials.nameindex import fold
-from takeoff.materials.own import OwnTable
-from takeoff.materials.reinforced import CONTENT, STEEL_LIMITS, with_steel
 from takeoff.materials.table import by_key, family_of, kind_of, name_of, table
-from takeoff.materials.words import CONDITION, STRENGTH_CLASS, words
+from takeoff.materials.words import CONDITION, STRENGTH_CLASS, Words, words
 from takeoff.names import NormalName, digits_of, has_hidden_marks, has_lookalikes, normal_name, plain_text, suggest
+
+if TYPE_CHECKING:
+    from takeoff.materials.own import OwnTable
 
 Match = Literal["exact", "alias", "similar", "ambiguous", "none"]
 
@@ -74,6 +76,10 @@ def lookup(text: str, *, hint: str | None = None, own: OwnTable | None = None) -
 
 def _with_steel(text: str, hint: str | None, own: OwnTable | None) -> MaterialMatch | None:
     """`reinforced concrete 150 kg/m3`: the row, with that steel content in place of the usual one."""
+    if "kg" not in text.casefold():
+        return None
+    from takeoff.materials.reinforced import CONTENT, STEEL_LIMITS, with_steel
+
     stated = CONTENT.search(text)
     if not stated:
         return None
@@ -175,8 +181,9 @@ class _Search:
         digits = digits_of(name)
         index = table().index
         for suggestion in suggest(NormalName(fold(name)), index.folded_names(), floor=FLOOR, limit=12):
-            for key, text, _ in index.entries(suggestion.name):
-                if digits_of(normal_name(text)) == digits and suggestion.score > scores.get(key, 0.0):
+            for key in index.keys(suggestion.name):
+                better = suggestion.score > scores.get(key, 0.0)
+                if better and index.same_digits(suggestion.name, key, digits):
                     scores[key] = suggestion.score
         inside, sure = self._inside(tokens)
         ranked = sorted(scores.items(), key=lambda item: -item[1])
@@ -233,32 +240,32 @@ def _says_nothing(name: NormalName) -> bool:
     return all(token in words().set_aside or not any(c.isalpha() for c in token) for token in name.split())
 
 
-def _readings(name: NormalName) -> list[tuple[NormalName, frozenset[str] | None]]:
+def _readings(name: NormalName) -> Iterator[tuple[NormalName, frozenset[str] | None]]:
     """The name, then with less and less around it; each with the families its own words allow (None: any)."""
+    yield name, None
     known = words()
-    readings: list[tuple[NormalName, frozenset[str] | None]] = [(name, None)]
+    seen: set[tuple[NormalName, frozenset[str] | None]] = {(name, None)}
+    for tokens, allowed in _reduced(CONDITION.sub("", name).split(), known):
+        reading = (NormalName(" ".join(tokens)), allowed)
+        if tokens and reading not in seen:
+            seen.add(reading)
+            yield reading
 
-    def offer(tokens: list[str], allowed: frozenset[str] | None = None) -> None:
-        reading = NormalName(" ".join(tokens))
-        if reading and (reading, allowed) not in readings:
-            readings.append((reading, allowed))
 
-    bare = NormalName(CONDITION.sub("", name).strip())
-    tokens = bare.split()
-    offer(tokens)
+def _reduced(tokens: list[str], known: Words) -> Iterator[tuple[list[str], frozenset[str] | None]]:
+    """The tokens with standards' names, shapes and finishes, strength classes and general words set aside, in turn."""
+    yield tokens, None
     headless = tokens
     while headless and headless[0] in known.standards:
         headless = headless[1:]
-        offer(headless)
+        yield headless, None
     kept = [t for t in tokens if t not in known.set_aside]
-    offer(kept)
-    offer([t for t in kept if not STRENGTH_CLASS.fullmatch(t)])
+    yield kept, None
+    yield [t for t in kept if not STRENGTH_CLASS.fullmatch(t)], None
     plain = [t for t in kept if t not in known.standards]
-    offer(plain)
+    yield plain, None
     groups = [known.groups[t] for t in plain if t in known.groups]
     if groups:
         allowed = frozenset.intersection(*groups) or frozenset.union(*groups)
-        core = [t for t in plain if t not in known.groups]
-        offer(core, allowed)
-        offer([t for t in kept if t not in known.groups], allowed)
-    return readings
+        yield [t for t in plain if t not in known.groups], allowed
+        yield [t for t in kept if t not in known.groups], allowed

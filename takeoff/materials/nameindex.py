@@ -6,11 +6,11 @@ digits never do: a hit whose numbers are not those of the question is no hit.
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Callable, Iterable, Iterator
 
 from takeoff.names import NormalName, digits_of, normal_name, squeezed
 
-_KEEP = set("abcdefghijklmnopqrstuvwxyz0123456789.,/+%#")
+_KEEP = set("abcdefghijklmnopqrstuvwxyz0123456789.,/+%#;")
 _DROP = {code: None for code in range(128) if chr(code) not in _KEEP}
 _SAME = (
     (",", "."), ("grade", "gr"), ("gr.", "gr"), ("aluminum", "aluminium"), ("gray", "grey"), ("fiber", "fibre"),
@@ -19,8 +19,9 @@ _SAME = (
 
 
 def fold(text: str) -> str:
-    """The folded form of a name. ASCII takes a short way that gives the same result as `normal_name`."""
+    """The folded form of a name; a semicolon stays, it parts names."""
     folded: str
+    # ASCII takes a short way that gives the same result as `normal_name`: the table holds six thousand names.
     folded = text.lower().translate(_DROP) if text.isascii() else squeezed(normal_name(text))
     for old, new in _SAME:
         if old in folded:
@@ -29,47 +30,52 @@ def fold(text: str) -> str:
 
 
 class NameIndex:
-    """From folded names to the keys that answer to them."""
+    """From folded names to the keys that answer to them.
 
-    __slots__ = ("_entries",)
+    `texts` gives all names of a key as they were written: a hit is confirmed against them, number by number.
+    """
 
-    def __init__(self) -> None:
-        self._entries: dict[str, list[tuple[str, str, bool]]] = {}
+    __slots__ = ("_entries", "_texts")
 
-    def add(self, text: str, key: str, exact: bool) -> None:
-        """Let `key` answer to `text`; `exact` for keys and designations, else it is an alias."""
-        folded = fold(text)
-        if not folded:
-            return
-        entries = self._entries.get(folded)
-        if entries is None:
-            self._entries[folded] = [(key, text, exact)]
-        else:
-            entries.append((key, text, exact))
+    def __init__(self, texts: Callable[[str], Iterable[str]]) -> None:
+        self._entries: dict[str, list[tuple[str, bool]]] = {}
+        self._texts = texts
+
+    def add(self, cell: str, key: str, exact: bool) -> None:
+        """Let `key` answer to each name of a cell; `exact` for keys and designations, else they are aliases."""
+        entries = self._entries
+        folded = fold(cell).split(";") if cell.isascii() else map(fold, cell.split(";"))
+        for name in folded:
+            if name:
+                known = entries.get(name)
+                if known is None:
+                    entries[name] = [(key, exact)]
+                else:
+                    known.append((key, exact))
 
     def find(self, name: NormalName) -> dict[str, bool]:
         """Keys that answer to a name, each with whether it is an exact designation."""
+        folded = fold(name)
         found: dict[str, bool] = {}
-        entries = self._entries.get(fold(name))
-        if entries:
-            digits = digits_of(name)
-            for key, text, exact in entries:
-                if digits_of(normal_name(text)) == digits:
-                    found[key] = found.get(key, False) or exact
+        for key, exact in self._entries.get(folded, ()):
+            if not found.get(key, False) and self.same_digits(folded, key, digits_of(name)):
+                found[key] = exact
         return found
+
+    def same_digits(self, folded: str, key: str, digits: tuple[str, ...]) -> bool:
+        """Whether the material has a name of this folded form with just these numbers."""
+        return any(fold(t) == folded and digits_of(normal_name(t)) == digits for t in self._texts(key))
 
     def folded_names(self) -> list[NormalName]:
         """All folded names, for suggestions."""
         return [NormalName(name) for name in self._entries]
 
-    def entries(self, folded: str) -> list[tuple[str, str, bool]]:
-        """Keys, texts and exactness under one folded name."""
-        return self._entries.get(folded, [])
+    def keys(self, folded: str) -> list[str]:
+        """Keys under one folded name."""
+        return list(dict.fromkeys(key for key, _ in self._entries.get(folded, ())))
 
     def shared(self) -> Iterator[tuple[str, list[str]]]:
         """Folded names to which several keys answer."""
         for folded, entries in self._entries.items():
-            if len(entries) > 1:
-                keys = list(dict.fromkeys(key for key, _, _ in entries))
-                if len(keys) > 1:
-                    yield folded, keys
+            if len(entries) > 1 and len(keys := list(dict.fromkeys(key for key, _ in entries))) > 1:
+                yield folded, keys

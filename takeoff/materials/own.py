@@ -37,19 +37,21 @@ def load_own(path: str | Path) -> OwnTable:
         raise InputError("there is no such table of materials", file=path, right="the path of a CSV file")
     rows = list(_rows(path))
     materials: dict[str, Material] = {}
-    index = NameIndex()
+    names: dict[str, list[str]] = {}
+    index = NameIndex(names.__getitem__)
     owner: dict[str, tuple[str, int]] = {}
     for line, row in rows:
         first = material_from_row(row, file=path, line=line, titles=source_titles(), families=families(), own=True)
-        names = [first.key, first.name, *first.designations, *first.aliases]
-        overrides = any(table().index.find(normal_name(name)) for name in names)
+        spelled = [first.key, first.name, *first.designations, *first.aliases]
+        overrides = any(table().index.find(normal_name(name)) for name in spelled)
         material = material_from_row(
             row, file=path, line=line, titles=source_titles(), families=families(), own=True, overrides=overrides
         )
         if material.key in materials:
             raise DataError(f"line {line}: this key is taken", file=path, read=material.key, right="a key of its own")
         materials[material.key] = material
-        for position, name in enumerate(names):
+        names[material.key] = spelled
+        for position, name in enumerate(spelled):
             taken = owner.get(fold(name))
             if taken and taken[0] != material.key:
                 raise DataError(

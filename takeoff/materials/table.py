@@ -22,7 +22,7 @@ class Table:
 
     def __init__(self, folder: Path) -> None:
         self.rows: dict[str, tuple[Path, int, dict[str, str]]] = {}
-        self.index = NameIndex()
+        self.index = NameIndex(self.names_of)
         for path in sorted(folder.glob("*.csv")):
             with path.open("rb") as handle:
                 if handle.read(len(_HEADING)) != _HEADING:
@@ -53,15 +53,16 @@ class Table:
             raise DataError(f"line {line}: a density without a source does not load", file=path, read=key)
         self.rows[key] = (path, line, row)
         add = self.index.add
-        add(key, key, True)
-        name = row["name"]
-        add(name, key, True)
-        if name.endswith(")"):
-            add(name.partition("(")[0], key, True)
-        for text in split_names(row["designations"]):
-            add(text, key, True)
-        for text in split_names(row["aliases"]):
-            add(text, key, False)
+        add(f"{key};{row['name']};{row['designations']}", key, True)
+        if row["name"].endswith(")"):
+            add(row["name"].partition("(")[0], key, True)
+        add(row["aliases"], key, False)
+
+    def names_of(self, key: str) -> tuple[str, ...]:
+        """Every name of a material as it was written."""
+        row = self.rows[key][2]
+        short = row["name"].partition("(")[0]
+        return (key, row["name"], short, *split_names(row["designations"]), *split_names(row["aliases"]))
 
 
 @cache

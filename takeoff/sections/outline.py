@@ -117,6 +117,17 @@ def i_shape(
     ]
 
 
+def i_unequal(h: float, b: float, b2: float, tw: float, tf: float, tf2: float) -> list[Corner]:
+    """Welded I with two different flanges, no fillets; `b2` and `tf2` at the bottom."""
+    middle = max(b, b2) / 2
+    x, web = middle - b / 2, middle - tw / 2
+    y = middle - b2 / 2
+    return [
+        (y, 0, 0), (y + b2, 0, 0), (y + b2, tf2, 0), (web + tw, tf2, 0), (web + tw, h - tf, 0), (x + b, h - tf, 0),
+        (x + b, h, 0), (x, h, 0), (x, h - tf, 0), (web, h - tf, 0), (web, tf2, 0), (y, tf2, 0),
+    ]
+
+
 def channel(
     h: float, b: float, tw: float, tf: float, r1: float, r2: float = 0.0, slope: float = 0.0, from_toe: float = 0.0
 ) -> list[Corner]:

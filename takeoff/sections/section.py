@@ -54,6 +54,8 @@ class Section:
     shape : which geometry `dimensions_mm` belongs to, such as ``I parallel``, ``angle``, ``plate``, ``ring sector``.
     form, needs : what kind of piece it makes, and the size fields a row must still give.
     area_mm2, inner_area_mm2 : cross-section of the material, and of the bore of a hollow section.
+    design_area_mm2 : the published design-wall area of ASTM A500 sections, where it differs from `area_mm2`, which is
+        of the nominal wall that the published mass rests on.
     surface_m2_per_m, inner_surface_m2_per_m : outer (painting) surface without the ends, and the bore's.
     centroid_mm : from the left and bottom of the enclosing box: the heel of an angle and the back of a channel's web
         are at the left, an angle's horizontal leg and a tee's stem end at the bottom. Solids: from the box's low corner.
@@ -79,6 +81,7 @@ class Section:
     needs: tuple[str, ...] = ()
     area_mm2: float | None = None
     inner_area_mm2: float | None = None
+    design_area_mm2: float | None = None
     surface_m2_per_m: float | None = None
     inner_surface_m2_per_m: float | None = None
     centroid_mm: tuple[float, ...] | None = None
@@ -123,7 +126,7 @@ class Section:
             "form": self.form,
             "needs": list(self.needs),
             "dimensions_mm": dict(self.dimensions_mm),
-            "area_mm2": self.area_mm2,
+            "area_mm2": self.area_mm2 if self.design_area_mm2 is None else self.design_area_mm2,
             "inner_area_mm2": self.inner_area_mm2,
             "surface_m2_per_m": self.surface_m2_per_m,
             "centroid_mm": None if self.centroid_mm is None else list(self.centroid_mm),

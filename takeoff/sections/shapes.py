@@ -17,6 +17,7 @@ from takeoff.sections import outline as o
 SHAPES: dict[str, tuple[str, ...]] = {
     "I parallel": ("h", "b", "tw", "tf"),
     "I tapered": ("h", "b", "tw", "tf"),
+    "I unequal": ("h", "b", "b2", "tw", "tf", "tf2"),
     "channel parallel": ("h", "b", "tw", "tf"),
     "channel tapered": ("h", "b", "tw", "tf"),
     "angle": ("h", "b", "tf"),
@@ -65,8 +66,8 @@ def impossible(shape: str, d: Mapping[str, float]) -> str:
         if tf >= min(h, b):
             return f"a thickness of {tf:g} mm is no less than the leg of {min(h, b):g} mm"
     elif shape.startswith(("I", "channel", "tee")):
-        flanges = 1 if shape == "tee" else 2
-        if flanges * tf >= h:
+        flanges = tf if shape == "tee" else tf + d.get("tf2", tf)
+        if flanges >= h:
             return f"flanges of {tf:g} mm fill the depth of {h:g} mm"
         if tw >= b:
             return f"a web of {tw:g} mm is no less than the width of {b:g} mm"
@@ -77,6 +78,8 @@ def corners(shape: str, d: Mapping[str, float]) -> list[o.Corner] | None:
     """The outer outline of a shape with straight edges; None for round ones."""
     h, b, tw, tf = d.get("h", 0.0), d.get("b", 0.0), d.get("tw", 0.0), d.get("tf", 0.0)
     r1, r2, slope, toe = d.get("r1", 0.0), d.get("r2", 0.0), d.get("slope", 0.0), d.get("from_toe", 0.0)
+    if shape == "I unequal":
+        return o.i_unequal(h, b, d["b2"], tw, tf, d["tf2"])
     if shape.startswith("I "):
         return o.i_shape(h, b, tw, tf, r1, r2, slope, toe)
     if shape.startswith("channel"):
@@ -84,7 +87,7 @@ def corners(shape: str, d: Mapping[str, float]) -> list[o.Corner] | None:
     if shape == "angle":
         return o.angle(h, b, tf, r1, r2)
     if shape == "tee":
-        return o.tee(h, b, tw, tf, r1, r2, d.get("r3", 0.0), slope, toe, slope)
+        return o.tee(h, b, tw, tf, r1, r2, d.get("r3", 0.0), slope, toe, d.get("web_slope", 0.0))
     if shape == "box hollow":
         return o.box(h, b, r1)
     if shape in ("flat", "board"):

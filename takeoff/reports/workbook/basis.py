@@ -60,7 +60,7 @@ def _nothing(row: int) -> None:
 def _title(sheet: Sheet) -> Line:
     def line(row: int) -> None:
         sheet.widths([10.5, 34, 26, 18, 12.5, 34, 26, 18, 12.5, 8])
-        sheet.raw.set_row(row, 24)
+        sheet.height(row, 24)
         sheet.text(row, 0, f"{BASIS}: {sheet.book.title}", "title")
 
     return line
@@ -110,7 +110,8 @@ def _account(sheet: Sheet, result: Result) -> list[Line]:
         sheet.text(row, 0, "Rows read", "head right")
         sheet.text(row, 1, "Sheet", "head")
         sheet.texts(row, 2, ("Parts add up to", "Left over"), "head right")
-        sheet.texts(row, 4, ("What the rows were", *[""] * 5), "head")
+        sheet.text(row, 4, "Parts", "head")
+        sheet.texts(row, 5, [""] * 5, "head")
 
     lines = [
         _heading(sheet, "Account of rows: every row from the first with content to the last"),
@@ -166,16 +167,24 @@ def _evidence(sheet: Sheet) -> list[Line]:
 def _materials(sheet: Sheet, result: Result) -> list[Line]:
     lines = [
         _heading(sheet, "Densities of the materials named in the list"),
-        _words(sheet, [("", "Material", "Low / nominal / high (kg/m³)", "Condition", "Evidence", "Source", "Clause or table", "", "", "")], "head"),
+        _words(sheet, [(
+            "", "Material", "Low / nominal / high (kg/m³)", "Condition", "Evidence", "Source", "Clause or table", "", "", "",
+        )], "head"),
     ]
     for material in result.materials:
         density, source = material.density, material.density_source
         figures = " / ".join("–" if v is None else f"{v:,.0f}".replace(",", " ") for v in (density.low, density.nominal, density.high))
         own = "own table" if material.own else None
-        lines.append(_words(sheet, [
-            (own, material.name, figures, material.density_condition, source.evidence, source.title, source.clause, None, None, None),
-        ], "cell wrap"))
+        lines.append(_material(sheet, (own, material.name, figures, material.density_condition, source.evidence, source.title), source.clause))
     return lines
+
+
+def _material(sheet: Sheet, texts: tuple[str | None, ...], clause: str) -> Line:
+    def line(row: int) -> None:
+        sheet.texts(row, 0, texts, "cell wrap")
+        sheet.long_text(row, (len(texts), _COLUMNS - 1), clause, "cell wrap")
+
+    return line
 
 
 def _bases_top(sheet: Sheet, result: Result) -> list[Line]:

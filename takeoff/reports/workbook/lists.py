@@ -83,7 +83,7 @@ def write_assumptions(book: Book, result: Result) -> None:
 
 
 def _top(sheet: Sheet, name: str, about: str) -> int:
-    sheet.raw.set_row(0, 24)
+    sheet.height(0, 24)
     sheet.text(0, 0, f"{name}: {sheet.book.title}", "title")
     sheet.text(1, 0, about, "quiet")
     return 3

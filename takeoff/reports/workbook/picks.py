@@ -34,7 +34,7 @@ def write(book: Book, result: Result, plan: Plan) -> list[PickCells]:
     """Write the sheet; returns where each pick's figures stand, in the order of `result.picks`."""
     sheet = book.sheets[PICKS]
     sheet.widths([40, 9, 14, 52, 44, 16])
-    sheet.raw.set_row(0, 24)
+    sheet.height(0, 24)
     sheet.text(0, 0, f"Picks: {book.title}", "title")
     sheet.text(1, 0, book.subtitle or None, "subtitle")
     sheet.long_text(
@@ -50,7 +50,7 @@ def write(book: Book, result: Result, plan: Plan) -> list[PickCells]:
         starts.append(row)
         row, found = _pick(sheet, names, pick, plan, row)
         cells.append(found)
-    sheet.scale(_COLUMNS, starts[2::2])  # two to a page
+    sheet.paginate(_COLUMNS, starts, row)
     return cells
 
 
@@ -109,7 +109,7 @@ def _pick(sheet: Sheet, names: Names, pick: Pick, plan: Plan, row: int) -> tuple
     row += 1
     printed = kg(pick.hook_load_kg)
     decimals = rounding.decimals_for(printed)
-    sheet.raw.set_row(row, 22)
+    sheet.height(row, 22)
     sheet.text(row, _ITEM, f"HOOK LOAD, rounded up ({unit})", "cell bold")
     sheet.text(row, _FACTOR, None, "cell")
     sheet.formula(row, _MASS, round_up(f"C{hook_row + 1}", decimals), float(rounding.rounded(printed, decimals, "up")), figure(decimals))

@@ -9,7 +9,7 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
 from takeoff.reports import rounding
-from takeoff.reports.wording import ROUNDED, shown
+from takeoff.reports.wording import ROUNDED, row_place, shown
 from takeoff.reports.workbook.sheet import BASIS, SCHEDULE, Book, Sheet, cell_text, letters, place
 
 if TYPE_CHECKING:
@@ -124,13 +124,13 @@ def columns_for(result: Result) -> tuple[Column, ...]:
     columns: list[Column] = []
     if len(result.inputs) > 1:
         columns.append(Column("file", "List", _fit(frame, "file", 10, 26)))
-    if frame["sheet"].notna().any():
+    if result.members["sheet"].nunique() > 1:
         columns.append(Column("sheet", "Sheet", _fit(frame, "sheet", 7, 18)))
     columns += [
         Column("row", "Row", 6, figures=True), Column("mark", "Mark", _fit(frame, "mark", 7, 18)),
         Column("assembly", "Assembly", _fit(frame, "assembly", 10, 22)),
-        Column("quantity", "Pieces", 7.5, figures=True), Column("section", "Section", _fit(frame, "section", 14, 30)),
-        Column("material", "Material", _fit(frame, "material", 13, 28)),
+        Column("quantity", "Pieces", 7.5, figures=True), Column("section", "Section", _fit(frame, "section", 14, 25)),
+        Column("material", "Material", _fit(frame, "material", 13, 25)),
     ]
     for key, heading in _SIZES.items():
         if key == "length_mm" or frame[key].notna().any():
@@ -139,10 +139,11 @@ def columns_for(result: Result) -> tuple[Column, ...]:
             columns.append(Column(key, f"{heading} ({size_unit})", 13 if length else 10.5 if key == "thickness_mm" else 9.5, figures=True))
     for part, heading in (("each", "One piece"), ("total", "All pieces")):
         columns += [
-            Column(f"{part}_{word}_kg", f"{heading}, {word} ({unit})", 11.5 if part == "each" else 12, figures=True) for word in WORDS
+            Column(f"{part}_{word}_kg", f"{heading}, {word} ({unit})", 10.5 if part == "each" else 11, figures=True) for word in WORDS
         ]
     columns += [
-        Column("status", "State", 11), Column("basis", "Basis no.", 7), Column("note", "What to know", 34),
+        Column("status", "State", 11), Column("basis", "Basis no.", 7), Column("note", "What to know", 31),
+        Column("where", "Place in the list", 34),
         Column("section_text", "Section in the list", _fit(frame, "section_text", 16, 34)),
         Column("material_text", "Material in the list", _fit(frame, "material_text", 16, 30)),
     ]
@@ -159,7 +160,7 @@ def _fit(frame: pd.DataFrame, key: str, least: float, most: float) -> float:
     lengths = [len(v) for v in frame[key].dropna().unique() if isinstance(v, str)]
     if key in BLANKS and frame[key].isna().any():
         lengths.append(len(BLANKS[key]))
-    return min(most, max(least, max(lengths, default=0) * 1.06 + 1.5))
+    return min(most, max(least, max(lengths, default=0) * 1.06 + 2.5))
 
 
 def plan_for(result: Result) -> Plan:
@@ -181,8 +182,8 @@ def write(book: Book, result: Result, plan: Plan, basis_rows: Sequence[int]) -> 
 
 
 def _top(sheet: Sheet, book: Book, result: Result, plan: Plan) -> None:
-    files = ", ".join(shown(i.file) for i in result.inputs)
-    sheet.raw.set_row(_TITLE, 24)
+    files = ", ".join(" / ".join(shown(p) for p in (i.file, *i.sheets)) for i in result.inputs)
+    sheet.height(_TITLE, 24)
     sheet.text(_TITLE, 0, f"Weight schedule: {book.title}" if book.title != SCHEDULE else SCHEDULE, "title")
     sheet.text(_SUBTITLE, 0, "; ".join(p for p in (book.subtitle, f"list: {files}") if p), "subtitle")
     sheet.text(
@@ -204,7 +205,7 @@ def _top(sheet: Sheet, book: Book, result: Result, plan: Plan) -> None:
                 sheet.formula(row, index, f"={function}{plan.span(column.key, here=True)})", value, f"{style} mass")
             else:
                 sheet.text(row, index, label if index == 0 else None, style)
-    sheet.raw.set_row(_HEADINGS, 42)
+    sheet.height(_HEADINGS, 42)
     for index, column in enumerate(plan.columns):
         sheet.text(_HEADINGS, index, column.heading, "head right" if column.figures else "head")
 
@@ -213,7 +214,8 @@ def _rows(sheet: Sheet, result: Result, plan: Plan, basis_rows: Sequence[int]) -
     frame, units = result.members, sheet.book.units
     us = units == "us"
     notes = _notes(result)
-    values = {column.key: frame[column.key].tolist() for column in plan.columns if column.key not in {"basis", "note"}}
+    values = {column.key: frame[column.key].tolist() for column in plan.columns if column.key in frame}
+    places = [row_place(*at) for at in zip(*(frame[key].tolist() for key in ("file", "sheet", "row")), strict=True)]
     basis_ids, statuses = frame["basis_id"].tolist(), frame["status"].tolist()
     at = {column.key: index for index, column in enumerate(plan.columns)}
     # A text that wraps makes its row taller, so those beyond the printed columns stay on one line.
@@ -232,6 +234,8 @@ def _rows(sheet: Sheet, result: Result, plan: Plan, basis_rows: Sequence[int]) -
                     sheet.text(row, index, None, "cell")
             elif key == "note":
                 sheet.text(row, index, notes.get(number), "cell wrap")
+            elif key == "where":
+                sheet.text(row, index, places[number], "cell")
             elif key == "status":
                 sheet.text(row, index, statuses[number], _STATUS_STYLE[statuses[number]])
             elif key in {"row", "quantity"}:

@@ -42,12 +42,13 @@ _STYLES: dict[str, dict[str, Any]] = {
     "bold wrap": {"bold": True, "text_wrap": True},
     "title": {"bold": True, "font_size": 17}, "subtitle": {"font_size": 11, "font_color": QUIET},
     "block": {"bold": True, "font_size": 12, "bottom": 2, "bottom_color": INK},
-    "head": {"indent": 1, "bold": True, "text_wrap": True, "bg_color": HEAD, "bottom": 1, "bottom_color": INK, "valign": "bottom"},
+    "head": {"align": "left", "indent": 1, "bold": True, "text_wrap": True, "bg_color": HEAD, "bottom": 1, "bottom_color": INK, "valign": "bottom"},
     "head right": {
         "bold": True, "text_wrap": True, "bg_color": HEAD, "bottom": 1, "bottom_color": INK, "valign": "bottom",
         "align": "right", "indent": 1,
     },
-    "cell": {"indent": 1, "bottom": 7, "bottom_color": RULE}, "cell wrap": {"indent": 1, "bottom": 7, "bottom_color": RULE, "text_wrap": True},
+    "cell": {"indent": 1, "bottom": 7, "bottom_color": RULE},
+    "cell wrap": {"indent": 1, "bottom": 7, "bottom_color": RULE, "text_wrap": True},
     "cell bold": {"indent": 1, "bottom": 7, "bottom_color": RULE, "bold": True},
     "cell bold wrap": {"indent": 1, "bottom": 7, "bottom_color": RULE, "bold": True, "text_wrap": True},
     "cell italic": {"indent": 1, "bottom": 7, "bottom_color": RULE, "italic": True},
@@ -81,6 +82,8 @@ _WRAPPED = {name for name, style in _STYLES.items() if style.get("text_wrap")}
 _BOLD = {name for name, style in _STYLES.items() if style.get("bold")}
 #: height of a line of text in points, and the tallest row a sheet may have
 _LINE, _TALLEST = 12.75, 400.0
+#: height of a row that nothing is said about
+_ROW = 15.0
 
 # What XML cannot carry, and what has no look of its own; line feed and tab may stand in a cell.
 _UNSHOWABLE = re.compile(
@@ -169,7 +172,7 @@ class Sheet:
         self.styles = book.styles
         self.links = 0
         self.column_widths: list[float] = []
-        self._tall = (-1, 1)
+        self._heights: dict[int, float] = {}
         sheet.set_landscape()
         sheet.set_paper(9 if book.units == "si" else 1)
         sheet.set_margins(left=0.5, right=0.5, top=0.55, bottom=0.75)
@@ -194,10 +197,9 @@ class Sheet:
 
     def _grow(self, row: int, lines: int) -> None:
         """Make a row tall enough for its wrapped texts: not every program does so by itself when it opens a file."""
-        tall = self._tall[1] if self._tall[0] == row else 1
-        if lines > tall:
-            self._tall = (row, lines)
-            self.raw.set_row(row, min(_LINE * lines + 2.5, _TALLEST))
+        points = min(_LINE * lines + 2.5, _TALLEST)
+        if lines > 1 and points > self._heights.get(row, 0.0):
+            self.height(row, points)
 
     def texts(self, row: int, column: int, texts: Iterable[object], style: str = "text") -> None:
         for offset, text in enumerate(texts):
@@ -227,25 +229,42 @@ class Sheet:
         """A paragraph over several columns."""
         width = sum(self.column_widths[columns[0]:columns[1] + 1]) * _fill(style)
         clean = cell_text(text)
-        self.raw.set_row(row, min(_LINE * lines_of(clean, width) + 2.5, _TALLEST))
+        self._grow(row, lines_of(clean, width))
         self.raw.merge_range(row, columns[0], row, columns[1], "", self.styles[style])
         self.raw.write_string(row, columns[0], clean, self.styles[style])
 
-    def scale(self, columns: int, breaks: Sequence[int]) -> None:
-        """Print `columns` to the page's width, each page starting where `breaks` say.
+    def paginate(self, columns: int, blocks: Sequence[int], end: int, *, new_page: Sequence[int] = ()) -> None:
+        """Print `columns` to the page's width, and start a page rather than break a block that a page can hold.
 
-        A fixed scale, reckoned from the widths: "fit to width" makes a spreadsheet program pass over page breaks.
+        `blocks` are the rows where blocks start, `end` the row after the last; those in `new_page` start one anyway. The
+        scale is reckoned from the widths: "fit to width" makes a spreadsheet program pass over page breaks.
         """
-        # A column is 7 pixels a character and 5 more, at 96 pixels to the inch.
+        wide, high = (11.69, 8.27) if self.book.units == "si" else (11.0, 8.5)
+        # A column is 7 pixels a character and 5 more, at 96 pixels to the inch; the rest is for programs that draw wider.
         inches = sum(7 * width + 5 for width in self.column_widths[:columns]) / 96
-        page = (11.69 if self.book.units == "si" else 11.0) - 1.0
-        self.raw.set_print_scale(max(10, min(100, int(97 * page / inches))))
-        # The format takes no more page breaks than this.
-        self.raw.set_h_pagebreaks(list(breaks)[:1000])
+        scale = max(0.1, min(1.0, 0.92 * (wide - 1.0) / inches))
+        room = 0.97 * (high - 1.3) * 72 / scale
+        breaks, used = [], self._height(0, blocks[0]) if blocks else 0.0
+        for start, stop in zip(blocks, [*blocks[1:], end], strict=True):
+            height = self._height(start, stop)
+            if start in new_page or (used + height > room and used > 0):
+                breaks.append(start)
+                used = 0.0
+            used = (used + height) % room
+        self.raw.set_print_scale(int(100 * scale))
+        self.raw.set_h_pagebreaks(breaks[:1000])  # the format takes few more
+
+    def _height(self, start: int, stop: int) -> float:
+        return sum(self._heights.get(row, _ROW) for row in range(start, stop))
+
+    def height(self, row: int, points: float) -> None:
+        """Set a row's height. Must come before the next row is written."""
+        self._heights[row] = points
+        self.raw.set_row(row, points)
 
     def heading(self, row: int, text: str, columns: int) -> None:
         """A block's heading with a rule across its columns."""
-        self.raw.set_row(row, 19)
+        self.height(row, 19)
         self.text(row, 0, text, "block")
         for column in range(1, columns):
             self.text(row, column, None, "block")

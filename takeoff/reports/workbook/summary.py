@@ -19,7 +19,7 @@ if TYPE_CHECKING:
 _COLUMNS = 7
 _NAME, _PIECES, _LIGHT, _NOMINAL, _HEAVY, _LACKS, _REMARK = range(_COLUMNS)
 #: a longer table is cut to its heaviest groups, the rest in one line: its sums stay quick to recalculate
-MOST_GROUPS = 40
+MOST_GROUPS = 36
 
 
 def write(book: Book, result: Result, plan: Plan, pick_cells: Sequence[PickCells]) -> None:
@@ -31,15 +31,17 @@ def write(book: Book, result: Result, plan: Plan, pick_cells: Sequence[PickCells
     row = _state(sheet, result, plan, row)
     row = _heaviest(sheet, result, pick_cells, row)
     row = _cautions(sheet, result, row)
-    sheet.scale(_COLUMNS, [row])  # one page for the answer, the tables after it
+    tables = []
     for key in ("material", "assembly", "section"):
+        tables.append(row)
         row = _groups(sheet, result, plan, key, row)
+    sheet.paginate(_COLUMNS, tables, row, new_page=tables[:1])  # one page for the answer, the tables after it
     sheet.raw.activate()
 
 
 def _title(sheet: Sheet, result: Result) -> int:
     job = result.job.job
-    sheet.raw.set_row(0, 26)
+    sheet.height(0, 26)
     sheet.text(0, 0, sheet.book.title, "title")
     sheet.text(1, 0, "Weight schedule: what every piece weighs, between what bounds, and on what source", "subtitle")
     row = 3
@@ -68,7 +70,7 @@ def _total(sheet: Sheet, result: Result, plan: Plan, row: int) -> int:
     row += 1
     values = {word: rounding.in_mass_unit(getattr(totals.mass_kg, word), units) for word in WORDS}
     decimals = rounding.decimals_for(values["heavy"])
-    sheet.raw.set_row(row, 22)
+    sheet.height(row, 22)
     sheet.text(row, _NAME, "All rows weighed" if result.complete else "All rows weighed: INCOMPLETE, see below", "cell bold")
     sheet.formula(row, _PIECES, f"={plan.total('quantity')}", totals.quantity, "figure")
     for column, word, way in ((_LIGHT, "light", "down"), (_NOMINAL, "nominal", "nearest"), (_HEAVY, "heavy", "up")):
