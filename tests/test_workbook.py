@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 import re
 import subprocess
+import tempfile
 from datetime import datetime
 from pathlib import Path
 from typing import Any
@@ -16,7 +17,7 @@ from made_result import SOME_ROWS, make, row
 from openpyxl.worksheet.worksheet import Worksheet
 
 from takeoff.findings import Finding
-from takeoff.pipeline import Result
+from takeoff.pipeline import InputFile, Result
 from takeoff.reports import workbook
 from takeoff.reports.rounding import KG_PER_LB
 from takeoff.reports.workbook import write_workbook
@@ -332,8 +333,46 @@ def test_many_groups_are_cut_and_the_rest_still_counts(tmp_path: Path) -> None:
     assert sum(line[1] for line in lines) == 70
 
 
-def test_missing_folder_is_an_ordinary_error(tmp_path: Path) -> None:
-    """A workbook that cannot be written says so as the system does, and leaves nothing."""
+def test_several_lists_name_the_file_of_each_row(tmp_path: Path) -> None:
+    """With more than one list every row says which it is from, on the schedule and where it is missing."""
+    result = make([*SOME_ROWS, row("C1", file="stone.csv", sheet=None, row=2, status="not weighed")], {}, job=JOB)
+    result.inputs.append(InputFile("stone.csv", "1" * 64, ()))
+    path = written(result, tmp_path / "w.xlsx")
+    sheet = sheet_of(path, "Weight schedule")
+    lists, places = column(sheet, "List"), column(sheet, "Place in the list")
+    assert [(sheet.cell(n, lists).value, sheet.cell(n, places).value) for n in (7, 12)] == [
+        ("list.xlsx", "list.xlsx / Steel row 5"), ("stone.csv", "stone.csv row 2")]
+    missing = sheet_of(path, "Not weighed")
+    assert [missing.cell(n, 1).value for n in (5, 6)] == ["list.xlsx / Steel row 8", "stone.csv row 2"]
+
+
+def test_picks_of_the_list_are_summed_over_its_pick_column(tmp_path: Path) -> None:
+    """Where the list names picks, each pick's mass is a live sum over that column, and it recalculates."""
+    result = make([row("B1", pick="lift one"), row("B2", pick="lift one", assembly="A9"), row("B3", pick="lift two")], {})
+    path = written(result, tmp_path / "w.xlsx")
+    live = sheet_of(path, "Picks", values=False)
+    sums = [c.value for r in live.iter_rows() for c in r if c.data_type == "f" and "SUMIF" in c.value]
+    assert len(sums) == 6
+    assert sum('"lift one"' in formula for formula in sums) == 3
+    assert any("Heaviest picks" in str(v) for v in cells(path, values=True).values())
+    assert assert_recalculates(path, tmp_path) > 20
+
+
+@pytest.mark.parametrize("many", [0, 10**6])
+def test_a_workbook_that_fails_leaves_no_scratch_files(tmp_path: Path, monkeypatch: pytest.MonkeyPatch, many: int) -> None:
+    """Whatever stops the writing, at the start, half way or at the end, nothing is left in the system's scratch folder."""
+    scratch = tmp_path / "scratch"
+    scratch.mkdir()
+    monkeypatch.setattr(tempfile, "tempdir", str(scratch))
+    monkeypatch.setattr(workbook, "MANY_ROWS", many)
     with pytest.raises(OSError, match="No such file"):
         write_workbook(make(), tmp_path / "absent" / "w.xlsx")
-    assert list(tmp_path.iterdir()) == []
+
+    def stop(*_: object) -> None:
+        raise RuntimeError("stopped")
+
+    monkeypatch.setattr(workbook.summary, "write", stop)
+    with pytest.raises(RuntimeError, match="stopped"):
+        write_workbook(make(), tmp_path / "w.xlsx")
+    assert [p.name for p in tmp_path.iterdir()] == ["scratch"]
+    assert list(scratch.iterdir()) == []

@@ -14,7 +14,7 @@ from typing import TYPE_CHECKING
 
 from takeoff.reports import rounding
 from takeoff.reports.rounding import NO_BREAK, Units
-from takeoff.reports.wording import LIKELY_IS_FOR, cells_text, counted, listed, refusals, shown
+from takeoff.reports.wording import LIKELY_IS_FOR, cells_text, counted, listed, pick_word, refusals, shown
 
 if TYPE_CHECKING:
     from takeoff.findings import Finding
@@ -173,10 +173,11 @@ def _heaviest(page: Page, result: Result, units: Units) -> None:
     if not result.picks:
         return
     unit = rounding.mass_unit(units)
+    kind = {"pick": "picks", "assembly": "assemblies"}[pick_word(result)]
     heaviest = sorted(result.picks, key=lambda p: -p.hook_load_kg)[:3]
     page.blank()
     page.table(
-        ["Heaviest assemblies" if len(result.picks) > 1 else "The one assembly", f"heavy {unit}", f"hook load {unit}", "hook load"],
+        [f"Heaviest {kind}", f"heavy {unit}", f"hook load {unit}", "hook load"],
         [
             [
                 shown(p.name) + (f" (lacks {counted(p.not_weighed, 'row')})" if p.not_weighed else ""),

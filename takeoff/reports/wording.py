@@ -12,7 +12,7 @@ if TYPE_CHECKING:
     from takeoff.pipeline import Result
 
 LIKELY_IS_FOR = "for ordering and freight, never for lifting"
-ROUNDED = "Figures shown are rounded; totals are sums of unrounded figures."
+ROUNDED = "Figures shown are rounded to the nearest; totals are sums of unrounded figures."
 
 #: evidence word -> what it promises, in the order of trust
 EVIDENCE_MEANS = {
@@ -54,6 +54,11 @@ def row_place(file: object, sheet: object, row: int) -> str:
     """Where a row stands: ``list.xlsx / Steel row 14``; a text file has no sheet, and `file` may be None where it is plain."""
     where = " / ".join(shown(part) for part in (file, sheet) if isinstance(part, str))
     return f"{where} row {row}".strip()
+
+
+def pick_word(result: Result) -> str:
+    """What this list's picks are: its own picks where it names any, else its assemblies."""
+    return "pick" if result.members["pick"].notna().any() else "assembly"
 
 
 @dataclass(frozen=True, slots=True)

@@ -175,7 +175,8 @@ def _materials(sheet: Sheet, result: Result) -> list[Line]:
         density, source = material.density, material.density_source
         figures = " / ".join("–" if v is None else f"{v:,.0f}".replace(",", " ") for v in (density.low, density.nominal, density.high))
         own = "own table" if material.own else None
-        lines.append(_material(sheet, (own, material.name, figures, material.density_condition, source.evidence, source.title), source.clause))
+        texts = (own, material.name, figures, material.density_condition, source.evidence, source.title)
+        lines.append(_material(sheet, texts, source.clause))
     return lines
 
 

@@ -257,7 +257,7 @@ def _rows(sheet: Sheet, result: Result, plan: Plan, basis_rows: Sequence[int]) -
                 if us and key == "length_mm":
                     sheet.text(row, index, rounding.feet_inches(value) if value == value else None, "cell right")  # noqa: PLR0124
                 else:
-                    sheet.number(row, index, value / rounding.MM_PER_IN if us else value, "size")
+                    sheet.number(row, index, value / rounding.MM_PER_IN if us else value, "size us" if us else "size")
             else:
                 value = values[key][number]
                 text = value if isinstance(value, str) and value else BLANKS.get(key)

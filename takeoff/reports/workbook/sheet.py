@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import contextlib
 import re
+import tempfile
 import textwrap
 from collections.abc import Iterable, Sequence
 from datetime import UTC, date, datetime
@@ -42,7 +43,10 @@ _STYLES: dict[str, dict[str, Any]] = {
     "bold wrap": {"bold": True, "text_wrap": True},
     "title": {"bold": True, "font_size": 17}, "subtitle": {"font_size": 11, "font_color": QUIET},
     "block": {"bold": True, "font_size": 12, "bottom": 2, "bottom_color": INK},
-    "head": {"align": "left", "indent": 1, "bold": True, "text_wrap": True, "bg_color": HEAD, "bottom": 1, "bottom_color": INK, "valign": "bottom"},
+    "head": {
+        "bold": True, "text_wrap": True, "bg_color": HEAD, "bottom": 1, "bottom_color": INK, "valign": "bottom",
+        "align": "left", "indent": 1,
+    },
     "head right": {
         "bold": True, "text_wrap": True, "bg_color": HEAD, "bottom": 1, "bottom_color": INK, "valign": "bottom",
         "align": "right", "indent": 1,
@@ -61,6 +65,7 @@ _STYLES: dict[str, dict[str, Any]] = {
         f"rounded {places}{heavy}": {"bottom": 7, "bottom_color": RULE, "num_format": f"{form}_n", "bold": bool(heavy)}
         for places, form in enumerate(("#,##0", "#,##0.0", "#,##0.00", "#,##0.000")) for heavy in ("", " heavy")
     },
+    "size us": {"bottom": 7, "bottom_color": RULE, "num_format": "#,##0.000_n"},
     "size": {"bottom": 7, "bottom_color": RULE, "num_format": SIZE},
     "factor": {"bottom": 7, "bottom_color": RULE, "num_format": "0.00##_n"},
     "link": {"indent": 1, "bottom": 7, "bottom_color": RULE, "underline": 1, "align": "left"},
@@ -127,8 +132,10 @@ class Book:
         self.title = shown(job.title) if job.title else "Weight schedule"
         said = (job.reference, f"revision {job.revision}" if job.revision else None, job.date)
         self.subtitle = ", ".join(shown(p) for p in said if p)
+        # The writer's own scratch files lie in one folder, so that none is left behind where writing fails.
+        self._scratch = tempfile.TemporaryDirectory(prefix="takeoff-")
         self._book = xlsxwriter.Workbook(str(path), {
-            "strings_to_formulas": False, "strings_to_urls": False, "strings_to_numbers": False,
+            "tmpdir": self._scratch.name, "strings_to_formulas": False, "strings_to_urls": False, "strings_to_numbers": False,
             "constant_memory": many, "default_format_properties": {"font_name": FONT, "font_size": 10},
         })
         self._book.set_properties({
@@ -150,18 +157,20 @@ class Book:
     def __exit__(self, kind: type[BaseException] | None, error: BaseException | None, trace: TracebackType | None) -> None:
         from xlsxwriter.exceptions import FileCreateError, FileSizeError
 
-        if error is not None:
-            self._book.fileclosed = True  # keeps the writer from writing half a file when it is collected
-            return
         try:
-            self._book.close()
+            if error is None:
+                self._book.close()
         except FileCreateError as problem:
-            self._book.fileclosed = True
             cause = problem.args[0] if problem.args else None
             raise cause if isinstance(cause, OSError) else OSError(str(problem)) from problem
         except FileSizeError as problem:
-            self._book.fileclosed = True
             raise OSError("the workbook is larger than its format allows") from problem
+        finally:
+            self._book.fileclosed = True  # keeps the writer from writing half a file when it is collected
+            for sheet in self._book.worksheets():
+                if sheet.row_data_fh is not None:
+                    sheet.row_data_fh.close()
+            self._scratch.cleanup()
 
 
 class Sheet:

@@ -6,7 +6,7 @@ from collections.abc import Sequence
 from typing import TYPE_CHECKING
 
 from takeoff.reports import rounding
-from takeoff.reports.wording import LIKELY_IS_FOR, counted, listed, shown
+from takeoff.reports.wording import LIKELY_IS_FOR, counted, listed, pick_word, shown
 from takeoff.reports.workbook.picks import PickCells, figure, round_up, rounded_style
 from takeoff.reports.workbook.schedule import WORDS, Names, Plan
 from takeoff.reports.workbook.sheet import ASSUMPTIONS, BASIS, NOT_WEIGHED, PICKS, SCHEDULE, SUMMARY, Book, Sheet
@@ -135,14 +135,15 @@ def _state(sheet: Sheet, result: Result, plan: Plan, row: int) -> int:
 
 def _heaviest(sheet: Sheet, result: Result, cells: Sequence[PickCells], row: int) -> int:
     unit, units = sheet.book.mass_unit, sheet.book.units
-    sheet.heading(row, "Heaviest assemblies" if len(result.picks) != 1 else "The one assembly", _COLUMNS)
+    kind = pick_word(result)
+    sheet.heading(row, {"pick": "Heaviest picks", "assembly": "Heaviest assemblies"}[kind], _COLUMNS)
     row += 1
     if not result.picks:
         sheet.text(row, _NAME, "The list names no assembly.", "text")
         return row + 2
     force_unit = "kN" if units == "si" else "kip"
     figures = (f"Heavy ({unit})", f"Hook load ({unit})", f"Hook load ({force_unit})")
-    _table_head(sheet, row, ("Assembly", "Pieces", *figures, "Rows not weighed", ""))
+    _table_head(sheet, row, (kind.capitalize(), "Pieces", *figures, "Rows not weighed", ""))
     row += 1
     order = sorted(range(len(result.picks)), key=lambda i: -result.picks[i].hook_load_kg)[:3]
     for index in order:
