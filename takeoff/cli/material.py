@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import gc
 from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING, Annotated, Any
 
@@ -10,7 +11,6 @@ import typer
 from takeoff.cli import console
 from takeoff.cli.options import JsonOption, QuietOption, UnitsOption
 from takeoff.errors import TakeoffError
-from takeoff.quantities import temperature_C
 
 if TYPE_CHECKING:
     from takeoff.bounds import Spread
@@ -68,7 +68,7 @@ def material(
 
     Examples: takeoff material 1.4301 --at -196C --at 400C; takeoff material oak Eiche "chêne" --moisture 25
     """
-    temperatures = [temperature_C(text) for text in at or []]
+    temperatures = _temperatures(at or [])
     us = units == "us"
     if not names:
         if temperatures or law or moisture is not None:
@@ -80,15 +80,26 @@ def material(
         return
     if family is not None:
         raise TakeoffError("a name and --family were both given", right="one of the two")
-    answers = [_answer(name, temperatures, law, moisture) for name in names]
+    answers = [_answer(name, temperatures, law, moisture, json) for name in names]
     if moisture is not None and not any(a.moisture for a in answers) and any(a.material for a in answers):
         raise TakeoffError("moisture applies to wood only", read=", ".join(names)[:80], right="a wood, or no --moisture")
     if json:
         console.out_json([_record(answer) for answer in answers])
     elif not quiet:
         console.out(_card(answers[0], us) if len(answers) == 1 else _comparison(answers, us))
+    # The interpreter looks for garbage as it ends, among all that is loaded: a twentieth of a card's time, for nothing.
+    gc.freeze()
     if not all(answer.sure for answer in answers):
         raise typer.Exit(1)
+
+
+def _temperatures(texts: list[str]) -> list[float]:
+    """Temperatures in °C. Raises UnitError on other text and below absolute zero."""
+    if not texts:
+        return []
+    from takeoff.quantities import temperature_C
+
+    return [temperature_C(text) for text in texts]
 
 
 def _show(record: Any, text: str | None) -> None:
@@ -98,8 +109,11 @@ def _show(record: Any, text: str | None) -> None:
         console.out(text)
 
 
-def _answer(name: str, temperatures: list[float], law: str | None, moisture: float | None) -> Answer:
-    """Look one name up, and work out what was asked of it. Raises TakeoffError on an unknown law or impossible moisture."""
+def _answer(name: str, temperatures: list[float], law: str | None, moisture: float | None, full: bool) -> Answer:
+    """Look one name up, and work out what was asked of it; `full` with the law's sources in any case.
+
+    Raises TakeoffError on an unknown law or impossible moisture.
+    """
     from takeoff import materials
 
     match = materials.lookup(name)
@@ -113,7 +127,8 @@ def _answer(name: str, temperatures: list[float], law: str | None, moisture: flo
         found = replace(
             found, density=known.density, density_source=known.source, density_condition=f"{moisture:g} % moisture content"
         )
-    chain = materials.law_of(found, law) if found.law or law else None
+    # Without a temperature the law's name and reach are enough: the curves themselves stay unread.
+    chain = materials.law_of(found, law) if law or (found.law and (temperatures or full)) else None
     at = tuple(
         (t, materials.elongation(found, t, law=law), materials.density_at(found, t, law=law)) for t in temperatures
     )
@@ -167,7 +182,7 @@ def _material_record(answer: Answer, found: Material) -> dict[str, Any]:
                 "elongation_by_direction": {way.replace(" ", "_"): value for way, value in grown.by_direction.items()},
                 "density_kg_m3": None if density.density is None else density.density.nominal,
                 "within_validity": grown.within_validity if grown.value is not None else density.within_validity,
-                "reason": (grown.reason if grown.value is not None else density.reason) or None,
+                "reason": (grown.reason if grown.value is not None else density.reason or grown.reason) or None,
             }
             for t, grown, density in answer.at
         ],
@@ -235,7 +250,7 @@ def _degrees(celsius: float, us: bool) -> str:
 
 def _alpha(found: Material, us: bool) -> str:
     if found.alpha_per_K is None:
-        return "not known"
+        return "none given: a liquid, see its density at a temperature" if found.kind == "liquid" else "not known"
     value = found.alpha_per_K * 1e6 / (1.8 if us else 1.0)
     text = f"{value:.3g} x 10^-6 per {'°F' if us else 'K'}"
     if found.alpha_interval_C:
@@ -259,7 +274,7 @@ def _at_line(grown: Elongation, density: DensityAt, us: bool) -> str:
     if density.density is not None:
         parts.append(_spread(density.density, us) if density.density.low != density.density.high else
                      f"{_density(density.density.nominal, us)} {'lb/ft³' if us else 'kg/m³'}")  # fmt: skip
-    reason = grown.reason if grown.value is not None or density.density is None else density.reason
+    reason = grown.reason if grown.value is not None else density.reason or grown.reason
     return "; ".join(parts) + (f" [{reason}]" if reason else "")
 
 
@@ -316,6 +331,8 @@ def _card(answer: Answer, us: bool) -> str:
             f"{_degrees(p.from_C, us)} to {_degrees(p.to_C, us)} {_piece_name(p.curve)}" for p in answer.law.pieces
         ]
         page.labelled("Law", f"{answer.law.name}: " + "; ".join(stretches))
+    elif found.law:
+        page.labelled("Law", _law_outline(found, us))
     for t, grown, density in answer.at:
         page.labelled(_degrees(t, us), _at_line(grown, density, us))
     if found.melting_C is not None:
@@ -334,6 +351,17 @@ def _card(answer: Answer, us: bool) -> str:
 def _asked(match: MaterialMatch) -> str:
     words = {"exact": "its designation", "alias": "a name of it", "similar": "a similar name"}
     return f"asked for as {_shown(match.query)}, {words.get(match.match, match.match)}"
+
+
+def _law_outline(found: Material, us: bool) -> str:
+    from takeoff.materials.laws import laws, row_range
+
+    parts = []
+    for from_C, to_C, curve in laws()[found.law]:
+        low, high = (from_C, to_C) if curve != "row" or to_C is None else row_range(found.law, from_C, to_C, found.alpha_interval_C)
+        reach = f"{_degrees(low, us)} to {_degrees(high, us)}" if high is not None else f"from {_degrees(low, us)}"
+        parts.append(f"{reach} {_piece_name(curve)}")
+    return f"{found.law}: " + "; ".join(parts)
 
 
 def _piece_name(curve: str) -> str:

@@ -45,7 +45,7 @@ class Segment:
 
 @dataclass(frozen=True, slots=True)
 class Curve:
-    """A published curve. `points` holds (temperature, elongation from the reference) for a printed table."""
+    """A published curve. `points` holds (temperature, mean coefficient from the reference) for a printed table."""
 
     name: str
     title: str
@@ -145,13 +145,8 @@ class Curve:
         """Linear in the mean coefficient between the printed temperatures, which is how such tables are read."""
         temperatures = [p[0] for p in self.points]
         i = min(max(bisect_right(temperatures, t), 1), len(temperatures) - 1)
-        (t0, e0), (t1, e1) = self.points[i - 1], self.points[i]
-        reference = self.reference
-        if reference in (t0, t1) or (t0 < reference < t1):
-            # Next to the reference the mean coefficient is a small number over a small number: the chord is surer.
-            return e0 + (e1 - e0) * (t - t0) / (t1 - t0)
-        m0, m1 = e0 / (t0 - reference), e1 / (t1 - reference)
-        return (m0 + (m1 - m0) * (t - t0) / (t1 - t0)) * (t - reference)
+        (t0, m0), (t1, m1) = self.points[i - 1], self.points[i]
+        return (m0 + (m1 - m0) * (t - t0) / (t1 - t0)) * (t - self.reference)
 
     def _slope_near_20(self) -> float:
         """The coefficient per K at the end of the published range that is nearest to 20 °C."""
@@ -219,10 +214,11 @@ def _points() -> dict[str, dict[str, list[tuple[float, float, float]]]]:
 
 
 def _best_points(printed: dict[str, list[tuple[float, float, float]]], reference: float) -> tuple[tuple[float, float], ...]:
-    """(temperature, elongation): from the printed mean coefficient where there is one, it has the more digits, else from
-    the printed expansion; and zero at the reference."""
-    found = {t: value * scale for t, value, scale in printed.get("elongation", [])}
-    found.update({t: value * scale * (t - reference) for t, value, scale in printed.get("mean", [])})
-    if found:
-        found[reference] = 0.0
+    """(temperature, mean coefficient from the reference): as printed, for it has the more digits; from the printed
+    expansion where no coefficient is printed, or beyond the range of those."""
+    found = {t: value * scale for t, value, scale in printed.get("mean", [])}
+    low, high = min(found, default=reference), max(found, default=reference)
+    for t, value, scale in printed.get("elongation", []):
+        if t != reference and not low <= t <= high:
+            found[t] = value * scale / (t - reference)
     return tuple(sorted(found.items()))

@@ -15,18 +15,16 @@ from dataclasses import dataclass
 from functools import cache
 
 from takeoff.bounds import Spread
-from takeoff.datafiles import data_folder, read_table
 from takeoff.errors import TakeoffError
 from takeoff.materials.curves import curves
 from takeoff.materials.directions import directional_coefficients
+from takeoff.materials.laws import PRACTICE_C, laws, row_range
 from takeoff.materials.material import Material
 from takeoff.materials.means import mean_points
 from takeoff.materials.water import WATERS
 from takeoff.provenance import Source
 
 REFERENCE_C = 20.0
-#: Where a source states no interval, a constant coefficient serves over this range (structural practice, EN 1991-1-5).
-PRACTICE_C = (-50.0, 100.0)
 _STEP = 0.01
 _STATED_C = re.compile(r"(-?\d+(?:\.\d+)?) ?°C")
 
@@ -104,11 +102,13 @@ def elongation(material: Material, temperature_C: float, *, law: str | None = No
     if temperature_C < -273.15:
         raise ValueError("below absolute zero")
     name = law or material.law
+    if material.kind == "liquid":
+        return Elongation(None, {}, False, "a liquid has no length", name)
     if material.alpha_per_K is None and law is None:
         at_reference = temperature_C == REFERENCE_C
         reason = "" if at_reference else "no coefficient of expansion is known for this material"
         return Elongation(0.0 if at_reference else None, {}, at_reference, reason, name)
-    if material.melting_C is not None and temperature_C > material.melting_C and material.kind != "liquid":
+    if material.melting_C is not None and temperature_C > material.melting_C:
         return Elongation(None, {}, False, f"above the melting point, {material.melting_C:g} °C", name)
     chain = _chain(material, law)
     value, within = _evaluate(chain, temperature_C)
@@ -125,6 +125,10 @@ def density_at(material: Material, temperature_C: float, *, law: str | None = No
         value, within, reason = WATERS[material.key](temperature_C)
         return DensityAt(None if value is None else Spread(value, value, value), within, reason)
     grown = elongation(material, temperature_C, law=law)
+    if material.kind == "liquid":
+        if temperature_C == REFERENCE_C:
+            return DensityAt(material.density, True, "")
+        return DensityAt(None, False, "how this liquid's density changes with temperature is not in the table")
     if grown.value is None:
         return DensityAt(None, False, grown.reason)
     volume = _volume_ratio(grown) / _volume_at_reference(material, law)
@@ -223,10 +227,8 @@ def _piece(material: Material, from_C: float, to_C: float | None, name: str) -> 
         assert material.alpha_per_K is not None
         assert material.alpha_source is not None
         alpha = material.alpha_per_K
-        low, high = from_C, PRACTICE_C[1] if to_C is None else to_C
-        if len(laws()[material.law]) == 1 and material.alpha_interval_C:
-            # Nothing follows: the source's own interval counts too.
-            low, high = min(low, material.alpha_interval_C[0]), max(high, material.alpha_interval_C[1])
+        end = PRACTICE_C[1] if to_C is None else to_C
+        low, high = row_range(material.law, from_C, end, material.alpha_interval_C)
         return Piece(low, high, material.alpha_source, name), lambda t: alpha * (t - REFERENCE_C)
     if name == "means":
         found = mean_points(material)
@@ -256,12 +258,3 @@ def _alone(material: Material, law: str) -> _Link:
         )  # fmt: skip
     return _Link(Piece(curve.from_C, curve.to_C, curve.source, law), curve.elongation, 0.0)
 
-
-@cache
-def laws() -> dict[str, tuple[tuple[float, float | None, str], ...]]:
-    """The laws of laws.csv: name -> (from °C, to °C or None for the end of the curve, curve)."""
-    found: dict[str, list[tuple[float, float | None, str]]] = {}
-    for _, row in read_table(data_folder() / "laws.csv"):
-        end = float(row["to_C"]) if row["to_C"] else None
-        found.setdefault(row["law"], []).append((float(row["from_C"]), end, row["curve"]))
-    return {name: tuple(stretches) for name, stretches in found.items()}

@@ -16,7 +16,7 @@ from typing import TYPE_CHECKING, Literal
 from takeoff.materials.material import Material
 from takeoff.materials.nameindex import fold
 from takeoff.materials.table import by_key, family_of, kind_of, name_of, table
-from takeoff.materials.words import CONDITION, STRENGTH_CLASS, Words, words
+from takeoff.materials.words import METALS, PRODUCT_STANDARD, STRENGTH_CLASS, Words, condition, words
 from takeoff.names import NormalName, digits_of, has_hidden_marks, has_lookalikes, normal_name, plain_text, suggest
 
 if TYPE_CHECKING:
@@ -28,7 +28,8 @@ Match = Literal["exact", "alias", "similar", "ambiguous", "none"]
 MAX_LENGTH = 120
 #: A suggestion at or above this score, in the lead by `LEAD` over the next other material, is taken as similar.
 SIMILAR, LEAD, FLOOR = 84.0, 4.0, 60.0
-_OR = re.compile(r"[\s(]+(?:or|and|oder|und|ou|et|o|y|of|en|e)\s+|\s*[/&;|]\s*|\s+\+\s+|,\s+")
+_LONG_CODE = 8
+_OR = r"[\s(]+(?:or|and|oder|und|ou|et|o|y|of|en|e)\s+|\s*[/&;|]\s*|\s+\+\s+|,\s+"
 
 
 @dataclass(frozen=True, slots=True)
@@ -146,7 +147,7 @@ class _Search:
 
     def _parts(self) -> MaterialMatch | None:
         """Texts that name several materials (`PVC or aluminium tube`), or one among unknown words."""
-        pieces = [p for p in _OR.split(plain_text(self.text).casefold()) if not _says_nothing(normal_name(p))]
+        pieces = [p for p in re.split(_OR, plain_text(self.text).casefold()) if not _says_nothing(normal_name(p))]
         if len(pieces) < 2:
             return None
         answers = [self.within(normal_name(piece)) for piece in pieces[:6]]
@@ -180,14 +181,17 @@ class _Search:
         scores: dict[str, float] = {}
         digits = digits_of(name)
         index = table().index
-        for suggestion in suggest(NormalName(fold(name)), index.folded_names(), floor=FLOOR, limit=12):
+        folded = NormalName(fold(name))
+        for suggestion in suggest(folded, index.with_digits(digits_of(folded)), floor=FLOOR, limit=12):
             for key in index.keys(suggestion.name):
                 better = suggestion.score > scores.get(key, 0.0)
                 if better and index.same_digits(suggestion.name, key, digits):
                     scores[key] = suggestion.score
         inside, sure = self._inside(tokens)
         ranked = sorted(scores.items(), key=lambda item: -item[1])
-        if ranked and ranked[0][1] >= SIMILAR:
+        # One letter more or less in a short designation is another designation: E24 and EN24.
+        short_code = bool(digits) and len(fold(name)) < _LONG_CODE
+        if ranked and ranked[0][1] >= SIMILAR and not short_code:
             fitting = [(k, s) for k, s in ranked if self.hint in (kind_of(k), family_of(k))] if self.hint else []
             lead = (fitting or ranked) if fitting and fitting[0][1] >= SIMILAR else ranked
             candidates = tuple(Candidate(k, name_of(k), s) for k, s in ranked[:5])
@@ -245,7 +249,7 @@ def _readings(name: NormalName) -> Iterator[tuple[NormalName, frozenset[str] | N
     yield name, None
     known = words()
     seen: set[tuple[NormalName, frozenset[str] | None]] = {(name, None)}
-    for tokens, allowed in _reduced(CONDITION.sub("", name).split(), known):
+    for tokens, allowed in _reduced(condition().sub("", name).split(), known):
         reading = (NormalName(" ".join(tokens)), allowed)
         if tokens and reading not in seen:
             seen.add(reading)
@@ -259,9 +263,11 @@ def _reduced(tokens: list[str], known: Words) -> Iterator[tuple[list[str], froze
     while headless and headless[0] in known.standards:
         headless = headless[1:]
         yield headless, None
+    if len(headless) > 1 and re.fullmatch(PRODUCT_STANDARD, headless[0]):
+        yield [t for t in headless[1:] if t not in known.standards], METALS
     kept = [t for t in tokens if t not in known.set_aside]
     yield kept, None
-    yield [t for t in kept if not STRENGTH_CLASS.fullmatch(t)], None
+    yield [t for t in kept if not re.fullmatch(STRENGTH_CLASS, t)], None
     plain = [t for t in kept if t not in known.standards]
     yield plain, None
     groups = [known.groups[t] for t in plain if t in known.groups]

@@ -155,7 +155,7 @@ def material_from_row(
         alpha_interval_C=None if low is None or high is None else (low, high),
         alpha_direction="" if alpha is None else row.get("alpha_direction", "") or "isotropic",
         alpha_source=None if alpha is None else source("alpha"),
-        law=row.get("law", "") or ("" if alpha is None else "constant"),
+        law="" if alpha is None else row.get("law", "") or "constant",
         melting_C=number("melting_C"),
         note=row.get("note", ""),
         filled=filled,

@@ -35,11 +35,12 @@ class NameIndex:
     `texts` gives all names of a key as they were written: a hit is confirmed against them, number by number.
     """
 
-    __slots__ = ("_entries", "_texts")
+    __slots__ = ("_by_digits", "_entries", "_texts")
 
     def __init__(self, texts: Callable[[str], Iterable[str]]) -> None:
         self._entries: dict[str, list[tuple[str, bool]]] = {}
         self._texts = texts
+        self._by_digits: dict[tuple[str, ...], list[NormalName]] | None = None
 
     def add(self, cell: str, key: str, exact: bool) -> None:
         """Let `key` answer to each name of a cell; `exact` for keys and designations, else they are aliases."""
@@ -66,9 +67,13 @@ class NameIndex:
         """Whether the material has a name of this folded form with just these numbers."""
         return any(fold(t) == folded and digits_of(normal_name(t)) == digits for t in self._texts(key))
 
-    def folded_names(self) -> list[NormalName]:
-        """All folded names, for suggestions."""
-        return [NormalName(name) for name in self._entries]
+    def with_digits(self, digits: tuple[str, ...]) -> list[NormalName]:
+        """All folded names with just these numbers, for suggestions; sorted out once, a list may hold many odd texts."""
+        if self._by_digits is None:
+            self._by_digits = {}
+            for name in self._entries:
+                self._by_digits.setdefault(digits_of(name), []).append(NormalName(name))
+        return self._by_digits.get(digits, [])
 
     def keys(self, folded: str) -> list[str]:
         """Keys under one folded name."""

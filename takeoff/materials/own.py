@@ -11,6 +11,7 @@ from pathlib import Path
 
 from takeoff.datafiles import read_table
 from takeoff.errors import DataError, InputError
+from takeoff.materials.laws import laws
 from takeoff.materials.material import COLUMNS, REQUIRED, Material, material_from_row
 from takeoff.materials.nameindex import NameIndex, fold
 from takeoff.materials.table import families, source_titles, table
@@ -42,6 +43,7 @@ def load_own(path: str | Path) -> OwnTable:
     owner: dict[str, tuple[str, int]] = {}
     for line, row in rows:
         first = material_from_row(row, file=path, line=line, titles=source_titles(), families=families(), own=True)
+        _check_law(path, line, first)
         spelled = [first.key, first.name, *first.designations, *first.aliases]
         overrides = any(table().index.find(normal_name(name)) for name in spelled)
         material = material_from_row(
@@ -60,6 +62,15 @@ def load_own(path: str | Path) -> OwnTable:
             owner[fold(name)] = (material.key, line)
             index.add(name, material.key, position < 2 + len(material.designations))
     return OwnTable(path, materials, index)
+
+
+def _check_law(path: Path, line: int, material: Material) -> None:
+    """An own row may name a law of ours, but not one that needs our printed mean coefficients."""
+    usable = [name for name, stretches in laws().items() if all(curve != "means" for _, _, curve in stretches)]
+    if material.law and material.law not in usable:
+        raise DataError(
+            f"line {line}, column law: no such law", file=path, read=material.law[:80], right="one of " + ", ".join(usable)
+        )
 
 
 def _rows(path: Path) -> list[tuple[int, dict[str, str]]]:

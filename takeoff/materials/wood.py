@@ -114,8 +114,9 @@ def _ratio(material: Material, density_at_12: float, moisture_percent: float) ->
     """Density at a moisture over density at 12 %."""
     if material.family == "engineered wood" and not material.key.startswith(_SOLID_LIKE):
         return (100 + moisture_percent) / (100 + TABLE_MOISTURE)
-    wet = _at(basic_gravity(density_at_12), moisture_percent)
-    return max(min(wet, _waterlogged(density_at_12)), 0.0) / density_at_12
+    wet = min(_at(basic_gravity(density_at_12), moisture_percent), _waterlogged(density_at_12)) / density_at_12
+    # For very dense woods the estimated shrinkage is too large, and dry wood would come out heavier than moist wood.
+    return min(wet, 1.0) if moisture_percent < TABLE_MOISTURE else max(wet, 1.0)
 
 
 def _moisture_of(material: Material, green: Spread) -> float:

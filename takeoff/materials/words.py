@@ -16,17 +16,27 @@ from takeoff.datafiles import data_folder, read_table
 from takeoff.errors import DataError
 from takeoff.materials.material import split_names
 
-#: Delivery conditions and tempers behind a designation, standards' numbers, and sizes: they change no density.
-CONDITION = re.compile(
-    r"\s*\+\s*[a-z]{1,3}\d{0,3}(?:\s*\+\s*[a-z]{1,3}\d{0,3})*\b"  # +N, +AR, +QT, +Z275
-    r"|\s+(?:t\d{1,4}|h\d{2,3}|t\d{1,2}x\d{1,3})$"  # aluminium tempers at the end
-    r"|\s+(?:to\s+|acc\.?\s+(?:to\s+)?|nach\s+|selon\s+)?(?:bs\s+)?(?:en|din|iso|astm|nf|uni|jis)(?:\s+(?:en|iso))?\s+"
-    r"(?:[ab]\s?)?\d{3,5}(?:\s?\d{1,2})?(?::?\s?\d{4})?$"  # EN 10025-2 behind the grade
-    r"|^(?:bs\s+|nf\s+|din\s+)?(?:en|din|iso)(?:\s+iso)?\s+\d{4,5}(?:\s\d{1,2})?\s+(?=\S)"  # EN 10025-2 before it
-    r"|\b\d+(?:[.,]\d+)?\s?mm\b(?:\s+(?:thick|thk|dick))?"
-)
 #: A concrete's strength class beside its name.
-STRENGTH_CLASS = re.compile(r"[rl]?c\d{1,3}/\d{1,3}")
+STRENGTH_CLASS = r"[rl]?c\d{1,3}/\d{1,3}"
+
+#: A product standard in front of a grade: A240 304L.
+PRODUCT_STANDARD = r"s?[ab]\d{2,3}m?(?:/s?[ab]\d{2,3}m?)?"
+METALS = frozenset(
+    {"carbon steel", "stainless", "cast iron", "aluminium", "copper alloy", "nickel alloy", "titanium", "magnesium", "zinc"}
+)
+
+
+@cache
+def condition() -> re.Pattern[str]:
+    """Delivery conditions and tempers behind a designation, standards' numbers, and sizes: they change no density."""
+    return re.compile(
+        r"\s*\+\s*[a-z]{1,3}\d{0,3}(?:\s*\+\s*[a-z]{1,3}\d{0,3})*\b"  # +N, +AR, +QT, +Z275
+        r"|\s+(?:t\d{1,4}|h\d{2,3}|t\d{1,2}x\d{1,3})$"  # aluminium tempers at the end
+        r"|\s+(?:to\s+|acc\.?\s+(?:to\s+)?|nach\s+|selon\s+)?(?:bs\s+)?(?:en|din|iso|astm|nf|uni|jis)(?:\s+(?:en|iso))?\s+"
+        r"(?:[ab]\s?)?\d{3,5}(?:\s?\d{1,2})?(?::?\s?\d{4})?$"  # EN 10025-2 behind the grade
+        r"|^(?:bs\s+|nf\s+|din\s+)?(?:en|din|iso)(?:\s+iso)?\s+\d{4,5}(?:\s\d{1,2})?\s+(?=\S)"  # EN 10025-2 before it
+        r"|\b\d+(?:[.,]\d+)?\s?mm\b(?:\s+(?:thick|thk|dick))?"
+    )
 
 
 @dataclass(frozen=True, slots=True)
