@@ -65,18 +65,24 @@ class Spread:
         return {"low": self.low, "nominal": self.nominal, "high": self.high}
 
 
+def standard_uncertainty(groups: Iterable[Bounds]) -> float:
+    """The combined standard uncertainty of a total, in the groups' unit (JCGM 100, uncertainty of measurement).
+
+    Each group (one section in one material) is one rectangular distribution between its summed bounds, since its members
+    come from the same rolling or quarry and err together: half width a, standard uncertainty a / √3. Groups are
+    independent: the root of the sum of squares.
+    """
+    return math.sqrt(math.fsum(((g.heavy - g.light) / 2) ** 2 for g in groups) / 3)
+
+
 def likely_range(groups: Iterable[Bounds], coverage_factor: float = 2.0) -> tuple[float, float]:
     """The range that holds the true total about 95 times in 100, low and high, in the groups' unit.
 
-    Method: JCGM 100 (uncertainty of measurement). Each group (one section in one material) is one rectangular
-    distribution between its summed bounds, since its members come from the same rolling or quarry and err together:
-    half width a, standard uncertainty a / √3. Groups are independent: the root of the sum of squares. The range stands
-    about the midpoint of the bounds and is cut off at them.
+    The combined standard uncertainty times the coverage factor, about the midpoint of the bounds and cut off at them.
     """
     groups = list(groups)
     light = math.fsum(g.light for g in groups)
     heavy = math.fsum(g.heavy for g in groups)
-    variance = math.fsum(((g.heavy - g.light) / 2) ** 2 for g in groups) / 3
-    reach = coverage_factor * math.sqrt(variance)
+    reach = coverage_factor * standard_uncertainty(groups)
     middle = (light + heavy) / 2
     return max(light, middle - reach), min(heavy, middle + reach)

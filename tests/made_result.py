@@ -11,7 +11,7 @@ import pandas as pd
 from takeoff.bounds import Spread
 from takeoff.findings import Finding
 from takeoff.job import Job, job_from
-from takeoff.lifting.hook import picks_of
+from takeoff.lifting.picking import picks_of
 from takeoff.lists.account import Account, SheetAccount
 from takeoff.materials.material import Material
 from takeoff.pipeline import InputFile, Result
@@ -99,5 +99,5 @@ def make(
         job=settings, inputs=[InputFile("list.xlsx", "0" * 64, ("Steel",))], account=account,
         sheet_accounts=[SheetAccount("list.xlsx", "Steel", account)], members=frame, sections=[], materials=[STEEL], bases=BASES,
         log=Log(SOME_FINDINGS if findings is None else findings),  # type: ignore[arg-type]
-        findings=list(sheet_findings), totals=total_up(frame), picks=picks_of(frame, BASES, settings.lift),
+        findings=list(sheet_findings), totals=total_up(frame), picks=picks_of(frame, BASES, settings),
     )

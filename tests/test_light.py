@@ -14,6 +14,8 @@ LOOK_UPS = [
     ["material", "S355J2"], ["material", "gold", "water", "oak"], ["material"], ["section", "UB 203x133x25"],
     ["section", "HEA200", "SHS 100x5", "PL 10x200"], ["weigh", "UB 203x133x25", "6 m"],
     ["weigh", "PL 12x200", "450", "--material", "1.4404"], ["--help"],
+    ["movement", "S355", "60 m", "--from", "-20", "--to", "45", "--set-at", "5", "--against", "aluminium"],
+    ["movement", "oak", "4 m", "--from", "0", "--to", "30", "--json"], ["fit", "S355", "99.92", "S355", "100", "--clearance", "0.1"],
 ]
 
 

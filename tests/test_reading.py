@@ -26,14 +26,31 @@ def states(result: pipeline.Result) -> list[str]:
     return result.members["status"].tolist()
 
 
-@pytest.mark.parametrize(("text", "field", "unit"), [
-    ("Length (mm)", "length", "mm"), ("LENGTH [m]", "length", "m"), ("length_mm", "length", "mm"), ("Length\n(mm)", "length", "mm"),
-    ("Length, m", "length", "m"), ("Length mm", "length", "mm"), ("Qty.", "quantity", None), ("Unit mass (kg)", "unit_mass", "kg"),
-    ("kg/m", "mass_per_length", "kg/m"), ("Total Mass (t)", "total_mass", "t"), ("X1 (mm)", "x1", "mm"), ("Mass (kg/m)", None, None),
-    ("Unit weight (kg/m)", "mass_per_length", "kg/m"), ("Volume (m3)", "volume", "m3"),
-    ("Mark", "mark", None), ("Price", "not_used", None),
-    ("Thickness (mm)", "thickness", "mm"), ("Length (kg)", None, None), ("Steel Grade", "material", None), ("Nonsense", None, None),
-])
+@pytest.mark.parametrize(
+    ("text", "field", "unit"),
+    [
+        ("Length (mm)", "length", "mm"),
+        ("LENGTH [m]", "length", "m"),
+        ("length_mm", "length", "mm"),
+        ("Length\n(mm)", "length", "mm"),
+        ("Length, m", "length", "m"),
+        ("Length mm", "length", "mm"),
+        ("Qty.", "quantity", None),
+        ("Unit mass (kg)", "unit_mass", "kg"),
+        ("kg/m", "mass_per_length", "kg/m"),
+        ("Total Mass (t)", "total_mass", "t"),
+        ("X1 (mm)", "x1", "mm"),
+        ("Mass (kg/m)", "mass_per_length", "kg/m"),
+        ("Unit weight (kg/m)", "mass_per_length", "kg/m"),
+        ("Volume (m3)", "volume", "m3"),
+        ("Mark", "mark", None),
+        ("Price", "not_used", None),
+        ("Thickness (mm)", "thickness", "mm"),
+        ("Length (kg)", None, None),
+        ("Steel Grade", "material", None),
+        ("Nonsense", None, None),
+    ],
+)
 def test_headings(text: str, field: str | None, unit: str | None) -> None:
     """A heading gives its field and unit; one that names neither gives nothing."""
     found = read_heading(text)
@@ -57,9 +74,14 @@ def test_the_headings_of_the_house_all_read() -> None:
 def test_title_rows_totals_blanks_and_notes_are_told_apart(write_list: WriteList) -> None:
     """Every row of a list with a title block, subtotals, a repeated heading and notes has its kind."""
     rows = [
-        BEAM, ["A2", "F1", 1, "SHS 100x100x5", "S355", 3000], ["Subtotal frame", None, None, None, None, None], [None] * 6,
-        ["Mark", "Assembly", "Quantity", "Section", "Material", "Length (mm)"], ["A3", "F2", 1, "PL 10x200", "S275", 400],
-        ["All welds by others."], ["TOTAL", None, 4, None, None, None],
+        BEAM,
+        ["A2", "F1", 1, "SHS 100x100x5", "S355", 3000],
+        ["Subtotal frame", None, None, None, None, None],
+        [None] * 6,
+        ["Mark", "Assembly", "Quantity", "Section", "Material", "Length (mm)"],
+        ["A3", "F2", 1, "PL 10x200", "S275", 400],
+        ["All welds by others."],
+        ["TOTAL", None, 4, None, None, None],
     ]
     path = write_list(rows, above=[["Gantry, invented"], [], ["Units: mm unless stated"]])
     result = pipeline.schedule([path])
@@ -101,10 +123,22 @@ def test_a_cells_own_unit_wins(write_list: WriteList) -> None:
     assert result.members["length_mm"].tolist() == [6000, 6000]
 
 
-@pytest.mark.parametrize(("cell", "reason"), [
-    (None, "blank"), (0, "whole count"), (-2, "whole count"), (2.5, "whole count"), (True, "whole count"), ("2-3", "whole count"),
-    ("1 set", "whole count"), (10**9, "whole count"), ("²", "whole count"), ("0x10", "whole count"), ("two", "whole count"),
-])
+@pytest.mark.parametrize(
+    ("cell", "reason"),
+    [
+        (None, "blank"),
+        (0, "whole count"),
+        (-2, "whole count"),
+        (2.5, "whole count"),
+        (True, "whole count"),
+        ("2-3", "whole count"),
+        ("1 set", "whole count"),
+        (10**9, "whole count"),
+        ("²", "whole count"),
+        ("0x10", "whole count"),
+        ("two", "whole count"),
+    ],
+)
 def test_quantities_that_are_no_count(write_list: WriteList, cell: object, reason: str) -> None:
     """A quantity that is not a whole count of 1 or more is not weighed, with its cell."""
     result = pipeline.schedule([write_list([["A", "F", cell, "UB 203x133x25", "S355", 6000], BEAM])])
@@ -182,15 +216,19 @@ def test_separators_encodings_and_decimal_commas(tmp_path: Path, separator: str,
     assert result.members["mark"].tolist() == ["Träger"]
 
 
-def test_an_open_thousand_is_refused_until_the_file_settles_it(tmp_path: Path) -> None:
-    """1,500 alone is refused; beside 2,5 it is a decimal comma; beside 2.5 a thousand."""
-    def read(*lengths: str) -> list[str]:
-        path = tmp_path / "list.csv"
-        path.write_text("Mark;Qty;Section;Material;Length (m)\n" + "".join(f"A;1;UB 203x133x25;S355;{x}\n" for x in lengths))
-        return pipeline.schedule([path]).members["status"].tolist()
+def test_an_open_thousand_is_settled_by_the_file_or_by_size(tmp_path: Path) -> None:
+    """1,500 beside 2,5 is a decimal comma; alone it is what a piece can be; where both can be, it is refused."""
 
-    assert read("1,500") == ["not weighed"]
-    assert read("1,500", "2,5") == ["weighed", "weighed"]
+    def read(unit: str, *lengths: str) -> list[tuple[str, float]]:
+        path = tmp_path / "list.csv"
+        path.write_text(f"Mark;Qty;Section;Material;Length ({unit})\n" + "".join(f"A;1;UB 203x133x25;S355;{x}\n" for x in lengths))
+        frame = pipeline.schedule([path]).members
+        return list(zip(frame["status"], frame["length_mm"], strict=True))
+
+    assert read("m", "1,500", "2,5") == [("weighed", 1500), ("weighed", 2500)]
+    assert read("m", "1,500") == [("assumed", 1500)]
+    assert read("mm", "1,500") == [("assumed", 1500)]
+    assert [status for status, _ in read("cm", "2,500")] == ["not weighed"]
 
 
 def test_a_row_with_a_stray_separator_is_refused(tmp_path: Path) -> None:
@@ -232,8 +270,14 @@ def test_a_lost_row_is_noticed(write_list: WriteList, monkeypatch: pytest.Monkey
         pipeline.schedule([write_list([BEAM, BEAM])])
 
 
-cells = st.one_of(st.none(), st.text(max_size=12), st.integers(-5, 9999), st.floats(allow_nan=False, allow_infinity=False), st.booleans(),
-                  st.sampled_from(["Mark", "Quantity", "Section", "Length (mm)", "Total", "UB 203x133x25", "S355", "4", "mm"]))
+cells = st.one_of(
+    st.none(),
+    st.text(max_size=12),
+    st.integers(-5, 9999),
+    st.floats(allow_nan=False, allow_infinity=False),
+    st.booleans(),
+    st.sampled_from(["Mark", "Quantity", "Section", "Length (mm)", "Total", "UB 203x133x25", "S355", "4", "mm"]),
+)
 
 
 @settings(max_examples=150, deadline=None)

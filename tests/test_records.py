@@ -29,7 +29,7 @@ MEMBER = {
 }
 TOTALS = {
     "quantity", "mass_kg", "likely_kg", "volume_m3", "surface_m2", "not_weighed", "not_counted", "by_material", "by_section",
-    "by_assembly", "by_phase", "by_finish",
+    "by_assembly", "by_phase", "by_finish", "by_pick", "bare_kg", "additions",
 }
 
 

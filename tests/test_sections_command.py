@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import json
+import subprocess
+import sys
 
 import pytest
 import typer
@@ -110,6 +112,17 @@ def test_a_family_lists_its_sizes() -> None:
     assert "universal beams" in text
 
 
+@pytest.mark.parametrize(
+    ("family", "size"),
+    [("HEB", "HE 200 B"), ("FL", "FL 100x10"), ("pipe", "Pipe DN100 SCH 40"), ("W", "W12X50"), ("Rebar", "Rebar 16"), ("ISMB", "ISMB 300")],
+)
+def test_every_family_can_be_listed(family: str, size: str) -> None:
+    """Families answer to their word or code, in capitals or not."""
+    status, text = ask(family)
+    assert status == 0
+    assert size in text
+
+
 @pytest.mark.parametrize("name", ["IPE 305", "50x50x5", "foo", "RHS 100x50x60"])
 def test_what_is_not_sure_is_status_1(name: str) -> None:
     """Refused and ambiguous names end with status 1, say why, and offer something real."""
@@ -132,3 +145,24 @@ def test_us_units() -> None:
     _, text = ask("UB 457x191x67", "--units", "us")
     assert "lb/ft" in text
     assert "17.85 in" in text
+
+
+def test_the_usual_steel_is_the_table_s() -> None:
+    """The name and density kept in the command are those of the materials table."""
+    from takeoff import materials
+    from takeoff.cli.section import STEEL, USUAL_STEEL
+
+    steel = materials.by_key("steel-structural")
+    assert steel.name == USUAL_STEEL
+    assert steel.density.nominal == STEEL
+
+
+def test_a_plain_look_up_loads_nothing_heavy() -> None:
+    """Neither pandas, numpy, openpyxl, pint nor the materials table is loaded for a card."""
+    code = (
+        "import sys; from takeoff.cli.section import section; section(['UB 457x191x67']); "
+        "heavy = {'pandas', 'numpy', 'openpyxl', 'pint', 'rapidfuzz', 'takeoff.materials'} & set(sys.modules); "
+        "sys.exit(', '.join(sorted(heavy)) or 0)"
+    )
+    result = subprocess.run([sys.executable, "-c", code], capture_output=True, text=True, check=False)
+    assert result.returncode == 0, result.stderr

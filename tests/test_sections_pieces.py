@@ -10,7 +10,8 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from takeoff.sections import columns, read, tolerances
+from takeoff.errors import DataError
+from takeoff.sections import columns, pieces, read, tolerances
 from takeoff.sections.section import Section
 
 NAN = math.nan
@@ -168,3 +169,34 @@ def test_plate_limits_close() -> None:
     """EN 10029: the whole band of class A equals the standard's band for its thickness (a check on the figures)."""
     bands = [round(b.minus + b.plus, 6) for b in tolerances.rules()["plate"] if b.unit == "mm" and b.over >= 3]
     assert bands == [1.0, 1.2, 1.4, 1.6, 2.0, 2.6, 3.2, 3.6, 4.8]
+
+
+def test_an_end_cut_takes_off_what_a_clipped_prism_lacks() -> None:
+    """Volume with two bevelled ends, from the loss on the axis, against the section's own outline clipped strip by strip."""
+    section = _section("L 150x75x10")
+    area, height = section.area_mm2, section.dimensions_mm["h"]
+    assert area is not None
+    lost = pieces.length_lost_mm(section, 30)
+    strips = np.linspace(0, height, 30_001)
+    middle = (strips[1:] + strips[:-1]) / 2
+    d = {k: section.dimensions_mm[k] for k in ("h", "b", "tf")}
+    width = np.where(middle < d["tf"], d["b"], d["tf"])  # the sharp-cornered angle: fillets move its centroid by little
+    volume = (width * middle).sum() / width.sum() * math.tan(math.radians(30))
+    assert min(lost.light, lost.heavy) == pytest.approx(volume, rel=0.02)
+    assert lost.light + lost.heavy == pytest.approx(height * math.tan(math.radians(30)))
+
+
+@pytest.mark.parametrize(
+    ("text", "expected"), [("UB 203x133x25", 203.2 / 2), ("FL 100x10", 50), ("RD 20", 10), ("SHS 100x5", 50), ("Board 45x195", 97.5)]
+)
+def test_a_45_degree_cut_takes_half_the_depth(text: str, expected: float) -> None:
+    """A symmetrical section loses half its depth on the axis at 45 degrees."""
+    assert pieces.length_lost_mm(_section(text), 45).nominal == pytest.approx(expected)
+
+
+def test_a_cut_that_cannot_be_is_refused() -> None:
+    """Cuts nearly along the axis, and solids, have no end cut."""
+    with pytest.raises(DataError, match="no end cut"):
+        pieces.length_lost_mm(_section("FL 100x10"), 88)
+    with pytest.raises(DataError, match="no depth"):
+        pieces.length_lost_mm(_section("Block 600x300x80"), 30)

@@ -6,6 +6,7 @@ some rows were not weighed; 4 our own account did not close, nothing written; 13
 
 from __future__ import annotations
 
+import gc
 import signal
 import sys
 from types import FrameType
@@ -14,8 +15,10 @@ import typer
 
 from takeoff.cli import console
 from takeoff.cli.check import check
+from takeoff.cli.fit import fit
 from takeoff.cli.lift import lift
 from takeoff.cli.material import material
+from takeoff.cli.movement import movement
 from takeoff.cli.schedule import schedule
 from takeoff.cli.section import section
 from takeoff.cli.weigh import weigh
@@ -27,7 +30,7 @@ app = typer.Typer(
     no_args_is_help=True, rich_markup_mode=None, pretty_exceptions_enable=False, add_completion=True,
     context_settings={"help_option_names": ["--help", "-h"]},
 )
-for command in (schedule, check, material, section, weigh, lift):
+for command in (schedule, check, material, section, weigh, movement, fit, lift):
     app.command()(command)
 
 
@@ -57,7 +60,11 @@ def main() -> None:
     console.prepare_streams()
     signal.signal(signal.SIGINT, _interrupt)
     try:
-        app()
+        try:
+            app()
+        finally:
+            # The interpreter looks for garbage as it ends, among all that is loaded: part of a look-up's time, for nothing.
+            gc.freeze()
     except TakeoffError as error:
         console.err(f"takeoff: {error}")
         sys.exit(error.status)

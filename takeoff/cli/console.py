@@ -38,6 +38,12 @@ def err(text: str) -> None:
         print(text, file=sys.stderr, flush=True)
 
 
+def err_line(text: str) -> None:
+    """To standard error as it stands, without a line feed: for a line that is renewed in place."""
+    with contextlib.suppress(OSError, ValueError):
+        print(text, end="", file=sys.stderr, flush=True)
+
+
 def silence(stream: TextIO) -> None:
     """Point a broken stream at nothing, so that the interpreter's own flush at exit stays quiet."""
     with contextlib.suppress(OSError, ValueError, AttributeError):

@@ -4,8 +4,19 @@ from __future__ import annotations
 
 import typer
 
-from takeoff.cli import console
-from takeoff.cli.options import JobOption, JsonOption, OneList, QuietOption, StrictOption, UnitsOption, with_units
+from takeoff.cli import console, progress
+from takeoff.cli.options import (
+    JobOption,
+    JsonOption,
+    OneList,
+    PageOption,
+    QuietOption,
+    ReplaceOption,
+    StrictOption,
+    UnitsOption,
+    with_units,
+)
+from takeoff.cli.pages import check_page, write_page
 from takeoff.errors import InputError
 
 
@@ -13,6 +24,8 @@ def lift(
     member_list: OneList,
     job: JobOption = None,
     pick: str | None = typer.Option(None, metavar="NAME", help="This pick only."),
+    page: PageOption = None,
+    replace: ReplaceOption = False,
     units: UnitsOption = None,
     strict: StrictOption = False,
     json: JsonOption = False,
@@ -28,7 +41,9 @@ def lift(
     from takeoff.reports import terminal
 
     the_job = with_units(find_job([member_list], job), units)
-    result = pipeline.schedule([member_list], the_job, strict=strict)
+    check_page(page, [member_list], the_job, replace=replace)
+    with progress.shown(quiet):
+        result = pipeline.schedule([member_list], the_job, strict=strict)
     picks = [p for p in result.picks if pick is None or p.name == pick]
     if not picks:
         names = ", ".join(p.name for p in result.picks)
@@ -36,6 +51,7 @@ def lift(
             "there is no such pick" if pick else "the list names no assembly and no pick", file=member_list, read=pick,
             right=f"one of {names}" if names else "a column Assembly or Pick",
         )
+    write_page(page, result, [member_list], ("picks",), pick=pick, replace=replace, quiet=quiet)
     if json:
         console.out_json({"picks": [p.as_record() for p in picks], "cautions": list(CAUTIONS)})
     elif not quiet:

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import gc
 from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING, Annotated, Any
 
@@ -15,8 +14,8 @@ from takeoff.errors import TakeoffError
 if TYPE_CHECKING:
     from takeoff.bounds import Spread
     from takeoff.materials import DensityAt, Elongation, Law, Material, MaterialMatch
+    from takeoff.reports.plainpage import Page
     from takeoff.reports.rounding import Way
-    from takeoff.reports.terminal import Page
 
 CAUTION = (
     "Caution: the high density is for lifting and axle loads; moisture, coatings and contents are not in these figures. Have "
@@ -87,8 +86,6 @@ def material(
         console.out_json([_record(answer) for answer in answers])
     elif not quiet:
         console.out(_card(answers[0], us) if len(answers) == 1 else _comparison(answers, us))
-    # The interpreter looks for garbage as it ends, among all that is loaded: a twentieth of a card's time, for nothing.
-    gc.freeze()
     if not all(answer.sure for answer in answers):
         raise typer.Exit(1)
 
@@ -279,7 +276,7 @@ def _at_line(grown: Elongation, density: DensityAt, us: bool) -> str:
 
 
 def _page() -> Page:
-    from takeoff.reports.terminal import Page
+    from takeoff.reports.plainpage import Page
 
     return Page(min(console.width(), 100))
 

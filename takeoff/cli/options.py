@@ -19,6 +19,8 @@ UnitsOption = Annotated[Units | None, typer.Option(help="Units for print: si or 
 QuietOption = Annotated[bool, typer.Option("--quiet", help="Print nothing that was not asked for.")]
 StrictOption = Annotated[bool, typer.Option("--strict", help="Refuse similar names instead of assuming them.")]
 JsonOption = Annotated[bool, typer.Option("--json", help="Print JSON alone, SI units.")]
+PageOption = Annotated[Path | None, typer.Option(help="Write the page to this file: one .html that opens in any browser.")]
+ReplaceOption = Annotated[bool, typer.Option("--replace", help="Replace outputs that exist already.")]
 MaterialOption = Annotated[str | None, typer.Option(help="The material; else carbon steel, where the section is of a steel standard.")]
 
 

@@ -1,4 +1,4 @@
-"""`takeoff schedule`: the main job, from lists to a workbook, JSON and CSV."""
+"""`takeoff schedule`: the main job, from lists to a workbook, a page, JSON and CSV."""
 
 from __future__ import annotations
 
@@ -7,57 +7,66 @@ from typing import Annotated
 
 import typer
 
-from takeoff.cli import console
-from takeoff.cli.options import JobOption, Lists, QuietOption, StrictOption, UnitsOption, with_units
+from takeoff.cli import console, progress
+from takeoff.cli.options import JobOption, Lists, PageOption, QuietOption, ReplaceOption, StrictOption, UnitsOption, with_units
+from takeoff.cli.pages import inputs_of, save_text
 
 
 def schedule(
     lists: Lists,
     job: JobOption = None,
     out: Annotated[Path | None, typer.Option(help="The workbook to write; else NAME.schedule.xlsx beside the list.")] = None,
+    page: PageOption = None,
     json: Annotated[str | None, typer.Option(help="Write the machine-readable record to this file, or - for standard output.")] = None,
     csv: Annotated[Path | None, typer.Option(help="Write one line a member to this file.")] = None,
     units: UnitsOption = None,
+    against: Annotated[Path | None, typer.Option(metavar="OLD.json", help="An earlier run's --json: say what changed, and by how much.")] = None,
     strict: StrictOption = False,
-    replace: Annotated[bool, typer.Option("--replace", help="Replace outputs that exist already.")] = False,
+    replace: ReplaceOption = False,
     quiet: QuietOption = False,
 ) -> None:
     """Weigh member lists and write the weight schedule.
 
-    Example: takeoff schedule cutting_list.xlsx --json cutting_list.json
+    Example: takeoff schedule cutting_list.xlsx --page cutting_list.html --json cutting_list.json
     """
     from takeoff import pipeline
     from takeoff.job import find_job
-    from takeoff.reports import files, records, terminal, workbook
+    from takeoff.reports import compare, files, plainpage, records, terminal, workbook
 
     target = out or lists[0].with_name(lists[0].stem + ".schedule.xlsx")
     to_stream = json == "-"
-    named = [target, *([Path(json)] if json and not to_stream else []), *([csv] if csv else [])]
+    named = [target, *([page] if page else []), *([Path(json)] if json and not to_stream else []), *([csv] if csv else [])]
     the_job = find_job(lists, job)
-    own = the_job.own.materials
-    inputs = [*lists, *([the_job.path] if the_job.path else []), *([the_job.beside(own)] if own else [])]
+    inputs = [*inputs_of(lists, the_job), *([against] if against else [])]
     # Asked before the work, so that a long list is not weighed for an output that cannot be written.
     readable = [path for path in lists if path.is_file()]
     if len(readable) == len(lists):
         files.check_outputs(named, inputs=inputs, replace=replace)
-    result = pipeline.schedule(lists, with_units(the_job, units), strict=strict)
-    record = records.to_json(result) if json else ""
-    outputs: list[files.Output] = [(target, lambda path: workbook.write_workbook(result, path))]
-    if json and not to_stream:
-        outputs.append((Path(json), lambda path: _write_text(path, record)))
-    if csv:
-        outputs.append((csv, lambda path: _write_text(path, records.to_csv(result))))
-    files.write_all(outputs, inputs=inputs, replace=replace)
+    earlier = compare.read_earlier(against) if against else None
+    with progress.shown(quiet):
+        result = pipeline.schedule(lists, with_units(the_job, units), strict=strict)
+        changes = compare.compare(result, earlier) if earlier else None
+        record = records.to_json(result, changes) if json else ""
+        outputs: list[files.Output] = [(target, lambda path: workbook.write_workbook(result, path, changes))]
+        if page:
+            from takeoff.reports.page import to_page
+
+            outputs.append((page, lambda path: save_text(path, to_page(result, changes=changes))))
+        if json and not to_stream:
+            outputs.append((Path(json), lambda path: save_text(path, record)))
+        if csv:
+            outputs.append((csv, lambda path: save_text(path, records.to_csv(result))))
+        files.write_all(outputs, inputs=inputs, replace=replace)
     if to_stream:
         console.out(record)
     say = console.err if to_stream else console.out
     if not quiet and not to_stream:
         say(terminal.summary(result, console.width()))
+        if changes is not None:
+            changed = plainpage.Page(console.width())
+            changes.say(changed, result.job.job.units)
+            say("\n" + changed.text())
     if not quiet:
         say("\n".join(f"Written: {path}" for path in named))
     if not result.complete:
         raise typer.Exit(3)
-
-
-def _write_text(path: Path, text: str) -> None:
-    path.write_text(text, encoding="utf-8", newline="")

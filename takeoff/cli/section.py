@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import textwrap
-from typing import TYPE_CHECKING, Annotated, Any
+from typing import TYPE_CHECKING, Annotated, Any, NamedTuple
 
 import typer
 
@@ -12,18 +12,33 @@ from takeoff.cli.options import JsonOption, MaterialOption, QuietOption, UnitsOp
 
 if TYPE_CHECKING:
     from takeoff.bounds import Bounds
-    from takeoff.materials import Material
     from takeoff.sections import Section, SectionMatch
 
 Names = Annotated[list[str] | None, typer.Argument(metavar="[NAME]...", help="Sections, such as 'UB 457x191x67', or a family, such as UB.")]
+#: What a section of a steel standard is made of where nobody says: the name the materials table gives to it. Kept here so
+#: that a plain look-up need not load that table; a test holds the two together.
+USUAL_STEEL = "Structural carbon steel (design value)"
 CAUTION = (
     "Caution: light and heavy are what the product standard lets a mill deliver. Weld, bolts, coatings and contents are not "
     "in these figures. Lift by the heavy figure, and have the lift planned by a competent person."
 )
 MM_PER_IN, M_PER_FT = 25.4, 0.3048
+#: kg/m³ of structural steel (EN 1991-1-1 and the section tables)
+STEEL = 7850.0
 KG_PER_M_PER_LB_PER_FT, KG_PER_M2_PER_LB_PER_FT2 = 0.45359237 / M_PER_FT, 0.45359237 / M_PER_FT**2
 #: the longest words of a card's left column, and a blank
 LEFT = 10
+
+
+class Stuff(NamedTuple):
+    """What a section is weighed in: name, kind, density kg/m³ low, nominal, high, and whether section tables rest on it."""
+
+    name: str
+    kind: str
+    low: float
+    nominal: float
+    high: float
+    is_carbon_steel: bool
 
 
 def section(
@@ -47,7 +62,7 @@ def section(
             console.out(_families())
         return
     chosen = _material(material)
-    answers: list[tuple[SectionMatch, Material | None]] = []
+    answers: list[tuple[SectionMatch, Stuff | None]] = []
     for name in names:
         for match in _asked(name, chosen):
             answers.append((match, chosen or _usual(match)))
@@ -63,7 +78,7 @@ def section(
         raise typer.Exit(1)
 
 
-def _material(text: str | None) -> Material | None:
+def _material(text: str | None) -> Stuff | None:
     """The material asked for. One that is not sure ends the look-up."""
     if text is None:
         return None
@@ -74,48 +89,50 @@ def _material(text: str | None) -> Material | None:
         offered = ", ".join(c.name for c in found.candidates[:5])
         console.err(f"The material {text!r} is not sure: {found.reason or found.match}." + (f" Perhaps: {offered}." if offered else ""))
         raise typer.Exit(1)
-    return found.material
+    density = found.material.density
+    if density.nominal is None:
+        console.err(f"The table gives no nominal density for {found.material.name}.")
+        raise typer.Exit(1)
+    return Stuff(found.material.name, found.material.kind, density.low, density.nominal, density.high, found.material.is_carbon_steel)
 
 
-def _usual(match: SectionMatch) -> Material | None:
+def _usual(match: SectionMatch) -> Stuff | None:
     """Carbon steel for a section whose standard is itself a steel standard."""
     if match.section is None or not match.section.is_steel_standard:
         return None
-    from takeoff import materials
-
-    return materials.by_key("steel-structural")
+    return Stuff(USUAL_STEEL, "metal", STEEL, STEEL, STEEL, True)
 
 
-def _asked(name: str, material: Material | None) -> list[SectionMatch]:
+def _asked(name: str, material: Stuff | None) -> list[SectionMatch]:
     """The answer to one name, or every size of the family it names."""
     from takeoff import sections
     from takeoff.sections.words import FAMILY_WORDS
 
-    word = name.strip().casefold()
-    family, variant = FAMILY_WORDS.get(word, ("", ""))
-    if family in sections.FAMILIES and word not in ("fl", "fb", "rd", "rb", "sq", "sb", "hex"):
+    word = name.strip()
+    family, variant = FAMILY_WORDS.get(word.casefold(), (word.upper(), ""))
+    if family in sections.FAMILIES:
         rows = [row for row in sections.rows(family) if not variant or row.key[1] == variant]
         seen = dict.fromkeys(row.designation for row in rows)
         return [sections.read(designation) for designation in seen]
     return [sections.read(name, material_kind=material.kind if material else None)]
 
 
-def _masses(found: Section, material: Material | None) -> Bounds | None:
+def _masses(found: Section, material: Stuff | None) -> Bounds | None:
     """kg/m, light nominal heavy, in this material."""
     if found.form == "length mass":
         return found.kg_per_m()
-    if material is None or material.density.nominal is None:
+    if material is None:
         return None
-    nominal = material.density.nominal
+    nominal = material.nominal
     if material.is_carbon_steel:
         return found.kg_per_m(found.published_density_kg_m3 or nominal)
     plain = found.kg_per_m(nominal)
     if plain is None:
         return None
-    return type(plain)(plain.light * material.density.low / nominal, plain.nominal, plain.heavy * material.density.high / nominal)
+    return type(plain)(plain.light * material.low / nominal, plain.nominal, plain.heavy * material.high / nominal)
 
 
-def _record(match: SectionMatch, material: Material | None) -> dict[str, Any]:
+def _record(match: SectionMatch, material: Stuff | None) -> dict[str, Any]:
     """One query's object, SI."""
     found = match.section
     record: dict[str, Any] = {
@@ -143,7 +160,7 @@ def _record(match: SectionMatch, material: Material | None) -> dict[str, Any]:
         return {**record, "reason": match.reason}
     known = found.as_record()
     masses = _masses(found, material)
-    density = None if material is None else material.density.nominal
+    density = None if material is None else material.nominal
     kg_each, kg_per_m2 = found.kg_each, found.kg_per_m2
     if density is not None and found.form == "solid" and found.volume_m3 is not None:
         kg_each = found.volume_m3 * density
@@ -217,7 +234,7 @@ def _refusal(match: SectionMatch) -> str:
     return "\n".join(lines)
 
 
-def _card(match: SectionMatch, material: Material | None, us: bool) -> str:
+def _card(match: SectionMatch, material: Stuff | None, us: bool) -> str:
     """One section on a card."""
     from takeoff.reports import rounding
     from takeoff.sections import all_families
@@ -237,13 +254,13 @@ def _card(match: SectionMatch, material: Material | None, us: bool) -> str:
     if masses is not None:
         of = material.name if material is not None and found.form != "length mass" else "as stated"
         lines += _wrapped("mass", f"{_figures(masses, us)} ({of})")
-    if material is not None and material.density.nominal is not None:
+    if material is not None:
         if found.thickness_mm is not None:
-            per_area = found.thickness_mm * material.density.nominal / 1000
+            per_area = found.thickness_mm * material.nominal / 1000
             figure = f"{per_area / KG_PER_M2_PER_LB_PER_FT2:.4g} lb/ft²" if us else f"{per_area:.5g} kg/m²"
             lines += _wrapped("mass", f"{figure} ({material.name})")
         if found.volume_m3 is not None:
-            figure = rounding.mass_with_unit(found.volume_m3 * material.density.nominal, "nearest", "us" if us else "si")
+            figure = rounding.mass_with_unit(found.volume_m3 * material.nominal, "nearest", "us" if us else "si")
             lines += _wrapped("mass", f"{figure} each ({material.name})")
     elif found.form in ("prismatic", "sheet", "solid") and material is None:
         lines += _wrapped("mass", "name a material with --material")
@@ -272,6 +289,8 @@ def _geometry_lines(found: Section, us: bool) -> list[str]:
     lines: list[str] = []
     if found.area_mm2 is not None:
         lines += _wrapped("area", _area(found.area_mm2, us))
+    if found.design_area_mm2 is not None:
+        lines += _wrapped("design", f"{_area(found.design_area_mm2, us)} by the published design wall; the mass rests on the nominal wall")
     if found.inner_area_mm2 is not None:
         lines += _wrapped("bore", _area(found.inner_area_mm2, us))
     if found.surface_m2_per_m is not None:
@@ -327,7 +346,7 @@ def drawing(found: Section, rows: int = 11) -> list[str]:
         line = ""
         for column in range(columns):
             at = [
-                (wide * (column + (i + 0.5) / 4) / columns, high * (rows - row - (j + 0.5) / 4) / rows) for i in range(4) for j in range(4)
+                (wide * (column + (i + 0.5) / 3) / columns, high * (rows - row - (j + 0.5) / 3) / rows) for i in range(3) for j in range(3)
             ]
             line += "#" if any(_inside(rings, x, y) for x, y in at) else " "
         lines.append(("  " + line).rstrip())
@@ -344,7 +363,7 @@ def _inside(rings: list[list[tuple[float, float]]], x: float, y: float) -> bool:
     return odd
 
 
-def _comparison(answers: list[tuple[SectionMatch, Material | None]], us: bool) -> str:
+def _comparison(answers: list[tuple[SectionMatch, Stuff | None]], us: bool) -> str:
     """Several sections, a line each; on a narrow terminal two."""
     from takeoff.reports import rounding
 

@@ -1,55 +1,44 @@
 """Rows of the lists become members: one frame with a column for each field, texts kept, numbers in inside units.
 
-A column is read as a whole: each distinct text once, bare numbers by the column's unit. What cannot be read is left
-blank and said, never guessed.
+The rules that look at a whole row stand here: which quantity counts, what the title or a group gives, what a row's own
+words say of it. Reading the cells of a column is `takeoff.lists.columns`.
 """
 
 from __future__ import annotations
 
 import math
-import re
-from collections import Counter
-from collections.abc import Callable
 from dataclasses import dataclass
-from datetime import date, datetime, time, timedelta
 from typing import TYPE_CHECKING, Any
 
-from takeoff.findings import Finding, Level
+from takeoff import materials, sections
 from takeoff.job import Job
-from takeoff.lists.headings import MEASURES, NOT_ACTED_ON, TEXT_FIELDS
+from takeoff.lists import counts, positions, rowwords, temperatures
+from takeoff.lists.columns import ColumnReader, as_text, unit_of_column
 from takeoff.lists.log import FindingLog
-from takeoff.lists.sheets import Cell
 from takeoff.lists.tables import SheetReading, Table, is_blank
-from takeoff.quantities import EVERYDAY, DecimalSign, choose, measure_readings, number_readings, tidy
+from takeoff.names import normal_name
+from takeoff.quantities import EVERYDAY, unit_of
 
 if TYPE_CHECKING:
     import pandas as pd
 
 #: measure fields that become frame columns, with the column's name
 NUMBER_COLUMNS = {
-    "length": "length_mm", "width": "width_mm", "thickness": "thickness_mm", "height": "height_mm",
-    "diameter": "diameter_mm", "unit_mass": "stated_each_kg", "total_mass": "stated_total_kg",
+    "length": "length_mm", "total_length": "total_length_mm", "width": "width_mm", "thickness": "thickness_mm", "height": "height_mm",
+    "diameter": "diameter_mm", "unit_mass": "stated_each_kg", "total_mass": "stated_total_kg", "mass": "stated_mass_kg",
     "mass_per_length": "stated_kg_per_m", "mass_per_area": "stated_kg_per_m2", "volume": "stated_volume_m3",
-    "area": "stated_area_m2",
+    "area": "stated_area_m2", "weighed_mass": "weighed_kg",
 }
-_TEXT_COLUMNS = ("mark", "assembly", "pick", "phase", "run", "bundle", "finish", "contents", "remarks")
-#: what a length can be before it is refused as a slip of the unit, in mm
-PLAUSIBLE_MM = {
-    "length": (1.0, 100_000.0), "width": (0.5, 30_000.0), "thickness": (0.05, 5_000.0), "height": (0.5, 30_000.0),
-    "diameter": (0.5, 10_000.0),
-}
-#: dimension -> the unit of a bare number in a metric list, and in one in inches or feet
-_BARE_UNITS = {
-    "mass": ("kg", "lb"), "mass per length": ("kg/m", "lb/ft"), "mass per area": ("kg/m2", "lb/ft2"), "area": ("m2", "ft2"),
-    "volume": ("m3", "ft3"),
-}
-#: a length column whose bare numbers sit below this under mm was meant in another unit
-_SMALLEST_USUAL_LENGTH_MM = 20.0
-MOST_PIECES = 1_000_000
-
-_COUNT = re.compile(
-    r"(\d{1,7})\s*(?:x|×|off|no\.?|nos\.?|pcs\.?|pc\.?|pieces?|ea\.?|each|stk\.?|stck\.?|st\.?|szt\.?|uds?\.?|pz\.?)?", re.IGNORECASE
-)
+_TEXT_COLUMNS = ("mark", "assembly", "pick", "phase", "run", "bundle", "finish", "contents", "insulation", "holes",
+                 "cut_angle_1", "cut_angle_2", "remarks")
+#: the fields that may give a quantity, the surest first
+_QUANTITIES = ("quantity_total", "quantity", "quantity_per")
+#: words in a unit column, and what they make of the quantity
+_PIECES = frozenset((
+    "pcs", "pc", "pce", "pieces", "piece", "ea", "each", "no", "nos", "off", "stk", "stck", "st", "stuck", "pz", "pza", "ud", "uds", "un",
+    "szt", "stuks", "stuk", "p", "u", "pieza", "piezas", "unit", "units", "unid",
+))
+_RUNNING_METRES = frozenset(("lfm", "lfdm", "lm", "mb", "ml", "mtr", "rm"))
 
 
 @dataclass(slots=True)
@@ -57,9 +46,10 @@ class Members:
     """The members of all lists of a run.
 
     frame : one row a member, in reading order. Texts: file, sheet, mark, assembly, pick, phase, run, bundle,
-        section_text, section_heading, material_text, finish, contents, remarks. Numbers: row, quantity, length_mm, width_mm,
-        thickness_mm, height_mm, diameter_mm, stated_each_kg, stated_total_kg, stated_kg_per_m, stated_kg_per_m2,
-        stated_volume_m3, stated_area_m2; NaN where blank or unreadable.
+        section_text, section_heading, material_text, finish, contents, insulation, holes, cut_angle_1, cut_angle_2,
+        remarks. Numbers: row, quantity, length_mm, total_length_mm, width_mm, thickness_mm, height_mm, diameter_mm,
+        stated_each_kg, stated_total_kg, stated_mass_kg (each or total is not said), stated_kg_per_m, stated_kg_per_m2,
+        stated_volume_m3, stated_area_m2, weighed_kg (as typed, see its heading); NaN where blank or unreadable.
     refused : member -> why its row cannot be weighed whatever else it says (the first reason).
     unread : member -> fields whose cell is filled but could not be read -> why.
     assumed : member -> the fields of which something was inferred ("quantity", "length", ...). A mass field counts
@@ -86,333 +76,310 @@ def build(readings: list[SheetReading], job: Job) -> Members:
     parts = []
     start = 0
     for table in tables:
-        parts.append(_read_table(table, start, job, members))
+        parts.append(_read_table(ColumnReader(table, start, job, members), job))
         start += len(table.member_rows)
     names = [
         "file", "sheet", "row", *_TEXT_COLUMNS, "section_text", "section_heading", "material_text", "quantity", *NUMBER_COLUMNS.values(),
     ]
     data = {name: [value for part in parts for value in part[name]] for name in names}
-    frame = pd.DataFrame({
-        name: np.array(values, dtype=float) if name == "quantity" or name in NUMBER_COLUMNS.values()
-        else pd.Series(values, dtype="int64" if name == "row" else object)
+    numeric = {"quantity", *NUMBER_COLUMNS.values()}
+    members.frame = pd.DataFrame({
+        name: np.array(values, dtype=float) if name in numeric else pd.Series(values, dtype="int64" if name == "row" else object)
         for name, values in data.items()
     })
-    members.frame = frame
+    positions.add(members, job)
+    temperatures.add(members, job)
     return members
 
 
-def _read_table(table: Table, start: int, job: Job, members: Members) -> dict[str, list[Any]]:
-    reader = _ColumnReader(table, start, job, members)
-    count = len(table.member_rows)
+def _read_table(reader: ColumnReader, job: Job) -> dict[str, list[Any]]:
+    table, count = reader.table, reader.count
     part: dict[str, list[Any]] = {
         "file": [table.sheet.file] * count, "sheet": [table.sheet.name] * count, "row": list(table.member_rows),
     }
     for name in _TEXT_COLUMNS:
         part[name] = reader.texts(name)
-    names = reader.texts("name")
-    part["section_text"] = reader.texts("section") if "section" in table.columns else names
-    heading = table.columns.get("section") or table.columns.get("name")
-    part["section_heading"] = [heading.text if heading else None] * count
-    if "section" not in table.columns and "name" in table.columns:
-        reader.say("note", "section-from-name", "read from the description, there being no section column",
-                   [i for i, text in enumerate(names) if text], "name")
-    part["material_text"] = reader.texts("material")
-    part["quantity"] = reader.quantities()
     for name, column in NUMBER_COLUMNS.items():
         part[column] = reader.measures(name)
-    reader.refuse_broken_rows()
-    for name, why in NOT_ACTED_ON.items():
-        cells = reader.cells(name)
-        filled = [i for i, cell in enumerate(cells) if not is_blank(cell) and _as_text(cell).casefold() not in ("-", "none", "no", "0")]
-        kind = "holes-not-deducted" if name == "holes" else "not-added" if "not added" in why else "heading-not-used"
-        reader.say("note", kind, why, filled, name)
+    _take_sections(reader, part)
+    _take_materials(reader, part)
+    _take_quantities(reader, part)
+    _take_assemblies(reader, part, job)
+    _take_lengths(reader, part)
+    _take_packs(reader, part)
+    _refuse_broken_rows(reader)
+    _say_row_words(reader)
     return part
 
 
-class _ColumnReader:
-    """Reads the columns of one table; member numbers run from `start`."""
+# --- what a row is called --------------------------------------------------------------------------------------------
 
-    def __init__(self, table: Table, start: int, job: Job, members: Members) -> None:
-        self.table, self.start, self.job, self.members = table, start, job, members
-        self.decimal = decimal_sign(table, job)
-        self._fill_merged_texts()
 
-    def cells(self, field: str) -> list[Cell]:
-        """The cells of a field, member by member; None throughout where the list has no such column."""
-        column = self.table.columns.get(field)
-        if column is None:
-            return [None] * len(self.table.member_rows)
-        rows, at = self.table.sheet.rows, column.number - 1
-        merged = self.merged.get(column.number, {})
-        cells = [row[at] if at < len(row) else None for row in (rows[n - 1] if n <= len(rows) else [] for n in self.table.member_rows)]
-        if merged:
-            cells = [merged.get(n, cell) for n, cell in zip(self.table.member_rows, cells, strict=True)]
-        return cells
+def _take_sections(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
+    """Section texts: the section column, with the size column behind it; else the size, the name, or the caption."""
+    table = reader.table
+    names, sizes = reader.texts("name"), reader.texts("size")
+    heading = next((table.columns[f] for f in ("section", "size", "name") if f in table.columns), None)
+    part["section_heading"] = [heading.text if heading else None] * reader.count
+    swapped = _sections_under_material(reader)
+    if swapped is not None:
+        found = swapped
+        part["section_heading"] = [table.columns["material"].text] * reader.count
+    elif "section" in table.columns:
+        found = reader.texts("section")
+        blank = [i for i, (section, name) in enumerate(zip(found, names, strict=True)) if not section and name]
+        for i in blank:
+            found[i] = names[i]
+        reader.say("note", "section-from-name", "read from the description, the section cell being blank", blank, "name")
+        if "size" in table.columns:
+            found = [" ".join(filter(None, pair)) or None for pair in zip(found, sizes, strict=True)]
+    elif "size" in table.columns:
+        found = [" ".join(filter(None, pair)) or None for pair in zip(names, sizes, strict=True)]
+    elif table.caption.section is not None:
+        found = [table.caption.section] * reader.count
+        message = f"section and material stand in the caption: {table.caption.section}"
+        reader.say("note", "material-from-caption", message, range(reader.count), None)
+    else:
+        found = names
+        named = [i for i, text in enumerate(names) if text]
+        reader.say("note", "section-from-name", "read from the description, there being no section column", named, "name")
+    part["section_text"] = found
+    part["mark"] = [mark or (name if "section" in table.columns or "size" in table.columns else None)
+                    for mark, name in zip(part["mark"], names, strict=True)]
 
-    def say(self, level: Level, kind: str, message: str, members: list[int], field: str | None, *,
-            read: str | None = None, right: str | None = None) -> None:
-        """A finding of members of this table (numbered from 0); a refusal also bars their rows from the computation."""
-        numbers = [self.start + i for i in members]
-        self.members.log.add(Finding(level, kind, message, read=read, right=right), numbers, field)
-        if level == "assumed":
-            for number in numbers:
-                self.members.assumed.setdefault(number, set()).add(field or "quantity")
 
-    def _fill_merged_texts(self) -> None:
-        """Merged text cells count for every row of the merge; column -> {row: text}."""
-        self.merged: dict[int, dict[int, Cell]] = {}
-        text_columns = {c.number for name, c in self.table.columns.items() if name in TEXT_FIELDS}
-        wanted = set(self.table.member_rows)
-        for top, left, bottom, right in self.table.sheet.merges:
-            if bottom > top and left == right and left in text_columns and top in wanted:
-                row = self.table.sheet.rows[top - 1]
-                value = row[left - 1] if left <= len(row) else None
-                self.merged.setdefault(left, {}).update({n: value for n in range(top, bottom + 1) if n in wanted})
+def _sections_under_material(reader: ColumnReader) -> list[str | None] | None:
+    """The material column's texts, where a list has no section column and these are plainly sections (``koker 60x60x4``)."""
+    if {"section", "size"} & set(reader.table.columns) or "material" not in reader.table.columns:
+        return None
+    texts = reader.texts("material")
+    distinct = [text for text in dict.fromkeys(texts) if text][:60]
+    plainly = sum(sections.read(text).section is not None and any(ch.isdigit() for ch in text) for text in distinct)
+    named = sum(materials.lookup(text).match in ("exact", "alias") for text in distinct)
+    if plainly * 2 < len(distinct) or plainly <= named:
+        return None
+    reader.say("note", "heading-misleads", "the material column holds sections, and was read so", range(reader.count), "material")
+    return texts
 
-    def _faults(self, field: str) -> dict[int, tuple[str, str, str]]:
-        """Members whose cell of this field is an error or an unsaved formula -> (kind, message, what stands there)."""
-        column = self.table.columns.get(field)
-        sheet = self.table.sheet
-        if column is None or not (sheet.errors or sheet.unsaved):
-            return {}
-        faults = {}
-        for i, row in enumerate(self.table.member_rows):
-            place = (row, column.number)
-            if place in sheet.errors:
-                faults[i] = ("cell-error", "the cell holds a spreadsheet error", sheet.errors[place])
-            elif place in sheet.unsaved:
-                faults[i] = ("formula-without-result", "the cell holds a formula without a stored result", "formula")
-        return faults
 
-    def _refuse_faults(self, field: str) -> set[int]:
-        faults = self._faults(field)
-        for kind, message, read in dict.fromkeys(faults.values()):
-            where = [i for i, fault in faults.items() if fault == (kind, message, read)]
-            right = "open and save it once in a spreadsheet program" if kind == "formula-without-result" else "a value"
-            self.say("refused", kind, message, where, field, read=read, right=right)
-            for i in where:
-                self._bar(i, field, f"{message} ({field})")
-        return set(faults)
+def _take_materials(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
+    """Material texts; a blank takes the caption's, which is the list's own statement."""
+    misled = bool(part["section_heading"]) and part["section_heading"][0] == getattr(reader.table.columns.get("material"), "text", "")
+    found: list[str | None] = [None] * reader.count if misled else reader.texts("material")
+    told = reader.table.caption.material
+    if told is not None:
+        blank = [i for i, text in enumerate(found) if not text]
+        reader.say("note", "material-from-caption", f"the material stands in the title or caption: {told}", blank, "material")
+        found = [text or told for text in found]
+    part["material_text"] = found
 
-    def _bar(self, i: int, field: str, reason: str) -> None:
-        number = self.start + i
-        self.members.unread.setdefault(number, {}).setdefault(field, reason)
-        if field in ("section", "material", "quantity"):
-            self.members.refused.setdefault(number, reason)
 
-    def refuse_broken_rows(self) -> None:
-        """In a text file, a row with more fields than headings holds a stray separator: which field is which is not known."""
-        if self.table.sheet.name is not None:
-            return
-        width = len(self.table.sheet.rows[self.table.heading_rows[0] - 1])
-        broken = [
-            i for i, n in enumerate(self.table.member_rows)
-            if any(not is_blank(cell) for cell in self.table.sheet.rows[n - 1][width:])
-        ]
-        message = "the row has more fields than there are headings"
-        self.say("refused", "broken-row", message, broken, None, right="quotes around a cell that holds the separator")
-        for i in broken:
-            self.members.refused.setdefault(self.start + i, message)
+def _take_assemblies(reader: ColumnReader, part: dict[str, list[Any]], job: Job) -> None:
+    """Assemblies filled only in the first row of their group are filled down; without a column, group titles give them."""
+    table = reader.table
+    found: list[str | None] = part["assembly"]
+    if "assembly" in table.columns:
+        first = next((i for i, text in enumerate(found) if text), None)
+        blank = [i for i, text in enumerate(found) if not text and first is not None and i > first]
+        if blank:
+            last = None
+            for i, text in enumerate(found):
+                # A blank row or a sum between two rows ends a group.
+                gap = any(table.member_rows[i - 1] < total < table.member_rows[i] for total in table.total_rows) if i else False
+                last = text or (None if gap else last)
+                found[i] = last
+            message = "the assembly is taken from the first row of its group"
+            reader.say("note", "group-title", message, [i for i in blank if found[i]], "assembly")
+        return
+    if not table.group_of:
+        return
+    where = [i for i, row in enumerate(table.member_rows) if row in table.group_of]
+    if job.reading.group_titles == "ignore":
+        reader.say("note", "group-title", "the title above these rows is passed over, as the job file says", where, None)
+        return
+    for i in where:
+        found[i] = table.group_of[table.member_rows[i]]
+    reader.say("note", "group-title", "the title above these rows is taken as their assembly", where, None,
+               right='[reading] group_titles = "ignore" in the job file, if it is none')
 
-    def texts(self, field: str) -> list[str | None]:
-        faults = self._refuse_faults(field)
-        texts = [None if is_blank(cell) else _as_text(cell) for cell in self.cells(field)]
-        if not faults:
-            return texts
-        return [None if i in faults else text for i, text in enumerate(texts)]
 
-    def quantities(self) -> list[float]:
-        """Whole counts of 1 and more; NaN where the cell is no such thing, which bars the row."""
-        if "quantity" not in self.table.columns:
-            self.say("assumed", "quantity-assumed", "there is no quantity column: one each",
-                     list(range(len(self.table.member_rows))), None, right="a column of quantities")
-            return [1.0] * len(self.table.member_rows)
-        faults = self._refuse_faults("quantity")
-        values: list[float] = []
-        refused: dict[str, list[int]] = {}
-        for i, cell in enumerate(self.cells("quantity")):
-            value = math.nan if i in faults else _count(cell)
-            values.append(value)
-            if math.isnan(value) and i not in faults:
-                refused.setdefault("" if is_blank(cell) else _as_text(cell), []).append(i)
-        for read, where in refused.items():
-            message = "the quantity is blank" if not read else "the quantity is no whole count of 1 or more"
-            self.say("refused", "missing-quantity", message, where, "quantity", read=read or None, right="a whole number such as 4")
-            for i in where:
-                self._bar(i, "quantity", message)
-        return values
+# --- how many, how long ----------------------------------------------------------------------------------------------
 
-    def measures(self, field: str) -> list[float]:
-        """Numbers in the field's inside unit; NaN where blank or unreadable. What could not be read bars that field."""
-        count = len(self.table.member_rows)
-        if field not in self.table.columns:
-            return [math.nan] * count
-        faults = self._refuse_faults(field)
-        dimension = MEASURES[field]
-        unit, unit_from = unit_of_column(self.table, field, self.job)
-        values, bare, bad = self._numbers(field, faults, dimension, EVERYDAY[unit][1])
-        self._say_unreadable(field, bad, dimension)
-        if bare and unit_from in ("assumed", "job"):
-            self._say_unit(field, bare, values, unit, unit_from)
-        if dimension == "length" and field in PLAUSIBLE_MM:
-            self._refuse_implausible(field, values)
-        return values
 
-    def _numbers(self, field: str, faults: set[int], dimension: str, factor: float) -> tuple[list[float], list[int], dict[str, list[int]]]:
-        """Values, the members whose number stood bare, and what could not be read (text -> members)."""
-        read_text = self._text_reader(dimension)
-        known: dict[str, tuple[float, bool] | None] = {}
-        values: list[float] = []
-        bare: list[int] = []
-        bad: dict[str, list[int]] = {}
-        for i, cell in enumerate(self.cells(field)):
-            if isinstance(cell, (int, float)) and not isinstance(cell, bool) and math.isfinite(cell):
-                values.append(cell * factor)
-                bare.append(i)
-                continue
-            if i in faults or is_blank(cell):
-                values.append(math.nan)
-                continue
-            text = _as_text(cell)
-            if text not in known:
-                known[text] = read_text(text) if isinstance(cell, str) else None
-            found = known[text]
-            if found is None:
-                values.append(math.nan)
-                if text not in ("-", "–", "—", "n/a", "N/A"):
-                    bad.setdefault(text, []).append(i)
-                continue
-            value, has_unit = found
-            values.append(value if has_unit else value * factor)
-            if not has_unit:
-                bare.append(i)
-        return values, bare, bad
-
-    def _text_reader(self, dimension: str) -> Callable[[str], tuple[float, bool] | None]:
-        def read(text: str) -> tuple[float, bool] | None:
-            found = [m for m in measure_readings(text) if m.unit is None or EVERYDAY[m.unit][0] == dimension]
-            if len(found) > 1 and self.decimal is not None:
-                found = [m for m in found if m.sign in (self.decimal, None)]
-            return (found[0].value, found[0].unit is not None) if len(found) == 1 else None
-
-        return read
-
-    def _say_unit(self, field: str, bare: list[int], values: list[float], unit: str, unit_from: str) -> None:
-        dimension = MEASURES[field]
-        if field == "length" and unit == "mm":
-            middle = sorted(values[i] for i in bare)[len(bare) // 2]
-            if middle < _SMALLEST_USUAL_LENGTH_MM:
-                self.say("refused", "implausible-size", "lengths without a unit are too small for mm", bare, field,
-                         right="the unit in the heading, such as Length (m), or [reading] length_unit in the job file")
-                for i in bare:
-                    values[i] = math.nan
-                    self._bar(i, field, "the unit of the length is not known")
-                return
-        if unit_from == "job":
-            self.say("note", "unit-from-job", f"bare numbers taken in {unit}, as the job file says", bare, field)
-            return
-        right = f"the unit in the heading, such as {self.table.columns[field].text} ({unit})"
-        if dimension == "length":
-            self.say("assumed", "unit-assumed", f"bare numbers taken in {unit}: nothing names their unit", bare, field, right=right)
-            return
-        # A mass that is only compared with ours makes no row assumed; weighing says so where it uses it.
-        self.say("note", "mass-unit-assumed", f"bare numbers read in {unit}: nothing names their unit", bare, field, right=right)
-        for i in bare:
-            self.members.assumed.setdefault(self.start + i, set()).add(field)
-
-    def _say_unreadable(self, field: str, bad: dict[str, list[int]], dimension: str) -> None:
-        for read, where in bad.items():
-            open_sign = len(number_readings(read)) > 1
-            message = (
-                f"the {field.replace('_', ' ')} can be read two ways: is the comma or point a decimal sign?" if open_sign
-                else f"the {field.replace('_', ' ')} is no number with a unit of {dimension}"
-            )
-            right = "[reading] decimal in the job file" if open_sign else "a number, with its unit where the heading has none"
-            self.say("refused", "unreadable-size", message, where, field, read=read, right=right)
-            for i in where:
-                self._bar(i, field, message)
-
-    def _refuse_implausible(self, field: str, values: list[float]) -> None:
-        low, high = PLAUSIBLE_MM[field]
-        where: dict[float, list[int]] = {}
-        for i, value in enumerate(values):
-            if not (low <= value <= high) and not math.isnan(value):
-                where.setdefault(value, []).append(i)
-        for value, rows in where.items():
-            message = f"a {field} of {value:,.6g} mm is not plausible"
-            self.say("refused", "implausible-size", message, rows, field, read=f"{value:g} mm",
-                     right=f"between {low:g} and {high:,.0f} mm; check the unit")
-            for i in rows:
+def _take_quantities(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
+    table = reader.table
+    if "quantity_and_length" in table.columns:
+        _take_pairs(reader, part)
+        return
+    field = next((name for name in _QUANTITIES if name in table.columns), None)
+    if field is None:
+        _one_each(reader, part)
+        return
+    faults = {i for name in (field, "quantity") for i in reader.faults(name)}
+    if field == "quantity_total" and len({"quantity", "quantity_per"} & set(table.columns)):
+        message = f"of two quantities the total is used: {table.columns[field].text!r}"
+        reader.say("note", "quantity-per-and-total", message, range(reader.count), field)
+    elif field == "quantity_per":
+        message = "a quantity per something, and no total: taken as the total"
+        reader.say("assumed", "quantity-per-and-total", message, range(reader.count), field)
+    units = reader.texts("unit")
+    values = [math.nan] * reader.count
+    refused: dict[str, list[int]] = {}
+    said: dict[counts.Count, list[int]] = {}
+    for i, cell in enumerate(reader.cells(field)):
+        if i in faults:
+            reader.bar([i], "quantity", "the quantity cannot be read")
+            continue
+        if units[i] and _by_unit(reader, part, i, cell, str(units[i]), values):
+            continue
+        found = counts.read_count(cell)
+        if math.isnan(found.pieces):
+            refused.setdefault("" if is_blank(cell) else as_text(cell), []).append(i)
+            continue
+        values[i] = found.pieces
+        if found.length_mm is not None:
+            if not math.isnan(part["length_mm"][i]):
+                refused.setdefault(as_text(cell), []).append(i)
                 values[i] = math.nan
-                self._bar(i, field, message)
-
-
-def unit_of_column(table: Table, field: str, job: Job) -> tuple[str, str]:
-    """The unit of a column's bare numbers, and where it is from: heading, unit row, title block, job or assumed."""
-    column = table.columns[field]
-    dimension = MEASURES[field]
-    below = table.units_below.get(column.number)
-    if column.heading is not None and column.heading.unit is not None:
-        return column.heading.unit, "heading"
-    if below is not None and EVERYDAY[below][0] == dimension:
-        return below, "unit row"
-    if dimension == "length":
-        if table.unit_note:
-            return table.unit_note, "title block"
-        return (job.reading.length_unit, "job") if job.reading.length_unit else ("mm", "assumed")
-    imperial = table.unit_note in ("in", "ft") or any(c.heading and c.heading.unit in ("in", "ft") for c in table.all_columns)
-    si, us = _BARE_UNITS[dimension]
-    return us if imperial else si, "assumed"
-
-
-def decimal_sign(table: Table, job: Job) -> DecimalSign | None:
-    """The file's decimal sign: told by the job file, else the sign of every number text that settles it; None if open."""
-    if job.reading.decimal != "auto":
-        return job.reading.decimal
-    votes: Counter[DecimalSign] = Counter()
-    columns = [c.number for name, c in table.columns.items() if name in MEASURES or name == "quantity"]
-    seen: set[str] = set()
-    for n in table.member_rows:
-        row = table.sheet.rows[n - 1] if n <= len(table.sheet.rows) else []
-        for number in columns:
-            cell = row[number - 1] if number <= len(row) else None
-            if not isinstance(cell, str) or cell in seen:
                 continue
-            seen.add(cell)
-            signs = {m.sign for m in measure_readings(cell)}
-            if len(signs) == 1 and (sign := signs.pop()) is not None:
-                votes[sign] += 1
-    if len(votes) == 1:
-        return next(iter(votes))
-    return None
+            part["length_mm"][i] = found.length_mm
+        if found.level is not None:
+            said.setdefault(found, []).append(i)
+    for found, where in said.items():
+        assert found.level is not None
+        reader.say(found.level, found.kind, found.message, where, field)
+        if found.level == "assumed":
+            for i in where:
+                reader.members.assumed.setdefault(reader.start + i, set()).add("quantity")
+    for read, where in refused.items():
+        message = "the quantity is no whole count of 1 or more" if read else "the quantity is blank"
+        reader.say("refused", "missing-quantity", message, where, field, read=read or None, right="a whole number such as 4")
+        reader.bar(where, "quantity", message)
+    part["quantity"] = values
 
 
-def _count(cell: Cell) -> float:
-    """A whole count from 1 to MOST_PIECES, or NaN."""
-    if isinstance(cell, bool) or cell is None:
-        return math.nan
-    if isinstance(cell, (int, float)):
-        return float(cell) if math.isfinite(cell) and cell == int(cell) and 1 <= cell <= MOST_PIECES else math.nan
-    if not isinstance(cell, str) or not cell.isascii():
-        return math.nan
-    text = tidy(cell)
-    found = _COUNT.fullmatch(text)
-    if found:
-        return _count(int(found.group(1)))
-    reading = choose(number_readings(text), None)
-    return _count(reading.value) if reading else math.nan
+def _by_unit(reader: ColumnReader, part: dict[str, list[Any]], i: int, cell: Any, unit_text: str, values: list[float]) -> bool:
+    """What a unit column makes of a quantity: running metres are a length of bar, sets are no count. True where it decides."""
+    folded = normal_name(unit_text).strip(". ")
+    if folded in _PIECES:
+        return False
+    unit = "m" if folded in _RUNNING_METRES else unit_of(unit_text)
+    dimension = EVERYDAY[unit][0] if unit else None
+    number = reader.read(cell, "length")
+    if unit is None or number is None or dimension not in ("length", "mass", "area") or number.value <= 0:
+        message = f"{unit_text!r} is no count of pieces"
+        reader.say("refused", "unit-column", message, [i], "unit", read=unit_text, right="pieces, or a length such as m")
+        reader.bar([i], "quantity", message)
+        return True
+    amount = number.value * EVERYDAY[unit][1]
+    column = {"length": "length_mm", "mass": "stated_each_kg", "area": "stated_area_m2"}[dimension]
+    if not math.isnan(part[column][i]):
+        message = f"the quantity is in {unit_text}, and the row has its own {dimension}"
+        reader.say("refused", "unit-column", message, [i], "unit", read=unit_text)
+        reader.bar([i], "quantity", message)
+        return True
+    part[column][i] = amount
+    values[i] = 1.0
+    reader.say("note", "unit-column", f"the quantity is in {unit_text}: taken as one piece of that {dimension}", [i], "unit")
+    return True
 
 
-def _as_text(cell: Cell) -> str:
-    """A cell as the text a person sees: 7.0 is 7, a date its ISO form."""
-    if isinstance(cell, str):
-        return cell.strip()
-    if isinstance(cell, bool):
-        return "TRUE" if cell else "FALSE"
-    if isinstance(cell, float) and cell.is_integer() and abs(cell) < 1e15:
-        return str(int(cell))
-    if isinstance(cell, (datetime, date, time)):
-        return cell.isoformat()
-    if isinstance(cell, timedelta):
-        return str(cell)
-    return str(cell)
+def _take_pairs(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
+    """A column of quantity × length."""
+    heading = reader.table.columns["quantity_and_length"].heading
+    unit = (heading.unit if heading else None) or reader.table.unit_note or "mm"
+    values = [math.nan] * reader.count
+    for i, cell in enumerate(reader.cells("quantity_and_length")):
+        found = counts.read_count_and_length(cell, EVERYDAY[unit][1])
+        if math.isnan(found.pieces):
+            read = None if is_blank(cell) else as_text(cell)
+            message = "no quantity × length"
+            reader.say("refused", "missing-quantity", message, [i], "quantity_and_length", read=read, right="such as 4 x 504")
+            reader.bar([i], "quantity", message)
+            continue
+        values[i], part["length_mm"][i] = found.pieces, found.length_mm
+        if found.level is not None:
+            reader.say(found.level, found.kind, found.message, [i], "quantity_and_length")
+            reader.members.assumed.setdefault(reader.start + i, set()).add("quantity")
+    part["quantity"] = values
+
+
+def _one_each(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
+    """No column of quantities: one each, assumed; but a name that holds a count leaves the count open."""
+    named = [text or mark or "" for text, mark in zip(part["section_text"], part["mark"], strict=True)]
+    names = [" ".join(filter(None, (a, b))) for a, b in zip(named, reader.texts("name"), strict=True)]
+    counted = [i for i, text in enumerate(names) if rowwords.COUNT_IN_NAME.search(rowwords.label(text)) or "(x" in text or "x)" in text]
+    message = "no quantity column, and the name holds a count: is it in the list once or so many times?"
+    reader.say("refused", "missing-quantity", message, counted, None, right="a column of quantities")
+    reader.bar(counted, "quantity", message)
+    others = sorted(set(range(reader.count)) - set(counted))
+    reader.say("assumed", "quantity-assumed", "there is no quantity column: one each", others, None, right="a column of quantities")
+    part["quantity"] = [math.nan if i in set(counted) else 1.0 for i in range(reader.count)]
+
+
+def _take_lengths(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
+    """A total length serves where there is no piece length; a height is the length where a list has no lengths at all."""
+    table = reader.table
+    if "total_length" in table.columns:
+        lengths, totals, quantities = part["length_mm"], part["total_length_mm"], part["quantity"]
+        use = [i for i in range(reader.count) if math.isnan(lengths[i]) and totals[i] > 0 and quantities[i] > 0
+               and "length" not in reader.members.unread.get(reader.start + i, {})]
+        for i in use:
+            lengths[i] = totals[i] / quantities[i]
+        reader.say("note", "total-length", "the total length is used, shared out over the pieces", use, "total_length")
+        apart = [i for i in range(reader.count) if lengths[i] > 0 and totals[i] > 0 and quantities[i] > 0
+                 and abs(lengths[i] * quantities[i] - totals[i]) > 0.01 * totals[i]]
+        reader.say("note", "total-length", "the total length is not quantity × length; the piece length is used", apart, "total_length")
+    given = {"length", "quantity_and_length", "total_length", "size", "unit"}
+    if not given & set(table.columns) and "height" in table.columns and "section" in table.columns and "width" not in table.columns:
+        where = [i for i in range(reader.count) if part["height_mm"][i] > 0 and math.isnan(part["length_mm"][i])]
+        for i in where:
+            part["length_mm"][i], part["height_mm"][i] = part["height_mm"][i], math.nan
+        reader.say("assumed", "height-as-length", "the list has no lengths: the height is taken as the length", where, "height")
+        for i in where:
+            reader.members.assumed.setdefault(reader.start + i, set()).add("length")
+
+
+def _take_packs(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
+    """A remark of packs (``pack of 25``) counts pieces for hardware with a mass each; anything else is refused."""
+    for i, text in enumerate(part["remarks"]):
+        found = rowwords.PACK.search(rowwords.label(text)) if text else None
+        if not found or math.isnan(part["quantity"][i]):
+            continue
+        size = int(next(group for group in found.groups() if group))
+        if part["stated_each_kg"][i] > 0 and math.isnan(part["length_mm"][i]):
+            part["quantity"][i] *= size
+            reader.say("assumed", "packs", f"the quantity counts packs of {size}", [i], "quantity", read=text)
+        else:
+            message = "does the quantity count packs or pieces?"
+            reader.say("refused", "packs", message, [i], "quantity", read=text, right="the number of pieces")
+            reader.bar([i], "quantity", message)
+
+
+# --- what else a row says --------------------------------------------------------------------------------------------
+
+
+def _refuse_broken_rows(reader: ColumnReader) -> None:
+    """In a text file, a row with more fields than headings, or an open quote: which field is which is not known."""
+    table = reader.table
+    if table.sheet.name is not None:
+        return
+    width = len(table.sheet.rows[table.heading_rows[0] - 1])
+    for i, n in enumerate(table.member_rows):
+        kind, message = table.sheet.broken.get(n, ("", ""))
+        if not kind and any(not is_blank(cell) for cell in table.sheet.rows[n - 1][width:]):
+            kind, message = "broken-row", "the row has more fields than there are headings"
+        if kind:
+            reader.say("refused", kind, message, [i], None, right="quotes around a cell that holds the separator")
+            reader.members.refused.setdefault(reader.start + i, message)
+
+
+def _say_row_words(reader: ColumnReader) -> None:
+    for i, n in enumerate(reader.table.member_rows):
+        for finding in reader.table.row_findings.get(n, ()):
+            reader.members.log.add(finding, [reader.start + i])
+            if finding.level == "refused":
+                reader.members.refused.setdefault(reader.start + i, finding.message)
+
+
+__all__ = ["Members", "build", "unit_of_column"]

@@ -6,8 +6,10 @@ settled by the material. What stays open is refused with the readings offered.
 
 from __future__ import annotations
 
+import itertools
+import re
 from collections.abc import Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from typing import TYPE_CHECKING
 
 from takeoff import materials, sections
@@ -19,8 +21,11 @@ if TYPE_CHECKING:
     from takeoff.materials import Material, MaterialMatch, OwnTable
     from takeoff.sections import Section, SectionMatch, Table
 
-#: what a section whose standard is itself a steel standard is made of where the list names no material
-DEFAULT_STEEL = "steel-structural"
+_LENGTH_BEHIND = re.compile(
+    r"(.{2,60}?)\s*(?:[x×*,;-]|\bl\s*=|\blength\b|\blg\b)?\s*(\d{1,6}(?:[.,]\d{1,3})?)\s*(mm|cm|m)(?:\s+long)?", re.IGNORECASE
+)
+_MM = {"mm": 1.0, "cm": 10.0, "m": 1000.0}
+_SIZES_ONLY = re.compile(r"[\d.,x×*/'\"½¼¾⅛⅜⅝⅞Øø∅+~-]+(?:mm|cm|m|in|ft)?", re.IGNORECASE)
 
 
 @dataclass(slots=True)
@@ -66,6 +71,8 @@ class Recogniser:
         wanted_section = (self._sections.get(normal_name(section_text)) if section_text else None) or section_text
         wanted_material = self._material_text(material_text, found)
         section = self._read_section(wanted_section, heading, None)
+        if wanted_material is None:
+            wanted_material = self._named_in(wanted_section, section, found)
         material = self._look_up(wanted_material, section)
         if material is not None and material.material is not None:
             # The kind settles an open reading, and which thickness and size tolerances apply.
@@ -77,16 +84,49 @@ class Recogniser:
     def _read_section(self, text: str | None, heading: str | None, kind: str | None) -> SectionMatch | None:
         if text is None:
             return None
-        return sections.read(text, hollow=self.job.names.hollow, material_kind=kind, heading=heading, own=self.own_sections)
+        found = sections.read(text, hollow=self.job.names.hollow, material_kind=kind, heading=heading, own=self.own_sections)
+        behind = _LENGTH_BEHIND.fullmatch(text) if found.section is None and len(text) <= 80 else None
+        if behind is None:
+            return found
+        # A section with the piece's length behind it (``SHS 40x40x3 x 1200mm``), only where that length has its unit.
+        front = sections.read(behind.group(1), hollow=self.job.names.hollow, material_kind=kind, heading=heading, own=self.own_sections)
+        if front.section is None or front.length_mm is not None or "length" not in front.section.needs:
+            return found
+        return replace(front, query=text, length_mm=float(behind.group(2).replace(",", ".")) * _MM[behind.group(3).lower()])
+
+    def _named_in(self, text: str | None, section: SectionMatch | None, found: Recognition) -> str | None:
+        """A material named in the section text (``3/4" plywood``, ``30x30x2 S235 square tube``), where just one is."""
+        if not text or len(text) > 80:
+            return None
+        hint = section.section.material_hint if section and section.section else None
+        named: dict[str, str] = {}
+        words = [w for w in re.split(r"[\s,;()]+", text) if len(w) > 1 and not _SIZES_ONLY.fullmatch(w)]
+        for word in (" ".join(words), *(" ".join(pair) for pair in itertools.pairwise(words)), *words):
+            match = materials.lookup(word, hint=hint, own=self.own)
+            if match.material is not None and match.match in ("exact", "alias") and any(ch.isalpha() for ch in word):
+                named.setdefault(match.material.key, word)
+                if " " in word:
+                    break
+        if len(named) != 1:
+            return None
+        word = next(iter(named.values()))
+        found.notes.append(
+            (Finding("note", "material-from-section", f"the material stands in the section text: {word}", read=text), "section")
+        )
+        return word
 
     def _material_text(self, text: str | None, found: Recognition) -> str | None:
         if text:
             return self._materials.get(normal_name(text), text)
         if self.job.reading.material:
-            found.notes.append((
-                Finding("note", "material-from-caption", f"no material in the row: {self.job.reading.material!r}, as the job file says"),
-                "material",
-            ))
+            found.notes.append(
+                (
+                    Finding(
+                        "note", "material-from-caption", f"no material in the row: {self.job.reading.material!r}, as the job file says"
+                    ),
+                    "material",
+                )
+            )
             return self.job.reading.material
         return None
 
@@ -98,47 +138,89 @@ class Recogniser:
 
     def _take_section(self, match: SectionMatch | None, text: str | None, found: Recognition) -> None:
         if match is None:
-            found.section_refusal = Finding("refused", "missing-size", "the row names no section or shape",
-                                            right="a section such as UB 203x133x25, PL 10 or Block 600x300x200")
+            found.section_refusal = Finding(
+                "refused",
+                "missing-size",
+                "the row names no section or shape",
+                right="a section such as UB 203x133x25, PL 10 or Block 600x300x200",
+            )
             return
         found.section_match = match.match
         offered = ", ".join(c.designation for c in match.candidates[:4]) or None
         if match.section is None:
             found.section_refusal = Finding(
-                "refused", match.kind or "unknown-section", match.reason or "the section is not known", read=text,
+                "refused",
+                match.kind or "unknown-section",
+                match.reason or "the section is not known",
+                read=text,
                 right=f"one of {offered}" if offered else "a designation in the tables, the sizes in figures, or a unit mass",
             )
             return
         if match.match in ("similar", "ambiguous"):
             if self.strict and match.match == "similar":
-                found.section_refusal = Finding("refused", "similar-section", "only similar to a known section, and --strict was asked",
-                                                read=text, right=f"one of {offered}" if offered else None)
+                found.section_refusal = Finding(
+                    "refused",
+                    "similar-section",
+                    "only similar to a known section, and --strict was asked",
+                    read=text,
+                    right=f"one of {offered}" if offered else None,
+                )
                 return
             found.assumed = True
             kind = "similar-section" if match.match == "similar" else "ambiguous-section"
-            found.notes.append((Finding("assumed", kind, f"taken as {match.section.designation}"
-                                        + (f": {match.reason}" if match.reason else ""), read=text,
-                                        right=f"one of {offered}" if offered else None), "section"))
+            found.notes.append(
+                (
+                    Finding(
+                        "assumed",
+                        kind,
+                        f"taken as {match.section.designation}" + (f": {match.reason}" if match.reason else ""),
+                        read=text,
+                        right=f"one of {offered}" if offered else None,
+                    ),
+                    "section",
+                )
+            )
         found.section = match.section
         found.text_length_mm = match.length_mm
         for note in match.notes:
             found.notes.append((Finding("note", "section-note", note, read=text), "section"))
         if match.section.hollow_standard_assumed:
-            found.notes.append((Finding(
-                "note", "hollow-standard-assumed", "a hollow section without a standard: hot finished (EN 10210-2) is nominal, "
-                "light reaches down to cold formed", right='EN 10219 in the text, or [names] hollow = "cold" in the job file'), "section"))
+            found.notes.append(
+                (
+                    Finding(
+                        "note",
+                        "hollow-standard-assumed",
+                        "a hollow section without a standard: hot finished (EN 10210-2) is nominal, light reaches down to cold formed",
+                        right='EN 10219 in the text, or [names] hollow = "cold" in the job file',
+                    ),
+                    "section",
+                )
+            )
 
     def _take_material(self, match: MaterialMatch | None, text: str | None, found: Recognition) -> None:
         if match is None:
             if found.section is not None and found.section.is_steel_standard:
-                found.material = materials.by_key(DEFAULT_STEEL)
+                found.material = materials.by_key(materials.DEFAULT_STEEL)
                 found.material_match = "none"
                 found.assumed = True
-                found.notes.append((Finding("assumed", "material-absent", "no material is named: taken as carbon steel, "
-                                            "since the section's standard is a steel standard", right="a material in the row"), "material"))
+                found.notes.append(
+                    (
+                        Finding(
+                            "assumed",
+                            "material-absent",
+                            "no material is named: taken as carbon steel, since the section's standard is a steel standard",
+                            right="a material in the row",
+                        ),
+                        "material",
+                    )
+                )
             else:
-                found.material_refusal = Finding("refused", "material-absent", "no material is named",
-                                                 right="a material in the row, or [reading] material in the job file")
+                found.material_refusal = Finding(
+                    "refused",
+                    "material-absent",
+                    "no material is named",
+                    right="a material in the row, or [reading] material in the job file",
+                )
             return
         found.material_match = match.match
         offered = ", ".join(c.name for c in match.candidates[:4]) or None
@@ -150,15 +232,35 @@ class Recogniser:
             return
         if match.match == "similar":
             if self.strict:
-                found.material_refusal = Finding("refused", "similar-material", "only similar to a known material, and --strict was asked",
-                                                 read=text, right=f"one of {offered}" if offered else None)
+                found.material_refusal = Finding(
+                    "refused",
+                    "similar-material",
+                    "only similar to a known material, and --strict was asked",
+                    read=text,
+                    right=f"one of {offered}" if offered else None,
+                )
                 return
             found.assumed = True
-            found.notes.append((Finding("assumed", "similar-material", f"taken as {match.material.name}", read=text,
-                                        right=f"one of {offered}" if offered else None), "material"))
+            found.notes.append(
+                (
+                    Finding(
+                        "assumed",
+                        "similar-material",
+                        f"taken as {match.material.name}",
+                        read=text,
+                        right=f"one of {offered}" if offered else None,
+                    ),
+                    "material",
+                )
+            )
         if match.material.density.nominal is None:
-            found.material_refusal = Finding("refused", "no-density", "no source gives this material one density", read=text,
-                                             right="a density, in a row of your own table ([own] materials)")
+            found.material_refusal = Finding(
+                "refused",
+                "no-density",
+                "no source gives this material one density",
+                read=text,
+                right="a density, in a row of your own table ([own] materials)",
+            )
             return
         if match.material.own:
             found.notes.append((Finding("note", "own-material", "the density is from your own table", read=text), "material"))

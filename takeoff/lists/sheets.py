@@ -7,8 +7,8 @@ out the sheets that make a reader run wild, and where it shows errors or unsaved
 
 from __future__ import annotations
 
-import csv
 import hashlib
+import io
 import re
 import zipfile
 from dataclasses import dataclass, field
@@ -19,11 +19,15 @@ from typing import Any
 from takeoff.errors import InputError
 from takeoff.findings import Finding
 from takeoff.job import GuardsPart
+from takeoff.lists.textfile import read_text
 
 Cell = str | float | int | bool | date | datetime | time | timedelta | None
 
-WORKBOOKS = {".xlsx"}
-TEXTS = {".csv"}
+#: workbooks whose XML is looked over before a reader opens them, and those that a reader opens alone
+OPEN_WORKBOOKS = {".xlsx", ".xlsm"}
+OTHER_WORKBOOKS = {".xls", ".xlsb", ".ods"}
+TEXTS = {".csv", ".tsv", ".txt", ".md"}
+KINDS_READ = ".xlsx, .xlsm, .xls, .xlsb, .ods, .csv, .tsv or .txt"
 MAX_ROW, MAX_COLUMN = 1_048_576, 16_384
 
 
@@ -33,6 +37,7 @@ class Sheet:
 
     errors : (row, column) -> what the cell shows (``#DIV/0!``), both from 1.
     unsaved : cells with a formula but no stored result.
+    broken : row -> (kind of finding, why its fields cannot be told apart), in a text file.
     merges : (first row, first column, last row, last column) of merged ranges, from 1.
     """
 
@@ -44,6 +49,7 @@ class Sheet:
     errors: dict[tuple[int, int], str] = field(default_factory=dict)
     unsaved: frozenset[tuple[int, int]] = frozenset()
     merges: tuple[tuple[int, int, int, int], ...] = ()
+    broken: dict[int, tuple[str, str]] = field(default_factory=dict)
     findings: list[Finding] = field(default_factory=list)
 
 
@@ -84,12 +90,12 @@ def read_file(path: Path, guards: GuardsPart) -> SourceFile:
     """
     name = str(path)
     if path.is_dir():
-        raise InputError("is a folder, not a member list", file=name, right="the name of an .xlsx or .csv file")
+        raise InputError("is a folder, not a member list", file=name, right=f"the name of a file: {KINDS_READ}")
     try:
         size = path.stat().st_size
         data = b"" if size > guards.megabytes * 1e6 else path.read_bytes()
     except FileNotFoundError as error:
-        raise InputError("there is no such file", file=name, right="the name of an .xlsx or .csv file that exists") from error
+        raise InputError("there is no such file", file=name, right=f"the name of a file that exists: {KINDS_READ}") from error
     except (OSError, ValueError) as error:
         raise InputError(f"cannot be read ({getattr(error, 'strerror', None) or error})", file=name) from error
     if size > guards.megabytes * 1e6:
@@ -100,12 +106,13 @@ def read_file(path: Path, guards: GuardsPart) -> SourceFile:
     if not data.strip():
         raise InputError("the file is empty", file=name, right="a member list with headings and rows")
     kind = path.suffix.lower()
-    if kind in WORKBOOKS:
-        sheets = _read_workbook(path, data, guards)
+    if kind in OPEN_WORKBOOKS or kind in OTHER_WORKBOOKS:
+        sheets = _read_workbook(path, data, guards, kind in OPEN_WORKBOOKS)
     elif kind in TEXTS:
-        sheets = [_read_text(name, data, guards)]
+        text = read_text(name, data, guards.rows)
+        sheets = [Sheet(name, None, list(map(list, text.rows)), broken=text.broken, findings=text.findings)]
     else:
-        raise InputError("this kind of file is not read", file=name, read=path.suffix, right="an .xlsx or .csv file")
+        raise InputError("this kind of file is not read", file=name, read=path.suffix, right=KINDS_READ)
     return SourceFile(name, hashlib.sha256(data).hexdigest(), sheets)
 
 
@@ -113,11 +120,14 @@ def read_file(path: Path, guards: GuardsPart) -> SourceFile:
 
 _ROW_HIDDEN = re.compile(rb'<(?:\w+:)?row\b[^>]*?\bhidden="(?:1|true)"[^>]*>')
 _ROW_NUMBER = re.compile(rb'<(?:\w+:)?row\b[^>]*?\br="(\d+)"')
-_WIDE_CELL = re.compile(rb'<(?:\w+:)?c\b[^>]*?\br="([A-Za-z]{3,})\d')
+_WIDE_CELL = re.compile(rb'\br="([A-Za-z]{3,})\d')
 _LAST_CELL = re.compile(rb'<(?:\w+:)?c\b[^>]*?\br="([A-Za-z]+)(\d+)"')
 _MERGE = re.compile(rb'<(?:\w+:)?mergeCell\b[^>]*?\bref="([A-Za-z]+)(\d+):([A-Za-z]+)(\d+)"')
 _ERROR_CELL = re.compile(rb'\bt="e"')
 _UNSAVED = re.compile(rb"(?:</(?:\w+:)?f>|<(?:\w+:)?f\b[^>]*/>)\s*(?:<(?:\w+:)?v\s*/>|<(?:\w+:)?v>\s*</(?:\w+:)?v>)?\s*</(?:\w+:)?c>")
+
+
+_COMPOUND_FILE = b"\xd0\xcf\x11\xe0"
 
 
 @dataclass(slots=True)
@@ -131,14 +141,16 @@ class _Look:
     troubled: bool = False
 
 
-def _read_workbook(path: Path, data: bytes, guards: GuardsPart) -> list[Sheet]:
+def _read_workbook(path: Path, data: bytes, guards: GuardsPart, is_open: bool) -> list[Sheet]:
     name = str(path)
-    if data[:4] == b"\xd0\xcf\x11\xe0":
+    if is_open and data[:4] == _COMPOUND_FILE:
         raise InputError(
             "is not a plain .xlsx workbook: it is encrypted, or an older kind under a new name", file=name,
             right="a workbook saved as .xlsx without a password",
         )
-    looks = _look_over(name, data, guards)
+    if not is_open and path.suffix.lower() != ".xls":
+        _refuse_bomb(name, data, guards)
+    looks = _look_over(name, data, guards) if is_open else {}
     import python_calamine as calamine
 
     try:
@@ -156,27 +168,41 @@ def _read_workbook(path: Path, data: bytes, guards: GuardsPart) -> list[Sheet]:
                     merges=look.merges,
                 )
             )
-    except (calamine.CalamineError, ValueError, OSError) as error:
+    except (calamine.CalamineError, ValueError, OSError, MemoryError) as error:
         raise InputError(f"the workbook cannot be read ({error})", file=name, right="a workbook saved as .xlsx") from error
+    for sheet in sheets:
+        size = len(sheet.rows) * max(map(len, sheet.rows), default=0)
+        if len(sheet.rows) > guards.rows or size > guards.cells:
+            raise InputError(f"the sheet has {len(sheet.rows):,} rows and {size:,} cells, more than is read", file=name, sheet=sheet.name,
+                             right=f"at most {guards.rows:,} rows and {guards.cells:,} cells, or higher [guards] in the job file")
     troubled = [sheet for sheet in sheets if looks.get(sheet.name or "", _Look()).troubled]
     if troubled:
         _name_troubled_cells(path, troubled)
     return sheets
 
 
-def _look_over(name: str, data: bytes, guards: GuardsPart) -> dict[str, _Look]:
-    """Sheet name -> what its XML shows. Raises InputError on sheets that would make a reader run wild, and damage."""
-    import io
-    import xml.etree.ElementTree as ET
-
+def _refuse_bomb(name: str, data: bytes, guards: GuardsPart) -> None:
+    """Raises InputError on a packed workbook that is damaged or unpacks beyond the guards."""
     limit = guards.megabytes * 1e6 * 10
     try:
         with zipfile.ZipFile(io.BytesIO(data)) as archive:
-            if sum(info.file_size for info in archive.infolist()) > limit:
-                raise InputError(
-                    f"unpacks to more than {limit / 1e6:,.0f} MB", file=name,
-                    right="a smaller workbook, or a higher [guards] megabytes in the job file",
-                )
+            unpacked = sum(info.file_size for info in archive.infolist())
+    except (zipfile.BadZipFile, EOFError, OSError) as error:
+        raise InputError(f"the workbook is damaged or no workbook ({error})", file=name, right="a workbook of its kind") from error
+    if unpacked > limit:
+        raise InputError(
+            f"unpacks to more than {limit / 1e6:,.0f} MB", file=name,
+            right="a smaller workbook, or a higher [guards] megabytes in the job file",
+        )
+
+
+def _look_over(name: str, data: bytes, guards: GuardsPart) -> dict[str, _Look]:
+    """Sheet name -> what its XML shows. Raises InputError on sheets that would make a reader run wild, and damage."""
+    import xml.etree.ElementTree as ET
+
+    _refuse_bomb(name, data, guards)
+    try:
+        with zipfile.ZipFile(io.BytesIO(data)) as archive:
             parts = {info.filename: info for info in archive.infolist()}
             if "xl/workbook.xml" not in parts:
                 raise InputError("is no workbook of the usual kind", file=name, right="a workbook saved as .xlsx")
@@ -209,7 +235,7 @@ def _look_at(file: str, sheet: str, xml: bytes, guards: GuardsPart) -> _Look:
     last_row = max(rows, default=0)
     last_column = 0
     if xml.rfind(b'<c ') >= 0 or b":c " in xml:
-        wide = {column_number(m.decode()) for m in _WIDE_CELL.findall(xml)}
+        wide = {column_number(m.decode()) for m in set(_WIDE_CELL.findall(xml))}
         last_column = max(wide, default=0) or 702  # no cell beyond ZZ
         if last_column == 702:
             ends = _LAST_CELL.findall(xml, 0, min(len(xml), 2_000_000))
@@ -220,13 +246,15 @@ def _look_at(file: str, sheet: str, xml: bytes, guards: GuardsPart) -> _Look:
             file=file, sheet=sheet,
             right=f"at most {guards.rows:,} rows and {guards.cells:,} cells, or higher [guards] in the job file",
         )
+    # The plain search before each pattern spares a long sheet that has none of it.
     hidden = frozenset(
-        int(found.group(1)) for tag in _ROW_HIDDEN.findall(xml) if (found := re.search(rb'\br="(\d+)"', tag))
+        int(found.group(1)) for tag in (_ROW_HIDDEN.findall(xml) if b"hidden=" in xml else ()) if (found := re.search(rb'\br="(\d+)"', tag))
     )
     merges = tuple(
-        (int(r1), column_number(c1.decode()), int(r2), column_number(c2.decode())) for c1, r1, c2, r2 in _MERGE.findall(xml)
+        (int(r1), column_number(c1.decode()), int(r2), column_number(c2.decode()))
+        for c1, r1, c2, r2 in (_MERGE.findall(xml) if b"mergeCell" in xml else ())
     )
-    troubled = bool(_ERROR_CELL.search(xml) or _UNSAVED.search(xml))
+    troubled = bool(_ERROR_CELL.search(xml) or ((b"<f" in xml or b":f" in xml) and _UNSAVED.search(xml)))
     return _Look(last_row, last_column, hidden, merges, troubled)
 
 
@@ -252,60 +280,3 @@ def _name_troubled_cells(path: Path, sheets: list[Sheet]) -> None:
                 elif cell.data_type == "f" and shown.value is None:
                     unsaved.add(place)
         sheet.unsaved = frozenset(unsaved)
-
-
-# --- text tables -----------------------------------------------------------------------------------------------------
-
-_SEPARATORS = ";\t,|"
-
-
-def _read_text(name: str, data: bytes, guards: GuardsPart) -> Sheet:
-    sheet = Sheet(name, None, [])
-    text, encoding, repaired = _decode(name, data)
-    if repaired:
-        sheet.findings.append(
-            Finding("note", "text-repaired", f"the file is not UTF-8; it was read as {encoding}", file=name, right="UTF-8")
-        )
-    text = text.replace("\r\r\n", "\n").replace("\r\n", "\n").replace("\r", "\n")
-    separator = _separator(text)
-    csv.field_size_limit(1_000_000)
-    try:
-        for cells in csv.reader(text.split("\n"), delimiter=separator):
-            sheet.rows.append([cell.strip() or None for cell in cells])
-            if len(sheet.rows) > guards.rows:
-                raise InputError(f"has more than {guards.rows:,} rows", file=name, right="fewer rows, or a higher [guards] rows")
-    except csv.Error as error:
-        raise InputError(f"line {len(sheet.rows) + 1} is not proper CSV ({error})", file=name) from error
-    return sheet
-
-
-def _decode(name: str, data: bytes) -> tuple[str, str, bool]:
-    if b"\x00" in data[:4000] and not data.startswith((b"\xff\xfe", b"\xfe\xff")):
-        raise InputError("is no text file", file=name, right="a CSV file of text")
-    marked = [(b"\xef\xbb\xbf", "utf-8-sig"), (b"\xff\xfe", "utf-16"), (b"\xfe\xff", "utf-16")]
-    for mark, encoding in marked:
-        if data.startswith(mark):
-            try:
-                return data.decode(encoding), encoding, False
-            except UnicodeDecodeError as error:
-                raise InputError(f"is no proper {encoding} text", file=name) from error
-    try:
-        return data.decode("utf-8"), "UTF-8", False
-    except UnicodeDecodeError:
-        return data.decode("cp1252", errors="replace"), "Windows-1252", True
-
-
-def _separator(text: str) -> str:
-    """The sign that splits the most lines into the same number of fields; a tie goes to the rarer sign in prose."""
-    lines = [line for line in text.split("\n")[:200] if line.strip()]
-    best, best_score = ",", 0.0
-    for sign in _SEPARATORS:
-        counts = [len(next(csv.reader([line], delimiter=sign), [])) for line in lines]
-        several = [c for c in counts if c > 1]
-        if not several:
-            continue
-        usual = max(set(several), key=lambda c: (several.count(c), c))
-        score = several.count(usual) + usual / 1000
-        if score > best_score:
-            best, best_score = sign, score
-    return best

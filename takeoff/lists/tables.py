@@ -10,31 +10,67 @@ import re
 from dataclasses import dataclass, field
 from typing import Literal
 
+from takeoff.errors import JobError
 from takeoff.findings import Finding
 from takeoff.job import Job
-from takeoff.lists.headings import Heading, read_heading
+from takeoff.lists import rowwords
+from takeoff.lists.captions import Caption, read_caption, warns
+from takeoff.lists.headings import MEASURES, Heading, read_heading
 from takeoff.lists.sheets import Cell, Sheet, cell_name, column_number, letters
 from takeoff.names import normal_name
-from takeoff.quantities import EVERYDAY, number_readings, tidy, unit_of
+from takeoff.quantities import number_readings, unit_of
 
 RowKind = Literal["member", "heading", "total", "blank", "other"]
 
 #: fields that make a row a member when at least two of them are filled (remarks and finishes alone do not)
-_KEY_FIELDS = frozenset((
-    "mark", "name", "section", "material", "quantity", "length", "width", "thickness", "height", "diameter", "unit_mass",
-    "total_mass", "mass_per_length", "mass_per_area", "volume", "area", "weighed_mass",
-))
-_SIZES = _KEY_FIELDS - {"mark", "name", "section", "material", "quantity"}
-#: a list needs at least one of these, or there is nothing to weigh by
-_WEIGHABLE = frozenset((
-    "section", "name", "length", "unit_mass", "total_mass", "mass_per_length", "mass_per_area", "volume", "weighed_mass",
-))
-
-_TOTAL = re.compile(
-    r"^(?:grand |sub ?|page |overall )?(?:total|sum|subtotal)s?\b|^(?:zwischen|gesamt)?summe\b|^gesamt\b|^(?:sous[ -])?total\b"
-    r"|^suma\b|^totale\b|^totaal\b|^razem\b|^summa\b|^carried forward\b|^brought forward\b"
+_KEY_FIELDS = frozenset(
+    (
+        "mark",
+        "name",
+        "section",
+        "material",
+        "quantity",
+        "quantity_per",
+        "quantity_total",
+        "quantity_and_length",
+        "size",
+        "length",
+        "total_length",
+        "width",
+        "thickness",
+        "height",
+        "diameter",
+        "unit_mass",
+        "total_mass",
+        "mass",
+        "mass_per_length",
+        "mass_per_area",
+        "volume",
+        "area",
+        "weighed_mass",
+    )
 )
-_RULE = re.compile(r"[-=_*.–—\s]+")
+_COUNTS = frozenset(("quantity", "quantity_per", "quantity_total", "quantity_and_length"))
+_NAMES = frozenset(("mark", "name", "section", "material"))
+_SIZES = _KEY_FIELDS - _NAMES - _COUNTS
+#: a list needs at least one of these, or there is nothing to weigh by
+_WEIGHABLE = frozenset(
+    (
+        "section",
+        "name",
+        "size",
+        "length",
+        "quantity_and_length",
+        "unit_mass",
+        "total_mass",
+        "mass",
+        "mass_per_length",
+        "mass_per_area",
+        "volume",
+        "weighed_mass",
+    )
+)
+_CUT = re.compile(r"\b(?:cut|zuschnitt|debit|coupe|corte|taglio|zaag|ciecia|kap)")
 
 
 @dataclass(slots=True)
@@ -52,16 +88,28 @@ class Column:
 
 @dataclass(slots=True)
 class Table:
-    """One list on a sheet: its heading rows, columns, and the rows of its members (sheet row numbers, from 1)."""
+    """One list on a sheet: its heading rows, columns, and the rows of its members (sheet row numbers, from 1).
+
+    rivals : field -> further columns that claim it; their rows are refused where both are filled and differ.
+    caption : what the title rows above say of the whole list. `group_of` : member row -> the group title above it.
+    row_findings : member row -> what its words say of it (optional, contained in another row ...).
+    """
 
     sheet: Sheet
     heading_rows: list[int]
     columns: dict[str, Column]
     all_columns: list[Column]
+    rivals: dict[str, list[Column]] = field(default_factory=dict)
     units_below: dict[int, str] = field(default_factory=dict)
     member_rows: list[int] = field(default_factory=list)
     total_rows: list[int] = field(default_factory=list)
-    unit_note: str | None = None
+    caption: Caption = field(default_factory=Caption)
+    group_of: dict[int, str] = field(default_factory=dict)
+    row_findings: dict[int, list[Finding]] = field(default_factory=dict)
+
+    @property
+    def unit_note(self) -> str | None:
+        return self.caption.unit
 
     @property
     def range(self) -> str:
@@ -70,94 +118,420 @@ class Table:
         end = max([*self.heading_rows, *self.member_rows, *self.total_rows])
         return f"{cell_name(self.heading_rows[0], first)}:{cell_name(end, last)}"
 
+    def cell(self, row: int, field_name: str) -> Cell:
+        """The cell of a field in a sheet row; None where the list has no such column."""
+        column = self.columns.get(field_name)
+        if column is None or row > len(self.sheet.rows):
+            return None
+        cells = self.sheet.rows[row - 1]
+        return cells[column.number - 1] if column.number <= len(cells) else None
+
 
 @dataclass(slots=True)
 class SheetReading:
-    """A sheet with the lists found on it and the kind of every row from its first with content to its last."""
+    """A sheet with the lists found on it and the kind of every row from its first with content to its last.
+
+    refusals : why a list that stands here was not read.
+    """
 
     sheet: Sheet
     tables: list[Table]
     kinds: dict[int, RowKind]
     findings: list[Finding]
+    refusals: list[Finding] = field(default_factory=list)
 
 
 def is_blank(cell: Cell) -> bool:
-    return cell is None or (isinstance(cell, str) and not cell.strip())
+    return cell is None or cell == "" or (type(cell) is str and cell.isspace())
 
 
 def read_sheet(sheet: Sheet, job: Job) -> SheetReading:
-    """Find the lists of a sheet and give every row its kind."""
-    findings: list[Finding] = list(sheet.findings)
-    filled = [number for number, cells in enumerate(sheet.rows, 1) if not all(is_blank(c) for c in cells)]
-    troubled_rows = {row for row, _ in sheet.errors} | {row for row, _ in sheet.unsaved}
-    if not filled and not troubled_rows:
-        return SheetReading(sheet, [], {}, findings)
-    first, last = min([*filled, *troubled_rows]), max([*filled, *troubled_rows])
-    kinds: dict[int, RowKind] = {}
-    tables: list[Table] = []
-    current: Table | None = None
-    skip = _skipped_rows(sheet, job)
-    unit_note: str | None = None
-    for number in range(first, last + 1):
-        cells = sheet.rows[number - 1] if number <= len(sheet.rows) else []
-        if number in skip:
-            kinds[number] = "other"
-            findings.append(_at(sheet, Finding("note", "row-skipped", "skipped, since the job file says so"), number))
-            continue
-        if all(is_blank(c) for c in cells) and number not in troubled_rows:
-            kinds[number] = "blank"
-            continue
-        columns = _heading_columns(cells, job)
+    """Find the lists of a sheet and give every row its kind. Raises JobError on a range of `[reading] tables` that is none."""
+    return _Walk(sheet, job).reading()
+
+
+class _Walk:
+    """One walk down a sheet. `mode` says what the rows now stand under: nothing, a list, an example, a table of sums."""
+
+    def __init__(self, sheet: Sheet, job: Job) -> None:
+        self.sheet, self.job = sheet, job
+        self.findings: list[Finding] = list(sheet.findings)
+        self.refusals: list[Finding] = []
+        self.kinds: dict[int, RowKind] = {}
+        self.tables: list[Table] = []
+        self.current: Table | None = None
+        self.mode: Literal["titles", "list", "example", "sums", "refused"] = "titles"
+        self.caption = Caption()
+        self.group: str | None = None
+        self.pending: tuple[int, str] | None = None
+        self.multiplier: int | None = None
+        self.ranges = _ranges(sheet, job)
+        self.skip = _skipped_rows(sheet, job)
+
+    def reading(self) -> SheetReading:
+        troubled = {row for row, _ in self.sheet.errors} | {row for row, _ in self.sheet.unsaved}
+        filled = [n for n, cells in enumerate(self.sheet.rows, 1) if not all(is_blank(c) for c in cells)]
+        if filled or troubled:
+            joined = 0
+            for number in range(min([*filled, *troubled]), max([*filled, *troubled]) + 1):
+                if number <= joined:
+                    self.kinds[number] = "heading"
+                    continue
+                joined = self._row(number, number in troubled)
+            self._say_what_was_found()
+        return SheetReading(self.sheet, self.tables, self.kinds, self.findings, self.refusals)
+
+    def cells(self, number: int) -> list[Cell]:
+        """A row's cells, those outside the ranges the job file chose left out."""
+        cells = self.sheet.rows[number - 1] if number <= len(self.sheet.rows) else []
+        if self.ranges is None:
+            return cells
+        chosen = next(((left, right) for top, left, bottom, right in self.ranges if top <= number <= bottom), None)
+        if chosen is None:
+            return []
+        left, right = chosen
+        return [cell if left <= column <= right else None for column, cell in enumerate(cells, 1)]
+
+    def _row(self, number: int, troubled: bool) -> int:
+        """Give one row its kind; returns the last row that belongs to it (two-line headings), else 0."""
+        cells = self.cells(number)
+        if number in self.skip:
+            self._is(number, "other")
+            self._note(number, "row-skipped", "skipped, since the job file says so")
+            return 0
+        if all(is_blank(c) for c in cells) and not troubled:
+            outside = (
+                self.ranges is not None and number <= len(self.sheet.rows) and not all(is_blank(c) for c in self.sheet.rows[number - 1])
+            )
+            self._is(number, "other" if outside else "blank")
+            if self.mode == "sums":
+                self.mode = "titles"
+            return 0
+        if number in self.sheet.broken:
+            self._is(number, "member" if self.current is not None and self.mode == "list" else "other")
+            return 0
+        columns, last = self._headings(number, cells)
         if columns is not None:
-            kinds[number] = "heading"
-            known = {c.heading.field for c in columns if c.heading}
-            same = current is not None and [(c.number, normal_name(c.text)) for c in columns] == [
-                (c.number, normal_name(c.text)) for c in current.all_columns
-            ]
-            if current is not None and same:
-                current.heading_rows.append(number)
-            elif known & _WEIGHABLE and (len(known) > 1):
-                current = _new_table(sheet, number, columns, unit_note, findings)
-                tables.append(current)
+            self._heading(number, last, columns)
+            return last
+        if self.mode == "list" and self.current is not None:
+            self._row_of_list(self.current, number, cells)
+        elif self.mode == "sums":
+            self._is(number, "total" if any(isinstance(c, (int, float)) or number_readings(str(c or "")) for c in cells) else "other")
+        else:
+            self._is(number, "other")
+            if self.mode != "example":
+                self._title(number, cells)
+        return 0
+
+    def _is(self, number: int, kind: RowKind) -> None:
+        self.kinds[number] = kind
+        if kind == "member" and self.current is not None:
+            self.current.member_rows.append(number)
+            if self.group is not None:
+                self.current.group_of[number] = self.group
+        elif kind == "total" and self.current is not None and self.mode == "list":
+            self.current.total_rows.append(number)
+            self.group, self.multiplier = None, None
+
+    def _note(self, number: int, kind: str, message: str, read: str | None = None) -> None:
+        self.findings.append(self._at(Finding("note", kind, message, read=read), number))
+
+    def _at(self, finding: Finding, row: int, column: int = 1) -> Finding:
+        return finding.at(self.sheet.file, self.sheet.name, cell_name(row, column))
+
+    # --- headings ----------------------------------------------------------------------------------------------------
+
+    def _headings(self, number: int, cells: list[Cell]) -> tuple[list[Column] | None, int]:
+        """The columns that a row, or it and the next, name as headings; and the last row of those headings."""
+        if not _may_be_headings(cells):
+            return None, number
+        columns = _heading_columns(cells, self.job)
+        below = self.cells(number + 1) if number < len(self.sheet.rows) else []
+        texts = [c for c in (*cells, *below) if not is_blank(c)]
+        if (
+            not texts
+            or not below
+            or not all(isinstance(c, str) and not any(ch.isdigit() for ch in c) for c in texts)
+            or _is_unit_row(below)
+        ):
+            return columns, number
+        both = [" ".join(str(c).strip() for c in pair if not is_blank(c)) for pair in _zip(cells, below)]
+        joined = _heading_columns([text or None for text in both], self.job)
+        known = sum(1 for c in columns or [] if c.heading)
+        if joined is not None and sum(1 for c in joined if c.heading) > known and _heading_columns(below, self.job) is None:
+            return joined, number + 1
+        return columns, number
+
+    def _heading(self, number: int, last: int, columns: list[Column]) -> None:
+        self.kinds[number] = "heading"
+        if self.mode == "example":
+            self.kinds[number] = "other"
+            return
+        fields = [c.heading.field for c in columns if c.heading]
+        known = set(fields)
+        same = self.current is not None and [(c.number, normal_name(c.text)) for c in columns] == [
+            (c.number, normal_name(c.text)) for c in self.current.all_columns
+        ]
+        if same and self.current is not None:
+            self.current.heading_rows += range(number, last + 1)
+            self.mode = "list"
+            return
+        self.group, self.pending, self.multiplier = None, None, None
+        twice = {name for name in known - {"not_used", "remarks"} if fields.count(name) > 1}
+        if len(twice) > 1 and twice & _COUNTS:
+            self.kinds[number] = "other"
+            self.current, self.mode = None, "refused"
+            self.refusals.append(
+                self._at(
+                    Finding(
+                        "refused",
+                        "side-by-side",
+                        "lists stand side by side, and adding them all may count a thing twice",
+                        right='the one to read, such as [reading] tables = ["Sheet!A3:F40"] in the job file',
+                    ),
+                    number,
+                    columns[0].number,
+                )
+            )
+            self.findings.append(self.refusals[-1])
+            return
+        weighable = len(known) > 1 and (known & _WEIGHABLE or {"area", "thickness"} <= known)
+        if not weighable:
+            self.kinds[number] = "other"
+            self.mode = "sums" if self.current is not None else "titles"
+            self.current = None
+            return
+        self.current = self._new_table(list(range(number, last + 1)), columns)
+        self.tables.append(self.current)
+        self.mode, self.caption = "list", Caption(unit=self.caption.unit)
+
+    def _new_table(self, heading_rows: list[int], columns: list[Column]) -> Table:
+        table = Table(self.sheet, heading_rows, {}, columns, caption=self.caption)
+        fields = {c.heading.field for c in columns if c.heading}
+        for column in columns:
+            if (
+                column.heading is not None
+                and "quantity_per" in fields
+                and re.fullmatch(r"total( qty| quantity)?", normal_name(column.text))
+            ) or (column.heading is None and "quantity_per" in fields and normal_name(column.text) == "total"):
+                column.heading = Heading(column.text, "quantity_total", None, "the total beside a quantity per piece")
+        self._settle_open_headings(columns, heading_rows[-1])
+        for column in columns:
+            if column.heading is None:
+                message = f"the column {column.text!r} is left alone"
+                self.findings.append(
+                    self._at(Finding("note", "heading-not-used", message, read=column.text), heading_rows[0], column.number)
+                )
+                continue
+            name = column.heading.field
+            first = table.columns.setdefault(name, column)
+            if first is column or name in ("not_used", "remarks"):
+                continue
+            if name == "length" and _CUT.search(normal_name(column.text)) and not _CUT.search(normal_name(first.text)):
+                first, column = column, first  # noqa: PLW2901 - the cut length is the piece's length, wherever it stands
+                table.columns[name] = first
+                self._note(heading_rows[0], "heading-twice", f"the cut length {first.text!r} is used, {column.text!r} is left alone")
+            elif name == "length" and _CUT.search(normal_name(first.text)):
+                self._note(heading_rows[0], "heading-twice", f"the cut length {first.text!r} is used, {column.text!r} is left alone")
             else:
-                kinds[number] = "other"
-            continue
-        if current is None:
-            kinds[number] = "other"
-            unit_note = _unit_note(cells) or unit_note
-            continue
-        if number - 1 in current.heading_rows and _is_unit_row(cells):
-            kinds[number] = "heading"
-            current.units_below = {
-                column: unit for column, cell in enumerate(cells, 1) if isinstance(cell, str) and (unit := unit_of(cell))
-            }
-            current.heading_rows.append(number)
-            continue
-        kind = _kind_of(current, cells, number, sheet)
-        kinds[number] = kind
-        if kind == "member":
-            current.member_rows.append(number)
-        elif kind == "total":
-            current.total_rows.append(number)
-    if not tables:
-        findings.append(
-            Finding("note", "sheet-without-list", "no member list was found here", file=sheet.file, sheet=sheet.name,
-                    right="a row of headings such as Mark, Quantity, Section, Material, Length (mm)")
-        )
-    hidden = sorted(n for n in sheet.hidden_rows if kinds.get(n) == "member")
-    if sheet.hidden and tables:
-        findings.append(Finding("note", "hidden-rows", "the sheet is hidden; it was read all the same", sheet.file, sheet.name))
-    if hidden:
-        cells_hidden = tuple(f"A{n}" for n in hidden)
-        findings.append(
-            Finding("note", "hidden-rows", f"{len(hidden)} hidden rows were read like the others", sheet.file, sheet.name,
-                    cells_hidden[0], count=len(hidden), cells=cells_hidden)
-        )
-    return SheetReading(sheet, tables, kinds, findings)
+                table.rivals.setdefault(name, []).append(column)
+                self.findings.append(
+                    self._at(
+                        Finding(
+                            "note",
+                            "heading-twice",
+                            f"two columns claim {name.replace('_', ' ')!r}: {first.text!r} and {column.text!r}; rows "
+                            "that fill both differently are not weighed",
+                            read=column.text,
+                            right="one of them named in [reading.columns] of the job file",
+                        ),
+                        heading_rows[0],
+                        column.number,
+                    )
+                )
+        return table
+
+    def _settle_open_headings(self, columns: list[Column], heading_row: int) -> None:
+        """Headings that people use for either of two fields take the first that is free and that their cells fit."""
+        taken = {c.heading.field for c in columns if c.heading and not c.heading.otherwise}
+        for column in columns:
+            heading = column.heading
+            if heading is None or not heading.otherwise:
+                continue
+            below = [self.cells(n) for n in range(heading_row + 1, min(heading_row + 41, len(self.sheet.rows) + 1))]
+            cells = [row[column.number - 1] for row in below if column.number <= len(row) and not is_blank(row[column.number - 1])]
+            fitting = [name for name in (heading.field, *heading.otherwise) if name not in taken and _fits(name, cells)]
+            field_name = fitting[0] if fitting else "not_used"
+            column.heading = Heading(heading.text, field_name, heading.unit, "a heading used for several things, told by its cells")
+            taken.add(field_name)
+
+    # --- rows --------------------------------------------------------------------------------------------------------
+
+    def _title(self, number: int, cells: list[Cell]) -> None:
+        read_caption(self.caption, cells)
+        warning = warns(cells)
+        if warning:
+            self._note(number, "list-warning", f"the list warns: {warning}", warning)
+
+    def _row_of_list(self, table: Table, number: int, cells: list[Cell]) -> None:
+        if number - 1 in table.heading_rows and _is_unit_row(cells):
+            self.kinds[number] = "heading"
+            table.units_below = {column: unit for column, cell in enumerate(cells, 1) if isinstance(cell, str) and (unit := unit_of(cell))}
+            table.heading_rows.append(number)
+            return
+        labels = [rowwords.label(c) for c in cells if type(c) is str and c and not c.isspace() and not rowwords.says_nothing(c)]
+        kind = _kind_of(table, cells, number, self.sheet, labels)
+        if kind == "other" and len(labels) == 1 and rowwords.EXAMPLE.match(labels[0]) and table.member_rows:
+            self._is(number, "other")
+            self.current, self.mode = None, "example"
+            self._note(number, "example-block", "an example stands below the list: it is not read")
+            return
+        if (
+            kind == "member"
+            and any(rowwords.MONEY.match(label) for label in labels)
+            and not _has(table, number, {"section", "material"} | _SIZES)
+        ):
+            self._is(number, "other")
+            self._note(number, "row-of-money", "a row of money or work weighs nothing", labels[0])
+            return
+        self._is(number, kind)
+        if kind == "other":
+            warning = warns(cells)
+            if warning:
+                self._note(number, "list-warning", f"the list warns: {warning}", warning)
+            texts = [c.strip() for c in cells if isinstance(c, str) and c.strip()]
+            self.pending = (number, texts[0]) if len(texts) == 1 and len([c for c in cells if not is_blank(c)]) == 1 else None
+            if self.pending:
+                read_caption(self.caption, cells)
+        elif kind == "member":
+            self._member(table, number, labels)
+
+    def _member(self, table: Table, number: int, labels: list[str]) -> None:
+        """Group titles, and what a member row's words say of it."""
+        if self.pending is not None and len(self.pending[1]) <= 60 and not self.pending[1].endswith("."):
+            between = range(self.pending[0] + 1, number)
+            if all(self.kinds.get(n) == "blank" for n in between) and not any(ch.isdigit() for ch in self.pending[1][:1]):
+                self.group = self.pending[1]
+                table.group_of[number] = self.group
+        self.pending = None
+        if not labels and self.multiplier is None:
+            return
+        said = table.row_findings.setdefault(number, [])
+        if any(rowwords.ELSEWHERE.search(label) for label in labels):
+            said.append(
+                Finding("refused", "row-elsewhere", "the row says it is contained in another one", right="the row left out or made plain")
+            )
+        if any(rowwords.ALTERNATIVE.match(label) for label in labels):
+            said.append(
+                Finding(
+                    "refused",
+                    "alternative-row",
+                    "the row is an alternative to another: only one of them is built",
+                    right="the one that is built",
+                )
+            )
+        if any(rowwords.OPTIONAL.search(label) for label in labels):
+            said.append(Finding("note", "optional-row", "the row says it is optional; it is in the totals"))
+        is_assembly = any(rowwords.ASSEMBLY_ROW.search(label) for label in labels[:2])
+        bare = not _has(table, number, {"section", "material"} | _SIZES)
+        if is_assembly and _has(table, number, {"unit_mass", "total_mass", "mass"}) and not _has(table, number, {"section", "length"}):
+            said.append(
+                Finding("note", "may-count-twice", "an assembly with a mass of its own: its parts, if they are listed too, count twice")
+            )
+        if is_assembly and bare and "assembly" not in table.columns:
+            pieces = table.cell(number, "quantity")
+            self.multiplier = number if number_readings(str(pieces)) not in ([], number_readings("1")) else None
+        elif self.multiplier is not None:
+            said.append(
+                Finding(
+                    "refused",
+                    "multiplier-above",
+                    f"row {self.multiplier} above counts an assembly: are these pieces in all, or for each of them?",
+                    right="quantities in all, and an Assembly column",
+                )
+            )
+        if not said:
+            del table.row_findings[number]
+
+    def _say_what_was_found(self) -> None:
+        sheet = self.sheet
+        if not self.tables and not self.refusals:
+            self.findings.append(
+                Finding(
+                    "note",
+                    "sheet-without-list",
+                    "no member list was found here",
+                    file=sheet.file,
+                    sheet=sheet.name,
+                    right="a row of headings such as Mark, Quantity, Section, Material, Length (mm)",
+                )
+            )
+        if sheet.hidden and self.tables:
+            self.findings.append(Finding("note", "hidden-rows", "the sheet is hidden; it was read all the same", sheet.file, sheet.name))
+        hidden = tuple(f"A{n}" for n in sorted(sheet.hidden_rows) if self.kinds.get(n) == "member")
+        if hidden:
+            self.findings.append(
+                Finding(
+                    "note",
+                    "hidden-rows",
+                    f"{len(hidden)} hidden rows were read like the others",
+                    sheet.file,
+                    sheet.name,
+                    hidden[0],
+                    count=len(hidden),
+                    cells=hidden,
+                )
+            )
 
 
-def _at(sheet: Sheet, finding: Finding, row: int, column: int = 1) -> Finding:
-    return finding.at(sheet.file, sheet.name, cell_name(row, column))
+def _fits(field_name: str, cells: list[Cell]) -> bool:
+    """Whether a column's cells can be this field: counts that are no mere numbering, numbers, or sections with digits in them."""
+    texts = [str(cell).strip() for cell in cells]
+    numbers = [r[0].value for text in texts if (r := number_readings(text))]
+    if field_name in _COUNTS:
+        numbered = numbers == [numbers[0] + i for i in range(len(numbers))] and len(numbers) > 2 if numbers else False
+        return bool(numbers) and len(numbers) * 2 >= len(texts) and not numbered
+    if field_name in MEASURES:
+        return not texts or sum(any(ch.isdigit() for ch in text) for text in texts) * 2 >= len(texts)
+    if field_name == "section":
+        return sum(any(ch.isdigit() for ch in text) for text in texts) * 2 > len(texts)
+    if field_name == "name":
+        return len(numbers) * 2 < max(len(texts), 1)
+    return True
+
+
+def _zip(above: list[Cell], below: list[Cell]) -> list[tuple[Cell, Cell]]:
+    width = max(len(above), len(below))
+    one, two = ([*cells, *[None] * (width - len(cells))] for cells in (above, below))
+    return list(zip(one, two, strict=True))
+
+
+def _has(table: Table, number: int, fields: set[str] | frozenset[str]) -> bool:
+    """Whether a row fills any of these fields with more than a dash."""
+    return any(
+        not is_blank(cell) and str(cell).strip() not in ("-", "–", "—")
+        for name in fields
+        if name in table.columns
+        for cell in (table.cell(number, name),)
+    )
+
+
+def _ranges(sheet: Sheet, job: Job) -> list[tuple[int, int, int, int]] | None:
+    """The ranges of `[reading] tables` on this sheet as (top, left, bottom, right); None where none is named for it."""
+    found = []
+    for entry in job.reading.tables:
+        name, _, area = entry.rpartition("!")
+        parts = re.fullmatch(r"\$?([A-Za-z]{1,3})\$?(\d{1,7}):\$?([A-Za-z]{1,3})\$?(\d{1,7})", area)
+        if not parts:
+            raise JobError("reading.tables: this is no range of cells", file=job.path, read=entry, right="Sheet!A3:F40")
+        if not name or name == (sheet.name or ""):
+            left, top, right, bottom = parts.groups()
+            found.append((int(top), column_number(left), int(bottom), column_number(right)))
+    for number, (top, _, bottom, _) in enumerate(found):
+        if any(top <= other[2] and other[0] <= bottom for other in found[:number]):
+            raise JobError("reading.tables: two ranges share rows of one sheet", file=job.path, right="one range for each row of a sheet")
+    return found or None
 
 
 def _skipped_rows(sheet: Sheet, job: Job) -> set[int]:
@@ -168,6 +542,19 @@ def _skipped_rows(sheet: Sheet, job: Job) -> set[int]:
         if number.isdecimal() and (not name or name == (sheet.name or "")):
             rows.add(int(number))
     return rows
+
+
+def _may_be_headings(cells: list[Cell]) -> bool:
+    """Whether a row could be headings at all: texts, and not mostly texts with digits in them."""
+    count = digits = 0
+    for cell in cells:
+        if cell is None:
+            continue
+        if type(cell) is not str:
+            return False
+        count += 1
+        digits += any(char.isdigit() for char in cell)
+    return count > 0 and digits * 2 <= count
 
 
 def _heading_columns(cells: list[Cell], job: Job) -> list[Column] | None:
@@ -195,78 +582,41 @@ def _told(number: int, text: str, job: Job) -> Heading | None:
     return None
 
 
-def _new_table(sheet: Sheet, number: int, columns: list[Column], unit_note: str | None, findings: list[Finding]) -> Table:
-    by_field: dict[str, Column] = {}
-    for column in columns:
-        if column.heading is None:
-            findings.append(
-                _at(sheet, Finding("note", "heading-not-used", f"the column {column.text!r} is left alone", read=column.text),
-                    number, column.number)
-            )
-            continue
-        field_name = column.heading.field
-        if field_name in by_field and field_name not in ("not_used", "remarks"):
-            findings.append(
-                _at(sheet, Finding("note", "heading-twice",
-                                   f"two columns claim {field_name!r}: {by_field[field_name].text!r} is used, "
-                                   f"{column.text!r} is left alone",
-                                   read=column.text, right="one of them named in [reading.columns] of the job file"),
-                    number, column.number)
-            )
-            continue
-        by_field.setdefault(field_name, column)
-    return Table(sheet, [number], by_field, columns, unit_note=unit_note)
-
-
 def _is_unit_row(cells: list[Cell]) -> bool:
     texts = [cell for cell in cells if not is_blank(cell)]
     return len(texts) > 0 and all(isinstance(c, str) and unit_of(c) is not None for c in texts)
 
 
-_UNITS_NOTE = re.compile(r"\b(?:units?|dimensions|sizes|maße|cotes)\b[^:=]*?(?:[:=]|\bin\b|\bare\b)\s*([A-Za-z]{1,12}|\")", re.IGNORECASE)
-
-
-def _unit_note(cells: list[Cell]) -> str | None:
-    """A title row that states the unit of lengths: ``Units: mm unless stated``, ``All dimensions in mm``."""
-    for position, cell in enumerate(cells):
-        if not isinstance(cell, str) or len(cell) > 200:
-            continue
-        found = _UNITS_NOTE.search(cell)
-        unit = unit_of(found.group(1)) if found else None
-        if unit is None and re.fullmatch(r"\s*units?\s*[:=]?\s*", cell, re.IGNORECASE):
-            after = next((c for c in cells[position + 1:] if isinstance(c, str) and c.strip()), None)
-            unit = unit_of(after.split()[0]) if after else None
-        if unit and EVERYDAY[unit][0] == "length":
-            return unit
-    return None
-
-
-def _kind_of(table: Table, cells: list[Cell], number: int, sheet: Sheet) -> RowKind:
-    def at(name: str) -> Cell:
-        column = table.columns.get(name)
-        if column is None:
-            return None
-        if (number, column.number) in sheet.errors or (number, column.number) in sheet.unsaved:
-            return "error"
-        return cells[column.number - 1] if column.number <= len(cells) else None
-
-    filled = {name for name in table.columns if name in _KEY_FIELDS and not is_blank(at(name))}
-    labels = [tidy(c).casefold() for c in cells if isinstance(c, str) and c.strip()]
-    if any(_TOTAL.match(label) for label in labels) and not ({"section", "quantity"} <= filled and filled & _SIZES):
+def _kind_of(table: Table, cells: list[Cell], number: int, sheet: Sheet, labels: list[str]) -> RowKind:
+    troubled = {
+        name
+        for name, column in table.columns.items()
+        if (number, column.number) in sheet.errors or (number, column.number) in sheet.unsaved
+    }
+    filled = {name for name in table.columns if name in _KEY_FIELDS and (name in troubled or not is_blank(table.cell(number, name)))}
+    if any(rowwords.TOTAL.match(label) for label in labels) and not ("section" in filled and filled & _COUNTS and filled & _SIZES):
         return "total"
-    if all(_RULE.fullmatch(label) for label in labels) and labels and not filled & _SIZES:
+    rules = [c for c in cells if type(c) is str and len(c) > 2 and rowwords.RULE.fullmatch(c)]
+    if rules and all(type(c) is not str or rowwords.RULE.fullmatch(c) or number_readings(c) for c in cells):
         return "other"
-    named = filled & {"mark", "name", "section", "material"}
+    named = filled & _NAMES
+    dashed = [name for name in filled & _COUNTS if str(table.cell(number, name)).strip() in ("-", "–", "—")]
+    if dashed and "mark" in table.columns and is_blank(table.cell(number, "mark")):
+        return "total"
     if not named:
         numbers = [c for c in cells if not is_blank(c)]
-        if filled and all(not isinstance(c, str) or number_readings(c) for c in numbers):
+        if (
+            filled
+            and all(not isinstance(c, str) or number_readings(c) for c in numbers)
+            and not (filled & {"quantity_and_length"} or ({"length"} <= filled and filled & _COUNTS))
+        ):
             return "total"
         return "member" if len(filled) > 1 else "other"
     if len(filled) > 1:
         return "member"
     # One filled cell: a group title, a note, or a numbered empty row. A section standing alone is a piece with nothing
     # beside it, and is kept in view.
-    if filled == {"section"} and any(ch.isdigit() for ch in str(at("section"))) and number not in table.heading_rows:
+    if filled == {"section"} and any(ch.isdigit() for ch in str(table.cell(number, "section"))):
         first_text = next((n for n, c in enumerate(cells, 1) if not is_blank(c)), 0)
         return "member" if first_text == table.columns["section"].number and first_text > 1 else "other"
     return "other"

@@ -26,7 +26,11 @@ _LATER = {
     **dict.fromkeys(("WoodDensity", "green_density", "wood_density"), "wood"),
 }
 
+#: what a section whose standard is itself a steel standard is made of where nothing names a material
+DEFAULT_STEEL = "steel-structural"
+
 __all__ = [
+    "DEFAULT_STEEL",
     "Candidate", "DensityAt", "Elongation", "FamilySpread", "Law", "Material", "MaterialMatch", "OwnTable", "Piece",
     "WoodDensity",
     "all_materials", "by_key", "density_at", "elongation", "families", "green_density", "law_of", "load_own", "lookup",

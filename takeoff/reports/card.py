@@ -6,7 +6,7 @@ from collections.abc import Iterable
 from typing import TYPE_CHECKING
 
 from takeoff.reports import rounding
-from takeoff.reports.terminal import Page
+from takeoff.reports.plainpage import Page
 from takeoff.reports.wording import shown
 
 if TYPE_CHECKING:

@@ -5,16 +5,31 @@ from __future__ import annotations
 from collections import Counter
 from typing import TYPE_CHECKING, Any
 
-from takeoff.lists.headings import MEASURES, NOT_ACTED_ON
+from takeoff.jobwriter import JobLine
+from takeoff.jobwriter import shown as shown_lines
+from takeoff.lists.headings import MEASURES
 from takeoff.lists.members import unit_of_column
 from takeoff.lists.tables import Column, Table
-from takeoff.reports.terminal import Page
-from takeoff.reports.wording import counted, shown
+from takeoff.reports.plainpage import Page
+from takeoff.reports.wording import counted, listed, shown
 
 if TYPE_CHECKING:
     from takeoff.findings import Finding
     from takeoff.pipeline import Reading, Result
 
+#: kind of finding -> the one setting that settles it
+_SETTLED_BY = {
+    "unit-assumed": JobLine("reading", "length_unit", "mm", "if that is what bare lengths mean"),
+    "implausible-size": JobLine("reading", "length_unit", "m", "if that is what bare lengths mean"),
+    "decimal-assumed": JobLine("reading", "decimal", "point", 'or "comma"'),
+    "hollow-standard-assumed": JobLine("names", "hollow", "hot", 'or "cold": what hollow sections without a standard are'),
+    "moisture-unknown": JobLine("masses", "moisture_percent", 20.0, "of the wood, percent of its dry mass"),
+}
+#: kind of finding -> the table that gives a text its meaning
+_NAMED = {
+    **dict.fromkeys(("similar-section", "unknown-section", "ambiguous-section"), ("names.sections", "the section it stands for")),
+    **dict.fromkeys(("similar-material", "unknown-material", "ambiguous-material"), ("names.materials", "the material it stands for")),
+}
 _SURE = ("exact", "alias")
 _MOST_SHOWN = 12
 
@@ -39,8 +54,9 @@ def check_record(reading: Reading, result: Result) -> dict[str, Any]:
             {"file": row.file, "sheet": row.sheet, "row": row.row, "mark": row.mark, "reason": row.reason}
             for row in result.members[result.members["status"] == "not weighed"].itertuples()
         ],
+        "not_counted": list(result.totals.not_counted),
         "findings": [f.as_record() for f in result.all_findings()],
-        "job_lines": job_lines(result.all_findings()),
+        "job_lines": shown_lines(job_lines(result.all_findings())),
     }
 
 
@@ -52,8 +68,6 @@ def _column(column: Column, table: Table, reading: Reading) -> dict[str, Any]:
     why = heading.why if heading else "not a heading we know"
     if heading and not used:
         why = "another column has this field already"
-    elif field in NOT_ACTED_ON:
-        why += f"; {NOT_ACTED_ON[field]}" if field else ""
     return {"letter": column.letter, "heading": column.text, "field": field, "why": why, "unit": unit, "unit_from": unit_from}
 
 
@@ -72,37 +86,26 @@ def _named(reading: Reading, what: str) -> list[dict[str, Any]]:
     return [{"text": t, label: n, "match": m, "rows": count} for (t, n, m), count in merged.items() if t is not None or n is not None]
 
 
-def job_lines(findings: list[Finding]) -> list[str]:
-    """Lines for job.toml that settle what was assumed or refused, where one line can."""
-    lines: dict[str, list[str]] = {}
+def job_lines(findings: list[Finding]) -> list[JobLine]:
+    """Settings for job.toml that would settle what was assumed, or refused for want of a word."""
+    lines: list[JobLine] = []
     for f in findings:
-        if f.kind == "unit-assumed":
-            lines.setdefault("[reading]", []).append('length_unit = "mm"  # if that is what the list means')
-        if f.kind == "unreadable-size" and f.right and "decimal" in f.right:
-            lines.setdefault("[reading]", []).append('decimal = "point"  # or "comma"')
-        if f.read and f.kind in ("similar-section", "unknown-section", "ambiguous-section"):
-            _offer(lines, "sections", f, "the section it stands for")
-        if f.read and f.kind in ("similar-material", "unknown-material", "ambiguous-material"):
-            _offer(lines, "materials", f, "the material it stands for")
-    return [line for section, entries in lines.items() for line in (section, *dict.fromkeys(entries))]
-
-
-def _offer(lines: dict[str, list[str]], table: str, finding: Finding, remark: str) -> None:
-    """A line that names the nearest candidate, where there is one."""
-    if finding.read and finding.right and finding.right.startswith("one of "):
-        first = finding.right.removeprefix("one of ").split(", ")[0]
-        lines.setdefault(f"[names.{table}]", []).append(f"{_toml(finding.read)} = {_toml(first)}  # {remark}")
-
-
-def _toml(text: str) -> str:
-    import json
-
-    return json.dumps(text, ensure_ascii=False)
+        if f.kind in _SETTLED_BY:
+            lines.append(_SETTLED_BY[f.kind])
+        elif f.kind == "unreadable-size" and f.right and "decimal" in f.right:
+            lines.append(JobLine("reading", "decimal", "point", 'or "comma"'))
+        elif f.kind == "material-absent" and f.level == "assumed":
+            lines.append(JobLine("reading", "material", "S235", "what rows without a material are made of"))
+        elif f.read and f.right and f.right.startswith("one of ") and f.kind in _NAMED:
+            table, remark = _NAMED[f.kind]
+            lines.append(JobLine(table, f.read, f.right.removeprefix("one of ").split(", ")[0], remark))
+    return list(dict.fromkeys(lines))
 
 
 def check_text(record: dict[str, Any], width: int) -> str:
     """The record for a terminal: tables and their columns, unsure names, what is refused, findings, the account."""
     page = Page(width)
+    page.say(f"Not counted: {listed(shown(w) for w in record['not_counted'])}.", 0, 2)
     for table in record["tables"]:
         place = shown(table["file"]) + (f", sheet {shown(table['sheet'])}" if table["sheet"] else "")
         page.heading(f"{place}: list at {table['range']}, {counted(table['rows'], 'member row')}")

@@ -12,19 +12,27 @@ import re
 from collections.abc import Iterable
 from typing import TYPE_CHECKING, Any
 
+from takeoff.reports import added
+from takeoff.thermal.lengths import TAPE_KEY
+
 if TYPE_CHECKING:
     import pandas as pd
 
     from takeoff.pipeline import Result
+    from takeoff.reports.compare import Comparison
 
 # ASCII only: the text then passes through any stream, and no invisible sign of a list's text acts on a terminal.
 _JSON = json.JSONEncoder(ensure_ascii=True, allow_nan=False, separators=(", ", ": "))
 
 _WORDS = ("light", "nominal", "heavy")
+#: what the list states for one piece, and what a scale says, in kg: output's name -> members column
+_OTHER_MASSES = {"stated_each_kg": "claimed_each_kg", "weighed_each_kg": "weighed_each_kg"}
 
 
-def to_json(result: Result) -> str:
+def to_json(result: Result, changes: Comparison | None = None) -> str:
     """The whole result as JSON text ending in a line feed; absent figures are null, figures unrounded, SI.
+
+    `changes` against an earlier run stand under ``against``, which is only there where there are any.
 
     Raises ValueError on an infinite figure, which no list can bring about.
     """
@@ -50,10 +58,13 @@ def to_json(result: Result) -> str:
         "members": _Lines(_members(result)),
         "totals": result.totals.as_record(),
         "picks": _Lines([_JSON.encode(_no_nan(pick.as_record())) for pick in result.picks]),
-        "vehicles": [], "not_loaded": [], "vehicle_count_bound": None, "proven": None, "movements": [],
+        "vehicles": [], "not_loaded": [], "vehicle_count_bound": None, "proven": None,
+        "temperatures": _temperatures(result), "movements": _Lines([_JSON.encode(_no_nan(m.as_record())) for m in result.movements]),
         "findings": _Lines([_JSON.encode(f.as_record()) for f in result.findings]),
         "cautions": list(result.cautions),
     }
+    if changes is not None:
+        parts["against"] = changes.as_record()
     body = ",\n".join(
         f'"{key}": {value.text() if isinstance(value, _Lines) else _JSON.encode(_no_nan(value))}'
         for key, value in parts.items()
@@ -99,19 +110,89 @@ def _members(result: Result) -> list[str]:
     }
     fields |= {name: _json_figures(frame, name) for name in ("length_mm", "width_mm", "thickness_mm", "height_mm", "diameter_mm")}
     fields |= {name: _json_texts(frame, name) for name in ("finish", "contents", "remarks")}
+    fields |= {name: _json_texts(frame, name) if name in frame else ["null"] * len(frame) for name in ("insulation", "holes")}
     fields |= {name: _json_figures(frame, name) for name in ("volume_m3", "surface_m2")}
     for name, part in (("bare_each_kg", "bare"), ("mass_each_kg", "each"), ("mass_total_kg", "total")):
         fields[name] = {word: _json_figures(frame, f"{part}_{word}_kg") for word in _WORDS}
+    fields["additions"] = added.json_arrays(result)
+    nothing = ["null"] * len(frame)
+    for name, column in _OTHER_MASSES.items():
+        fields[name] = _json_figures(frame, column) if column in frame else nothing
+    calculated = {word: f"calculated_{word}_kg" for word in _WORDS}
+    fields["calculated_each_kg"] = {w: _json_figures(frame, c) if c in frame else nothing for w, c in calculated.items()}
+    fields["handling"] = _json_texts(frame, "handling") if "handling" in frame else nothing
     fields["basis"] = [bases[i] if i >= 0 else "null" for i in frame["basis_id"].tolist()]
     fields |= {name: _json_texts(frame, name) for name in ("status", "reason")}
+    fields |= _temperature_fields(result)
     findings = result.row_findings
     fields["findings"] = [
         _JSON.encode([f.as_record() for f in findings[i]]) if i in findings else "[]" for i in range(len(frame))
     ]
-    # Of what a later version fills in, every member says plainly that there is nothing.
+    fields["position_mm"] = _positions(result)
     template, columns = _template(fields)
-    template = template[:-1] + ', "additions": [], "lengths_mm": {}, "tape_readings_mm": {}, "sizes_mm": {}, "position_mm": null}'
     return [template % values for values in zip(*columns, strict=True)]
+
+
+def _positions(result: Result) -> list[str]:
+    """Each member's centre of gravity in the list's coordinates; null where no position is known."""
+    if not result.places:
+        return ["null"] * len(result.members)
+    places = [result.places.get(i) for i in range(len(result.members))]
+    return ["null" if place is None or isinstance(place, str) else _JSON.encode(list(place.centre)) for place in places]
+
+
+def _temperature_fields(result: Result) -> dict[str, Any]:
+    """Each member's true lengths, tape readings and sizes by name of temperature; nothing where nobody names any."""
+    at = result.temperatures
+    if at is None:
+        return {"lengths_mm": {}, "tape_readings_mm": {}, "sizes_mm": {}}
+    # A name is the job file's own text, and the record it stands in is a template of %s.
+    keys = {name: _JSON.encode(name)[1:-1].replace("%", "%%") for name in at.names}
+    sizes = {name: {size: _figures(values) for size, values in at.sizes_mm[name].items()} for name in at.names}
+    return {
+        "lengths_mm": {keys[name]: sizes[name]["length"] for name in at.names},
+        "tape_readings_mm": {keys[name]: _figures(at.readings_mm[name]) for name in at.names},
+        "sizes_mm": {keys[name]: sizes[name] for name in at.names},
+    }
+
+
+def _figures(values: Any) -> list[str]:
+    return ["null" if v != v else repr(v) for v in values.tolist()]  # noqa: PLR0124
+
+
+def _temperatures(result: Result) -> dict[str, Any] | None:
+    """The named temperatures, and each material there with its law, coefficient, bounds and sources."""
+    at = result.temperatures
+    if at is None:
+        return None
+    return {
+        "named_C": at.named,
+        "tape": TAPE_KEY if at.tape is None else at.tape.key,
+        "materials": [
+            {
+                "key": m.material.key, "alpha_per_K": m.material.alpha_per_K,
+                "alpha_interval_C": None if m.material.alpha_interval_C is None else list(m.material.alpha_interval_C),
+                "alpha_source": None if m.material.alpha_source is None else m.material.alpha_source.as_record(),
+                "low_share": m.spread.low, "high_share": m.spread.high, "bounds_source": m.spread.source.as_record(),
+                "law": {
+                    "name": m.law.name,
+                    "pieces": [
+                        {"from_C": p.from_C, "to_C": p.to_C, "curve": p.curve, "source": p.source.as_record()} for p in m.law.pieces
+                    ],
+                },
+                "at": [
+                    {
+                        "name": name, "temperature_C": at.named[name], "elongation": grown.value,
+                        "elongation_by_direction": grown.by_direction,
+                        "density_kg_m3": None if density.density is None else density.density.as_record(),
+                        "within_validity": grown.within_validity, "reason": grown.reason or density.reason or None,
+                    }
+                    for name, (grown, density) in m.at.items()
+                ],
+            }
+            for m in at.materials
+        ],
+    }
 
 
 def _template(fields: dict[str, Any]) -> tuple[str, list[list[str]]]:
@@ -180,6 +261,7 @@ _CSV_SIZES = ("length_mm", "width_mm", "thickness_mm", "height_mm", "diameter_mm
 _CSV_MASSES = {
     f"mass_{part}_{word}_kg": f"{part}_{word}_kg" for part in ("each", "total") for word in _WORDS
 }
+_CSV_BARE = {f"mass_bare_each_{word}_kg": f"bare_{word}_kg" for word in _WORDS}
 
 
 def to_csv(result: Result) -> str:
@@ -201,8 +283,13 @@ def to_csv(result: Result) -> str:
     columns["contents"] = _csv_texts(frame["contents"].tolist())
     columns["volume_each_m3"] = _csv_figures(frame, "volume_m3")
     columns["surface_each_m2"] = _csv_figures(frame, "surface_m2")
-    for name, source in _CSV_MASSES.items():
-        columns[name] = _csv_figures(frame, source)
+    kinds = added.kinds(frame)
+    parts = {f"mass_{kind}_each_{word}_kg": f"add_{kind}_{word}_kg" for kind in kinds for word in _WORDS}
+    for name, source in {**_CSV_BARE, **parts, **_CSV_MASSES, **_OTHER_MASSES}.items():
+        if source in frame:
+            columns[name] = _csv_figures(frame, source)
+    if "handling" in frame:
+        columns["handling"] = _csv_texts(frame["handling"].tolist())
     columns["status"] = _csv_texts(frame["status"].tolist())
     columns["reason"] = _csv_texts(frame["reason"].tolist())
     for name, text in {

@@ -7,22 +7,21 @@ literally: no control or direction signs get through.
 from __future__ import annotations
 
 import math
-import textwrap
 from collections.abc import Iterable, Sequence
 from itertools import islice
 from typing import TYPE_CHECKING
 
-from takeoff.reports import rounding
+from takeoff.reports import added, picksheet, rounding
+from takeoff.reports.plainpage import Page
 from takeoff.reports.rounding import NO_BREAK, Units
 from takeoff.reports.wording import LIKELY_IS_FOR, cells_text, counted, listed, pick_word, refusals, shown
 
 if TYPE_CHECKING:
     from takeoff.findings import Finding
-    from takeoff.lifting.pick import Factor, Pick
+    from takeoff.lifting.factors import Factor
+    from takeoff.lifting.pick import Pick
     from takeoff.pipeline import Result
 
-_LEAST_WIDTH = 24
-_MOST_WIDTH = 120
 _FIRST_REFUSED = 10
 _FIRST_FINDINGS = 10
 _FIRST_CELLS = 8
@@ -37,6 +36,10 @@ def summary(result: Result, width: int = 80, units: Units | None = None) -> str:
     _total(page, result, units)
     _heaviest(page, result, units)
     _not_weighed(page, result)
+    if result.temperatures is not None:
+        from takeoff.reports.thermal import schedule_part
+
+        schedule_part(page, result, units)
     findings = result.all_findings()
     assumed = [f for f in findings if f.level == "assumed"]
     _findings(page, "Assumed (in the totals)", assumed)
@@ -46,7 +49,7 @@ def summary(result: Result, width: int = 80, units: Units | None = None) -> str:
     notes = [f for f in findings if f.level == "note"]
     _findings(page, "Notes", notes)
     page.heading("Not counted")
-    page.say(listed(shown(w) for w in result.totals.not_counted) + ".", indent=2)
+    page.say(added.not_counted(result) + ".", indent=2)
     _cautions(page, result.cautions)
     return page.text()
 
@@ -67,63 +70,6 @@ def pick_sheet(
         page.say("Each figure is rounded up by itself, so the lines shown may add up to slightly more than the load shown.")
     _cautions(page, cautions)
     return page.text()
-
-
-class Page:
-    """Lines no wider than the terminal; a blank line stands before each heading."""
-
-    def __init__(self, width: int) -> None:
-        self.width = max(_LEAST_WIDTH, min(width, _MOST_WIDTH))
-        self.lines: list[str] = []
-
-    def blank(self) -> None:
-        if self.lines and self.lines[-1]:
-            self.lines.append("")
-
-    def heading(self, text: str) -> None:
-        self.blank()
-        self.say(text)
-
-    def say(self, text: str, indent: int = 0, hang: int | None = None) -> None:
-        """A paragraph; lines after the first stand `hang` columns in (as `indent` unless said)."""
-        hang = indent if hang is None else hang
-        if self.width < 48:
-            indent, hang = min(indent, 2), min(hang, 4)
-        self.lines += textwrap.wrap(
-            text, self.width, initial_indent=" " * indent, subsequent_indent=" " * hang, break_on_hyphens=False,
-        ) or [""]
-
-    def labelled(self, label: str, text: str) -> None:
-        """``Read      list.xlsx``, the text hanging under its own start; below the label where there is no room."""
-        if self.width < 48:
-            self.say(label)
-            self.say(text, indent=2)
-        else:
-            self.say(f"{label:<10}".replace(" ", NO_BREAK) + text, hang=10)
-
-    def table(self, headings: Sequence[str], rows: Sequence[Sequence[str]], indent: int = 2) -> None:
-        """First column text, the others figures set right; as a list of pairs where the columns do not fit."""
-        columns = list(zip(headings, *rows, strict=True))
-        widths = [max(map(len, column)) for column in columns]
-        room = self.width - indent - sum(w + 2 for w in widths[1:])
-        if room < min(widths[0], 14):
-            self.say(headings[0], indent)
-            indent += 2
-            for name, *figures in rows:
-                self.say(name, indent, indent + 2)
-                for heading, figure in zip(headings[1:], figures, strict=True):
-                    if figure:
-                        self.say(f"{heading}: {figure}", indent + 2, indent + 4)
-            return
-        first = min(widths[0], room)
-        for name, *figures in [headings, *rows]:
-            *above, last = textwrap.wrap(name, first, break_on_hyphens=False) or [""]
-            self.lines += [" " * indent + line for line in above]
-            cells = "".join(f"  {figure:>{w}}" for figure, w in zip(figures, widths[1:], strict=True))
-            self.lines.append((" " * indent + f"{last:<{first}}" + cells).rstrip())
-
-    def text(self) -> str:
-        return rounding.plain_blanks("\n".join(self.lines))
 
 
 def _title(page: Page, result: Result) -> None:
@@ -157,9 +103,11 @@ def _count(pieces: float) -> str:
 def _total(page: Page, result: Result, units: Units) -> None:
     totals, unit = result.totals, rounding.mass_unit(units)
     page.blank()
+    parts = {"bare pieces": totals.bare_kg} if totals.additions else {}
+    parts |= {added.called(kind): mass for kind, mass in totals.additions.items()}
     page.table(
         [f"Mass, {unit}", "light", "nominal", "heavy"],
-        [["total", *rounding.bounds(totals.mass_kg, units, NO_BREAK)]], indent=0,
+        [[name, *rounding.bounds(mass, units, NO_BREAK)] for name, mass in {**parts, "total": totals.mass_kg}.items()], indent=0,
     )
     if not result.complete:
         page.say(f"These totals lack {counted(totals.not_weighed, 'row')} not weighed.")
@@ -244,16 +192,19 @@ def _pick(page: Page, pick: Pick, units: Units) -> None:
     lines.append(("= hook load", pick.hook_load_kg))
     rows = [[item, rounding.mass(kg, "up", units, decimals, NO_BREAK)] for item, kg in lines]
     page.table(["Build-up", unit], rows)
-    for factor in (pick.contingency, pick.dynamic):
+    for factor in pick.factors:
         _factor(page, factor)
     at_rest = rounding.mass_with_unit(pick.static_hook_load_kg, "up", units, gap=NO_BREAK)
     moving = rounding.mass_with_unit(pick.hook_load_kg, "up", units, gap=NO_BREAK)
     force = rounding.force_with_unit(pick.hook_load_kN, "up", units, NO_BREAK)
     page.say(f"Hook load at rest {at_rest}; HOOK LOAD {moving} ({force}).", indent=2, hang=4)
-    page.say(f"Verdict: {pick.verdict}.", indent=2)
+    picksheet.say(page, pick, units)
+    page.say(f"Verdict: {picksheet.verdict(pick)}.", indent=2)
     page.say(f"Not counted: {listed(shown(w) for w in pick.not_counted)}.", indent=2, hang=4)
     for finding in pick.findings:
-        page.say(f"{finding.level.capitalize()}: {shown(finding.message)}", indent=2, hang=4)
+        read = f" (read: {shown(finding.read)})" if finding.read else ""
+        right = f" Right would be: {shown(finding.right)}." if finding.right else ""
+        page.say(f"{finding.level.capitalize()}: {shown(finding.message)}{read}.{right}", indent=2, hang=4)
 
 
 def _factor(page: Page, factor: Factor) -> None:

@@ -4,10 +4,16 @@
 tables. A section family is added in one place: a CSV in materials/sections, and its line in `catalogue.FAMILIES`.
 """
 
+from __future__ import annotations
+
+from typing import TYPE_CHECKING, Any
+
 from takeoff.sections.catalogue import FAMILIES, Table, all_families, load, rows
 from takeoff.sections.grammar import read
-from takeoff.sections.pieces import columns
 from takeoff.sections.section import STEEL_DENSITY, Candidate, Section, SectionMatch, Tolerance
+
+if TYPE_CHECKING:
+    from takeoff.sections.pieces import columns
 
 __all__ = [
     "FAMILIES",
@@ -23,3 +29,12 @@ __all__ = [
     "read",
     "rows",
 ]
+
+
+def __getattr__(name: str) -> Any:
+    """`columns` is for whole lists: a look-up does not import it."""
+    if name == "columns":
+        from takeoff.sections.pieces import columns as found
+
+        return found
+    raise AttributeError(f"module {__name__!r} has no attribute {name!r}")

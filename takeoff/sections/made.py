@@ -17,7 +17,7 @@ from takeoff.sections import shapes, tolerances
 from takeoff.sections.section import STEEL_DENSITY, Form, Section, Tolerance
 
 #: What thickness rule a sheet follows, by the kind of its material.
-SHEET_RULES = {"metal": "plate", None: "plate", "wood": "wood-panel", "glass": "glass"}
+SHEET_RULES = {"metal": "plate", None: "plate", "wood": "wood-panel", "board": "wood-panel", "glass": "glass"}
 
 #: shape -> family, prefix of its designation, product standard, sizes of its cross-section
 BARS: dict[str, tuple[str, str, str, tuple[str, ...]]] = {
@@ -203,7 +203,7 @@ def block(
     if why:
         raise DataError(why)
     values = {t: v for t, v in sizes.items() if v is not None}
-    factor, tolerance = Bounds.exact(1.0), tolerances.rules()["block"][0].tolerance
+    factor, tolerance = Bounds.exact(1.0), tolerances.rules()[solid_rule(kind)][0].tolerance
     volume = surface = centroid = None
     if length is not None and width is not None and height is not None:
         volume = length * width * height * 1e-9
@@ -229,11 +229,17 @@ def block(
     )
 
 
-def block_factor(sizes: tuple[float, ...], kind: str | None = None) -> Bounds:  # noqa: ARG001 (one rule for every block so far)
+def solid_rule(kind: str | None) -> str:
+    """The dimension rule of a solid by the kind of its material; the widest where it is not known."""
+    return {"metal": "solid-metal", "wood": "en336-t1"}.get(kind or "", "block")
+
+
+def block_factor(sizes: tuple[float, ...], kind: str | None = None) -> Bounds:
     """Volume with every size at its least and greatest over the nominal volume."""
     light = heavy = 1.0
+    rule = solid_rule(kind)
     for size in sizes:
-        limits, _ = tolerances.size_limits("block", size, "block")
+        limits, _ = tolerances.size_limits(rule, size, rule)
         light *= limits.light / size
         heavy *= limits.heavy / size
     return Bounds(light, 1.0, heavy)
@@ -252,7 +258,7 @@ def tube(outer: tuple[float, float] | float, wall: float, *, note: str = "") -> 
     else:
         h = b = outer
         d = {"h": h, "tf": wall}
-        shape, name = "round hollow", f"Tube {number(h)}x{number(wall)}"
+        shape, name = "round hollow", f"Tube Ø{number(h)}x{number(wall)}"
     why = shapes.impossible(shape, d)
     if why:
         raise DataError(why)
@@ -267,8 +273,10 @@ def tube(outer: tuple[float, float] | float, wall: float, *, note: str = "") -> 
             return math.pi * thick * (hh - thick)
         return 2 * thick * (hh + bb - 2 * thick)
 
-    # Light keeps the rounded corners (cold formed k = 5 at most), heavy has them sharp.
-    light = (area(0.99, limits.light) - (0 if shape == "round hollow" else 0.8584 * 5 * limits.light**2)) / g.area
+    # Light keeps the rounded corners (cold formed, k = 5 at most), where they fit; heavy has them sharp.
+    thin = area(0.99, limits.light)
+    rounded = shape == "box hollow" and 4 * wall <= b
+    light = (thin - (0.8584 * 5 * limits.light**2 if rounded else 0.0)) / g.area
     heavy = area(1.01, min(limits.heavy, min(h, b) / 2)) / g.area
     form: Form = "prismatic"
     return Section(
@@ -287,4 +295,30 @@ def tube(outer: tuple[float, float] | float, wall: float, *, note: str = "") -> 
         factor=Bounds(min(light, 1.0), 1.0, max(heavy, 1.0)),
         tolerance=tolerance,
         note=note,
+    )
+
+
+def glulam(width: float, depth: float) -> Section:
+    """Glued laminated timber, width × depth in mm, with the limits of EN 390. Raises DataError on sizes that cannot be."""
+    why = check_sizes({"width": width, "depth": depth})
+    if why:
+        raise DataError(why)
+    narrow, tolerance = tolerances.size_limits("en390-width", width, "en390-width")
+    deep, _ = tolerances.size_limits("en390", depth, "en390")
+    g = shapes.geometry("flat", {"b": depth, "tf": width})
+    return Section(
+        designation=f"GL {number(width)}x{number(depth)}",
+        family="GL",
+        shape="board",
+        form="prismatic",
+        source=computed("Geometry of a glulam beam"),
+        dimensions_mm={"thickness": width, "width": depth},
+        standard="EN 14080",
+        needs=("length",),
+        area_mm2=g.area,
+        surface_m2_per_m=g.surface,
+        centroid_mm=(width / 2, depth / 2),
+        factor=Bounds(narrow.light * deep.light / g.area, 1.0, narrow.heavy * deep.heavy / g.area),
+        tolerance=tolerance,
+        material_hint="wood",
     )

@@ -123,8 +123,18 @@ def i_unequal(h: float, b: float, b2: float, tw: float, tf: float, tf2: float) -
     x, web = middle - b / 2, middle - tw / 2
     y = middle - b2 / 2
     return [
-        (y, 0, 0), (y + b2, 0, 0), (y + b2, tf2, 0), (web + tw, tf2, 0), (web + tw, h - tf, 0), (x + b, h - tf, 0),
-        (x + b, h, 0), (x, h, 0), (x, h - tf, 0), (web, h - tf, 0), (web, tf2, 0), (y, tf2, 0),
+        (y, 0, 0),
+        (y + b2, 0, 0),
+        (y + b2, tf2, 0),
+        (web + tw, tf2, 0),
+        (web + tw, h - tf, 0),
+        (x + b, h - tf, 0),
+        (x + b, h, 0),
+        (x, h, 0),
+        (x, h - tf, 0),
+        (web, h - tf, 0),
+        (web, tf2, 0),
+        (y, tf2, 0),
     ]
 
 

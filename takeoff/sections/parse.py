@@ -11,8 +11,9 @@ from takeoff.sections import words
 from takeoff.sections.tokens import MM_PER, Token
 
 _STANDARD_BODIES = frozenset(
-    ("en", "bs", "din", "iso", "nf", "uni", "nen", "pn", "ss-en", "astm", "csa", "jis", "as", "nzs", "asme", "gb", "is")
+    ("en", "bs", "din", "iso", "nf", "uni", "nen", "pn", "ss-en", "astm", "csa", "jis", "as", "nzs", "asme", "gb", "is", "api")
 )
+_STAINLESS = frozenset(("301", "303", "304", "310", "316", "321", "410", "416", "430", "2205", "2507"))
 _STEEL_GRADES = frozenset((185, 195, 220, 235, 250, 260, 275, 300, 320, 350, 355, 390, 420, 450, 460, 500, 550, 620, 690, 890, 960))
 _OLD_GRADES = frozenset((33, 37, 42, 44, 50, 52, 60, 70))
 _WOOD_GRADES = {
@@ -79,6 +80,7 @@ _GRADE_TAILS = frozenset(
         "mlh",
     )
 )
+_CODE_LETTERS = frozenset(("t", "h", "b", "y", "n", "a", "c", "d", "q", "r", "sl", "rl"))
 _APPROXIMATE = frozenset("~≈≥≤<>±")
 #: "(" to ")" only repeats sizes in other units, or is a remark.
 _OPENING, _CLOSING = frozenset("([{"), frozenset(")]}")
@@ -95,12 +97,12 @@ class Chain:
     kg: bool = False
 
     def spread_units(self) -> None:
-        """A bare number takes the unit of the next number that has one (``2x1x0.120in``)."""
-        unit = ""
+        """A bare number takes the unit of the next number that has one (``2x1x0.120in``); a fraction means inches."""
+        unit = "in" if any("/" in t.raw for t in self.numbers) and all(t.unit in ("", "in") for t in self.numbers) else ""
         for index in range(len(self.numbers) - 1, -1, -1):
             token = self.numbers[index]
             if token.unit:
-                unit = token.unit
+                unit = "" if token.unit == "ft" else token.unit  # 2x4x8ft: only the length is in feet
             elif unit:
                 self.numbers[index] = token._replace(unit=unit)
 
@@ -119,6 +121,7 @@ class Parsed:
 
     families: list[tuple[str, str]] = field(default_factory=list)
     kinds: list[str] = field(default_factory=list)
+    named: set[str] = field(default_factory=set)
     properties: set[str] = field(default_factory=set)
     letters: list[str] = field(default_factory=list)
     chains: list[Chain] = field(default_factory=list)
@@ -126,11 +129,19 @@ class Parsed:
     standards: list[str] = field(default_factory=list)
     grades: list[str] = field(default_factory=list)
     mass: tuple[str, float] | None = None
+    schedule: str = ""
+    nominal: tuple[str, Token] | None = None
+    double: bool = False
+    codes: list[tuple[str, str, str]] = field(default_factory=list)
+    gauge: str = ""
+    bent: bool = False
     changed: list[str] = field(default_factory=list)
     bought: list[str] = field(default_factory=list)
     metal: bool = False
+    metals: set[str] = field(default_factory=set)
     wood: bool = False
     glass: bool = False
+    stone: bool = False
     others: list[str] = field(default_factory=list)
     problem: str = ""
 
@@ -149,7 +160,9 @@ class Parser:
         self.out = Parsed()
         self.depth = 0
         self.diameter = False
-        self.solid = any(t.kind == "word" and words.KIND_WORDS.get(t.text) in ("arch", "wedge") for t in tokens)
+        texts = {t.text for t in tokens if t.kind == "word"}
+        self.solid = bool({words.KIND_WORDS.get(t) for t in texts} & words.LETTERED)
+        self.bent = bool(texts & words.BENT) and not self.solid
 
     def peek(self, ahead: int = 1) -> Token | None:
         index = self.at + ahead
@@ -174,7 +187,12 @@ class Parser:
 
     # -- numbers ------------------------------------------------------------------------------------------------------
     def number(self, token: Token) -> None:
-        if len(token.raw) == 6 and token.raw.startswith(("1.0", "1.4")) and not self.out.chains:
+        joined = (sign := self.peek(1)) is not None and sign.kind == "sep"
+        if len(token.raw) == 6 and token.raw.startswith(("1.0", "1.4")) and not joined and not token.unit:
+            self.out.grades.append(token.raw)
+            return
+        follower = self.peek(1)
+        if token.text in _STAINLESS and follower is not None and follower.text in ("stainless", "ss", "inox", "edelstahl"):
             self.out.grades.append(token.raw)
             return
         if self.stated_mass(token):
@@ -199,6 +217,39 @@ class Parser:
         if join is not None and join.kind == "sep" and join.text in ("x", "*") and self.missing_after():
             self.out.problem = f"a number is missing after {join.raw!r}"
         follower, label = self.peek(1), None
+        if follower is not None and len(chain.numbers) == 1 and follower.text in ("ga", "gauge", "gage", "swg") and not token.unit:
+            self.out.gauge = token.text if follower.text != "swg" else f"{token.text} swg"
+            self.at += 1
+            return
+        if follower is not None and len(chain.numbers) == 1 and follower.raw == "M" and follower.glued:
+            beyond = self.peek(2)
+            if beyond is None or not beyond.glued or beyond.kind == "mark":
+                self.out.codes.append(("M", token.text, ""))
+                self.at += 1
+                return
+        if (
+            follower is not None
+            and follower.text in words.NOMINAL_WORDS
+            and len(chain.numbers) == 1
+            and self.out.nominal is None
+            and not self.number_after(2)
+        ):
+            self.out.nominal = (words.NOMINAL_WORDS[follower.text], token)
+            self.at += 1
+            after, size = self.peek(1), self.peek(2)
+            if after is not None and after.kind == "sep" and size is not None and size.kind == "num":
+                self.at += 1
+            return
+        if (
+            len(chain.numbers) == 1
+            and token.text == "2"
+            and not token.unit
+            and follower is not None
+            and follower.glued
+            and follower.text in ("l", "c", "mc", "upn", "upe", "pfc")
+        ):
+            self.out.double = True
+            return
         if follower is not None and follower.kind == "word":
             label = words.LABELS.get(follower.text)
         if (
@@ -275,11 +326,13 @@ class Parser:
         text = token.text
         if text in _STANDARD_BODIES and self.standard(token):
             return
-        if self.grade(token) or self.labelled(token):
+        if self.grade(token) or self.pipe(token) or self.labelled(token) or self.code(token):
             return
         out = self.out
-        if text in words.FAMILY_WORDS:
+        if text in words.FAMILY_WORDS and not self.lone_letter(token):
             family, variant = words.FAMILY_WORDS[text]
+            if text in ("hs", "ha"):
+                out.grades.append({"hs": "G40", "ha": "A500"}[text])
             if not (len(text) == 1 and out.families):
                 if (family, variant) not in out.families:
                     out.families.append((family, variant))
@@ -290,13 +343,26 @@ class Parser:
             out.bought.append(token.raw)
         if text in words.METAL_WORDS:
             out.metal = True
+            out.metals.add(text)
         if text in words.WOOD_WORDS:
             out.wood = True
         if text in words.GLASS_WORDS:
             out.glass = True
-        known = text in words.CHANGED or text in words.BOUGHT or text in words.METAL_WORDS or text in words.WOOD_WORDS
+        if text in words.STONE_WORDS:
+            out.stone = True
+        if text in words.BENT:
+            out.bent = True
+            return
+        known = (
+            text in words.CHANGED
+            or text in words.BOUGHT
+            or text in words.METAL_WORDS
+            or text in words.WOOD_WORDS
+            or text in words.STONE_WORDS
+        )
         if text in words.KIND_WORDS:
             out.kinds.append(words.KIND_WORDS[text])
+            out.named.add(text)
             known = True
         if text in words.PROPERTY_WORDS:
             out.properties.add(words.PROPERTY_WORDS[text])
@@ -306,8 +372,49 @@ class Parser:
         if (len(text) <= 2 and text.upper() in _ALL_VARIANTS) or (text in words.PROPERTY_WORDS and words.PROPERTY_WORDS[text] == "letter"):
             out.letters.append(text.upper())
             known = True
-        if not known and text not in words.LABELS:
+        if not known and text not in words.LABELS and text not in ("head", "heads"):
             out.others.append(token.raw)
+
+    def lone_letter(self, token: Token) -> bool:
+        """A short US family name that no row of sizes follows is some other word."""
+        if words.FAMILY_WORDS[token.text][0] not in words.BEFORE_SIZES:
+            return False
+        number, join = self.peek(1), self.peek(2)
+        if number is not None and number.text == "-":
+            number, join = join, self.peek(3)
+        return not (number is not None and number.kind == "num" and join is not None and join.kind == "sep")
+
+    def pipe(self, token: Token) -> bool:
+        """``SCH 40``, ``SCH40S``, ``STD``, ``DN 100``, ``NPS 4``."""
+        number = self.peek(1)
+        if number is not None and number.text in (".", "-", "no") and token.text in words.SCHEDULE_WORDS:
+            self.at += 1
+            number = self.peek(1)
+        if token.text in words.SCHEDULE_WORDS and number is not None:
+            if number.kind == "num":
+                tail = self.peek(2)
+                self.out.schedule = number.text
+                self.at += 1
+                if tail is not None and tail.text == "s" and tail.glued:
+                    self.out.schedule += "S"
+                    self.at += 1
+                return True
+            if number.text in words.WEIGHT_WORDS:
+                self.out.schedule = words.WEIGHT_WORDS[number.text]
+                self.at += 1
+                return True
+            return False
+        if token.text in words.WEIGHT_WORDS and not self.out.schedule:
+            self.out.schedule = words.WEIGHT_WORDS[token.text]
+            return True
+        if token.text in words.NOMINAL_WORDS and number is not None and number.kind == "num":
+            self.out.nominal = (words.NOMINAL_WORDS[token.text], number)
+            self.at += 1
+            after, size = self.peek(1), self.peek(2)
+            if after is not None and after.kind == "sep" and size is not None and size.kind == "num":
+                self.at += 1  # DN100 x 6.02: the next number is the wall
+            return True
+        return False
 
     def standard(self, token: Token) -> bool:
         """``EN 10219-2``, ``BS EN 10210``, ``ASTM A500``, with a part and a year."""
@@ -319,7 +426,7 @@ class Parser:
         if (
             number is None
             or number.kind != "num"
-            or not (number.value >= 1000 or len(parts) > 1 or token.text in ("din", "iso", "astm", "jis"))
+            or not (number.value >= 1000 or len(parts) > 1 or token.text in ("din", "iso", "astm", "jis", "api") or number.text == "808")
         ):
             return False
         if "x" in (after.text if (after := self.peek(ahead + 1)) is not None and after.glued else ""):
@@ -336,12 +443,19 @@ class Parser:
         ):
             parts.append(part.text)
             self.at += 2
+        tail = self.peek(1)
+        if token.text == "api" and tail is not None and tail.kind == "word" and tail.glued:
+            parts.append(tail.text)
+            self.at += 1
         self.out.standards.append(" ".join(parts))
         return True
 
     def grade(self, token: Token) -> bool:
         """A material grade inside a section text: read past, and kept for a note."""
         number, after = self.peek(1), self.peek(2)
+        if token.text == "aw" and number is not None and number.text == "-":
+            self.at += 1  # EN AW-6082
+            number, after = self.peek(1), self.peek(2)
         if number is None or number.kind != "num" or number.unit not in ("", "m"):
             return False
         joined = after is not None and after.kind == "sep" and after.text in ("x", "*", "/")
@@ -349,8 +463,8 @@ class Parser:
         fits = number.glued and (
             (text == "s" and value in _STEEL_GRADES)
             or (text == "st" and value in _OLD_GRADES)
-            or (text in _WOOD_GRADES and value in _WOOD_GRADES[text] and not self.solid)
-            or (text == "a" and value in _ASTM_GRADES)
+            or (text in _WOOD_GRADES and value in _WOOD_GRADES[text] and not self.solid and not self.bent)
+            or (text == "a" and value in _ASTM_GRADES and not self.solid and not self.bent)
         )
         named = text in ("grade", "gr", "type", "class", "cl", "aisi") or (text in _GRADE_WORDS and value >= 200)
         if joined or not (fits or named):
@@ -370,11 +484,36 @@ class Parser:
         self.out.grades.append(raw)
         return True
 
+    def code(self, token: Token) -> bool:
+        """A letter and a whole number that name a reinforcing bar or a fabric (``T16``, ``A393``, ``Q257A``), or a grade."""
+        number, after = self.peek(1), self.peek(2)
+        if (
+            token.text not in _CODE_LETTERS
+            or number is None
+            or number.kind != "num"
+            or not number.glued
+            or number.unit
+            or "." in number.text
+        ):
+            return False
+        used, tail = 1, ""
+        if after is not None and after.kind == "sep":
+            length = self.peek(3)
+            if length is None or length.kind != "num" or length.mm < 500:
+                return False
+            used = 2  # T16 x 3000: what follows is the length
+        elif after is not None and after.glued and after.text == "a":
+            used, tail = 2, "A"
+        self.out.codes.append((token.text.upper(), number.text, tail))
+        self.at += used
+        return True
+
     def labelled(self, token: Token) -> bool:
         """``t=12``, ``ép. 4``, ``wall 5``, ``OD 19``, and in arch stones and wedges ``R3500``."""
         name = words.LABELS.get(token.text)
-        if token.text in ("l", "c") and self.solid:
-            name = {"l": "length", "c": "chord"}[token.text]
+        if self.solid or self.bent:
+            name = words.SOLID_LETTERS.get(token.text, name) if self.solid else words.BENT_LETTERS.get(token.text, name)
+            name = "angle" if token.text == "angle" else name
         if name is None and token.text == "l" and (sign := self.peek(1)) is not None and sign.text in ("=", ":"):
             name = "length"
         if name is None:
@@ -389,7 +528,8 @@ class Parser:
             return False
         after = self.peek(ahead + 1)
         joined = after is not None and after.kind == "sep" and self.number_after(ahead + 2)
-        if len(token.text) == 1 and token.text != "ø" and not (sign is not None and sign.text in ("=", ":")) and not self.solid:
+        lettered = self.solid or (self.bent and token.text in words.BENT_LETTERS and number.glued and not joined)
+        if len(token.text) == 1 and token.text != "ø" and not (sign is not None and sign.text in ("=", ":")) and not lettered:
             return False
         if (name in ("diameter", "outer diameter") and joined) or (token.text == "ø" and not self.out.chains and not self.solid):
             return False  # Ø48.3x3.2 is a row of sizes; a lone Ø20 too, so that the kind decides
@@ -418,6 +558,11 @@ class Parser:
             self.depth += 1
         elif token.text in _CLOSING:
             self.depth = max(0, self.depth - 1)
+        elif token.text == "#":
+            number, join = self.peek(1), self.peek(2)
+            if number is not None and number.kind == "num" and number.glued and not (join is not None and join.kind == "sep"):
+                self.out.codes.append(("#", number.text, ""))
+                self.at += 1
         elif token.text in _APPROXIMATE:
             self.out.problem = f"{token.raw!r} makes the size approximate"
         elif token.text == "-":

@@ -8,6 +8,8 @@ part:
   `diameter`, else `thickness`; board: `thickness` × `width` (else `height`), each along `length`;
 * sheet: `thickness` (else `height`) over `width` × `length`;
 * block: `length` × `width` × `height`, a missing height taken from `thickness`;
+* cylinder: `diameter` × `length` (else `height`, `thickness`); sphere: `diameter`; triangle: half of `length` × `width` (else
+  `height`) × `thickness`;
 * ring sector and wedge: the face through `width` (else `length`, for a wedge or stone whose width column is so named).
 
 A size that the section text gave wins over the column. Surfaces are the painting surface: sheets and solids all round,
@@ -19,7 +21,9 @@ from __future__ import annotations
 import math
 from typing import TYPE_CHECKING, Any
 
-from takeoff.sections import made, solids, tolerances
+from takeoff.bounds import Bounds
+from takeoff.errors import DataError
+from takeoff.sections import bodies, made, solids, tolerances
 from takeoff.sections.section import Section
 
 if TYPE_CHECKING:
@@ -100,8 +104,8 @@ def columns(
         mass = c.size("length") / 1000 * (section.published_kg_per_m or np.nan)
     elif section.form == "area mass":
         width, length = c.size("width"), c.size("length")
+        # The surface of a grating or a fabric is not told by its plan.
         mass = width * length * 1e-6 * (section.kg_per_m2 or np.nan)
-        surface = 2 * width * length
     elif section.form == "sheet":
         volume, surface, light, heavy = _sheet(c, section, material_kind)
     elif section.form == "solid":
@@ -127,6 +131,7 @@ def _sheet(c: _Columns, section: Section, kind: str | None) -> tuple[Floats, Flo
     thickness = c.size("thickness", "height")
     width, length = c.size("width"), c.size("length")
     light, heavy = c.limits(rule, rule, thickness)
+    light, heavy = light * section.factor.light, heavy * section.factor.heavy
     return thickness * width * length, 2 * (width * length + thickness * (width + length)), light, heavy
 
 
@@ -139,6 +144,9 @@ def _solid(c: _Columns, section: Section) -> tuple[Floats, Floats, Floats, Float
             np.full(c.n, section.factor.light),
             np.full(c.n, section.factor.heavy),
         )
+    sizes: tuple[Floats, ...]
+    if section.shape in bodies.BY_COLUMNS:
+        return _body(c, section)
     if section.shape == "block":
         sizes = (c.size("length"), c.size("width"), c.size("height", "thickness"))
         length, width, height = sizes
@@ -149,9 +157,31 @@ def _solid(c: _Columns, section: Section) -> tuple[Floats, Floats, Floats, Float
         width = c.size("width", "length")
         sizes = (np.full(c.n, around[0]), np.full(c.n, around[1]), width)
         volume, surface = area * width, 2 * area + perimeter * width
-    light, heavy = np.ones(c.n), np.ones(c.n)
+    rule = section.tolerance.rule if section.tolerance is not None else "block"
+    light, heavy = np.full(c.n, section.factor.light), np.full(c.n, section.factor.heavy)
     for size in sizes:
-        low, high = c.limits("block", "block", size)
+        low, high = c.limits(rule, rule, size)
+        light, heavy = light * low, heavy * high
+    return volume, surface, light, heavy
+
+
+def _body(c: _Columns, section: Section) -> tuple[Floats, Floats, Floats, Floats]:
+    """Cylinders, spheres and triangles whose sizes stand in the row."""
+    np = c.np
+    if section.shape == "sphere":
+        diameter = c.size("diameter")
+        volume, surface, sizes = math.pi * diameter**3 / 6, math.pi * diameter**2, (diameter, diameter, diameter)
+    elif section.shape == "cylinder":
+        diameter, height = c.size("diameter"), c.size("length", "height", "thickness")
+        volume, surface = math.pi * diameter**2 / 4 * height, math.pi * diameter * (diameter / 2 + height)
+        sizes = (diameter, diameter, height)
+    else:
+        a, b, t = c.size("length"), c.size("width", "height"), c.size("thickness")
+        volume, surface, sizes = a * b * t / 2, a * b + t * (a + b + np.hypot(a, b)), (a, b, t)
+    rule = section.tolerance.rule if section.tolerance is not None else "block"
+    light, heavy = np.full(c.n, section.factor.light), np.full(c.n, section.factor.heavy)
+    for size in sizes:
+        low, high = c.limits(rule, rule, size)
         light, heavy = light * low, heavy * high
     return volume, surface, light, heavy
 
@@ -184,3 +214,23 @@ def _bar(c: _Columns, section: Section, kind: str | None) -> tuple[Floats, Float
         light, heavy = low**2, high**2
     length = c.size("length")
     return area * length, around * length, light, heavy
+
+
+def length_lost_mm(section: Section, angle_deg: float) -> Bounds:
+    """Length in mm that one bevelled end takes off a piece measured over its long points, on the section's axis.
+
+    `angle_deg` is from square, in the plane of the web (of the width, for flats, boards and plates). The cut takes
+    tan(angle) × the distance from the centroid to the long face. Which face is long is not told: of an unsymmetrical
+    section light and heavy of the loss are the two faces', nominal their mean. Raises DataError where the angle is 85°
+    or more, or the section has no such depth.
+    """
+    if not abs(angle_deg) < 85:
+        raise DataError(f"a cut of {made.number(abs(angle_deg))} degrees from square is no end cut")
+    d = section.dimensions_mm
+    depth = d.get("h") or d.get("width") or d.get("diameter") or d.get("b")
+    if depth is None or section.form not in ("prismatic", "sheet"):
+        raise DataError(f"{section.designation} has no depth to cut across")
+    below = section.centroid_mm[1] if "h" in d and section.centroid_mm is not None else depth / 2
+    slope = abs(math.tan(math.radians(angle_deg)))
+    faces = (below * slope, (depth - below) * slope)
+    return Bounds(min(faces), sum(faces) / 2, max(faces))

@@ -28,6 +28,8 @@ SHAPES: dict[str, tuple[str, ...]] = {
     "square bar": ("b",),
     "round bar": ("b",),
     "hexagon": ("b",),
+    "board": ("b", "tf"),
+    "mesh": (),
 }
 
 
@@ -68,7 +70,7 @@ def impossible(shape: str, d: Mapping[str, float]) -> str:
     elif shape.startswith(("I", "channel", "tee")):
         flanges = tf if shape == "tee" else tf + d.get("tf2", tf)
         if flanges >= h:
-            return f"flanges of {tf:g} mm fill the depth of {h:g} mm"
+            return f"flanges fill the depth of {h:g} mm"
         if tw >= b:
             return f"a web of {tw:g} mm is no less than the width of {b:g} mm"
     return ""

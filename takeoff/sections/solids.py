@@ -1,6 +1,6 @@
-"""Solids by their sizes: arch stones (ring sectors) and wedges. Rank 2.
+"""Solids by their sizes: arch stones (ring sectors), wedges, and the bodies of elementary geometry. Rank 2.
 
-Both are a plane face of known area carried through a width: volume = face × width; surface = two faces and the
+Arch stones and wedges are a plane face of known area carried through a width: volume = face × width; surface = two faces and the
 perimeter × width. Bounds: every size ±10 mm or ±1 %, whichever is larger (the planning figure for precast and stone).
 """
 
@@ -33,6 +33,7 @@ def _carried(
     width_mm: float | None,
     centroid_mm: tuple[float, float],
     source: str,
+    kind: str | None,
 ) -> Section:
     """A face carried through `width_mm` (None: the row must give it)."""
     volume = surface = centroid = None
@@ -44,7 +45,7 @@ def _carried(
         volume = area * width_mm * 1e-9
         surface = (2 * area + perimeter * width_mm) * 1e-6
         centroid = (*centroid_mm, width_mm / 2)
-        factor = made.block_factor((*sizes, width_mm))
+        factor = made.block_factor((*sizes, width_mm), kind)
         dimensions["width"] = width_mm
         designation += ("x" if shape == "wedge" else " W") + made.number(width_mm)
     return Section(
@@ -59,12 +60,18 @@ def _carried(
         volume_m3=volume,
         surface_m2=surface,
         factor=factor,
-        tolerance=tolerances.rules()["block"][0].tolerance,
+        tolerance=tolerances.rules()[made.solid_rule(kind)][0].tolerance,
     )
 
 
 def arch_stone(
-    inner_radius: float, depth: float, *, angle_deg: float | None = None, chord: float | None = None, width: float | None = None
+    inner_radius: float,
+    depth: float,
+    *,
+    angle_deg: float | None = None,
+    chord: float | None = None,
+    width: float | None = None,
+    kind: str | None = None,
 ) -> Section:
     """A ring sector: inner radius, radial depth, angle or chord of the inner face, width along the barrel; mm and degrees.
 
@@ -95,10 +102,11 @@ def arch_stone(
         width,
         (outer * math.sin(angle / 2), middle - inner_radius * math.cos(angle / 2)),
         "Geometry of a ring sector",
+        kind,
     )
 
 
-def wedge(length: float, thick: float, thin: float, width: float | None = None) -> Section:
+def wedge(length: float, thick: float, thin: float, width: float | None = None, kind: str | None = None) -> Section:
     """A wedge: length × thick end / thin end × width, mm. The face is a right trapezium with the thick end at the left."""
     why = made.check_sizes({"length": length, "thick end": thick, "thin end": thin, "width": width})
     if why:
@@ -114,4 +122,5 @@ def wedge(length: float, thick: float, thin: float, width: float | None = None) 
         width,
         (x, y),
         "Geometry of a wedge",
+        kind,
     )

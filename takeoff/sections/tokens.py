@@ -109,7 +109,7 @@ class Token(NamedTuple):
     @property
     def mm(self) -> float:
         """In mm, a bare number taken as mm."""
-        return self.value * MM_PER[self.unit or "mm"]
+        return round(self.value * MM_PER[self.unit or "mm"], 6)
 
 
 def fold(word: str) -> str:
@@ -148,6 +148,10 @@ def _number(raw: str) -> tuple[str, bool] | None:
         return canonical(raw), False
     if len(signs) == 1:
         is_open = len(groups[1]) == 3 and 1 <= len(groups[0]) <= 3 and groups[0] != "0"
+        if is_open and signs[0] == ".":
+            # 9.525 and 28.575 are fractions of an inch in mm, and no thousands.
+            parts = float(f"{groups[0]}.{groups[1]}") / 25.4 * 64
+            is_open = abs(parts - round(parts)) > 0.002
         return canonical(f"{groups[0]}.{groups[1]}"), is_open
     # 1,200.5 or 1.200,5: the last, different sign parts the decimals; 1.200.000 is all thousands.
     thousands = groups[1:-1] if signs[-1] != signs[0] else groups[1:]
@@ -178,12 +182,18 @@ def cut(text: str) -> list[Token] | None:
                 glued = True
         else:
             rough.append(Token("sep" if raw in _SEPARATORS else "mark", raw, raw, glued=glued))
+        if glued and len(rough) > 2 and raw.isdecimal() and rough[-2].raw == "." and rough[-3].kind == "sep":
+            # x.25 leaves out the nought
+            text = canonical(f"0.{rough[-1].raw}")
+            rough[-2:] = [Token("num", text, f".{rough[-1].raw}", float(text), "", False, rough[-2].glued)]
     return _units(_fractions(rough))
 
 
 def _split_word(raw: str, after_number: bool) -> list[str]:
     """``mmx`` after a number is a unit and a separator, ``xL`` a separator and a word, ``mmØ`` a unit and a sign."""
     small = raw.lower()
+    if small in ("nbx", "dnx"):
+        return [raw[:-1], raw[-1]]
     if not after_number or len(raw) == 1:
         return [raw]
     for tail in ("x", "ø"):
@@ -251,4 +261,5 @@ def _units(tokens: list[Token]) -> list[Token]:
         if token.text == "." and before is not None and before.kind == "num" and before.unit:
             continue  # the full stop of "in."
         out.append(token)
-    return out
+    # A fraction without a unit is inches: nobody writes 3/8 of a millimetre.
+    return [t._replace(unit="in") if t.kind == "num" and "/" in t.raw and not t.unit else t for t in out]

@@ -40,26 +40,63 @@ _FAMILIES: dict[str, str] = _by_word(
         "HP": "hp",
         "UPN": "upn unp",
         "UPE": "upe",
-        "L": "l rsa ea ua",
+        "L": "l rsa ea ua uka",
         "T": "t",
-        "SHS": "shs",
-        "RHS": "rhs",
+        "SHS": "shs qro",
+        "RHS": "rhs rro",
         "CHS": "chs",
         "FL": "fl fb fla",
         "PL": "pl plt bl",
         "RD": "rd rb",
         "SQ": "sq sb",
         "HEX": "hex",
+        "H": "h",
+        "HW": "hw",
+        "HM": "hm",
+        "HN": "hn",
+        "HT": "ht",
+        "ISMB": "ismb",
+        "ISLB": "islb",
+        "ISJB": "isjb",
+        "ISWB": "iswb",
+        "ISHB": "ishb",
+        "ISSC": "issc",
+        "ISMC": "ismc",
+        "ISMPC": "ismpc",
+        "ISLC": "islc",
+        "ISLC P": "islcp",
+        "ISJC": "isjc",
+        "W": "w",
+        "M": "m",
+        "S": "s",
+        "C": "c",
+        "MC": "mc",
+        "WT": "wt",
+        "MT": "mt",
+        "ST": "st",
+        "HSS": "hss hs ha",
+        "WWF": "wwf",
+        "WWT": "wwt",
+        "WRF": "wrf",
     }
 )
 #: word -> (family, variant)
 FAMILY_WORDS: dict[str, tuple[str, str]] = {word: (meaning.split(" ")[0], meaning.partition(" ")[2]) for word, meaning in _FAMILIES.items()}
+
+#: Families whose short name means them only before a row of sizes (``W12x50``, but not ``S235`` or a lone ``C``).
+BEFORE_SIZES: frozenset[str] = frozenset(("W", "M", "S", "C", "MC", "MT", "ST", "WT", "H"))
+
+#: Words of a pipe's nominal size and schedule.
+SCHEDULE_WORDS: frozenset[str] = frozenset(("sch", "sched", "schedule", "sh"))
+WEIGHT_WORDS: dict[str, str] = {"std": "STD", "xs": "XS", "xh": "XS", "xxs": "XXS", "xxh": "XXS", "xstrong": "XS"}
+NOMINAL_WORDS: dict[str, str] = {"dn": "DN", "nb": "DN", "nps": "NPS"}
 
 #: Variant letters that may stand apart from the family's word, by family.
 VARIANTS: dict[str, frozenset[str]] = {
     "IPE": frozenset(("A", "AA", "O", "V", "R")),
     "HE": frozenset(("A", "AA", "B", "M", "C")),
     "HL": frozenset(("A", "AA", "B", "M", "R")),
+    "ISLC": frozenset(("P",)),
 }
 
 #: word -> kind: a group of families or a made shape.
@@ -78,7 +115,8 @@ KIND_WORDS: dict[str, str] = _by_word(
             "kokerbuis"
         ),
         "box": "box",
-        "round tube": "pipe pipes rohr rohre rundrohr stahlrohr buis buizen rura rury ror cano rondbuis",
+        "round tube": "rohr rohre rundrohr stahlrohr buis buizen rura rury ror cano rondbuis",
+        "pipe": "pipe pipes piping",
         "square tube": "quadratrohr vierkantrohr vierkantbuis",
         "rectangular tube": "rechteckrohr",
         "flat": (
@@ -91,7 +129,10 @@ KIND_WORDS: dict[str, str] = _by_word(
         ),
         "sheet": "sheet sheets feinblech blachy",
         "pane": "pane panes glass glas glazing scheibe verre vitre vidrio vetro szklo vidro",
-        "panel": "panel panels plywood ply osb mdf chipboard plasterboard hardboard multiplex sperrholz",
+        "panel": (
+            "panel panels plywood ply osb mdf chipboard plasterboard "
+            "hardboard multiplex sperrholz melamine hdf fibreboard fiberboard particleboard spanplatte"
+        ),
         "bar": "bar bars stab barre barra barras staaf pret stang varao billet fer",
         "rod": "rod rods rundstahl rundeisen rundstab rondstaal rundstang shaft welle eixo",
         "hexagon": "hexagon hexagonal sechskant hexagono esagono zeskant sexkant sechskantstahl",
@@ -103,8 +144,27 @@ KIND_WORDS: dict[str, str] = _by_word(
         ),
         "board": (
             "board boards plank planks decking batten battens brett bretter bohle planche tabla tavola deska deski bradda reglar regel "
-            "rafter rafters purlin purlins stud studs scantling kantholz timber lumber sawn"
+            "rafter rafters purlin purlins stud studs scantling kantholz timber lumber sawn leiste leisten holzleiste holzleisten"
         ),
+        "cylinder": "cylinder cylinders zylinder cylindre cilindro cilinder",
+        "disc": "disc discs disk disks disque disco schijf ronde",
+        "ring": "ring rings annulus anneau anillo anello",
+        "cone": "cone cones frustum kegel kegelstumpf cono stozek",
+        "pyramid": "pyramid pyramide piramide",
+        "sphere": "sphere spheres ball balls kugel esfera sfera bol kula",
+        "cap": "dome calotte kugelkappe",
+        "triangle": "gusset gussets triangle triangles dreieck gousset cartabon fazzoletto",
+        "prism": "prism prisma prisme",
+        "volume": "volume volumen",
+        "head": "torispherical elliptical ellipsoidal hemispherical dished klopper klopperboden korbbogen korbbogenboden",
+        "cable": "catenary",
+        "rebar": (
+            "rebar rebars reinforcement betonstahl bewehrung armature armatures armatura ferralla corrugado vergalhao wapening "
+            "armering armierung"
+        ),
+        "glulam": "gl glulam bsh brettschichtholz lamellenholz limtrae limtra lamelle bilama",
+        "tread": "chequer checker checkered chequered riffelblech tranenblech",
+        "fastener": "bolt bolts screw screws schraube schrauben vis tornillo vite bout boulon boulons perno nut nuts mutter washer washers",
         "wedge": "wedge keil",
         "arch": "voussoir voussoirs arch arched archstone",
     }
@@ -145,18 +205,52 @@ LABELS: dict[str, str] = _by_word(
         "diameter": "ø dia diam diameter durchmesser",
         "radius": "r radius rayon",
         "depth": "d",
+        "rise": "rise",
+        "sag": "sag",
+        "span": "span",
+        "chord": "chord",
+        "skirt": "skirt",
         "angle": "a deg",
     }
+)
+
+#: Single letters beside a size, where a solid or a bent member is told (``R3500``).
+SOLID_LETTERS: dict[str, str] = {
+    "r": "radius",
+    "d": "depth",
+    "a": "angle",
+    "c": "chord",
+    "w": "width",
+    "h": "height",
+    "t": "thickness",
+    "l": "length",
+    "s": "skirt",
+    "f": "rise",
+}
+BENT_LETTERS: dict[str, str] = {"r": "radius", "a": "angle", "c": "chord", "f": "rise"}
+
+#: Words that a member is bent to an arc.
+BENT: frozenset[str] = frozenset("bent curved arc arcs gebogen cintre cintree curvado curvato gebogener gewalzt gekromd giety bojd".split())
+
+#: Kinds whose sizes may carry a letter of their own (``R3500``, ``D300 H1200``).
+LETTERED: frozenset[str] = frozenset(
+    ("arch", "wedge", "cylinder", "disc", "ring", "cone", "pyramid", "sphere", "cap", "triangle", "head", "cable")
 )
 
 #: Words that change what the piece is, so that the section's own mass would be wrong.
 CHANGED: frozenset[str] = frozenset(
     (
-        "built caillebotis castellated cellular checker checkered chequer chequered composite corrugated double expanded fabricated "
+        "built caillebotis castellated cellular composite corrugated double expanded fabricated "
         "gitterrost grating half halved haunch haunched hollowcore honeycomb insulated laced laminated lip lipped lochblech louvre mesh "
-        "pair perforated profiled riffel sandwich slotted split t-slot tapered threaded tranen trapezoidal tread twin wellblech"
+        "pair perforated slot profiled sandwich slotted split t-slot tapered threaded trapezoidal tread twin wellblech"
     ).split()
 )
+
+#: Words beside a bare lumber size that leave it one.
+LUMBER_WORDS: frozenset[str] = frozenset("pt rough sawn s4s s2s lvl treated pressure kd spf df hf syp select structural no psl".split())
+
+#: Words that make a diameter the inner one.
+INNER_WORDS: frozenset[str] = frozenset("binnen inner inside innen interieur interior int".split())
 
 #: Bought-out things that are told by their own mass, not by sizes.
 BOUGHT: frozenset[str] = frozenset(
@@ -164,7 +258,9 @@ BOUGHT: frozenset[str] = frozenset(
         "anchor anchors assembly bearing bearings bolt bolts boulon boulons bout bracket cable chain clamp clip eyebolt fabric film "
         "fixing fixings gitterrost grating grout hinge kit lamp lock luminaire membrane mesh motor mutter nail nails nipple nut nuts "
         "paint perno rivet rivets roost rope schraube schrauben screw screws sealant set sets shackle sign studbolt tornillo tray unit "
-        "valve vis vite washer washers"
+        "valve valves vis vite washer washers flange flanges flansch flansche bride brides brida bridas flangia flens kolnierz flans "
+        "elbow elbows coude codo ellbogen reducer reduzierung absperrklappe ventil kugelhahn pump pumps pumpe pompe bomba pompa "
+        "schraubensatz schraubensatze garnitur"
     ).split()
 )
 
@@ -178,8 +274,17 @@ METAL_WORDS: frozenset[str] = frozenset(
 #: Words that say the piece is of wood.
 WOOD_WORDS: frozenset[str] = frozenset(
     (
-        "ash azobe beech cedar chene chipboard douglas eiche ekki elm fichte fir glulam greenheart hardwood iroko kiefer larch larche mdf "
+        "holz holzleiste holzleisten ash azobe beech cedar chene chipboard douglas eiche "
+        "ekki elm fichte fir glulam greenheart hardwood iroko kiefer larch larche mdf "
         "multiplex oak osb pine pino ply plywood redwood roble sapele sapin softwood sperrholz spruce teak timber whitewood wood"
+    ).split()
+)
+#: Words that say the piece is of stone or concrete.
+STONE_WORDS: frozenset[str] = frozenset(
+    (
+        "granite sandstone limestone marble slate basalt gneiss travertine "
+        "portland yorkstone concrete precast granit sandstein kalkstein marmor "
+        "beton betong granito marmo calcaire gres hormigon piedra pierre pietra"
     ).split()
 )
 #: Words that say the piece is of glass.

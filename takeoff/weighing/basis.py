@@ -15,7 +15,7 @@ class Basis:
     nominal : where the nominal figure comes from.
     bounds_rule : how light and heavy follow, with their figures.
     bounds : where those come from.
-    stated : the mass is the list's own statement.
+    stated : the mass is the list's own statement. own : a figure is from the user's own table. weighed : from a scale.
     """
 
     rule: str
@@ -24,10 +24,12 @@ class Basis:
     bounds: Source
     stated: bool = False
     own: bool = False
+    weighed: bool = False
 
     def as_record(self) -> dict[str, str | bool]:
         return {
             "rule": self.rule, **self.nominal.as_record(), "bounds_rule": self.bounds_rule,
             "bounds_title": self.bounds.title, "bounds_clause": self.bounds.clause,
             "bounds_evidence": self.bounds.evidence, "stated": self.stated, "own_table": self.own,
+            "weighed": self.weighed,
         }

@@ -8,7 +8,6 @@ from takeoff import materials, sections
 from takeoff.bounds import Bounds
 from takeoff.errors import InputError
 from takeoff.findings import Finding
-from takeoff.lists.recognise import DEFAULT_STEEL
 from takeoff.weighing.basis import Basis
 from takeoff.weighing.rule import basis_of_mass, rule_for
 from takeoff.weighing.wood import THICK_MM, says_wet, wood_spread
@@ -59,7 +58,7 @@ def weigh_one(section_text: str, length_mm: float | None, material_text: str | N
     if material is None and section.form in ("prismatic", "sheet", "solid"):
         if not section.is_steel_standard:
             raise InputError("this section needs a material", read=section_text, right="--material, such as --material S355")
-        material = materials.by_key(DEFAULT_STEEL)
+        material = materials.by_key(materials.DEFAULT_STEEL)
         findings.append(Finding("assumed", "material-absent", "no material named: taken as carbon steel", right="--material"))
     return _weigh(section, material, length, quantity, tuple(findings), (section_text, material_text))
 

@@ -1,4 +1,4 @@
-"""Sums over weighed members: in all and by material, section, assembly, phase and finish; every sum says what it lacks.
+"""Sums over weighed members: in all and by material, section, assembly, pick, phase and finish; every sum says what it lacks.
 
 Sums are of unrounded figures. The likely range follows `takeoff.bounds.likely_range` over (section, material) groups.
 """
@@ -9,16 +9,16 @@ from dataclasses import dataclass, field
 from typing import TYPE_CHECKING, Any
 
 from takeoff.bounds import Bounds, likely_range
+from takeoff.weighing.additions import KINDS
+from takeoff.weighing.counted import EVERYTHING, with_open_rows
 
 if TYPE_CHECKING:
     import pandas as pd
 
-#: what no schedule of this version counts, in the order a checker reads it
-NOT_COUNTED = ("welds", "bolts", "finish", "contents", "temporary steel")
 #: members column -> the name that stands for a blank there
 GROUPINGS = {
-    "material": "(no material)", "section": "(no section)", "assembly": "(no assembly)", "phase": "(no phase)",
-    "finish": "(no finish named)",
+    "material": "(no material)", "section": "(no section)", "assembly": "(no assembly)", "pick": "(no pick)",
+    "phase": "(no phase)", "finish": "(no finish named)",
 }
 
 
@@ -40,7 +40,10 @@ class GroupTotal:
 
 @dataclass(frozen=True, slots=True)
 class Totals:
-    """The whole list's sums. `quantity` counts weighed pieces; volume (m³) and surface (m²) are sums over those known."""
+    """The whole list's sums. `quantity` counts weighed pieces; volume (m³) and surface (m²) are sums over those known.
+
+    `bare_kg` and `additions` (by kind) add up to `mass_kg`.
+    """
 
     quantity: int
     mass_kg: Bounds
@@ -49,6 +52,8 @@ class Totals:
     surface_m2: float
     not_weighed: int
     not_counted: tuple[str, ...]
+    bare_kg: Bounds
+    additions: dict[str, Bounds]
     groups: dict[str, list[GroupTotal]] = field(default_factory=dict)
 
     def as_record(self) -> dict[str, Any]:
@@ -56,25 +61,29 @@ class Totals:
             "quantity": self.quantity, "mass_kg": self.mass_kg.as_record(),
             "likely_kg": {"low": self.likely_kg[0], "high": self.likely_kg[1]}, "volume_m3": self.volume_m3,
             "surface_m2": self.surface_m2, "not_weighed": self.not_weighed, "not_counted": list(self.not_counted),
+            "bare_kg": self.bare_kg.as_record(),
+            "additions": [{"kind": kind, "mass_kg": mass.as_record()} for kind, mass in self.additions.items()],
         }
         for name in GROUPINGS:
             record[f"by_{name}"] = [g.as_record() for g in self.groups.get(name, [])]
         return record
 
 
-def total_up(members: pd.DataFrame, not_counted: tuple[str, ...] = NOT_COUNTED) -> Totals:
-    """Totals of a weighed members frame (see `takeoff.weighing.masses.weigh` for its columns)."""
+def total_up(members: pd.DataFrame, not_counted: tuple[str, ...] = EVERYTHING) -> Totals:
+    """Totals of a weighed members frame (see `takeoff.weighing.masses.Weighed` for its columns); `not_counted` of its run."""
     weighed = members["status"].ne("not weighed")
     counted = members[weighed]
     pieces = counted["quantity"]
     return Totals(
         quantity=int(pieces.sum()),
         mass_kg=_bounds(counted),
-        likely_kg=likely_range(_groups_for_likely(counted)),
+        likely_kg=likely_range(likely_groups(counted)),
         volume_m3=float((counted["volume_m3"] * pieces).sum()),
         surface_m2=float((counted["surface_m2"] * pieces).sum()),
         not_weighed=int((~weighed).sum()),
-        not_counted=not_counted,
+        not_counted=with_open_rows(not_counted, members),
+        bare_kg=_of_pieces(counted, "bare"),
+        additions={kind: _of_pieces(counted, f"add_{kind}") for kind in KINDS if f"add_{kind}_id" in counted},
         groups={name: by(members, name, blank) for name, blank in GROUPINGS.items()},
     )
 
@@ -99,7 +108,14 @@ def _bounds(counted: pd.DataFrame) -> Bounds:
     return Bounds(light, nominal, heavy)
 
 
-def _groups_for_likely(counted: pd.DataFrame) -> list[Bounds]:
+def _of_pieces(counted: pd.DataFrame, part: str) -> Bounds:
+    """A part of each piece's mass, over all pieces."""
+    light, nominal, heavy = (float((counted[f"{part}_{word}_kg"] * counted["quantity"]).sum()) for word in ("light", "nominal", "heavy"))
+    return Bounds(light, nominal, heavy)
+
+
+def likely_groups(counted: pd.DataFrame) -> list[Bounds]:
+    """The summed bounds of each (section, material) group of weighed members: what errs together."""
     if counted.empty:
         return []
     # Rows without a section of ours (stated masses) have nothing that ties them together but their text.

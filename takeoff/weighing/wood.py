@@ -35,10 +35,11 @@ _WET = re.compile(
 
 @dataclass(frozen=True, slots=True)
 class WoodSpread:
-    """The density spread to weigh a wood by, and in words why its heavy bound is what it is."""
+    """The density spread to weigh a wood by, and in words why; `moisture_open` where nobody said how wet it is."""
 
     spread: Spread
     why: str
+    moisture_open: bool = True
 
 
 def says_wet(*texts: str | None) -> bool:
@@ -52,7 +53,7 @@ def wood_spread(material: Material, *, wet_text: bool, thick: bool, moisture_per
         return None
     if moisture_percent is not None:
         found = materials.wood_density(material, moisture_percent)
-        return WoodSpread(found.density, f"at {moisture_percent:g} % moisture, as the job file says")
+        return WoodSpread(found.density, f"at {moisture_percent:g} % moisture, as the job file says", moisture_open=False)
     dry = material.density
     if material.family not in _SOLID_LIKE:
         if not material.key.startswith(_GLUED):

@@ -9,8 +9,8 @@ from __future__ import annotations
 from pathlib import Path
 from typing import TYPE_CHECKING
 
-from takeoff.reports.workbook import basis, lists, picks, schedule, summary
-from takeoff.reports.workbook.sheet import SHEETS, Book
+from takeoff.reports.workbook import basis, lists, picks, schedule, summary, temperatures
+from takeoff.reports.workbook.sheet import PICKS, SHEETS, Book
 
 if TYPE_CHECKING:
     from takeoff.pipeline import Result
@@ -27,11 +27,15 @@ def write_workbook(result: Result, path: str | Path) -> None:
     with Book(path, result, many=len(result.members) > MANY_ROWS) as book:
         for name in SHEETS:
             book.add(name)
+            if name == PICKS and result.temperatures is not None:
+                book.add(temperatures.TEMPERATURES)
         # The summary refers to all others and is written last; the schedule refers to bases that are only laid out yet.
         plan = schedule.plan_for(result)
         bases = basis.lay_out(book, result, plan)
         schedule.write(book, result, plan, bases.basis_rows)
         pick_cells = picks.write(book, result, plan)
+        if result.temperatures is not None:
+            temperatures.write(book, result)
         lists.write_not_weighed(book, result)
         lists.write_assumptions(book, result)
         bases.write()

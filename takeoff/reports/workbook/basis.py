@@ -6,7 +6,8 @@ from collections.abc import Callable
 from dataclasses import dataclass, field
 from typing import TYPE_CHECKING, Any
 
-from takeoff.reports.wording import EVIDENCE_MEANS, STATUS_MEANS, listed, shown
+from takeoff.reports import added
+from takeoff.reports.wording import EVIDENCE_MEANS, STATUS_MEANS, shown
 from takeoff.reports.workbook.sheet import BASIS, SCHEDULE, Book, Sheet, letters
 
 if TYPE_CHECKING:
@@ -50,7 +51,33 @@ def lay_out(book: Book, result: Result, plan: Plan) -> Layout:
     for number, basis in enumerate(result.bases):
         layout.basis_rows.append(len(lines))
         lines.append(_basis(sheet, plan, (number, basis), uses.get(number, 0)))
+    if result.added_bases:
+        lines += [_nothing, *_additions(sheet, result)]
     return layout
+
+
+def _additions(sheet: Sheet, result: Result) -> list[Line]:
+    """How each addition was found, numbered as in the schedule."""
+
+    def head(row: int) -> None:
+        sheet.text(row, 0, "Basis no.", "head")
+        sheet.texts(row, 1, ("Rule of what is added to one piece", "Source", "Clause or table", "Evidence"), "head")
+        sheet.texts(row, 5, ("Rule of light and heavy", "Source", "Clause or table", "Evidence"), "head")
+        sheet.text(row, 9, "Rows", "head right")
+
+    lines = [_heading(sheet, "Additions: finish, welds, bolts, contents and the like, numbered as in the weight schedule"), head]
+    for number, (basis, rows) in enumerate(zip(result.added_bases, added.uses(result), strict=True)):
+        lines.append(_addition(sheet, number, basis, rows))
+    return lines
+
+
+def _addition(sheet: Sheet, number: int, basis: Basis, rows: int) -> Line:
+    def line(row: int) -> None:
+        sheet.text(row, 0, f"A{number + 1}", "cell")
+        sheet.texts(row, 1, (basis.rule, *_source(basis.nominal), basis.bounds_rule, *_source(basis.bounds)), "cell wrap")
+        sheet.number(row, 9, rows, "whole")
+
+    return line
 
 
 def _nothing(row: int) -> None:
@@ -153,7 +180,7 @@ def _parts(account: Any) -> str:
 
 
 def _cautions(sheet: Sheet, result: Result) -> list[Line]:
-    missing = f"Not counted in any figure: {listed(shown(w) for w in result.totals.not_counted)}."
+    missing = f"Not counted in any figure: {added.not_counted(result)}."
     return [_heading(sheet, "Cautions"), *(_paragraph(sheet, shown(c)) for c in result.cautions), _paragraph(sheet, missing)]
 
 
@@ -205,7 +232,7 @@ def _bases_top(sheet: Sheet, result: Result) -> list[Line]:
 
 def _basis(sheet: Sheet, plan: Plan, numbered: tuple[int, Basis], rows: int) -> Line:
     number, basis = numbered
-    marks = [m for m, is_so in (("stated in the list", basis.stated), ("own table", basis.own)) if is_so]
+    marks = [m for m, is_so in (("stated in the list", basis.stated), ("own table", basis.own), ("weighed", basis.weighed)) if is_so]
     rule = basis.rule + (f" ({', '.join(marks)})" if marks else "")
 
     def line(row: int) -> None:

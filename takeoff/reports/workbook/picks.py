@@ -7,13 +7,14 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
-from takeoff.reports import rounding
+from takeoff.reports import picksheet, rounding
 from takeoff.reports.wording import counted, listed, shown
 from takeoff.reports.workbook.schedule import Names, Plan
 from takeoff.reports.workbook.sheet import PICKS, Book, Sheet, cell_text, place
 
 if TYPE_CHECKING:
-    from takeoff.lifting.pick import Factor, Pick
+    from takeoff.lifting.factors import Factor
+    from takeoff.lifting.pick import Pick
     from takeoff.pipeline import Result
 
 _COLUMNS = 6
@@ -38,8 +39,8 @@ def write(book: Book, result: Result, plan: Plan) -> list[PickCells]:
     sheet.text(0, 0, f"Picks: {book.title}", "title")
     sheet.text(1, 0, book.subtitle or None, "subtitle")
     sheet.long_text(
-        2, (0, _COLUMNS - 1), "Each pick is taken at its heavy mass. Plan on the lines marked “rounded up”. No position, "
-        "lifting point or crane is looked at here, so the verdict stays unknown.", "quiet wrap",
+        2, (0, _COLUMNS - 1), "Each pick is taken at its heavy mass. Plan on the lines marked “rounded up”. A verdict is given "
+        "only where lifting points or a crane are named; else it stays unknown.", "quiet wrap",
     )
     row = 4
     if not result.picks:
@@ -77,16 +78,22 @@ def _pick(sheet: Sheet, names: Names, pick: Pick, plan: Plan, row: int) -> tuple
         _mass(sheet, row, _sum_of_rows(names, pick, plan, word), kg(getattr(pick.mass_kg, word)))
         row += 1
 
-    first, heavy_row, static_row = row, row, None
+    if pick.build_up[0].kg != pick.mass_kg.heavy:
+        # A weighing took the members' place: their own heavy mass still stands for the summary.
+        _line(sheet, row, "heavy mass of the members", from_rows)
+        _mass(sheet, row, _sum_of_rows(names, pick, plan, "heavy"), kg(pick.mass_kg.heavy))
+        row += 1
+        from_rows = "weighing of the whole pick, as given in the job file"
+    first, heavy_row, static_row = row, row if pick.build_up[0].kg == pick.mass_kg.heavy else row - 1, None
     running: list[float] = []
     for number, line in enumerate(pick.build_up):
         factor, formula, how = None, None, "as set in the job file"
         value = kg(line.kg)
         if number == 0:
-            formula, how = _sum_of_rows(names, pick, plan, "heavy"), from_rows
+            formula, how = _sum_of_rows(names, pick, plan, "heavy") if first == heavy_row else None, from_rows
         elif number == 1:
             factor, how = pick.contingency, f"heavy mass × (factor − 1): {pick.contingency.why}"
-            formula = f"=C{heavy_row + 1}*(B{row + 1}-1)"
+            formula = f"=C{first + 1}*(B{row + 1}-1)"
         elif static_row is not None:
             factor, how = pick.dynamic, f"hook load at rest × (factor − 1): {pick.dynamic.why}"
             formula = f"=C{static_row + 1}*(B{row + 1}-1)"
@@ -124,7 +131,8 @@ def _pick(sheet: Sheet, names: Names, pick: Pick, plan: Plan, row: int) -> tuple
     sheet.texts(row, _HOW, (how, None, None), "cell")
     row += 1
     for label, text in (
-        ("Verdict", f"{pick.verdict}: nothing here says what crane and gear can carry" if pick.verdict == "unknown" else pick.verdict),
+        *picksheet.facts(pick, units),
+        ("Verdict", picksheet.verdict(pick)),
         ("Not counted", listed(shown(w) for w in pick.not_counted)),
         *((f.level.capitalize(), shown(f.message) + (f"; right would be: {shown(f.right)}" if f.right else "")) for f in pick.findings),
     ):
@@ -167,6 +175,8 @@ def _names(result: Result, plan: Plan) -> Names:
 def _sum_of_rows(names: Names, pick: Pick, plan: Plan, word: str) -> str | None:
     """A live sum over the pick's rows; None where no formula can tell its name from another."""
     # The name stands in the formula itself: the block's heading holds more than the name.
+    if pick.listed is None:
+        return None
     literal = '"' + cell_text(pick.name).replace('"', '""') + '"'
     return plan.one_of(names, pick.name, literal, f"total_{word}_kg")
 

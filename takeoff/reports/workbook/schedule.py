@@ -8,7 +8,7 @@ from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
-from takeoff.reports import rounding
+from takeoff.reports import added, rounding
 from takeoff.reports.wording import ROUNDED, row_place, shown
 from takeoff.reports.workbook.sheet import BASIS, SCHEDULE, Book, Sheet, cell_text, letters, place
 
@@ -22,9 +22,19 @@ WORDS = ("light", "nominal", "heavy")
 _TITLE, _SUBTITLE, _NOTE, TOTAL, _SHOWN, _HEADINGS, FIRST = range(7)
 
 #: names that stand in the schedule where the list has a blank, so that the summary's sums can find those rows
-BLANKS = {"material": "(no material)", "section": "(no section)", "assembly": "(no assembly)"}
+BLANKS = {
+    "material": "(no material)", "section": "(no section)", "assembly": "(no assembly)", "pick": "(no pick)", "phase": "(no phase)",
+    "finish": "(no finish named)",
+}
 
 _STATUS_STYLE = {"weighed": "cell", "assumed": "cell italic", "not weighed": "cell bold"}
+#: notes that a reader of a row's mass must see
+_ABOUT_MASS = {
+    "stated-mass-differs", "weighed-outside-bounds", "weighing-not-used", "finish-not-understood", "contents-not-understood",
+    "insulation-not-understood", "holes-not-understood", "not-added",
+}
+#: columns of masses that are neither the piece's nor the row's sum
+_PART_KEYS = ("bare_", "add_", "weighed_", "calculated_", "claimed_")
 _SIZES = {
     "length_mm": "Length", "width_mm": "Width", "thickness_mm": "Thickness", "height_mm": "Height",
     "diameter_mm": "Diameter",
@@ -141,19 +151,41 @@ def columns_for(result: Result) -> tuple[Column, ...]:
         columns += [
             Column(f"{part}_{word}_kg", f"{heading}, {word} ({unit})", 10.5 if part == "each" else 11, figures=True) for word in WORDS
         ]
+    if added.kinds(frame):
+        columns.append(Column("of_which", f"Of one piece heavy, added ({unit})", 10.5, figures=True))
+    for key, heading in {"weighed_each_kg": "Weighed, one piece", "calculated_nominal_kg": "Calculated, nominal"}.items():
+        if key in frame and frame[key].notna().any():
+            columns.append(Column(key, f"{heading} ({unit})", 10.5, figures=True))
+    if "handling" in frame:
+        columns.append(Column("handling", "Handling", 17))
+    columns += [Column("status", "State", 11), Column("basis", "Basis no.", 7)]
+    columns += [Column("note", "What to know", 31), *_parts_columns(frame, unit)]
     columns += [
-        Column("status", "State", 11), Column("basis", "Basis no.", 7), Column("note", "What to know", 31),
         Column("where", "Place in the list", 34),
         Column("section_text", "Section in the list", _fit(frame, "section_text", 16, 34)),
         Column("material_text", "Material in the list", _fit(frame, "material_text", 16, 30)),
     ]
     for key, heading in {
         "pick": "Pick", "phase": "Phase", "run": "Run", "bundle": "Bundle", "finish": "Finish", "contents": "Contents",
-        "remarks": "Remarks",
+        "insulation": "Insulation", "holes": "Holes", "remarks": "Remarks",
     }.items():
-        if frame[key].notna().any():
+        if key in frame and frame[key].notna().any():
             columns.append(Column(key, heading, _fit(frame, key, 9, 30)))
     return tuple(columns)
+
+
+def _parts_columns(frame: pd.DataFrame, unit: str) -> list[Column]:
+    """What one piece's mass is made of, and what the list says of it: for a checker, right of the printed columns."""
+    columns: list[Column] = []
+    if added.kinds(frame):
+        parts = {"bare": "Bare piece", **{f"add_{kind}": f"+ {added.called(kind)}" for kind in added.kinds(frame)}}
+        for part, heading in parts.items():
+            columns += [Column(f"{part}_{word}_kg", f"{heading}, {word} ({unit})", 10, figures=True) for word in WORDS]
+        columns.append(Column("added", "Additions, basis no.", 12))
+    if "claimed_each_kg" in frame and frame["claimed_each_kg"].notna().any():
+        columns.append(Column("claimed_each_kg", f"Stated in the list, one piece ({unit})", 11, figures=True))
+        columns.append(Column("apart", "Stated against bare (%)", 10, figures=True))
+    return columns
 
 
 def _fit(frame: pd.DataFrame, key: str, least: float, most: float) -> float:
@@ -222,6 +254,12 @@ def _rows(sheet: Sheet, result: Result, plan: Plan, basis_rows: Sequence[int]) -
     printed = at["note"]
     quantity_letter = letters(at["quantity"])
     each_letters = {word: letters(at[f"each_{word}_kg"]) for word in WORDS}
+    parts = {
+        word: [letters(at[key]) for key in (f"bare_{word}_kg", *(f"add_{kind}_{word}_kg" for kind in added.kinds(frame))) if key in at]
+        for word in WORDS
+    }
+    bare, bare_heavy = (frame[f"bare_{word}_kg"].tolist() for word in ("nominal", "heavy"))
+    addition_numbers = added.basis_numbers(result) if "added" in at else []
     for number in range(len(frame)):
         row, weighed = FIRST + number, statuses[number] != "not weighed"
         for index, column in enumerate(plan.columns):
@@ -242,7 +280,26 @@ def _rows(sheet: Sheet, result: Result, plan: Plan, basis_rows: Sequence[int]) -
                 sheet.number(row, index, values[key][number], "whole")
             elif key.startswith("each_"):
                 value = rounding.in_mass_unit(values[key][number], units) if weighed else None
-                sheet.number(row, index, value, "mass heavy" if key == "each_heavy_kg" else "mass")
+                style = "mass heavy" if key == "each_heavy_kg" else "mass"
+                pieces = parts[key.split("_")[1]]
+                if value is not None and pieces:
+                    sheet.formula(row, index, "=" + "+".join(f"{letter}{row + 1}" for letter in pieces), value, style)
+                else:
+                    sheet.number(row, index, value, style)
+            elif key.startswith(_PART_KEYS):
+                value = values[key][number]
+                sheet.number(row, index, rounding.in_mass_unit(value, units), "mass")
+            elif key == "apart":
+                _apart(sheet, row, index, (values["claimed_each_kg"][number], bare[number]), at)
+            elif key == "of_which":
+                value = rounding.in_mass_unit(values["each_heavy_kg"][number] - bare_heavy[number], units)
+                formula = f"={each_letters['heavy']}{row + 1}-{parts['heavy'][0]}{row + 1}"
+                if weighed:
+                    sheet.formula(row, index, formula, value, "mass")
+                else:
+                    sheet.text(row, index, None, "mass")
+            elif key == "added":
+                sheet.text(row, index, addition_numbers[number], "cell")
             elif key.startswith("total_"):
                 _, word, _ = key.split("_")
                 style = "mass heavy" if word == "heavy" else "mass"
@@ -264,11 +321,21 @@ def _rows(sheet: Sheet, result: Result, plan: Plan, basis_rows: Sequence[int]) -
                 sheet.text(row, index, text, "cell wrap" if index < printed else "cell")
 
 
+def _apart(sheet: Sheet, row: int, index: int, masses: tuple[float, float], at: dict[str, int]) -> None:
+    """How far the list's own mass of a piece is from ours, percent; live where the bare mass has a column."""
+    stated, ours = masses
+    if not (stated > 0 and ours > 0):
+        sheet.number(row, index, None, "size")
+        return
+    here = letters(at.get("bare_nominal_kg", at["each_nominal_kg"]))
+    sheet.formula(row, index, f"=100*({letters(at['claimed_each_kg'])}{row + 1}/{here}{row + 1}-1)", 100 * (stated / ours - 1), "size")
+
+
 def _notes(result: Result) -> dict[int, str]:
-    """What was refused or assumed in each row, in one line."""
+    """What was refused or assumed in each row, or bears on its mass, in one line."""
     notes: dict[int, str] = {}
     for index, findings in result.row_findings.items():
-        said = [f.message for f in findings if f.level in {"refused", "assumed"}]
+        said = [f.message for f in findings if f.level in {"refused", "assumed"} or f.kind in _ABOUT_MASS]
         if said:
             notes[index] = shown("; ".join(said))
     frame = result.members

@@ -254,7 +254,7 @@ class Sheet:
         scale = max(0.1, min(1.0, 0.92 * (wide - 1.0) / inches))
         room = 0.97 * (high - 1.3) * 72 / scale
         breaks, used = [], self._height(0, blocks[0]) if blocks else 0.0
-        for start, stop in zip(blocks, [*blocks[1:], end], strict=True):
+        for start, stop in zip(blocks, [*blocks[1:], end][: len(blocks)], strict=True):
             height = self._height(start, stop)
             if start in new_page or (used + height > room and used > 0):
                 breaks.append(start)

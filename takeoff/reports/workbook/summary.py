@@ -5,8 +5,8 @@ from __future__ import annotations
 from collections.abc import Sequence
 from typing import TYPE_CHECKING
 
-from takeoff.reports import rounding
-from takeoff.reports.wording import LIKELY_IS_FOR, counted, listed, pick_word, shown
+from takeoff.reports import added, rounding
+from takeoff.reports.wording import LIKELY_IS_FOR, counted, pick_word, shown
 from takeoff.reports.workbook.picks import PickCells, figure, round_up, rounded_style
 from takeoff.reports.workbook.schedule import WORDS, Names, Plan
 from takeoff.reports.workbook.sheet import ASSUMPTIONS, BASIS, NOT_WEIGHED, PICKS, SCHEDULE, SUMMARY, Book, Sheet
@@ -32,7 +32,8 @@ def write(book: Book, result: Result, plan: Plan, pick_cells: Sequence[PickCells
     row = _heaviest(sheet, result, pick_cells, row)
     row = _cautions(sheet, result, row)
     tables = []
-    for key in ("material", "assembly", "section"):
+    named = [key for key in ("pick", "phase", "finish") if any(column.key == key for column in plan.columns)]
+    for key in ("material", "assembly", "section", *named):
         tables.append(row)
         row = _groups(sheet, result, plan, key, row)
     sheet.paginate(_COLUMNS, tables, row, new_page=tables[:1])  # one page for the answer, the tables after it
@@ -128,7 +129,7 @@ def _state(sheet: Sheet, result: Result, plan: Plan, row: int) -> int:
     sheet.texts(row, _NOMINAL, (None, None, None), "cell")
     sheet.text(row, _REMARK, "headings, totals, blanks and notes included", "cell quiet")
     row += 1
-    missing = listed(shown(w) for w in result.totals.not_counted)
+    missing = added.not_counted(result)
     sheet.long_text(row, (_NAME, _REMARK), f"Not counted in any figure: {missing}.", "bold wrap")
     return row + 2
 

@@ -1,0 +1,476 @@
+"""Which vehicle carries what: fewest vehicles, then least payload capacity, then even loads, with a proven least number.
+
+No single model does it. The least number comes from bounds that hold whatever the plan (masses by exact packing, boxes by dual
+feasible functions, payload as the axles leave it). For a fleet of so many vehicles, units go one by one to the vehicle that
+suits, each time with a real placement and its axles; what finds no place pushes others out and on. Where mass alone, or mass
+and the length of one lane, decide, the exact packing is the plan itself. Work is counted, the seed fixed, ties go by name; the
+clock is only a safety stop, and the plan says when it rang.
+"""
+
+from __future__ import annotations
+
+import math
+import random
+from collections import Counter
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass, replace
+from itertools import combinations_with_replacement
+
+from takeoff.transport.arranging import Arranged, arrange
+from takeoff.transport.binpack import Clock, pack
+from takeoff.transport.load import LoadUnit, NotLoaded, Placed
+from takeoff.transport.lower_bounds import boxes_needed
+from takeoff.transport.placing import HAIR, Deck, place
+from takeoff.transport.vehicles import Vehicle
+
+#: orders tried for one set of units on one deck: while units are dealt out, and for a single unit or a last try
+_TRIES, _MANY_TRIES = 6, 30
+#: placements attempted in all for one fleet, and for levelling the loads
+_FLEET_WORK, _LEVEL_WORK = 900, 200
+#: mixes of kinds of vehicles looked at for one number of vehicles
+_MOST_MIXES = 24
+#: above this many units each goes to the first vehicle that takes it, without pushing others out
+_MANY_UNITS = 600
+_GRAM = 1000.0
+
+
+@dataclass(slots=True)
+class Filled:
+    """One vehicle of the plan and what stands on it; the pieces are placed where the deck is known."""
+
+    vehicle: Vehicle
+    units: list[LoadUnit]
+    arranged: Arranged | None
+
+
+@dataclass(slots=True)
+class Outcome:
+    """What planning gives: filled vehicles, units on none with why, the bound, whether the clock stopped it."""
+
+    filled: list[Filled]
+    left: list[NotLoaded]
+    bound: int
+    stopped_by_clock: bool
+
+
+class Loader:
+    """Tries sets of units on vehicles, and remembers the answers: like units on like vehicles need one try."""
+
+    def __init__(self, dunnage_mm: float, dunnage_kg: float, clock: Clock) -> None:
+        self.dunnage_mm, self.dunnage_kg, self.clock = dunnage_mm, dunnage_kg, clock
+        self.work = 0
+        self._known: dict[tuple[str, frozenset[tuple[object, int]]], bool] = {}
+
+    def deck(self, vehicle: Vehicle) -> Deck:
+        assert vehicle.deck is not None
+        length, width, height = vehicle.deck
+        return Deck(length, width, height, vehicle.rear_overhang_mm, self.dunnage_mm, vehicle.layers)
+
+    def room_kg(self, vehicle: Vehicle) -> float:
+        return vehicle.most_kg - self.dunnage_kg
+
+    def fits(self, units: Sequence[LoadUnit], vehicle: Vehicle, tries: int = _TRIES) -> bool:
+        """Whether these units are known to go on the vehicle together."""
+        if not self._may(units, vehicle):
+            return False
+        key = (vehicle.name, frozenset(Counter((u.size, u.mass, u.drop, u.carries, u.centre) for u in units).items()))
+        if key not in self._known or (tries > _TRIES and not self._known[key]):
+            self._known[key] = self.arranged(units, vehicle, tries) is not None
+        return self._known[key]
+
+    def _may(self, units: Sequence[LoadUnit], vehicle: Vehicle) -> bool:
+        """Masses and volumes leave room: what is quickly told."""
+        mass = math.fsum(u.mass.heavy for u in units)
+        if mass > self.room_kg(vehicle) * (1 + 1e-9) + 1e-6:
+            return False
+        if vehicle.deck is None:
+            return True
+        length, width, height = vehicle.deck
+        sized = [u.size for u in units if u.size is not None]
+        if height >= 1e6 or not vehicle.layers:
+            return sum(s[0] * s[1] for s in sized) <= (length + vehicle.rear_overhang_mm) * width + HAIR
+        return sum(s[0] * s[1] * (s[2] + self.dunnage_mm) for s in sized) <= (length + vehicle.rear_overhang_mm) * width * height + HAIR
+
+    def arranged(self, units: Sequence[LoadUnit], vehicle: Vehicle, tries: int = _TRIES) -> Arranged | None:
+        """The best arrangement found, None where none is. Units without size are loaded by mass only: the axles are then unknown."""
+        if not self._may(units, vehicle):
+            return None
+        sized = [u for u in units if u.size is not None]
+        bare = [u for u in units if u.size is None]
+        without = [Placed(u, None, None, 0.0, 1, False, None) for u in bare]
+        if vehicle.deck is None or not sized:
+            return Arranged([Placed(u, None, None, 0.0, 1, False, None) for u in sized] + without, False, False, 0.0)
+        deck = self.deck(vehicle)
+        judged = replace(vehicle, statics=None) if bare else vehicle
+        best: Arranged | None = None
+        self.work += 1
+        for placed in place(sized, deck, tries):
+            found = arrange(placed, judged, deck, self.dunnage_kg)
+            if found is not None and (best is None or found.rank < best.rank):
+                best = found
+            if best is not None and best.rank[0] == 0:
+                break
+        return None if best is None else replace(best, pieces=[*best.pieces, *without])
+
+
+def plan(units: Sequence[LoadUnit], vehicles: Sequence[Vehicle], *, dunnage_mm: float, dunnage_kg: float, apart: bool, seconds: float) -> Outcome:
+    """All units to vehicles. `apart` keeps phases on vehicles of their own."""
+    clock = Clock(seconds)
+    loader = Loader(dunnage_mm, dunnage_kg, clock)
+    left: list[NotLoaded] = []
+    loadable: list[LoadUnit] = []
+    for unit in units:
+        if any(loader.fits([unit], v, _MANY_TRIES) for v in vehicles):
+            loadable.append(unit)
+        else:
+            left.append(NotLoaded(unit.name, unit.mass.heavy, why_not(unit, vehicles, loader)))
+    groups = [[u for u in loadable if u.drop == drop] for drop in sorted({u.drop for u in loadable})] if apart else [loadable]
+    used: Counter[str] = Counter()
+    filled: list[Filled] = []
+    bound = 0
+    for number, group in enumerate(groups):
+        if not group:
+            continue
+        share = clock.left() / (len(groups) - number)
+        available = [v if v.count is None else replace(v, count=v.count - used[v.name]) for v in vehicles]
+        made, least = _group(group, [v for v in available if v.count != 0], loader, Clock(share), vehicles)
+        bound += least
+        filled += made
+        used.update(f.vehicle.name for f in made)
+        loaded = {id(u) for f in made for u in f.units}
+        left += [NotLoaded(u.name, u.mass.heavy, "every vehicle of the job is full") for u in group if id(u) not in loaded]
+    return Outcome(filled, left, bound, clock.rang or loader.clock.rang)
+
+
+def why_not(unit: LoadUnit, vehicles: Sequence[Vehicle], loader: Loader) -> str:
+    """Why a unit fits no vehicle: what is wrong with the one that comes nearest to it in mass."""
+    able = [v for v in vehicles if unit.mass.heavy <= loader.room_kg(v)]
+    if not able:
+        most = max(vehicles, key=lambda v: (loader.room_kg(v), v.name))
+        return f"heavier than any vehicle may carry: {math.ceil(unit.mass.heavy - 1e-9):g} kg against {math.floor(max(0.0, loader.room_kg(most))):g} kg on {most.name}"
+    sized = [v for v in able if v.deck is not None and unit.size is not None]
+    if sized and not any(loader.deck(v).takes(unit, turned) for v in sized for turned in (False, True)):
+        most = max(sized, key=lambda v: (v.deck or (0.0, 0.0, 0.0), v.name))
+        assert most.deck is not None and unit.size is not None
+        room = " x ".join(f"{side:g}" for side in most.deck if side < 1e6)
+        size = " x ".join(f"{math.ceil(side - 1e-6):g}" for side in unit.size)
+        return f"larger than any deck that may carry it: {size} mm against {room} mm on {most.name}"
+    return f"an axle, or the deck's line load, of {able[0].name} would be over its limit wherever it stands"
+
+
+def _group(
+    units: list[LoadUnit], vehicles: Sequence[Vehicle], loader: Loader, clock: Clock, fleet: Sequence[Vehicle],
+) -> tuple[list[Filled], int]:
+    """The plan of units that may share vehicles, and the least number of vehicles that any plan of them needs."""
+    loader.clock = clock
+    least, dealt = _least(units, fleet, loader, clock)
+    if not vehicles:
+        return [], least
+    there = sum(math.inf if v.count is None else v.count for v in vehicles)
+    best: list[Filled] | None = None
+    if dealt is not None and len(dealt) <= there and len(vehicles) == 1:
+        best = _as_filled(dealt, units, vehicles[0], loader)
+    # A first plan without a fixed number, so that there is one whatever happens; then one vehicle less, as long as that is found.
+    greedy = _one_by_one(units, vehicles, loader)
+    if best is None:
+        best = greedy
+        start = len(greedy) - 1 if _complete(greedy, units) else int(min(there, len(greedy)))
+        for count in range(start, least - 1, -1):
+            found = _with_count(units, vehicles, count, loader, clock)
+            if found is None:
+                break
+            best = found
+    if _complete(greedy, units) and len(greedy) < len(best):
+        best = greedy
+    best = _cheaper(best, units, vehicles, loader, clock)
+    _level(best, loader, clock)
+    return best, least
+
+
+def _complete(filled: Sequence[Filled], units: Sequence[LoadUnit]) -> bool:
+    return sum(len(f.units) for f in filled) == len(units)
+
+
+# --- the least number --------------------------------------------------------------------------------------------------
+
+
+def _least(units: Sequence[LoadUnit], fleet: Sequence[Vehicle], loader: Loader, clock: Clock) -> tuple[int, list[list[int]] | None]:
+    """A number of vehicles that no plan can do without; and, for one kind that masses and lanes decide, the exact packing."""
+    rooms = sorted((math.floor(loader.room_kg(v) * _GRAM + 1e-3) for v in fleet for _ in range(v.count or 1)), reverse=True)
+    masses = [math.ceil(u.mass.heavy * _GRAM - 1e-3) for u in units]
+    largest = max(math.floor(loader.room_kg(v) * _GRAM + 1e-3) for v in fleet)
+    least = _by_sum(sum(masses), [largest] * len(units) if any(v.count is None for v in fleet) else rooms)
+    decked = [v for v in fleet if v.deck is not None]
+    boxed = [u for u in units if u.size is not None]
+    if boxed and len(decked) == len(fleet):
+        most = tuple(max(math.ceil(side - HAIR) for side in sides) for sides in zip(*((v.deck[0] + v.rear_overhang_mm, v.deck[1], v.deck[2]) for v in decked if v.deck), strict=True))
+        least = max(least, _by_boxes(boxed, decked, (most[0], most[1], most[2]), loader))
+    sizes: list[tuple[int, ...]] = [(m,) for m in masses]
+    capacity: tuple[int, ...] = (largest,)
+    lane = _one_lane(units, decked, loader) if len(decked) == len(fleet) else None
+    if lane is not None:
+        sizes = [(m, s) for m, s in zip(masses, lane[0], strict=True)]
+        capacity = (largest, lane[1])
+    if len(units) > _MANY_UNITS:
+        return least, None
+    # Half of the time at most: the rest belongs to placing.
+    decides = lane is not None or not boxed or not decked
+    packed = pack(sizes, capacity, seconds=clock.left() * (0.6 if decides else 0.2))
+    least = max(least, packed.bound)
+    return least, [list(b) for b in packed.bins] if decides or len(packed.bins) == least else None
+
+
+def _by_sum(total: int, rooms: Sequence[int]) -> int:
+    number = 0
+    for room in rooms:
+        if total <= 0:
+            break
+        total -= room
+        number += 1
+    # More than the whole fleet can carry: the fleet is the bound, and the rest is named.
+    return max(1, number)
+
+
+def _by_boxes(units: Sequence[LoadUnit], fleet: Sequence[Vehicle], room: tuple[int, int, int], loader: Loader) -> int:
+    flat = room[2] >= 10**6 or not any(v.layers for v in fleet)
+    boxes = []
+    for u in units:
+        length, width, height = (math.floor(side + HAIR) for side in u.on_deck(False))
+        ways = [(a, b) for a, b in ((length, width), (width, length)) if a <= room[0] and b <= room[1]] or [(min(length, room[0]), min(width, room[1]))]
+        boxes.append((ways, room[2] if flat else min(room[2], height + math.floor(loader.dunnage_mm))))
+    return boxes_needed(boxes, room)
+
+
+def _one_lane(units: Sequence[LoadUnit], fleet: Sequence[Vehicle], loader: Loader) -> tuple[list[int], int] | None:
+    """Deck lengths in mm and the deck's own, where no two units can stand side by side or on each other; else None."""
+    if len(fleet) != 1 or any(u.size is None for u in units) or fleet[0].rear_overhang_mm:
+        return None
+    deck = loader.deck(fleet[0])
+    sides = [u.on_deck(False) for u in units]
+    narrow = sorted(min(a, b) for a, b, _ in sides)
+    low = sorted(h + deck.dunnage for _, _, h in sides)
+    if len(units) > 1 and (sum(narrow[:2]) <= deck.width + HAIR or (deck.layers and sum(low[:2]) <= deck.height + HAIR)):
+        return None
+    taken = [min(a for a, b in ((x, y), (y, x)) if b <= deck.width + HAIR and a <= deck.length + HAIR) for x, y, _ in sides]
+    # In thousandths of a mm, rounded so that what is said to fit does.
+    return [math.ceil(t * 1000 - 1e-3) for t in taken], math.floor(deck.length * 1000 + 1e-3)
+
+
+# --- a plan ------------------------------------------------------------------------------------------------------------
+
+
+def _as_filled(dealt: Sequence[Sequence[int]], units: Sequence[LoadUnit], vehicle: Vehicle, loader: Loader) -> list[Filled] | None:
+    """The exact packing as a plan, where every vehicle of it can be placed and holds its axles."""
+    if vehicle.count is not None and len(dealt) > vehicle.count:
+        return None
+    filled = []
+    for members in dealt:
+        chosen = [units[i] for i in members]
+        arranged = loader.arranged(chosen, vehicle, _MANY_TRIES)
+        if arranged is None:
+            return None
+        filled.append(Filled(vehicle, chosen, arranged))
+    return filled
+
+
+def _hardest_first(units: Sequence[LoadUnit], vehicles: Sequence[Vehicle], loader: Loader, *, by_volume: bool) -> list[LoadUnit]:
+    room = max(loader.room_kg(v) for v in vehicles)
+    deck = max((v.deck[0] * v.deck[1] for v in vehicles if v.deck), default=0.0)
+
+    def share(u: LoadUnit) -> float:
+        heavy = u.mass.heavy / room if room else 0.0
+        if u.size is None or not deck:
+            return heavy
+        area = u.size[0] * u.size[1] / deck
+        return area * (u.size[2] if by_volume else 1.0) if by_volume else max(heavy, area)
+
+    return sorted(units, key=lambda u: (-share(u), -u.mass.heavy, u.name))
+
+
+def _one_by_one(units: Sequence[LoadUnit], vehicles: Sequence[Vehicle], loader: Loader) -> list[Filled]:
+    """Hardest first, each to the fullest open vehicle that takes it, else to a new one: the one of most payload left."""
+    filled: list[Filled] = []
+    used: Counter[str] = Counter()
+    for unit in _hardest_first(units, vehicles, loader, by_volume=False):
+        order = sorted(range(len(filled)), key=lambda k: (-math.fsum(u.mass.heavy for u in filled[k].units) / filled[k].vehicle.payload_kg, k))
+        home = next((k for k in order if loader.fits([*filled[k].units, unit], filled[k].vehicle, 2)), None)
+        if home is not None:
+            filled[home].units.append(unit)
+            continue
+        for v in sorted(vehicles, key=lambda v: (-v.payload_kg, v.name)):
+            if (v.count is None or used[v.name] < v.count) and loader.fits([unit], v, _MANY_TRIES):
+                used[v.name] += 1
+                filled.append(Filled(v, [unit], None))
+                break
+    return _finished(filled, loader)
+
+
+def _finished(filled: list[Filled], loader: Loader) -> list[Filled]:
+    """The same with every load arranged with care."""
+    for f in filled:
+        if f.arranged is None:
+            f.arranged = loader.arranged(f.units, f.vehicle, _MANY_TRIES) or loader.arranged(f.units, f.vehicle, _TRIES) or loader.arranged(f.units, f.vehicle, 2)
+            assert f.arranged is not None
+    return filled
+
+
+def _mixes(vehicles: Sequence[Vehicle], count: int, mass: float, loader: Loader) -> list[tuple[Vehicle, ...]]:
+    """Fleets of so many vehicles that may carry the mass, least payload capacity first; the largest is always among them."""
+    ordered = sorted(vehicles, key=lambda v: (v.payload_kg, v.name))
+    # Few kinds or few vehicles, else only the largest: the number of mixes grows fast.
+    if math.comb(count + len(ordered) - 1, len(ordered) - 1) > 5000:
+        ordered = ordered[-1:] if ordered[-1].count is None else ordered[-2:]
+    found = []
+    for mix in combinations_with_replacement(ordered, count):
+        number = Counter(v.name for v in mix)
+        if any(v.count is not None and number[v.name] > v.count for v in ordered):
+            continue
+        if math.fsum(loader.room_kg(v) for v in mix) >= mass * (1 - 1e-9) - 1e-6:
+            found.append(mix)
+    found.sort(key=lambda mix: (math.fsum(v.payload_kg for v in mix), [v.name for v in mix]))
+    return found
+
+
+def _with_count(units: Sequence[LoadUnit], vehicles: Sequence[Vehicle], count: int, loader: Loader, clock: Clock) -> list[Filled] | None:
+    """All units on `count` vehicles: the largest fleet first, since whether so many do is the question."""
+    mixes = _mixes(vehicles, count, math.fsum(u.mass.heavy for u in units), loader)
+    for mix in list(reversed(mixes))[:3]:
+        found = _deal(units, mix, loader, clock, _FLEET_WORK)
+        if found is not None:
+            return found
+        if clock.over():
+            break
+    return None
+
+
+def _cheaper(best: list[Filled], units: Sequence[LoadUnit], vehicles: Sequence[Vehicle], loader: Loader, clock: Clock) -> list[Filled]:
+    """The same number of vehicles with less payload capacity, where a plan for such a fleet is found."""
+    if len(vehicles) == 1 or not _complete(best, units) or len(units) > _MANY_UNITS:
+        return best
+    now = math.fsum(f.vehicle.payload_kg for f in best)
+    for mix in _mixes(vehicles, len(best), math.fsum(u.mass.heavy for u in units), loader)[:_MOST_MIXES]:
+        if math.fsum(v.payload_kg for v in mix) >= now - 1e-6 or clock.over():
+            break
+        found = _deal(units, mix, loader, clock, _FLEET_WORK // 4)
+        if found is not None:
+            return found
+    return best
+
+
+def _deal(units: Sequence[LoadUnit], mix: Sequence[Vehicle], loader: Loader, clock: Clock, work: int) -> list[Filled] | None:
+    """All units on exactly these vehicles; None where the work runs out first."""
+    limit = loader.work + work
+    for attempt, (by_volume, even) in enumerate(((False, True), (True, True), (False, False), (True, False))):
+        found = _push(_hardest_first(units, mix, loader, by_volume=by_volume), mix, loader, clock, loader.work + (limit - loader.work) // (4 - attempt), even, attempt)
+        if found is not None:
+            return _finished(found, loader)
+        if clock.over() or len(units) > _MANY_UNITS:
+            break
+    return None
+
+
+def _push(
+    order: list[LoadUnit], mix: Sequence[Vehicle], loader: Loader, clock: Clock, limit: int, even: bool, seed: int,
+) -> list[Filled] | None:
+    """Deal units out one by one; one that finds no place pushes a smaller one out of some vehicle and stands there itself."""
+    shake = random.Random(seed)
+    loads: list[list[LoadUnit]] = [[] for _ in mix]
+    mass = [0.0] * len(mix)
+    waiting = list(reversed(order))
+    pushed: Counter[int] = Counter()
+    rank = {id(u): k for k, u in enumerate(order)}
+    while waiting:
+        if clock.over() or loader.work > limit:
+            return None
+        unit = waiting.pop()
+        fill = [m / v.payload_kg for m, v in zip(mass, mix, strict=True)]
+        places = sorted(range(len(mix)), key=lambda k: ((fill[k] if even else -fill[k]), k))
+        home = next((k for k in places if loader.fits([*loads[k], unit], mix[k])), None)
+        if home is None:
+            found = _push_out(unit, loads, mix, places, loader, pushed, rank, shake, limit)
+            if found is None:
+                return None
+            home, out = found
+            loads[home].remove(out)
+            mass[home] -= out.mass.heavy
+            pushed[id(out)] += 1
+            waiting.append(out)
+        loads[home].append(unit)
+        mass[home] += unit.mass.heavy
+    return [Filled(v, load, None) for v, load in zip(mix, loads, strict=True) if load]
+
+
+def _push_out(
+    unit: LoadUnit, loads: Sequence[list[LoadUnit]], mix: Sequence[Vehicle], places: Sequence[int], loader: Loader, pushed: Counter[int],
+    rank: dict[int, int], shake: random.Random, limit: int,
+) -> tuple[int, LoadUnit] | None:
+    """A vehicle, and the unit to push out of it so that `unit` fits: easy units and those pushed least come first."""
+    options = []
+    for k in places:
+        kinds: dict[object, LoadUnit] = {}
+        for other in loads[k]:
+            kinds.setdefault((other.size, other.mass), other)
+        for other in kinds.values():
+            if (other.size, other.mass) != (unit.size, unit.mass):
+                options.append((pushed[id(other)] * 3 + shake.random() - 2.0 * (rank[id(other)] > rank[id(unit)]) - rank[id(other)] / len(rank), k, other))
+    options.sort(key=lambda o: (o[0], o[1], o[2].name))
+    for _, k, other in options[:60]:
+        if loader.work > limit:
+            return None
+        if loader.fits([u for u in loads[k] if u is not other] + [unit], mix[k]):
+            return k, other
+    return None
+
+
+def _level(filled: list[Filled], loader: Loader, clock: Clock) -> None:
+    """Even the loads: a unit of the fullest vehicle goes to the emptiest, or changes places with a lighter one there."""
+    limit = loader.work + _LEVEL_WORK
+    if len(filled) < 2:
+        return
+    stuck: set[tuple[int, int]] = set()
+    while not clock.over() and loader.work < limit:
+        share = [math.fsum(u.mass.heavy for u in f.units) / f.vehicle.payload_kg for f in filled]
+        pairs = [(a, b) for a in sorted(range(len(filled)), key=lambda k: -share[k]) for b in sorted(range(len(filled)), key=lambda k: share[k])
+                 if share[a] - share[b] > 0.01 and (a, b) not in stuck]
+        if not pairs:
+            return
+        a, b = pairs[0]
+        if not _even_out(filled[a], filled[b], share[a] - share[b], loader, limit):
+            stuck.add((a, b))
+        else:
+            stuck = {pair for pair in stuck if a not in pair and b not in pair}
+
+
+def _even_out(full: Filled, light: Filled, gap: float, loader: Loader, limit: int) -> bool:
+    wanted = gap / (1 / full.vehicle.payload_kg + 1 / light.vehicle.payload_kg)
+    options: list[tuple[float, LoadUnit, LoadUnit | None]] = []
+    for u in full.units:
+        for w in (None, *light.units):
+            moved = u.mass.heavy - (w.mass.heavy if w else 0.0)
+            if 0 < moved < 2 * wanted * 0.95:
+                options.append((abs(moved - wanted), u, w))
+    options.sort(key=lambda o: (round(o[0], 6), o[1].name, o[2].name if o[2] else ""))
+    for _, u, w in options[:12]:
+        if loader.work >= limit:
+            return False
+        one = [x for x in full.units if x is not u] + ([w] if w else [])
+        two = [x for x in light.units if x is not w] + [u]
+        if not one:
+            continue
+        first = loader.arranged(one, full.vehicle)
+        second = loader.arranged(two, light.vehicle) if first is not None else None
+        if first is None or second is None or (full.arranged and light.arranged and first.rank[0] + second.rank[0] > full.arranged.rank[0] + light.arranged.rank[0]):
+            continue
+        full.units, full.arranged, light.units, light.arranged = one, first, two, second
+        return True
+    return False
+
+
+def names_in_order(filled: Sequence[Filled]) -> Iterator[tuple[str, Filled]]:
+    """Each vehicle with a name of its own, by the earliest delivery it carries, then by kind."""
+    order = sorted(filled, key=lambda f: (min(u.drop for u in f.units), f.vehicle.name, -math.fsum(u.mass.heavy for u in f.units), min(u.name for u in f.units)))
+    total = Counter(f.vehicle.name for f in order)
+    seen: Counter[str] = Counter()
+    for f in order:
+        seen[f.vehicle.name] += 1
+        yield (f"{f.vehicle.name} {seen[f.vehicle.name]}" if total[f.vehicle.name] > 1 else f.vehicle.name), f
