@@ -150,6 +150,25 @@ KINDS: dict[str, str] = {
     "own-weight-over": "tension under the piece's own weight exceeds the strength given (note)",
     "little-tension": "stone, glass and concrete carry little tension (note)",
     "mould-adhesion": "a first lift from a mould adds adhesion (note)",
+    # loads
+    "vehicle-limits": "which of a vehicle's figures governs, or one that is not looked at (note)",
+    "deck-unknown": "a vehicle without the size of its deck is loaded by mass only (note)",
+    "axles-unknown": "axle loads, or limits, that are not known for want of figures (note)",
+    "unit-size-unknown": "a unit without a known size is loaded by mass only (note)",
+    "unit-size-at-least": "the size of a unit to load is the least it can be (note)",
+    "phases-mixed": "a unit holds pieces of several phases and goes with the first (note)",
+    "axle-share-low": "an axle carries less than the least share asked of it (note)",
+    "envelope-axle": "an axle or group is over the planning limit of the envelope chosen (note)",
+    "unloading-order": "a load cannot be unloaded from the rear in the order of its phases (note)",
+    "lateral-balance": "a load lies farther beside the middle of the deck than it should (note)",
+    "rear-overhang": "a piece reaches beyond the deck's tail and must be marked (note)",
+    "tilting": "a stack can tilt by itself (note)",
+    "many-lashings": "so many lashings over the top that another way of securing is better (note)",
+    "lashing-tension": "the tension of a lashing is more than half of its strength (note)",
+    "flat-lashing": "a lashing over the top at a flat angle presses little (note)",
+    "dunnage-not-counted": "no mass of dunnage and gear is set (note)",
+    "stopped-early": "the search for a plan was stopped by its time limit (note)",
+    "not-proven": "the number of vehicles is not proven to be the least (note)",
 }
 
 

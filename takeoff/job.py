@@ -79,6 +79,7 @@ class ReadingPart(_Part):
     group_titles: Literal["assembly", "ignore"] = "assembly"
     length_unit: LengthUnit | None = None
     decimal: Literal["auto", "point", "comma"] = "auto"
+    thousands: Literal["auto", "comma", "point", "space", "apostrophe"] = "auto"
     material: Text | None = None
     columns: dict[str, Text] = Field(default_factory=dict)
     tape: TapePart | None = None
@@ -363,7 +364,6 @@ class Job(_Part):
 
 #: settings that a later version acts on; naming one is an error, so that nobody relies on it
 LATER = {
-    "reading.thousands",
     "guards.seconds",
 }
 

@@ -25,6 +25,9 @@ from takeoff.lists.tables import SheetReading, Table, read_sheet
 from takeoff.thermal import CAUTIONS as THERMAL_CAUTIONS
 from takeoff.thermal.members import Temperatures, of_list
 from takeoff.thermal.runs import RunMovement
+from takeoff.transport import CAUTIONS as TRANSPORT_CAUTIONS
+from takeoff.transport import Plan, load_up
+from takeoff.transport.load import Load, NotLoaded
 from takeoff.weighing import list_totals
 from takeoff.weighing.basis import Basis
 from takeoff.weighing.masses import weigh
@@ -76,6 +79,8 @@ class Result:
     findings : about sheets and headings; `row_findings` about members.
     added_bases : how each addition was found; `add_KIND_id` of a member points into it.
     temperatures, movements : members at the job's named temperatures, and the runs they form; None and empty without any.
+    loads : what goes on which vehicle, None where the job file names no vehicles; its parts stand in `vehicles`, `not_loaded`,
+        `vehicle_count_bound` and `proven` too.
     places : member -> where its centre of gravity lies, or why that is not known; members without a position are not in it.
     """
 
@@ -96,11 +101,28 @@ class Result:
     movements: list[RunMovement] = field(default_factory=list)
     added_bases: list[Basis] = field(default_factory=list)
     places: dict[int, Place | str] = field(default_factory=dict)
+    loads: Plan | None = None
     _rows: dict[int, tuple[Finding, ...]] | None = field(default=None, repr=False)
 
     @property
     def job_file(self) -> str | None:
         return None if self.job.path is None else str(self.job.path)
+
+    @property
+    def vehicles(self) -> tuple[Load, ...]:
+        return self.loads.loads if self.loads else ()
+
+    @property
+    def not_loaded(self) -> tuple[NotLoaded, ...]:
+        return self.loads.not_loaded if self.loads else ()
+
+    @property
+    def vehicle_count_bound(self) -> int | None:
+        return self.loads.bound if self.loads else None
+
+    @property
+    def proven(self) -> bool | None:
+        return self.loads.proven if self.loads else None
 
     @property
     def complete(self) -> bool:
@@ -160,6 +182,10 @@ def weigh_reading(reading: Reading) -> Result:
     account.check("the run")
     temperatures, movements = of_list(weighed.frame, weighed.sections, weighed.materials, reading.members.log, reading.job)
     places = gravity.places_of(weighed.frame, weighed.sections)
+    loads = None
+    if reading.job.vehicles:
+        progress.tell("loading vehicles")
+        loads = load_up(weighed.frame, weighed.sections, reading.job, places)
     return Result(
         job=reading.job,
         inputs=[
@@ -192,8 +218,10 @@ def weigh_reading(reading: Reading) -> Result:
         cautions=(
             *CAUTIONS,
             *(hook.CAUTIONS[1:] if reading.job.lift.picks or reading.job.crane else ()),
+            *(TRANSPORT_CAUTIONS[1:] if loads else ()),
             *(THERMAL_CAUTIONS if temperatures else ()),
         ),
+        loads=loads,
         temperatures=temperatures,
         movements=movements,
     )

@@ -309,3 +309,17 @@ def _registry() -> pint.UnitRegistry[Any]:
     import pint
 
     return pint.UnitRegistry()
+
+
+#: end of a column's name -> the unit its figures are in
+_COLUMN_UNITS = {"_mm": "mm", "_kg": "kg", "_m2": "m**2", "_m3": "m**3", "_kN": "kN", "_t": "metric_ton", "_deg": "degree"}
+
+
+def named_by_unit(name: str) -> tuple[str, str] | None:
+    """A column's name (``length_mm``) as its bare name and its unit; None where it ends in no unit."""
+    return next(((name.removesuffix(end), unit) for end, unit in _COLUMN_UNITS.items() if name.endswith(end) and len(name) > len(end)), None)
+
+
+def quantity(values: Any, unit: str) -> Any:
+    """An array of figures as a pint quantity, all from one registry, so that they may be added."""
+    return _registry().Quantity(values, unit)

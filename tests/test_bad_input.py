@@ -83,7 +83,7 @@ def test_the_same_list_twice(run: Run, write_list: WriteList) -> None:
     ("[lift]\ncontingency = inf\n", ["lift.contingency"]),
     ("[lift]\ncontingency = 0\n", ["lift.contingency"]),
     ("[reading]\nsheets = ['Nowhere']\n", ["a sheet that is not there", "Nowhere"]),
-    ("[reading]\nthousands = ','\n", ["not acted on by this version"]),
+    ("[reading]\nthousands = ','\n", ["reading.thousands", "'comma'"]),
     ("not toml", ["not proper TOML"]),
     ("[names.materials]\nx = 3\n", ["names.materials.x"]),
 ])

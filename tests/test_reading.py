@@ -229,6 +229,8 @@ def test_an_open_thousand_is_settled_by_the_file_or_by_size(tmp_path: Path) -> N
     assert read("m", "1,500") == [("assumed", 1500)]
     assert read("mm", "1,500") == [("assumed", 1500)]
     assert [status for status, _ in read("cm", "2,500")] == ["not weighed"]
+    told = job_from({"reading": {"thousands": "comma"}})
+    assert pipeline.schedule([tmp_path / "list.csv"], told).members["length_mm"].tolist() == [25_000]
 
 
 def test_a_row_with_a_stray_separator_is_refused(tmp_path: Path) -> None:

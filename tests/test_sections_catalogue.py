@@ -193,3 +193,17 @@ def test_own_sections_come_first(tmp_path) -> None:  # type: ignore[no-untyped-d
     assert match.section is not None
     assert match.section.source.title == "Workshop drawing 7"
     assert match.section.area_mm2 == pytest.approx(2 * 220 * 25 + 350 * 12)
+
+
+@pytest.mark.parametrize(("text", "light", "heavy"), [
+    # Wall of EN 10216-1 ±12.5 % to 219.1 mm (read2), by wall / diameter above (read); of EN 10217 ±10 % (recalled).
+    ("CHS 114.3x5 EN 10216-1", 4.375, 5.625), ("CHS 323.9x10 EN 10216-1", 8.5, 11.5), ("CHS 114.3x5 EN 10217", 4.5, 5.5),
+])
+def test_pressure_tube_is_bounded_by_its_wall(text: str, light: float, heavy: float) -> None:
+    """A hollow section size to a pressure tube standard takes that standard's wall limits, not the mass limits of EN 10210-2."""
+    section = read(text).section
+    assert section is not None
+    d, t = section.dimensions_mm["h"], section.dimensions_mm["tf"]
+    area = {wall: wall * (d - wall) for wall in (light, t, heavy)}
+    assert section.factor.light == pytest.approx(area[light] / area[t], rel=1e-9)
+    assert section.factor.heavy == pytest.approx(area[heavy] / area[t], rel=1e-9)

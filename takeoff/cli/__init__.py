@@ -1,7 +1,7 @@
 """The command line: one file a command, each parses, calls and prints. Rank 10.
 
 Exit status: 0 done; 1 a look-up found nothing sure; 2 wrong usage or unreadable input, nothing written; 3 written, but
-some rows were not weighed; 4 our own account did not close, nothing written; 130 interrupted.
+some rows were not weighed or a piece is on no vehicle; 4 our own account did not close, nothing written; 130 interrupted.
 """
 
 from __future__ import annotations
@@ -17,10 +17,12 @@ from takeoff.cli import console
 from takeoff.cli.check import check
 from takeoff.cli.fit import fit
 from takeoff.cli.lift import lift
+from takeoff.cli.loads import loads
 from takeoff.cli.material import material
 from takeoff.cli.movement import movement
 from takeoff.cli.schedule import schedule
 from takeoff.cli.section import section
+from takeoff.cli.start import start
 from takeoff.cli.weigh import weigh
 from takeoff.errors import TakeoffError
 
@@ -30,7 +32,7 @@ app = typer.Typer(
     no_args_is_help=True, rich_markup_mode=None, pretty_exceptions_enable=False, add_completion=True,
     context_settings={"help_option_names": ["--help", "-h"]},
 )
-for command in (schedule, check, material, section, weigh, movement, fit, lift):
+for command in (schedule, check, material, section, weigh, movement, fit, lift, loads, start):
     app.command()(command)
 
 

@@ -68,5 +68,5 @@ def schedule(
             say("\n" + changed.text())
     if not quiet:
         say("\n".join(f"Written: {path}" for path in named))
-    if not result.complete:
+    if not result.complete or result.not_loaded:
         raise typer.Exit(3)

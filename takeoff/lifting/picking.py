@@ -34,7 +34,7 @@ _BRITTLE = {"stone": "stone", "masonry": "masonry", "concrete": "concrete", "gla
 
 @dataclass(slots=True)
 class _List:
-    """The weighed list as plain columns, with what every pick of it shares."""
+    """The weighed list as plain columns, with what every pick of it shares; `frame` says which rows leave a finish or contents open."""
 
     frame: pd.DataFrame
     sections: Sequence[Section]
@@ -73,9 +73,10 @@ def picks_of(
     cannot be read.
     """
     check_names(job)
-    data = _List(
-        members, sections, materials, bases, job, not_counted, places=gravity.places_of(members, sections) if places is None else places
-    )
+    places = gravity.places_of(members, sections) if places is None else places
+    # Of the frame itself only these columns are asked for again, pick by pick.
+    open_rows = members[[name for name in ("finish_open", "contents_open") if name in members]]
+    data = _List(open_rows, sections, materials, bases, job, not_counted, places=places)
     names = ("status", "quantity", "basis_id", "section_id", "material_id", "length_mm", "width_mm", "thickness_mm", "height_mm",
              "diameter_mm", *(f"{a}_{w}_kg" for a in ("each", "total") for w in ("light", "nominal", "heavy")))  # fmt: skip
     data.columns = {name: members[name].tolist() for name in names}

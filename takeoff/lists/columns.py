@@ -65,7 +65,7 @@ class ColumnReader:
         self.table, self.start, self.job, self.members = table, start, job, members
         self.count = len(table.member_rows)
         self.decimal, self.mixed = _decimal_sign(table, job)
-        self.inches = _speaks_inches(table)
+        self.inches = _speaks_inches(table) and job.reading.thousands != "apostrophe"
         self._fill_merged()
 
     # --- cells -------------------------------------------------------------------------------------------------------
@@ -381,6 +381,8 @@ def _decimal_sign(table: Table, job: Job) -> tuple[DecimalSign | None, bool]:
     """
     if job.reading.decimal != "auto":
         return job.reading.decimal, False
+    if job.reading.thousands in ("comma", "point"):
+        return ("point" if job.reading.thousands == "comma" else "comma"), False
     votes: Counter[DecimalSign] = Counter()
     telling = {*MEASURES, "quantity", "quantity_per", "quantity_total", "quantity_and_length", "section", "size"}
     columns = [c.number for name, c in table.columns.items() if name in telling]

@@ -22,6 +22,9 @@ MONEY = re.compile(
     r"|frete|mao de obra|desconto|frakt|moms|arbete)\b"
 )
 EXAMPLE = re.compile(r"^(?:example|sample row|sample|beispiel|exemple|ejemplo|esempio|voorbeeld|przyklad|exemplo|exempel)s?\b")
+#: a row that shows how a list is filled in says so in its first text; ours is spelt like this
+EXAMPLE_MARK = "EXAMPLE, not counted"
+EXAMPLE_ROW = re.compile(r"^example,? not counted\b")
 ALTERNATIVE = re.compile(r"^(?:or|oder|alternative(?:ly)?|alternativ|alt\.?|ou bien|o bien|oppure|of anders|albo|eller)[ :]")
 ELSEWHERE = re.compile(
     r"\b(?:included|contained|counted) (?:in|with|under) (?:row|item|line|pos|position|no|mark)\b|\benthalten in\b"

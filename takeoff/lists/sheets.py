@@ -19,6 +19,7 @@ from typing import Any
 from takeoff.errors import InputError
 from takeoff.findings import Finding
 from takeoff.job import GuardsPart
+from takeoff.lists.ownoutputs import refuse_ours
 from takeoff.lists.textfile import read_text
 
 Cell = str | float | int | bool | date | datetime | time | timedelta | None
@@ -105,6 +106,7 @@ def read_file(path: Path, guards: GuardsPart) -> SourceFile:
         )
     if not data.strip():
         raise InputError("the file is empty", file=name, right="a member list with headings and rows")
+    refuse_ours(name, data)
     kind = path.suffix.lower()
     if kind in OPEN_WORKBOOKS or kind in OTHER_WORKBOOKS:
         sheets = _read_workbook(path, data, guards, kind in OPEN_WORKBOOKS)

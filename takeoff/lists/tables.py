@@ -387,6 +387,10 @@ class _Walk:
             self.current, self.mode = None, "example"
             self._note(number, "example-block", "an example stands below the list: it is not read")
             return
+        if labels and rowwords.EXAMPLE_ROW.match(labels[0]):
+            self._is(number, "other")
+            self._note(number, "example-block", "the row says that it is an example, not counted: it is not read", labels[0])
+            return
         if (
             kind == "member"
             and any(rowwords.MONEY.match(label) for label in labels)

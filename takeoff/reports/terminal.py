@@ -11,7 +11,7 @@ from collections.abc import Iterable, Sequence
 from itertools import islice
 from typing import TYPE_CHECKING
 
-from takeoff.reports import added, picksheet, rounding
+from takeoff.reports import added, loadsheet, picksheet, rounding
 from takeoff.reports.plainpage import Page
 from takeoff.reports.rounding import NO_BREAK, Units
 from takeoff.reports.wording import LIKELY_IS_FOR, cells_text, counted, listed, pick_word, refusals, shown
@@ -35,6 +35,8 @@ def summary(result: Result, width: int = 80, units: Units | None = None) -> str:
     _what_was_read(page, result)
     _total(page, result, units)
     _heaviest(page, result, units)
+    if result.loads is not None:
+        loadsheet.say_short(page, result.loads, units)
     _not_weighed(page, result)
     if result.temperatures is not None:
         from takeoff.reports.thermal import schedule_part

@@ -7,6 +7,7 @@ A row without a known source does not load. Designations are found by key: famil
 from __future__ import annotations
 
 import re
+from collections.abc import Mapping
 from dataclasses import dataclass, field, replace
 from functools import cache
 from pathlib import Path
@@ -334,7 +335,7 @@ def mass_rule(shape: str, standard: str, family: str, d: dict[str, float]) -> tu
     if standard in ("JIS G 3192", "GB/T 11263", "AS/NZS 3679.1", "IS 808"):
         return tolerances.mass_factor("rolled-other")
     if standard == "EN 10220":
-        return _tube_rule(d)
+        return tube_rule(d)
     if standard in _MASS_RULES:
         return tolerances.mass_factor(_MASS_RULES[standard], d["h"])
     if standard == "ASTM A500":
@@ -366,12 +367,13 @@ def with_wall(shape: str, d: dict[str, float], wall: float) -> float:
     return shapes.geometry(shape, changed).area
 
 
-def _tube_rule(d: dict[str, float]) -> tuple[Bounds, Tolerance]:
-    """EN 10216-1 limits the wall of a tube, above 219.1 mm by wall over diameter."""
-    rule = "en10216-wall" if d["h"] <= 219.1 else "en10216-wall-large"
+def tube_rule(d: Mapping[str, float], welded: bool = False) -> tuple[Bounds, Tolerance]:
+    """EN 10216-1 limits the wall of a seamless tube, above 219.1 mm by wall over diameter; EN 10217 that of a welded one."""
+    rule = "en10217-wall" if welded else "en10216-wall" if d["h"] <= 219.1 else "en10216-wall-large"
     found = tolerances.band(rule, d["tf"] / d["h"])
     if found is None:
         raise DataError("the tolerance rule has no band for this tube", read=rule)
+    d = dict(d)
     nominal = shapes.geometry("round hollow", d).area
     light = with_wall("round hollow", d, d["tf"] * (1 - found.minus / 100))
     heavy = with_wall("round hollow", d, min(d["tf"] * (1 + found.plus / 100), d["h"] / 2 - 1e-9))

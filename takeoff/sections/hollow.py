@@ -127,6 +127,12 @@ def _hollow_rows(families: tuple[str, ...], keys: tuple[str, ...], p: Parsed, gi
         return None
     said = _standard(p)
     by_standard = {row.standard: row.section for row in rows}
+    numbers = " ".join(p.standards)
+    if said is None and families == ("CHS",) and ("10216" in numbers or "10217" in numbers or "10220" in numbers):
+        # A pressure tube of the size of a hollow section: its own standard limits the wall, not the mass.
+        tube = rows[0].section
+        factor, tolerance = catalogue.tube_rule(tube.dimensions_mm, welded="10217" in numbers)
+        return replace(tube, factor=factor, tolerance=tolerance, standard=tolerance.rule.replace("en", "EN ").partition("-")[0])
     hot, cold = by_standard.get("EN 10210-2"), by_standard.get("EN 10219-2")
     if said is not None:
         section = by_standard.get(said)

@@ -57,7 +57,7 @@ def arrange(pieces: Sequence[Placed], vehicle: Vehicle, deck: Deck, dunnage_kg: 
         free = _free_shift(moved, deck)
         if free < -1e-3:
             continue
-        found = _shift(moved, vehicle, deck, dunnage_kg, max(0.0, free))
+        found = _shift(moved, vehicle, dunnage_kg, max(0.0, free))
         if found is None:
             continue
         shift, short = found
@@ -93,7 +93,7 @@ def _extent(piece: Placed) -> tuple[float, float, float, float]:
 
 def _segments(pieces: Sequence[Placed]) -> list[_Segment]:
     """Runs of floor pieces that overlap along the deck, each with what stands on them."""
-    floor = sorted((i for i, p in enumerate(pieces) if p.on is None), key=lambda i: (_extent(pieces[i])[0], i))
+    floor = sorted((i for i, p in enumerate(pieces) if not p.on), key=lambda i: (_extent(pieces[i])[0], i))
     runs: list[tuple[list[int], float, float]] = []
     for i in floor:
         a, _, c, _ = _extent(pieces[i])
@@ -102,15 +102,45 @@ def _segments(pieces: Sequence[Placed]) -> list[_Segment]:
         else:
             runs.append(([i], a, c))
     home = {i: number for number, (members, _, _) in enumerate(runs) for i in members}
-    for i, p in enumerate(pieces):
-        if p.on is not None:
-            home[i] = home[p.on]
+    parent = list(range(len(runs)))
+
+    def root(number: int) -> int:
+        while parent[number] != number:
+            number = parent[number]
+        return number
+
+    # A piece on several others ties the runs below it together.
+    for i in sorted(range(len(pieces)), key=lambda i: pieces[i].layer):
+        if pieces[i].on:
+            roots = sorted(root(home[k]) for k in pieces[i].on)
+            for other in roots[1:]:
+                parent[other] = roots[0]
+            home[i] = roots[0]
     made = []
-    for number, (_, start, end) in enumerate(runs):
-        members = [i for i in range(len(pieces)) if home[i] == number]
+    for number in range(len(runs)):
+        if root(number) != number:
+            continue
+        start = min(run[1] for k, run in enumerate(runs) if root(k) == number)
+        end = max(run[2] for k, run in enumerate(runs) if root(k) == number)
+        members = [i for i in range(len(pieces)) if root(home[i]) == number]
         mass = sum(pieces[i].unit.mass.heavy for i in members)
         drop = sum(pieces[i].unit.mass.heavy * pieces[i].unit.drop for i in members) / mass if mass else 0.0
         made.append(_Segment(members, start, end - start, mass, drop))
+    return _joined(made)
+
+
+def _joined(segments: list[_Segment]) -> list[_Segment]:
+    """Segments whose spans overlap, a tied one reaching over another, become one."""
+    made: list[_Segment] = []
+    for s in sorted(segments, key=lambda s: (s.start, s.pieces)):
+        if made and s.start < made[-1].start + made[-1].length - HAIR:
+            last = made[-1]
+            end = max(last.start + last.length, s.start + s.length)
+            mass = last.mass + s.mass
+            drop = (last.drop * last.mass + s.drop * s.mass) / mass if mass else 0.0
+            made[-1] = _Segment(sorted(last.pieces + s.pieces), last.start, end - last.start, mass, drop)
+        else:
+            made.append(s)
     return made
 
 
@@ -168,7 +198,7 @@ def _free_shift(pieces: Sequence[Placed], deck: Deck) -> float:
     for p in pieces:
         a, _, c, _ = _extent(p)
         free = min(free, deck.length + deck.overhang - c)
-        if p.on is None:
+        if not p.on:
             free = min(free, deck.length - (a + (c - a) * (1 - BEARER)))
     return free if free < math.inf else 0.0
 
@@ -196,7 +226,7 @@ def worst_kg(support: Support, masses: Sequence[tuple[float, float, float]]) -> 
     return extreme_load_kg(support, masses, most=True)
 
 
-def _shift(pieces: Sequence[Placed], vehicle: Vehicle, deck: Deck, dunnage_kg: float, free: float) -> tuple[float, bool] | None:
+def _shift(pieces: Sequence[Placed], vehicle: Vehicle, dunnage_kg: float, free: float) -> tuple[float, bool] | None:
     """The smallest shift that holds every axle at every stage, and whether a least share is then short; None where none does."""
     statics = vehicle.statics
     if statics is None:
@@ -263,7 +293,7 @@ def _from_the_rear(pieces: Sequence[Placed]) -> bool:
     fronts: dict[int, float] = {}
     rears: dict[int, float] = {}
     for p in pieces:
-        if p.on is None:
+        if not p.on:
             a, _, c, _ = _extent(p)
             fronts[p.unit.drop] = min(fronts.get(p.unit.drop, math.inf), a)
             rears[p.unit.drop] = max(rears.get(p.unit.drop, -math.inf), c)
@@ -306,13 +336,31 @@ def line_load_holds(pieces: Sequence[Placed], vehicle: Vehicle) -> bool:
     return most_line_load(pieces) <= limit * (1 + 1e-9)
 
 
+def shares_below(pieces: Sequence[Placed]) -> list[dict[int, float]]:
+    """For each piece, its floor pieces with the part of its mass that comes down on each, by the area it has on them."""
+    found: list[dict[int, float]] = [{} for _ in pieces]
+    for i in sorted(range(len(pieces)), key=lambda i: pieces[i].layer):
+        if not pieces[i].on:
+            found[i] = {i: 1.0}
+            continue
+        a, b, c, d = _extent(pieces[i])
+        areas = {}
+        for k in pieces[i].on:
+            p, q, r, s = _extent(pieces[k])
+            areas[k] = max(0.0, min(c, r) - max(a, p)) * max(0.0, min(d, s) - max(b, q))
+        whole = math.fsum(areas.values())
+        for k, area in areas.items():
+            for floor, part in found[k].items():
+                found[i][floor] = found[i].get(floor, 0.0) + part * area / whole
+    return found
+
+
 def most_line_load(pieces: Sequence[Placed]) -> float:
     """The largest load of the deck in kg a metre of its length."""
-    base: dict[int, int] = {}
     stack: dict[int, float] = {}
-    for i, p in enumerate(pieces):
-        base[i] = i if p.on is None else base[p.on]
-        stack[base[i]] = stack.get(base[i], 0.0) + p.unit.mass.heavy
+    for p, parts in zip(pieces, shares_below(pieces), strict=True):
+        for floor, part in parts.items():
+            stack[floor] = stack.get(floor, 0.0) + p.unit.mass.heavy * part
     spans = [(_extent(pieces[i])[0], _extent(pieces[i])[2], kg) for i, kg in stack.items()]
     return max(
         (sum(kg / (c - a) * 1000.0 for a, c, kg in spans if a - HAIR <= x < c - _LINE_STEP) for x, _, _ in spans), default=0.0,
@@ -325,4 +373,4 @@ def numbered(pieces: Sequence[Placed]) -> list[Placed]:
         -pieces[i].unit.drop, pieces[i].layer, pieces[i].x if pieces[i].x is not None else 0.0, pieces[i].y or 0.0, pieces[i].unit.name,
     ))
     place = {old: new for new, old in enumerate(order)}
-    return [replace(pieces[i], on=None if pieces[i].on is None else place[pieces[i].on]) for i in order]
+    return [replace(pieces[i], on=tuple(sorted(place[k] for k in pieces[i].on))) for i in order]

@@ -61,23 +61,37 @@ def _place_faults(p: dict[str, Any], pieces: Sequence[dict[str, Any]], room: dic
         found.append(f"{p['name']} reaches too far beyond the tail")
     if p["bottom_mm"] + p["height_mm"] > room["height"] + _MM:
         found.append(f"{p['name']} is above the load height")
-    if p["on"] is None:
+    if not p["on"]:
         if p["layer"] != 1 or abs(p["bottom_mm"] - room["dunnage"]) > _MM:
             found.append(f"{p['name']} stands on nothing")
         if p["x_mm"] + 0.8 * p["length_mm"] > room["length"] + _MM:
             found.append(f"the last bearer of {p['name']} is off the deck")
         return found
-    below = pieces[p["on"]]
-    if p["layer"] != below["layer"] + 1 or abs(p["bottom_mm"] - below["bottom_mm"] - below["height_mm"] - room["dunnage"]) > _MM:
-        found.append(f"{p['name']} does not rest on {below['name']}")
-    if p["kg"] > below["kg"] * (1 + _SHARE):
-        found.append(f"{p['name']} is heavier than {below['name']} below it")
-    if (
-        p["x_mm"] < below["x_mm"] - _MM or p["y_mm"] < below["y_mm"] - _MM or end > below["x_mm"] + below["length_mm"] + _MM
-        or p["y_mm"] + p["width_mm"] > below["y_mm"] + below["width_mm"] + _MM
-    ):
-        found.append(f"{p['name']} juts out over {below['name']}")
+    carriers = [pieces[k] for k in p["on"]]
+    if p["layer"] != 1 + max(c["layer"] for c in carriers):
+        found.append(f"the layer of {p['name']} does not follow from what carries it")
+    gaps = [p["bottom_mm"] - c["bottom_mm"] - c["height_mm"] - room["dunnage"] for c in carriers]
+    if min(gaps) < -_MM or min(gaps) > _MM or max(gaps) > 1.0 + _MM:
+        found.append(f"{p['name']} does not rest on what carries it")
+    for c in carriers:
+        if p["kg"] > c["kg"] * (1 + _SHARE):
+            found.append(f"{p['name']} is heavier than {c['name']} below it")
+    least, quarter = (1.0, 1.0) if len(carriers) == 1 else (0.6, 0.4)
+    half = [
+        (p["x_mm"] + i * p["length_mm"] / 2, p["y_mm"] + j * p["width_mm"] / 2, p["length_mm"] / 2, p["width_mm"] / 2)
+        for i in (0, 1) for j in (0, 1)
+    ]
+    under = [sum(_shared(box, c) for c in carriers) / (box[2] * box[3]) for box in half]
+    if sum(under) / 4 < least - 0.001 or min(under) < quarter - 0.001:
+        found.append(f"{p['name']} juts out over what carries it")
     return found
+
+
+def _shared(box: tuple[float, float, float, float], c: dict[str, Any]) -> float:
+    """The area of a box (x, y, length, width) that lies over a carrier."""
+    along = min(box[0] + box[2], c["x_mm"] + c["length_mm"]) - max(box[0], c["x_mm"])
+    across = min(box[1] + box[3], c["y_mm"] + c["width_mm"]) - max(box[1], c["y_mm"])
+    return max(0.0, along) * max(0.0, across)
 
 
 def _meet(one: dict[str, Any], two: dict[str, Any]) -> bool:
@@ -89,10 +103,15 @@ def _meet(one: dict[str, Any], two: dict[str, Any]) -> bool:
 
 
 def _line_faults(pieces: Sequence[dict[str, Any]], room: dict[str, Any]) -> list[str]:
-    base = []
-    for k, p in enumerate(pieces):
-        base.append(k if p["on"] is None else base[p["on"]])
-    stacks = [(pieces[k]["x_mm"], pieces[k]["length_mm"], sum(q["kg"] for q, b in zip(pieces, base, strict=True) if b == k)) for k in sorted(set(base))]
+    borne = [0.0] * len(pieces)
+    for k in range(len(pieces) - 1, -1, -1):  # in loading order: what is carried comes after what carries it
+        p = pieces[k]
+        borne[k] += p["kg"]
+        if p["on"]:
+            areas = [_shared((p["x_mm"], p["y_mm"], p["length_mm"], p["width_mm"]), pieces[j]) for j in p["on"]]
+            for j, area in zip(p["on"], areas, strict=True):
+                borne[j] += borne[k] * area / sum(areas)
+    stacks = [(p["x_mm"], p["length_mm"], kg) for p, kg in zip(pieces, borne, strict=True) if not p["on"] and p["x_mm"] is not None]
     for x, _, _ in stacks:
         here = sum(kg / length * 1000 for at, length, kg in stacks if at <= x + _MM and x + 2 * _MM < at + length)
         if here > room["line_kg_per_m"] * (1 + _SHARE):

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass, field, replace
 from typing import Any, Literal
 
@@ -48,7 +49,7 @@ class LoadUnit:
 @dataclass(frozen=True, slots=True)
 class Placed:
     """A unit on a deck: the corner nearest the deck's front left and the height of its underside above the deck, mm; its layer
-    from 1; whether it is turned by 90°; which placed unit carries it (its number in the load, None for the deck).
+    from 1; whether it is turned by 90°; which placed units carry it (their numbers in the load; none: the deck does).
     x and y are None where a unit is loaded by mass only.
     """
 
@@ -58,7 +59,7 @@ class Placed:
     z: float
     layer: int
     turned: bool
-    on: int | None
+    on: tuple[int, ...] = ()
 
     @property
     def centre(self) -> tuple[float, float, float] | None:
@@ -75,7 +76,7 @@ class Placed:
         return {
             "name": self.unit.name, "kg": self.unit.mass.heavy, "x_mm": self.x, "y_mm": self.y, "layer": self.layer, "length_mm": length,
             "width_mm": width, "height_mm": height, "kind": self.unit.kind, "phase": self.unit.phase, "mass_kg": self.unit.mass.as_record(),
-            "bottom_mm": self.z, "turned": self.turned, "on": self.on,
+            "bottom_mm": self.z, "turned": self.turned, "on": list(self.on),
             "centre_mm": None if self.centre is None else list(self.centre),
         }
 
@@ -204,3 +205,11 @@ class Plan:
     def gap(self) -> int:
         """Vehicles more than the bound; 0 where proven."""
         return max(0, len(self.loads) - self.bound)
+
+    def as_record(self, cautions: Sequence[str] = ()) -> dict[str, Any]:
+        """As `loads --json` prints it."""
+        return {
+            "vehicles": [load.as_record() for load in self.loads], "not_loaded": [n.as_record() for n in self.not_loaded],
+            "vehicle_count_bound": self.bound, "proven": self.proven, "gap": self.gap,
+            "findings": [f.as_record() for f in self.findings], "cautions": list(cautions),
+        }

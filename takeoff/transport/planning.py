@@ -26,7 +26,7 @@ from takeoff.transport.vehicles import Vehicle
 #: orders tried for one set of units on one deck: while units are dealt out, and for a single unit or a last try
 _TRIES, _MANY_TRIES = 6, 30
 #: placements attempted in all for one fleet, and for levelling the loads
-_FLEET_WORK, _LEVEL_WORK = 900, 200
+_FLEET_WORK, _LEVEL_WORK = 1600, 200
 #: mixes of kinds of vehicles looked at for one number of vehicles
 _MOST_MIXES = 24
 #: above this many units each goes to the first vehicle that takes it, without pushing others out
@@ -97,9 +97,9 @@ class Loader:
             return None
         sized = [u for u in units if u.size is not None]
         bare = [u for u in units if u.size is None]
-        without = [Placed(u, None, None, 0.0, 1, False, None) for u in bare]
+        without = [Placed(u, None, None, 0.0, 1, False) for u in bare]
         if vehicle.deck is None or not sized:
-            return Arranged([Placed(u, None, None, 0.0, 1, False, None) for u in sized] + without, False, False, 0.0)
+            return Arranged([Placed(u, None, None, 0.0, 1, False) for u in sized] + without, False, False, 0.0)
         deck = self.deck(vehicle)
         judged = replace(vehicle, statics=None) if bare else vehicle
         best: Arranged | None = None

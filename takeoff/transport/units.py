@@ -36,13 +36,13 @@ _NOT_FLAT = frozenset(("ring sector", "wedge", "round bar", "round hollow", "sph
 class _List:
     """The weighed frame as plain columns, with each row's box and place."""
 
-    def __init__(self, members: pd.DataFrame, sections: Sequence[Section]) -> None:
+    def __init__(self, members: pd.DataFrame, sections: Sequence[Section], places: dict[int, Place | str]) -> None:
         names = ("mark", "phase", "bundle", "status", "reason", "row", "quantity", "section_id", *_SIZES)
         self.columns: dict[str, list[Any]] = {name: members[name].tolist() for name in names}
         self.mass = [Bounds(a, b, c) if a == a else None for a, b, c in zip(  # noqa: PLR0124 - NaN: not weighed
             *(members[f"each_{word}_kg"].tolist() for word in ("light", "nominal", "heavy")), strict=True)]
         self.sections = sections
-        self.places = places_of(members, sections)
+        self.places = places
 
     def weighed(self, i: int) -> bool:
         return self.columns["status"][i] != "not weighed" and self.mass[i] is not None
@@ -77,12 +77,14 @@ class _List:
         return section is None or section.shape not in _NOT_FLAT
 
 
-def units_of(members: pd.DataFrame, sections: Sequence[Section], job: Job) -> tuple[list[LoadUnit], list[NotLoaded]]:
+def units_of(
+    members: pd.DataFrame, sections: Sequence[Section], job: Job, places: dict[int, Place | str] | None = None,
+) -> tuple[list[LoadUnit], list[NotLoaded]]:
     """Units in the list's order, and what cannot be loaded because it was not weighed. `members` is a weighed frame.
 
     Raises JobError where the job file's picks do not fit the list.
     """
-    data = _List(members, sections)
+    data = _List(members, sections, places_of(members, sections) if places is None else places)
     drops = _drops(data.columns["phase"])
     made: list[tuple[int, LoadUnit]] = []
     lost: list[NotLoaded] = []

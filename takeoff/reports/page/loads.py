@@ -11,21 +11,15 @@ from takeoff.reports.wording import counted, shown
 
 if TYPE_CHECKING:
     from takeoff.pipeline import Result
-    from takeoff.transport.load import AxleLoad, Load, Plan
+    from takeoff.transport.load import AxleLoad, Load
 
 #: what a limit that is not given leaves open
 _OPEN = "unknown: no limit is given"
 
 
-def plan_of(result: Result) -> Plan | None:
-    """The loads of a result, None where no vehicle was asked for."""
-    plan: Plan | None = getattr(result, "loads", None)
-    return plan
-
-
 def words(result: Result, units: Units) -> list[str]:
     """How many vehicles, how many at least, and whether that is proven."""
-    plan = plan_of(result)
+    plan = result.loads
     if plan is None:
         return []
     several = counted(len(plan.loads), "vehicle")
@@ -39,7 +33,7 @@ def words(result: Result, units: Units) -> list[str]:
 
 def not_loaded_table(result: Result, units: Units) -> Table | None:
     """What is on no vehicle, and why."""
-    plan = plan_of(result)
+    plan = result.loads
     if plan is None or not plan.not_loaded:
         return None
     table = Table("not-loaded", "On no vehicle", [Column("Piece"), Column(f"Heavy ({rounding.mass_unit(units)})", True), Column("Why")])
@@ -50,7 +44,7 @@ def not_loaded_table(result: Result, units: Units) -> Table | None:
 
 def blocks(result: Result, units: Units) -> list[Block]:
     """Each load in full, in the plan's order."""
-    plan = plan_of(result)
+    plan = result.loads
     return [] if plan is None else [_block(number, load, units) for number, load in enumerate(plan.loads)]
 
 
@@ -60,8 +54,9 @@ def _block(number: int, load: Load, units: Units) -> Block:
     limit = load.vehicle.payload_kg
     payload = rounding.mass_with_unit(load.payload_kg, "up", units, gap=NO_BREAK)
     of = f"of {rounding.mass_with_unit(limit, 'down', units, gap=NO_BREAK)} that it may carry" if limit else "payload limit: not given"
-    block.words.append(f"Payload {payload} at the heavy masses, {of}; dunnage and gear of "
-                       f"{rounding.mass_with_unit(load.dunnage_kg, 'up', units, gap=NO_BREAK)} are in it.")
+    gear = rounding.mass_with_unit(load.dunnage_kg, "up", units, gap=NO_BREAK)
+    with_gear = f"dunnage and gear of {gear} are in it" if load.dunnage_kg else "no dunnage and gear are in it"
+    block.words.append(f"Payload {payload} at the heavy masses, {of}; {with_gear}.")
     if any(p.unit.not_weighed for p in load.pieces):
         block.words.append("INCOMPLETE: pieces of this load could not be weighed. It is heavier than shown.")
     figure = _deck(load, units)

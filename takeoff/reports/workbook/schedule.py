@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
+import os
 import re
 from collections import Counter
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
+from pathlib import Path
 from typing import TYPE_CHECKING
 
 from takeoff.reports import added, rounding
@@ -107,6 +109,8 @@ class Plan:
 
 
 _MOST_EXACT = 20_000
+#: above this many rows the place in the list is text alone
+_MOST_LINKED = 20_000
 _TWO_LETTERS = re.compile(r"[^\W\d_]{2}")
 _DATE_WORDS = re.compile(r"jan|feb|m[aä]r|apr|ma[iy]|jun|jul|aug|sep|o[ck]t|nov|de[cz]|true|false|\b[ap]m\b", re.IGNORECASE)
 _PATTERN = re.compile(r"^[=<>]|[*?~]")
@@ -247,7 +251,9 @@ def _rows(sheet: Sheet, result: Result, plan: Plan, basis_rows: Sequence[int]) -
     us = units == "us"
     notes = _notes(result)
     values = {column.key: frame[column.key].tolist() for column in plan.columns if column.key in frame}
-    places = [row_place(*at) for at in zip(*(frame[key].tolist() for key in ("file", "sheet", "row")), strict=True)]
+    rows_at = [frame[key].tolist() for key in ("file", "sheet", "row")]
+    places = [row_place(*at) for at in zip(*rows_at, strict=True)]
+    linked = len(frame) <= _MOST_LINKED
     basis_ids, statuses = frame["basis_id"].tolist(), frame["status"].tolist()
     at = {column.key: index for index, column in enumerate(plan.columns)}
     # A text that wraps makes its row taller, so those beyond the printed columns stay on one line.
@@ -273,7 +279,11 @@ def _rows(sheet: Sheet, result: Result, plan: Plan, basis_rows: Sequence[int]) -
             elif key == "note":
                 sheet.text(row, index, notes.get(number), "cell wrap")
             elif key == "where":
-                sheet.text(row, index, places[number], "cell")
+                to = input_link(sheet.book, *(values_at[number] for values_at in rows_at)) if linked else None
+                if to is None:
+                    sheet.text(row, index, places[number], "cell")
+                else:
+                    sheet.link_out(row, index, to, places[number])
             elif key == "status":
                 sheet.text(row, index, statuses[number], _STATUS_STYLE[statuses[number]])
             elif key in {"row", "quantity"}:
@@ -319,6 +329,18 @@ def _rows(sheet: Sheet, result: Result, plan: Plan, basis_rows: Sequence[int]) -
                 value = values[key][number]
                 text = value if isinstance(value, str) and value else BLANKS.get(key)
                 sheet.text(row, index, text, "cell wrap" if index < printed else "cell")
+
+
+def input_link(book: Book, file: object, sheet: object, row: int) -> str | None:
+    """From the workbook's own folder to the row in the list, so that both may move together; None where no path leads there."""
+    try:
+        to = Path(os.path.relpath(Path(str(file)).resolve(), book.folder)).as_posix().replace("%", "%25").replace("#", "%23")
+    except (OSError, ValueError):
+        return None
+    if not isinstance(sheet, str):
+        return to
+    name = sheet.replace("'", "''")
+    return f"{to}#'{name}'!A{int(row)}"
 
 
 def _apart(sheet: Sheet, row: int, index: int, masses: tuple[float, float], at: dict[str, int]) -> None:

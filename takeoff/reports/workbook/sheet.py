@@ -19,9 +19,11 @@ if TYPE_CHECKING:
     from takeoff.pipeline import Result
 
 #: the sheets by name, in the order they lie
-SUMMARY, SCHEDULE, PICKS = "Summary", "Weight schedule", "Picks"
+SUMMARY, CHARTS, SCHEDULE, PICKS = "Summary", "Charts", "Weight schedule", "Picks"
 NOT_WEIGHED, ASSUMPTIONS, BASIS = "Not weighed", "Assumptions", "Basis and sources"
-SHEETS = (SUMMARY, SCHEDULE, PICKS, NOT_WEIGHED, ASSUMPTIONS, BASIS)
+#: sheets that are there where there is something for them
+LOADS, CHANGES = "Loads", "Changes"
+SHEETS = (SUMMARY, CHARTS, SCHEDULE, PICKS, NOT_WEIGHED, ASSUMPTIONS, BASIS)
 
 #: what a spreadsheet cell can hold
 MOST_CHARACTERS = 32_767
@@ -67,6 +69,7 @@ _STYLES: dict[str, dict[str, Any]] = {
     },
     "size us": {"bottom": 7, "bottom_color": RULE, "num_format": "#,##0.000_n"},
     "size": {"bottom": 7, "bottom_color": RULE, "num_format": SIZE},
+    "share": {"bottom": 7, "bottom_color": RULE, "num_format": "0.000000_n"},
     "factor": {"bottom": 7, "bottom_color": RULE, "num_format": "0.00##_n"},
     "link": {"indent": 1, "bottom": 7, "bottom_color": RULE, "underline": 1, "align": "left"},
     "link wrap": {"indent": 1, "bottom": 7, "bottom_color": RULE, "underline": 1, "text_wrap": True},
@@ -80,6 +83,7 @@ _STYLES: dict[str, dict[str, Any]] = {
     "figure 1": {"bold": True, "font_size": 15, "num_format": "#,##0.0_n", "bottom": 7, "bottom_color": RULE},
     "figure 2": {"bold": True, "font_size": 15, "num_format": "#,##0.00_n", "bottom": 7, "bottom_color": RULE},
     "figure 3": {"bold": True, "font_size": 15, "num_format": "#,##0.000_n", "bottom": 7, "bottom_color": RULE},
+    "signed": {"bottom": 7, "bottom_color": RULE, "num_format": "+#,##0.0##_n;-#,##0.0##_n;0_n"},
     "force": {"bottom": 7, "bottom_color": RULE, "num_format": "#,##0.0#_n"},
 }
 
@@ -127,6 +131,7 @@ class Book:
         import xlsxwriter
 
         job = result.job.job
+        self.folder = Path(path).resolve().parent
         self.units: Units = job.units
         self.mass_unit = "kg" if job.units == "si" else "lb"
         self.title = shown(job.title) if job.title else "Weight schedule"
@@ -150,6 +155,10 @@ class Book:
     def add(self, name: str) -> None:
         sheet = self._book.add_worksheet(name)
         self.sheets[name] = Sheet(self, sheet, name)
+
+    def chart(self, options: dict[str, str]) -> Any:
+        """A chart to be filled and then placed with `Sheet.chart`, or combined with another."""
+        return self._book.add_chart(options)
 
     def __enter__(self) -> Self:
         return self
@@ -233,6 +242,21 @@ class Sheet:
             self.text(row, column, text, style)
         else:
             self.number(row, column, text, style)
+
+    def link_out(self, row: int, column: int, to: str, text: str, style: str = "link") -> None:
+        """A cell that leads to another file, such as ``list.xlsx#'Steel'!A14``; plain where links run out or it is too long."""
+        if self.links < MOST_LINKS and len(to) < 1000:
+            self.links += 1
+            self.raw.write_url(row, column, f"external:{to}", self.styles[style], "x")
+        else:
+            style = "cell"
+        self.text(row, column, text, style)
+
+    def chart(self, row: int, chart: Any, pixels: int) -> None:
+        """Place a chart over the sheet's whole width, its top at `row`, `pixels` high; the rows below must be left for it."""
+        wide = int(sum(7 * width + 5 for width in self.column_widths))
+        chart.set_size({"width": wide, "height": pixels - 8})
+        self.raw.insert_chart(row, 0, chart, {"object_position": 1})
 
     def long_text(self, row: int, columns: tuple[int, int], text: str, style: str = "wrap") -> None:
         """A paragraph over several columns."""

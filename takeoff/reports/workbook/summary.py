@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 
 from takeoff.reports import added, rounding
 from takeoff.reports.wording import LIKELY_IS_FOR, counted, pick_word, shown
+from takeoff.reports.workbook.charts import GroupRows
 from takeoff.reports.workbook.picks import PickCells, figure, round_up, rounded_style
 from takeoff.reports.workbook.schedule import WORDS, Names, Plan
 from takeoff.reports.workbook.sheet import ASSUMPTIONS, BASIS, NOT_WEIGHED, PICKS, SCHEDULE, SUMMARY, Book, Sheet
@@ -22,8 +23,8 @@ _NAME, _PIECES, _LIGHT, _NOMINAL, _HEAVY, _LACKS, _REMARK = range(_COLUMNS)
 MOST_GROUPS = 36
 
 
-def write(book: Book, result: Result, plan: Plan, pick_cells: Sequence[PickCells]) -> None:
-    """Write the sheet; it refers to the schedule's rows and to the picks."""
+def write(book: Book, result: Result, plan: Plan, pick_cells: Sequence[PickCells]) -> dict[str, GroupRows]:
+    """Write the sheet, which refers to the schedule's rows and to the picks; returns where each table of sums stands."""
     sheet = book.sheets[SUMMARY]
     sheet.widths([46, 11, 14, 14, 14, 14, 46])
     row = _title(sheet, result)
@@ -32,12 +33,15 @@ def write(book: Book, result: Result, plan: Plan, pick_cells: Sequence[PickCells
     row = _heaviest(sheet, result, pick_cells, row)
     row = _cautions(sheet, result, row)
     tables = []
+    groups: dict[str, GroupRows] = {}
     named = [key for key in ("pick", "phase", "finish") if any(column.key == key for column in plan.columns)]
     for key in ("material", "assembly", "section", *named):
         tables.append(row)
+        groups[key] = GroupRows(row + 2, min(len(result.totals.groups.get(key, [])), MOST_GROUPS), _LIGHT)
         row = _groups(sheet, result, plan, key, row)
     sheet.paginate(_COLUMNS, tables, row, new_page=tables[:1])  # one page for the answer, the tables after it
     sheet.raw.activate()
+    return groups
 
 
 def _title(sheet: Sheet, result: Result) -> int:
