@@ -317,7 +317,8 @@ _COLUMN_UNITS = {"_mm": "mm", "_kg": "kg", "_m2": "m**2", "_m3": "m**3", "_kN": 
 
 def named_by_unit(name: str) -> tuple[str, str] | None:
     """A column's name (``length_mm``) as its bare name and its unit; None where it ends in no unit."""
-    return next(((name.removesuffix(end), unit) for end, unit in _COLUMN_UNITS.items() if name.endswith(end) and len(name) > len(end)), None)
+    found = ((name.removesuffix(end), unit) for end, unit in _COLUMN_UNITS.items() if name.endswith(end))
+    return next(((bare, unit) for bare, unit in found if bare), None)
 
 
 def quantity(values: Any, unit: str) -> Any:

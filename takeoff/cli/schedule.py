@@ -20,7 +20,9 @@ def schedule(
     json: Annotated[str | None, typer.Option(help="Write the machine-readable record to this file, or - for standard output.")] = None,
     csv: Annotated[Path | None, typer.Option(help="Write one line a member to this file.")] = None,
     units: UnitsOption = None,
-    against: Annotated[Path | None, typer.Option(metavar="OLD.json", help="An earlier run's --json: say what changed, and by how much.")] = None,
+    against: Annotated[
+        Path | None, typer.Option(metavar="OLD.json", help="An earlier run's --json: say what changed, and by how much.")
+    ] = None,
     strict: StrictOption = False,
     replace: ReplaceOption = False,
     quiet: QuietOption = False,

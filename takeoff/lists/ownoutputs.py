@@ -8,10 +8,7 @@ import zipfile
 from takeoff.errors import InputError
 
 #: where each kind of workbook keeps the mark that ours bears, and the mark as it stands there
-_MARKED = {
-    "docProps/custom.xml": (b'name="takeoff"', b"weight schedule"),
-    "meta.xml": (b'meta:name="takeoff"', b"weight schedule"),
-}
+_MARKED = {"docProps/custom.xml": (b'name="takeoff"', b"weight schedule"), "meta.xml": (b'meta:name="takeoff"', b"weight schedule")}
 #: an older workbook is one block of bytes; ours keeps its remark in it
 _OLD_WORKBOOK = b"\xd0\xcf\x11\xe0"
 _REMARK = "Weight schedule written by takeoff"
@@ -27,7 +24,7 @@ def refuse_ours(file: str, data: bytes) -> None:
     """Raises InputError where `data` is a weight schedule that this program wrote, whatever it was saved as since."""
     if _is_ours(data):
         raise InputError(
-            "is a weight schedule that this program wrote, not a member list", file=file, right="the member list it was made from",
+            "is a weight schedule that this program wrote, not a member list", file=file, right="the member list it was made from"
         )
 
 

@@ -29,8 +29,19 @@ if TYPE_CHECKING:
 WORDS = ("light", "nominal", "heavy")
 Kind = Literal["added", "removed", "changed"]
 #: what is compared, and what it is called: field of a line -> word
-_FIELDS = {"assembly": "assembly", "pick": "pick", "quantity": "pieces", "section": "section", "material": "material", "length_mm": "length",
-           "width_mm": "width", "thickness_mm": "thickness", "finish": "finish", "contents": "contents", "status": "state"}
+_FIELDS = {
+    "assembly": "assembly",
+    "pick": "pick",
+    "quantity": "pieces",
+    "section": "section",
+    "material": "material",
+    "length_mm": "length",
+    "width_mm": "width",
+    "thickness_mm": "thickness",
+    "finish": "finish",
+    "contents": "contents",
+    "status": "state",
+}
 _FIRST_SHOWN = 20
 
 
@@ -66,8 +77,15 @@ class Change:
     number: int | None
 
     def as_record(self) -> dict[str, Any]:
-        return {"kind": self.kind, "mark": self.mark, "assembly": self.assembly, "what": self.what,
-                "mass_kg": dict(zip(WORDS, self.kg, strict=True)), "not_weighed": self.unknown, "place": self.place}
+        return {
+            "kind": self.kind,
+            "mark": self.mark,
+            "assembly": self.assembly,
+            "what": self.what,
+            "mass_kg": dict(zip(WORDS, self.kg, strict=True)),
+            "not_weighed": self.unknown,
+            "place": self.place,
+        }
 
 
 @dataclass(frozen=True, slots=True)
@@ -87,7 +105,10 @@ class Comparison:
     def as_record(self) -> dict[str, Any]:
         """For the JSON: masses are differences, new minus old, kg."""
         return {
-            "file": self.file, "sha256": self.sha256, "unchanged": self.same, "mass_kg": dict(zip(WORDS, self.total_kg, strict=True)),
+            "file": self.file,
+            "sha256": self.sha256,
+            "unchanged": self.same,
+            "mass_kg": dict(zip(WORDS, self.total_kg, strict=True)),
             "changes": [c.as_record() for c in self.changes],
             "picks": [{"name": name, "hook_load_before_kg": old, "hook_load_kg": new} for name, old, new in self.picks],
         }
@@ -109,16 +130,32 @@ class Comparison:
     def table(self, units: Units) -> Table:
         """Every change as a line."""
         unit = rounding.mass_unit(units)
-        columns = [Column("Change"), Column("Mark"), Column("Assembly"), Column("What"), *(Column(f"{w.capitalize()} ({unit})", True) for w in WORDS),
-                   Column("Place in the list")]
-        table = Table("changes", "Rows added, removed and changed; masses are new minus old", columns, states=("added", "removed", "changed"))
+        columns = [
+            Column("Change"),
+            Column("Mark"),
+            Column("Assembly"),
+            Column("What"),
+            *(Column(f"{w.capitalize()} ({unit})", True) for w in WORDS),
+            Column("Place in the list"),
+        ]
+        table = Table(
+            "changes", "Rows added, removed and changed; masses are new minus old", columns, states=("added", "removed", "changed")
+        )
         for c in self.changes:
             what = c.what + ("; not weighed in one of the runs" if c.unknown else "")
-            table.rows.append(Row([
-                Cell(c.kind, strong=True), Cell(shown(c.mark or "")), Cell(shown(c.assembly or "")), Cell(what),
-                *(Cell(signed(kg, units, unit=False), kg) for kg in c.kg),
-                Cell(c.place, to=None if c.number is None else f"row-{c.number}"),
-            ], state=c.kind))
+            table.rows.append(
+                Row(
+                    [
+                        Cell(c.kind, strong=True),
+                        Cell(shown(c.mark or "")),
+                        Cell(shown(c.assembly or "")),
+                        Cell(what),
+                        *(Cell(signed(kg, units, unit=False), kg) for kg in c.kg),
+                        Cell(c.place, to=None if c.number is None else f"row-{c.number}"),
+                    ],
+                    state=c.kind,
+                )
+            )
         return table
 
     def say(self, page: Page, units: Units) -> None:
@@ -137,6 +174,7 @@ class Comparison:
 
 def hook_text(name: str, old: float | None, new: float | None, units: Units) -> str:
     """What became of a pick's hook load, as a sentence."""
+
     def mass(kg: float) -> str:
         return rounding.mass_with_unit(kg, "up", units, gap=NO_BREAK)
 
@@ -208,8 +246,12 @@ def _three(mass: dict[str, Any]) -> tuple[float, float, float] | None:
 
 def _line(member: dict[str, Any], number: int) -> Line:
     fields = {
-        "assembly": member["assembly"], "pick": member["pick"], "quantity": member["quantity"], "section": member["section"]["designation"],
-        "material": member["material"]["key"], **{key: member[key] for key in ("length_mm", "width_mm", "thickness_mm", "finish", "contents", "status")},
+        "assembly": member["assembly"],
+        "pick": member["pick"],
+        "quantity": member["quantity"],
+        "section": member["section"]["designation"],
+        "material": member["material"]["key"],
+        **{key: member[key] for key in ("length_mm", "width_mm", "thickness_mm", "finish", "contents", "status")},
     }
     if any(isinstance(v, dict | list) for v in fields.values()):
         raise TypeError("a field is no plain value")
@@ -231,7 +273,9 @@ def compare(result: Result, earlier: Earlier) -> Comparison:
         pairs += found
     changes = [_change(old, line) for old, line in pairs]
     found_changes = [
-        *(_alone("added", line) for line in new_left), *(_alone("removed", line) for line in old_left), *(c for c in changes if c is not None),
+        *(_alone("added", line) for line in new_left),
+        *(_alone("removed", line) for line in old_left),
+        *(c for c in changes if c is not None),
     ]
     order = {"added": 0, "removed": 1, "changed": 2}
     found_changes.sort(key=lambda c: (order[c.kind], -1 if c.number is None else c.number))
@@ -239,13 +283,16 @@ def compare(result: Result, earlier: Earlier) -> Comparison:
     hooks = {p.name: p.hook_load_kg for p in result.picks}
     names = dict.fromkeys([*hooks, *earlier.hook_loads])
     picks = tuple(
-        (name, earlier.hook_loads.get(name), hooks.get(name)) for name in names
-        if not _close(earlier.hook_loads.get(name), hooks.get(name))
+        (name, earlier.hook_loads.get(name), hooks.get(name)) for name in names if not _close(earlier.hook_loads.get(name), hooks.get(name))
     )
     differences = tuple(now - before for now, before in zip((total.light, total.nominal, total.heavy), earlier.total_kg, strict=True))
     return Comparison(
-        earlier.file, earlier.sha256, tuple(found_changes), sum(1 for c in changes if c is None),
-        (differences[0], differences[1], differences[2]), picks,
+        earlier.file,
+        earlier.sha256,
+        tuple(found_changes),
+        sum(1 for c in changes if c is None),
+        (differences[0], differences[1], differences[2]),
+        picks,
     )
 
 
@@ -296,25 +343,48 @@ def _alone(kind: Kind, line: Line) -> Change:
     sign = 1.0 if kind == "added" else -1.0
     light, nominal, heavy = (sign * v for v in _kg(line))
     pieces, section, length = (line.fields[key] for key in ("quantity", "section", "length_mm"))
-    what = ", ".join(p for p in (
-        f"{pieces} x {shown(section or 'piece')}" if pieces is not None else shown(section or "piece"),
-        f"{length:g} mm" if isinstance(length, int | float) else "",
-    ) if p)
-    return Change(kind, line.mark, line.fields["assembly"], what, (light, nominal, heavy), line.total_kg is None, line.place,
-                  line.number if kind == "added" else None)
+    what = ", ".join(
+        p
+        for p in (
+            f"{pieces} x {shown(section or 'piece')}" if pieces is not None else shown(section or "piece"),
+            f"{length:g} mm" if isinstance(length, int | float) else "",
+        )
+        if p
+    )
+    return Change(
+        kind,
+        line.mark,
+        line.fields["assembly"],
+        what,
+        (light, nominal, heavy),
+        line.total_kg is None,
+        line.place,
+        line.number if kind == "added" else None,
+    )
 
 
 def _change(old: Line, new: Line) -> Change | None:
     """What differs between a row then and now; None where nothing does."""
-    said = [f"{word} {_shown(old.fields[key])} → {_shown(new.fields[key])}" for key, word in _FIELDS.items()
-            if not _close(old.fields[key], new.fields[key])]
+    said = [
+        f"{word} {_shown(old.fields[key])} → {_shown(new.fields[key])}"
+        for key, word in _FIELDS.items()
+        if not _close(old.fields[key], new.fields[key])
+    ]
     before, now = _kg(old), _kg(new)
     light, nominal, heavy = (b - a for a, b in zip(before, now, strict=True))
     moved = any(not _close(a, b) for a, b in zip(before, now, strict=True))
     if not said and not moved:
         return None
-    return Change("changed", new.mark, new.fields["assembly"], "; ".join(said) or "mass alone (another basis or setting)", (light, nominal, heavy),
-                  old.total_kg is None or new.total_kg is None, new.place, new.number)
+    return Change(
+        "changed",
+        new.mark,
+        new.fields["assembly"],
+        "; ".join(said) or "mass alone (another basis or setting)",
+        (light, nominal, heavy),
+        old.total_kg is None or new.total_kg is None,
+        new.place,
+        new.number,
+    )
 
 
 def _close(a: Any, b: Any) -> bool:
@@ -327,4 +397,3 @@ def _shown(value: Any) -> str:
     if value is None:
         return "(none)"
     return f"{value:g}" if isinstance(value, int | float) else shown(value)
-

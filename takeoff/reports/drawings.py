@@ -47,9 +47,7 @@ class Drawing:
         self.parts.append(f'<circle cx="{_number(x)}" cy="{_number(y)}" r="{_number(radius)}" class="{kind}"/>')
 
     def text(self, x: float, y: float, text: object, anchor: str = "start", kind: str = "t") -> None:
-        self.parts.append(
-            f'<text x="{_number(x)}" y="{_number(y)}" text-anchor="{anchor}" class="{kind}">{escape(shown(text))}</text>'
-        )
+        self.parts.append(f'<text x="{_number(x)}" y="{_number(y)}" text-anchor="{anchor}" class="{kind}">{escape(shown(text))}</text>')
 
     def svg(self) -> str:
         label = escape(shown(self.title), quote=True)
@@ -300,8 +298,10 @@ def chart(series: Sequence[Series], axes: tuple[str, str], title: str, *, uprigh
     drawing = Drawing(WIDTH, bottom + 44 + 17 * len(series), title)
 
     def at(p: Flat) -> Flat:
-        return (left + (right - left) * (p[0] - x_ticks[0]) / (x_ticks[-1] - x_ticks[0]),
-                bottom - (bottom - top) * (p[1] - y_ticks[0]) / (y_ticks[-1] - y_ticks[0]))
+        return (
+            left + (right - left) * (p[0] - x_ticks[0]) / (x_ticks[-1] - x_ticks[0]),
+            bottom - (bottom - top) * (p[1] - y_ticks[0]) / (y_ticks[-1] - y_ticks[0]),
+        )
 
     for tick in x_ticks:
         x, _ = at((tick, y_ticks[0]))
@@ -340,8 +340,10 @@ def _together(series: Sequence[Series]) -> list[Series]:
     found: dict[tuple[Flat, ...], list[str]] = {}
     for line in series:
         found.setdefault(tuple((round(x, 6), round(y, 6)) for x, y in line.points), []).append(line.label)
-    return [Series(", ".join(labels) if len(labels) < 4 else f"{labels[0]} and {len(labels) - 1} more alike", points)
-            for points, labels in found.items()]
+    return [
+        Series(", ".join(labels) if len(labels) < 4 else f"{labels[0]} and {len(labels) - 1} more alike", points)
+        for points, labels in found.items()
+    ]
 
 
 def ticks(low: float, high: float, about: int) -> list[float]:

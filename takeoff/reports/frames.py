@@ -39,13 +39,36 @@ class Plan:
 def plan(result: Result) -> Plan:
     """The picks and loads of a weighed result as frames."""
     picks = [
-        (p.name, p.pieces, p.not_weighed, *_three(p.mass_kg), p.design_mass_kg, p.static_hook_load_kg, p.hook_load_kg, p.hook_load_kN,
-         *(p.centre.centre if p.centre else (None,) * 3), p.crane.name if p.crane else None, p.crane.utilisation if p.crane else None, p.verdict)
+        (
+            p.name,
+            p.pieces,
+            p.not_weighed,
+            *_three(p.mass_kg),
+            p.design_mass_kg,
+            p.static_hook_load_kg,
+            p.hook_load_kg,
+            p.hook_load_kN,
+            *(p.centre.centre if p.centre else (None,) * 3),
+            p.crane.name if p.crane else None,
+            p.crane.utilisation if p.crane else None,
+            p.verdict,
+        )
         for p in result.picks
     ]
     points = [
-        (p.name, q.name, *q.position_mm, q.share_kN, q.share_heavy_kN, q.tension_kN, q.sling_length_mm, q.angle_from_vertical_deg, q.required_wll_t)
-        for p in result.picks for q in p.points
+        (
+            p.name,
+            q.name,
+            *q.position_mm,
+            q.share_kN,
+            q.share_heavy_kN,
+            q.tension_kN,
+            q.sling_length_mm,
+            q.angle_from_vertical_deg,
+            q.required_wll_t,
+        )
+        for p in result.picks
+        for q in p.points
     ]
     found = result.loads
     placed = found.loads if found else ()
@@ -53,10 +76,43 @@ def plan(result: Result) -> Plan:
     axles = [(load.name, a.name, a.light_kg, a.kg, a.limit_kg, a.share) for load in placed for a in load.axles]
     left = [(n.name, n.kg, n.reason) for n in (found.not_loaded if found else ())]
     return Plan(
-        _frame(picks, ("pick", "pieces", "not_weighed", "light_kg", "nominal_kg", "heavy_kg", "design_mass_kg", "static_hook_load_kg",
-                       "hook_load_kg", "hook_load_kN", "x_mm", "y_mm", "z_mm", "crane", "utilisation", "verdict")),
-        _frame(points, ("pick", "point", "x_mm", "y_mm", "z_mm", "share_kN", "share_heavy_kN", "tension_kN", "sling_length_mm", "angle_deg",
-                        "required_wll_t")),
+        _frame(
+            picks,
+            (
+                "pick",
+                "pieces",
+                "not_weighed",
+                "light_kg",
+                "nominal_kg",
+                "heavy_kg",
+                "design_mass_kg",
+                "static_hook_load_kg",
+                "hook_load_kg",
+                "hook_load_kN",
+                "x_mm",
+                "y_mm",
+                "z_mm",
+                "crane",
+                "utilisation",
+                "verdict",
+            ),
+        ),
+        _frame(
+            points,
+            (
+                "pick",
+                "point",
+                "x_mm",
+                "y_mm",
+                "z_mm",
+                "share_kN",
+                "share_heavy_kN",
+                "tension_kN",
+                "sling_length_mm",
+                "angle_deg",
+                "required_wll_t",
+            ),
+        ),
         _frame(pieces, ("vehicle", "piece", "heavy_kg", "x_mm", "y_mm", "layer")),
         _frame(axles, ("vehicle", "axle", "light_kg", "heavy_kg", "limit_kg", "share")),
         _frame(left, ("piece", "heavy_kg", "reason")),
@@ -70,8 +126,10 @@ def sums(result: Result, by: str) -> pd.DataFrame:
     Raises KeyError on another grouping.
     """
     groups = result.totals.groups[by]
-    return _frame([(g.name, g.quantity, *_three(g.mass_kg), g.not_weighed) for g in groups],
-                  (by, "pieces", "light_kg", "nominal_kg", "heavy_kg", "not_weighed"))
+    return _frame(
+        [(g.name, g.quantity, *_three(g.mass_kg), g.not_weighed) for g in groups],
+        (by, "pieces", "light_kg", "nominal_kg", "heavy_kg", "not_weighed"),
+    )
 
 
 def _three(mass: Bounds) -> tuple[float, float, float]:

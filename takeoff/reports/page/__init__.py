@@ -42,16 +42,28 @@ def to_page(result: Result, *, parts: Collection[str] = PARTS, pick: str | None 
     whole = "masses" in parts
     view: dict[str, Any] = {
         "title": shown(job.title) if job.title else "Weight schedule",
-        "about": [(label, shown(value)) for label, value in (
-            ("Reference", job.reference), ("Revision", job.revision), ("Date", job.date), ("Prepared by", job.prepared_by),
-            ("Checked by", job.checked_by), ("Approved by", job.approved_by)) if value],
+        "about": [
+            (label, shown(value))
+            for label, value in (
+                ("Reference", job.reference),
+                ("Revision", job.revision),
+                ("Date", job.date),
+                ("Prepared by", job.prepared_by),
+                ("Checked by", job.checked_by),
+                ("Approved by", job.approved_by),
+            )
+            if value
+        ],
         "lists": "; ".join(shown(i.file) + (f" ({', '.join(shown(s) for s in i.sheets)})" if i.sheets else "") for i in result.inputs),
         "job_file": shown(result.job_file) if result.job_file else "",
-        "units": units, "mass_unit": rounding.mass_unit(units),
-        "complete": result.complete, "lacking": counted(result.totals.not_weighed, "row"),
+        "units": units,
+        "mass_unit": rounding.mass_unit(units),
+        "complete": result.complete,
+        "lacking": counted(result.totals.not_weighed, "row"),
         "totals": masses.totals_table(result, units) if whole else None,
         "heaviest": _heaviest(result, units) if whole else "",
-        "likely": masses.likely(result, units), "likely_is_for": LIKELY_IS_FOR,
+        "likely": masses.likely(result, units),
+        "likely_is_for": LIKELY_IS_FOR,
         "pieces": rounding.number(result.totals.quantity, 0, gap=NO_BREAK),
         "account": result.account.as_record(),
         "not_counted": added.not_counted(result),
@@ -71,7 +83,10 @@ def to_page(result: Result, *, parts: Collection[str] = PARTS, pick: str | None 
         "schedule": masses.schedule_table(result, units, rows) if whole else None,
         "missing": masses.not_weighed_table(result, rows) if whole and not result.complete else None,
         "sources": sources.tables(result) if whole else [sources.inputs(result)],
-        "style": style, "script": script, "style_hash": _hash(style), "script_hash": _hash(script),
+        "style": style,
+        "script": script,
+        "style_hash": _hash(style),
+        "script_hash": _hash(script),
     }
     return _template().render(view)
 

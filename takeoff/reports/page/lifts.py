@@ -24,20 +24,35 @@ MOST_OUTLINES = 400
 def picks_table(result: Result, units: Units, picks: list[Pick]) -> Table:
     """Every pick in one line."""
     unit, force = rounding.mass_unit(units), "kN" if units == "si" else "kip"
-    columns = [Column(pick_word(result).capitalize()), Column("Pieces", True), *(Column(f"{w} ({unit})", True) for w in ("Light", "Nominal", "Heavy")),
-               Column(f"Hook load ({unit})", True), Column(f"Hook load ({force})", True), Column("Rows not weighed", True), Column("Verdict")]
+    columns = [
+        Column(pick_word(result).capitalize()),
+        Column("Pieces", True),
+        *(Column(f"{w} ({unit})", True) for w in ("Light", "Nominal", "Heavy")),
+        Column(f"Hook load ({unit})", True),
+        Column(f"Hook load ({force})", True),
+        Column("Rows not weighed", True),
+        Column("Verdict"),
+    ]
     table = Table("picks-table", "Picks, heaviest first", columns)
     order = _heaviest(picks)
     for place, i in enumerate(order):
         pick = picks[i]
         light, nominal, heavy = rounding.bounds(pick.mass_kg, units, NO_BREAK)
-        table.rows.append(Row([
-            Cell(shown(pick.name), to=f"pick-{i}" if place < MOST_PICKS else None), Cell(str(pick.pieces), pick.pieces),
-            Cell(light, pick.mass_kg.light), Cell(nominal, pick.mass_kg.nominal), Cell(heavy, pick.mass_kg.heavy),
-            Cell(rounding.mass(pick.hook_load_kg, "up", units, gap=NO_BREAK), pick.hook_load_kg, strong=True),
-            Cell(rounding.force_with_unit(pick.hook_load_kN, "up", units, NO_BREAK).rpartition(NO_BREAK)[0], pick.hook_load_kN),
-            Cell(str(pick.not_weighed), pick.not_weighed, strong=bool(pick.not_weighed)), Cell(_word(pick)),
-        ]))
+        table.rows.append(
+            Row(
+                [
+                    Cell(shown(pick.name), to=f"pick-{i}" if place < MOST_PICKS else None),
+                    Cell(str(pick.pieces), pick.pieces),
+                    Cell(light, pick.mass_kg.light),
+                    Cell(nominal, pick.mass_kg.nominal),
+                    Cell(heavy, pick.mass_kg.heavy),
+                    Cell(rounding.mass(pick.hook_load_kg, "up", units, gap=NO_BREAK), pick.hook_load_kg, strong=True),
+                    Cell(rounding.force_with_unit(pick.hook_load_kN, "up", units, NO_BREAK).rpartition(NO_BREAK)[0], pick.hook_load_kN),
+                    Cell(str(pick.not_weighed), pick.not_weighed, strong=bool(pick.not_weighed)),
+                    Cell(_word(pick)),
+                ]
+            )
+        )
     if len(order) > MOST_PICKS:
         table.note = f"The {MOST_PICKS} heaviest are shown in full below; the build-up of every one is in the workbook and the JSON."
     return table
@@ -59,7 +74,9 @@ def blocks(result: Result, units: Units, picks: list[Pick]) -> list[Block]:
 def _block(result: Result, number: int, pick: Pick, units: Units) -> Block:
     block = Block(f"pick-{number}", f"{shown(pick.name)}: {counted(pick.pieces, 'piece')}", picksheet.verdict(pick))
     if pick.not_weighed:
-        block.words.append(f"INCOMPLETE: {counted(pick.not_weighed, 'row')} of this pick could not be weighed. Every figure is of the rest only.")
+        block.words.append(
+            f"INCOMPLETE: {counted(pick.not_weighed, 'row')} of this pick could not be weighed. Every figure is of the rest only."
+        )
     moving = rounding.mass_with_unit(pick.hook_load_kg, "up", units, gap=NO_BREAK)
     at_rest = rounding.mass_with_unit(pick.static_hook_load_kg, "up", units, gap=NO_BREAK)
     force = rounding.force_with_unit(pick.hook_load_kN, "up", units, NO_BREAK)
@@ -88,8 +105,12 @@ def _build_up(number: int, pick: Pick, units: Units) -> Table:
     """Line by line from the heavy mass to the hook, each as a step."""
     unit = rounding.mass_unit(units)
     decimals = rounding.decimals_for(rounding.in_mass_unit(pick.hook_load_kg, units))
-    table = Table(f"build-{number}", f"How the hook load of {shown(pick.name)} builds up ({unit})",
-                  [Column("Line"), Column("Step"), Column(unit, True)], tools=False)
+    table = Table(
+        f"build-{number}",
+        f"How the hook load of {shown(pick.name)} builds up ({unit})",
+        [Column("Line"), Column("Step"), Column(unit, True)],
+        tools=False,
+    )
     most, before = pick.hook_load_kg, 0.0
     lines = [(line.item, line.kg) for line in pick.build_up]
     for item, kg in lines:
@@ -108,18 +129,42 @@ def _step(item: str, start: float, end: float, most: float, units: Units, decima
 
 
 def _points(number: int, pick: Pick, units: Units) -> Table:
-    columns = [Column("Point"), Column("Share at rest", True), Column("Governing share", True), Column("Case"), Column("Sling", True),
-               Column("Angle from the vertical", True), Column("Tension", True), Column("Needs (working load limit)", True), Column("Enough would be")]
-    table = Table(f"points-{number}", f"Lifting points of {shown(pick.name)}", columns, tools=False,
-                  note="Share at rest: of the nominal mass. Governing: of design mass × dynamic factor. The tag on the gear decides.")
+    columns = [
+        Column("Point"),
+        Column("Share at rest", True),
+        Column("Governing share", True),
+        Column("Case"),
+        Column("Sling", True),
+        Column("Angle from the vertical", True),
+        Column("Tension", True),
+        Column("Needs (working load limit)", True),
+        Column("Enough would be"),
+    ]
+    table = Table(
+        f"points-{number}",
+        f"Lifting points of {shown(pick.name)}",
+        columns,
+        tools=False,
+        note="Share at rest: of the nominal mass. Governing: of design mass × dynamic factor. The tag on the gear decides.",
+    )
     for p in pick.points:
         angle = NO_FIGURE if p.angle_from_vertical_deg is None else f"{rounding.number(p.angle_from_vertical_deg, 1, 'up')}°"
         sizes = "; ".join(f"{shown(c.tackle)} {shown(c.size or 'none')} ({shown(c.method)})" for c in p.chosen)
-        table.rows.append(Row([
-            Cell(shown(p.name), strong=True), Cell(_force(p.share_kN, units)), Cell(_force(p.share_heavy_kN, units), strong=True),
-            Cell(shown(p.case)), Cell(_length(p.sling_length_mm, units)), Cell(angle), Cell(_force(p.tension_kN, units), strong=True),
-            Cell(picksheet.tonnes(p.required_wll_t, "up", units)), Cell(sizes or NO_FIGURE),
-        ]))
+        table.rows.append(
+            Row(
+                [
+                    Cell(shown(p.name), strong=True),
+                    Cell(_force(p.share_kN, units)),
+                    Cell(_force(p.share_heavy_kN, units), strong=True),
+                    Cell(shown(p.case)),
+                    Cell(_length(p.sling_length_mm, units)),
+                    Cell(angle),
+                    Cell(_force(p.tension_kN, units), strong=True),
+                    Cell(picksheet.tonnes(p.required_wll_t, "up", units)),
+                    Cell(sizes or NO_FIGURE),
+                ]
+            )
+        )
     return table
 
 
@@ -148,14 +193,25 @@ def _views(result: Result, pick: Pick, units: Units) -> list[Figure]:
             return p[a], p[b]
 
         view = View(
-            flat(centre.low), flat(centre.high), flat(centre.centre), (flat(centre.box[0]), flat(centre.box[1])),
+            flat(centre.low),
+            flat(centre.high),
+            flat(centre.centre),
+            (flat(centre.box[0]), flat(centre.box[1])),
             tuple(drawings.hull([flat(c) for c in corners]) for corners in outlines),
-            tuple((shown(p.name), flat(p.position_mm)) for p in pick.points), flat(pick.hook_mm) if pick.hook_mm else None, centre.at_least,
+            tuple((shown(p.name), flat(p.position_mm)) for p in pick.points),
+            flat(pick.hook_mm) if pick.hook_mm else None,
+            centre.at_least,
         )
         axes = ("xyz"[first], "xyz"[second])
         said = f"{name} of {shown(pick.name)}: {axes[0]} {size[first]}, {axes[1]} {size[second]}, centre of gravity and lifting points to scale"
-        legend = "" if figures else (" Cross: centre of gravity, in the box where it may lie within the bounds"
-                                     + ("; diamonds: lifting points; dashes: slings." if pick.points else "."))
+        legend = (
+            ""
+            if figures
+            else (
+                " Cross: centre of gravity, in the box where it may lie within the bounds"
+                + ("; diamonds: lifting points; dashes: slings." if pick.points else ".")
+            )
+        )
         caption = f"{name}, to scale: {axes[0]} to the right, {axes[1]} up.{legend}"
         figures.append(Figure(drawings.pick_view(view, axes, (size[first], size[second]), said), caption))
     return figures

@@ -23,11 +23,15 @@ def words(result: Result, units: Units) -> list[str]:
     if plan is None:
         return []
     several = counted(len(plan.loads), "vehicle")
-    proven = "no plan can do with fewer" if plan.proven else f"at least {plan.bound} are needed; whether {plan.bound} would do is not proven"
+    proven = (
+        "no plan can do with fewer" if plan.proven else f"at least {plan.bound} are needed; whether {plan.bound} would do is not proven"
+    )
     said = [f"{several}: {proven}." if plan.loads else "Nothing is on a vehicle."]
     if plan.not_loaded:
         said.append(f"NOT LOADED: {counted(len(plan.not_loaded), 'piece')}, on no vehicle and in no figure below.")
-    said += [f"{f.level.capitalize()}: {shown(f.message)}" + (f". Right would be: {shown(f.right)}" if f.right else "") for f in plan.findings]
+    said += [
+        f"{f.level.capitalize()}: {shown(f.message)}" + (f". Right would be: {shown(f.right)}" if f.right else "") for f in plan.findings
+    ]
     return said
 
 
@@ -38,7 +42,9 @@ def not_loaded_table(result: Result, units: Units) -> Table | None:
         return None
     table = Table("not-loaded", "On no vehicle", [Column("Piece"), Column(f"Heavy ({rounding.mass_unit(units)})", True), Column("Why")])
     for piece in plan.not_loaded:
-        table.rows.append(Row([Cell(shown(piece.name)), Cell(rounding.mass(piece.kg, "up", units, gap=NO_BREAK), piece.kg), Cell(shown(piece.reason))]))
+        table.rows.append(
+            Row([Cell(shown(piece.name)), Cell(rounding.mass(piece.kg, "up", units, gap=NO_BREAK), piece.kg), Cell(shown(piece.reason))])
+        )
     return table
 
 
@@ -67,23 +73,45 @@ def _block(number: int, load: Load, units: Units) -> Block:
         block.figures.append(curve)
     if load.axles:
         block.tables.append(_axles(number, load, units))
-    pieces = Table(f"pieces-{number}", f"On {shown(load.name)}, in the order of loading", [
-        Column("No.", True), Column("Piece"), Column(f"Heavy ({unit})", True), Column(f"From the front ({_unit(units)})", True),
-        Column(f"From the left ({_unit(units)})", True), Column("Layer", True), Column(f"Length ({_unit(units)})", True),
-        Column(f"Width ({_unit(units)})", True), Column(f"Height ({_unit(units)})", True), Column("Phase"),
-    ])
+    pieces = Table(
+        f"pieces-{number}",
+        f"On {shown(load.name)}, in the order of loading",
+        [
+            Column("No.", True),
+            Column("Piece"),
+            Column(f"Heavy ({unit})", True),
+            Column(f"From the front ({_unit(units)})", True),
+            Column(f"From the left ({_unit(units)})", True),
+            Column("Layer", True),
+            Column(f"Length ({_unit(units)})", True),
+            Column(f"Width ({_unit(units)})", True),
+            Column(f"Height ({_unit(units)})", True),
+            Column("Phase"),
+        ],
+    )
     for at, p in enumerate(load.pieces, 1):
         sizes = p.unit.on_deck(p.turned) if p.unit.size else (None, None, None)
-        pieces.rows.append(Row([
-            Cell(str(at), at), Cell(shown(p.unit.name)), Cell(rounding.mass(p.unit.mass.heavy, "up", units, gap=NO_BREAK), p.unit.mass.heavy, strong=True),
-            *(_size(v, units) for v in (p.x, p.y)), Cell(str(p.layer), p.layer), *(_size(v, units) for v in sizes), Cell(text(p.unit.phase)),
-        ]))
+        pieces.rows.append(
+            Row(
+                [
+                    Cell(str(at), at),
+                    Cell(shown(p.unit.name)),
+                    Cell(rounding.mass(p.unit.mass.heavy, "up", units, gap=NO_BREAK), p.unit.mass.heavy, strong=True),
+                    *(_size(v, units) for v in (p.x, p.y)),
+                    Cell(str(p.layer), p.layer),
+                    *(_size(v, units) for v in sizes),
+                    Cell(text(p.unit.phase)),
+                ]
+            )
+        )
     block.tables.append(pieces)
     if load.lashings:
         block.tables.append(_lashings(number, load))
     for over in load.over_size:
-        value, most = ((rounding.mass_with_unit(v, way, units, gap=NO_BREAK) if over.kind == "gross" else _long(v, units))
-                       for v, way in ((over.value, "up"), (over.limit, "down")))  # type: ignore[arg-type]
+        value, most = (
+            (rounding.mass_with_unit(v, way, units, gap=NO_BREAK) if over.kind == "gross" else _long(v, units))
+            for v, way in ((over.value, "up"), (over.limit, "down"))
+        )  # type: ignore[arg-type]
         block.facts.append((f"OVER-SIZE, {over.kind}", f"{shown(over.name)}: {value}, over {most} ({shown(over.rule)})"))
     for f in load.findings:
         read = f" (read: {shown(f.read)})" if f.read else ""
@@ -116,26 +144,43 @@ def _deck(load: Load, units: Units) -> Figure | None:
     if deck is None or not placed:
         return None
     title = f"Deck of {shown(load.name)} from above, {_long(deck[0], units)} by {_long(deck[1], units)}, front to the left"
-    return Figure(drawings.deck(placed, deck[0], deck[1], title), f"{title}, to scale. Numbers as in the table; a heavier outline lies on another piece.",
-                  wide=True)
+    return Figure(
+        drawings.deck(placed, deck[0], deck[1], title),
+        f"{title}, to scale. Numbers as in the table; a heavier outline lies on another piece.",
+        wide=True,
+    )
 
 
 def _curve(load: Load, units: Units) -> Figure | None:
     """What the vehicle may carry by where the load's centre lies, with this load marked."""
     if not load.curve or load.centre_mm is None:
         return None
-    far, heavy = ((1 / 1000.0, 1 / 1000.0) if units == "si" else (1 / rounding.MM_PER_FT, 1 / rounding.KG_PER_LB / 1000.0))
-    series = [drawings.Series("what the vehicle may carry there", tuple((x * far, kg * heavy) for x, kg, _ in load.curve)),
-              drawings.Series("this load", ((load.centre_mm[0] * far, load.payload_kg * heavy),))]
-    axes = ("m from the deck's front to the load's centre", "t") if units == "si" else ("ft from the deck's front to the load's centre", "1000 lb")
+    far, heavy = (1 / 1000.0, 1 / 1000.0) if units == "si" else (1 / rounding.MM_PER_FT, 1 / rounding.KG_PER_LB / 1000.0)
+    series = [
+        drawings.Series("what the vehicle may carry there", tuple((x * far, kg * heavy) for x, kg, _ in load.curve)),
+        drawings.Series("this load", ((load.centre_mm[0] * far, load.payload_kg * heavy),)),
+    ]
+    axes = (
+        ("m from the deck's front to the load's centre", "t")
+        if units == "si"
+        else ("ft from the deck's front to the load's centre", "1000 lb")
+    )
     title = f"Payload of {shown(load.vehicle.name)} by the place of the load's centre, and this load"
     return Figure(drawings.chart(series, axes, title), title + ". Above line A a limit is exceeded.")
 
 
 def _axles(number: int, load: Load, units: Units) -> Table:
     unit = rounding.mass_unit(units)
-    columns = [Column("Axle or group"), Column("Load, limit marked"), Column(f"Light ({unit})", True), Column(f"Heavy ({unit})", True),
-               Column(f"Worst while unloading ({unit})", True), Column(f"Limit ({unit})", True), Column("Of the limit", True), Column("Word")]
+    columns = [
+        Column("Axle or group"),
+        Column("Load, limit marked"),
+        Column(f"Light ({unit})", True),
+        Column(f"Heavy ({unit})", True),
+        Column(f"Worst while unloading ({unit})", True),
+        Column(f"Limit ({unit})", True),
+        Column("Of the limit", True),
+        Column("Word"),
+    ]
     table = Table(f"axles-{number}", f"Axle loads of {shown(load.name)}", columns, tools=False)
     most = max(max(a.kg, a.worst_kg, a.limit_kg or 0.0) for a in load.axles) * 1.05
     for a in load.axles:
@@ -143,12 +188,20 @@ def _axles(number: int, load: Load, units: Units) -> Table:
         word = _axle_word(a, used)
         heavy = rounding.mass(a.kg, "up", units, gap=NO_BREAK)
         title = f"{a.name}: {heavy} {unit}, {word}"
-        table.rows.append(Row([
-            Cell(shown(a.name)), Cell(svg=drawings.limit_bar(a.light_kg, a.kg, a.limit_kg, most, title)),
-            Cell(rounding.mass(a.light_kg, "down", units, gap=NO_BREAK), a.light_kg), Cell(heavy, a.kg, strong=True),
-            Cell(rounding.mass(a.worst_kg, "up", units, gap=NO_BREAK), a.worst_kg), Cell(rounding.mass(a.limit_kg, "down", units, gap=NO_BREAK)),
-            Cell(NO_FIGURE if used is None else f"{rounding.number(used * 100, 1, 'up')}{NO_BREAK}%", used), Cell(word, strong=word == "OVER"),
-        ]))
+        table.rows.append(
+            Row(
+                [
+                    Cell(shown(a.name)),
+                    Cell(svg=drawings.limit_bar(a.light_kg, a.kg, a.limit_kg, most, title)),
+                    Cell(rounding.mass(a.light_kg, "down", units, gap=NO_BREAK), a.light_kg),
+                    Cell(heavy, a.kg, strong=True),
+                    Cell(rounding.mass(a.worst_kg, "up", units, gap=NO_BREAK), a.worst_kg),
+                    Cell(rounding.mass(a.limit_kg, "down", units, gap=NO_BREAK)),
+                    Cell(NO_FIGURE if used is None else f"{rounding.number(used * 100, 1, 'up')}{NO_BREAK}%", used),
+                    Cell(word, strong=word == "OVER"),
+                ]
+            )
+        )
     return table
 
 
@@ -157,13 +210,32 @@ def _axle_word(axle: AxleLoad, used: float | None) -> str:
 
 
 def _lashings(number: int, load: Load) -> Table:
-    table = Table(f"lashings-{number}", f"Securing of {shown(load.name)}", [
-        Column("Piece"), Column("Method"), Column("Direction"), Column("Number", True), Column("Friction", True), Column("Angle", True), Column("Rule")],
-        note="Numbers are a planning figure, not a securing plan: the gear's tag, the deck's fittings and local rules decide.")
+    table = Table(
+        f"lashings-{number}",
+        f"Securing of {shown(load.name)}",
+        [
+            Column("Piece"),
+            Column("Method"),
+            Column("Direction"),
+            Column("Number", True),
+            Column("Friction", True),
+            Column("Angle", True),
+            Column("Rule"),
+        ],
+        note="Numbers are a planning figure, not a securing plan: the gear's tag, the deck's fittings and local rules decide.",
+    )
     for x in load.lashings:
-        table.rows.append(Row([
-            Cell(shown(x.piece)), Cell(shown(x.method)), Cell(shown(x.direction)), Cell(str(x.number), x.number, strong=True),
-            Cell(NO_FIGURE if x.friction is None else f"{x.friction:g}", x.friction),
-            Cell(NO_FIGURE if x.angle_deg is None else f"{x.angle_deg:g}°", x.angle_deg), Cell(shown(x.rule)),
-        ]))
+        table.rows.append(
+            Row(
+                [
+                    Cell(shown(x.piece)),
+                    Cell(shown(x.method)),
+                    Cell(shown(x.direction)),
+                    Cell(str(x.number), x.number, strong=True),
+                    Cell(NO_FIGURE if x.friction is None else f"{x.friction:g}", x.friction),
+                    Cell(NO_FIGURE if x.angle_deg is None else f"{x.angle_deg:g}°", x.angle_deg),
+                    Cell(shown(x.rule)),
+                ]
+            )
+        )
     return table

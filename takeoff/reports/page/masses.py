@@ -24,8 +24,16 @@ MOST_GROUPS = 24
 MOST_LINKS = 24
 _SIZES = {"length_mm": "Length", "width_mm": "Width", "thickness_mm": "Thickness", "height_mm": "Height", "diameter_mm": "Diameter"}
 _TEXTS = {
-    "pick": "Pick", "phase": "Phase", "run": "Run", "bundle": "Bundle", "finish": "Finish", "contents": "Contents",
-    "insulation": "Insulation", "holes": "Holes", "handling": "Handling", "remarks": "Remarks",
+    "pick": "Pick",
+    "phase": "Phase",
+    "run": "Run",
+    "bundle": "Bundle",
+    "finish": "Finish",
+    "contents": "Contents",
+    "insulation": "Insulation",
+    "holes": "Holes",
+    "handling": "Handling",
+    "remarks": "Remarks",
 }
 
 
@@ -72,17 +80,28 @@ def groups_table(result: Result, key: str, units: Units) -> Table | None:
     ordered = sorted(groups, key=lambda g: (-g.mass_kg.heavy, -g.not_weighed))
     most = ordered[0].mass_kg.heavy
     unit = rounding.mass_unit(units)
-    columns = [Column(key.capitalize()), Column("Light to heavy"), *(Column(f"{w.capitalize()} ({unit})", True) for w in WORDS),
-               Column("Pieces", True), Column("Rows not weighed", True)]
+    columns = [
+        Column(key.capitalize()),
+        Column("Light to heavy"),
+        *(Column(f"{w.capitalize()} ({unit})", True) for w in WORDS),
+        Column("Pieces", True),
+        Column("Rows not weighed", True),
+    ]
     table = Table(f"by-{key}", f"Mass by {key}", columns)
     for group in ordered[:MOST_GROUPS]:
         mass = group.mass_kg
         title = f"{group.name}: {' / '.join(rounding.bounds(mass, units, NO_BREAK))} {unit}, light / nominal / heavy"
-        table.rows.append(Row([
-            Cell(shown(group.name)), Cell(sort=mass.heavy, svg=drawings.bounds_bar(mass.light, mass.nominal, mass.heavy, most, title)),
-            *three(mass, units), Cell(rounding.number(group.quantity, 0, gap=NO_BREAK), group.quantity),
-            Cell(str(group.not_weighed) if group.not_weighed else "0", group.not_weighed, strong=bool(group.not_weighed)),
-        ]))
+        table.rows.append(
+            Row(
+                [
+                    Cell(shown(group.name)),
+                    Cell(sort=mass.heavy, svg=drawings.bounds_bar(mass.light, mass.nominal, mass.heavy, most, title)),
+                    *three(mass, units),
+                    Cell(rounding.number(group.quantity, 0, gap=NO_BREAK), group.quantity),
+                    Cell(str(group.not_weighed) if group.not_weighed else "0", group.not_weighed, strong=bool(group.not_weighed)),
+                ]
+            )
+        )
     rest = ordered[MOST_GROUPS:]
     if rest:
         table.note = f"{counted(len(rest), 'other')}, each lighter than these, are in the workbook and the JSON; the total holds them."
@@ -113,20 +132,41 @@ def schedule_table(result: Result, units: Units, rows: Sequence[int]) -> Table:
     columns += [Column(f"{_SIZES[key]} ({_size_unit(key, units)})", True) for key in sizes]
     columns += [Column(f"+ {added.called(kind)}, heavy ({unit})", True) for kind in kinds]
     columns += [Column(f"{part}, {word} ({unit})", True) for part in ("One piece", "All pieces") for word in WORDS]
-    columns += [Column("State"), Column("Basis no.", True), Column("What to know"),
-                *(Column(label, screen=True) for label in ("Place in the list", "Section in the list", "Material in the list", *texts.values()))]
+    columns += [
+        Column("State"),
+        Column("Basis no.", True),
+        Column("What to know"),
+        *(Column(label, screen=True) for label in ("Place in the list", "Section in the list", "Material in the list", *texts.values())),
+    ]
     table = Table("schedule", "Weight schedule: one row a member", columns, states=("weighed", "assumed", "not weighed"))
-    needed = ["file", "sheet", "row", "mark", "assembly", "quantity", "section", "material", "status", "basis_id", "section_text",
-              "material_text", *sizes, *texts, *(f"add_{kind}_heavy_kg" for kind in kinds),
-              *(f"{part}_{word}_kg" for part in ("each", "total") for word in WORDS)]
+    needed = [
+        "file",
+        "sheet",
+        "row",
+        "mark",
+        "assembly",
+        "quantity",
+        "section",
+        "material",
+        "status",
+        "basis_id",
+        "section_text",
+        "material_text",
+        *sizes,
+        *texts,
+        *(f"add_{kind}_heavy_kg" for kind in kinds),
+        *(f"{part}_{word}_kg" for part in ("each", "total") for word in WORDS),
+    ]
     data = {key: frame[key].tolist() for key in needed}
     for i in rows:
         of = {key: values[i] for key, values in data.items()}
         table.rows.append(_member(result, i, of, units, (sizes, kinds, list(texts)), several=several))
     left = len(frame) - len(rows)
     if left:
-        table.note = (f"This page shows {counted(len(rows), 'row')}; {counted(left, 'row')} more, none of them left out of any total, "
-                      "are in the workbook, the CSV and the JSON. Every row that is not plainly weighed comes first in that choice.")
+        table.note = (
+            f"This page shows {counted(len(rows), 'row')}; {counted(left, 'row')} more, none of them left out of any total, "
+            "are in the workbook, the CSV and the JSON. Every row that is not plainly weighed comes first in that choice."
+        )
     return table
 
 
@@ -135,8 +175,14 @@ def _member(
 ) -> Row:
     sizes, kinds, texts = what
     weighed = of["status"] != "not weighed"
-    row = [Cell(str(int(of["row"])), of["row"]), Cell(text(of["mark"])), Cell(text(of["assembly"], "(no assembly)")),
-           _figure(of["quantity"], 0), Cell(text(of["section"], "(no section)")), Cell(text(of["material"], "(no material)"))]
+    row = [
+        Cell(str(int(of["row"])), of["row"]),
+        Cell(text(of["mark"])),
+        Cell(text(of["assembly"], "(no assembly)")),
+        _figure(of["quantity"], 0),
+        Cell(text(of["section"], "(no section)")),
+        Cell(text(of["material"], "(no material)")),
+    ]
     row += [_size(of[key], key, units) for key in sizes]
     for kind in kinds:
         kg = of[f"add_{kind}_heavy_kg"]
@@ -152,8 +198,11 @@ def _member(
     row += [
         Cell(shown(of["status"]), strong=not weighed),
         Cell(str(basis + 1), basis + 1, to=f"basis-{basis}") if basis >= 0 else Cell(),
-        Cell("; ".join(said)), Cell(row_place(of["file"] if several else None, of["sheet"], int(of["row"]))),
-        Cell(text(of["section_text"])), Cell(text(of["material_text"])), *(Cell(text(of[key])) for key in texts),
+        Cell("; ".join(said)),
+        Cell(row_place(of["file"] if several else None, of["sheet"], int(of["row"]))),
+        Cell(text(of["section_text"])),
+        Cell(text(of["material_text"])),
+        *(Cell(text(of[key])) for key in texts),
     ]
     return Row(row, row_id(i), shown(of["status"]))
 
@@ -182,18 +231,36 @@ def _size(value: float, key: str, units: Units) -> Cell:
 
 def not_weighed_table(result: Result, rows: Sequence[int]) -> Table:
     """One line for each reason of each row in no total."""
-    columns = [Column("Row of the list"), Column("Cell"), Column("Mark"), Column("Assembly"), Column("Pieces", True),
-               Column("What was read"), Column("Why it is not weighed"), Column("What would be right")]
+    columns = [
+        Column("Row of the list"),
+        Column("Cell"),
+        Column("Mark"),
+        Column("Assembly"),
+        Column("Pieces", True),
+        Column("What was read"),
+        Column("Why it is not weighed"),
+        Column("What would be right"),
+    ]
     table = Table("not-weighed", "Rows in no total, with cell, reason and mend", columns)
     frame, there = result.members, set(rows)
     marks, assemblies, pieces = (frame[key].tolist() for key in ("mark", "assembly", "quantity"))
     found = list(refusals(result, name_file=len(result.inputs) > 1))
     for refusal in found[:MOST_ROWS]:
         i = refusal.index
-        table.rows.append(Row([
-            Cell(refusal.place, to=row_id(i) if i in there else None), Cell(text(refusal.cell)), Cell(text(marks[i])),
-            Cell(text(assemblies[i])), _figure(pieces[i], 0), Cell(text(refusal.read)), Cell(shown(refusal.reason)), Cell(text(refusal.right)),
-        ]))
+        table.rows.append(
+            Row(
+                [
+                    Cell(refusal.place, to=row_id(i) if i in there else None),
+                    Cell(text(refusal.cell)),
+                    Cell(text(marks[i])),
+                    Cell(text(assemblies[i])),
+                    _figure(pieces[i], 0),
+                    Cell(text(refusal.read)),
+                    Cell(shown(refusal.reason)),
+                    Cell(text(refusal.right)),
+                ]
+            )
+        )
     if len(found) > MOST_ROWS:
         table.note = f"{counted(len(found) - MOST_ROWS, 'reason')} more are in the workbook and the JSON."
     return table

@@ -31,10 +31,14 @@ def _run(number: int, run: RunMovement, result: Result, units: Units) -> Block:
     if run.movement_mm is not None:
         block.facts += [
             (f"Length at {degrees(named.get('reference', 20.0), units)}", with_unit(run.length_mm, units)),
-            (f"Movement, {degrees(run.from_C, units)} to {degrees(run.to_C, units)}",
-             f"{with_unit(run.movement_mm, units)} (low {size(run.movement_low_mm, units)}, high {size(run.movement_high_mm, units)})"),
-            (f"After setting at {degrees(run.set_at_C, units)}",
-             f"closes by {with_unit(run.closing_mm, units)}, opens by {with_unit(run.opening_mm, units)}"),
+            (
+                f"Movement, {degrees(run.from_C, units)} to {degrees(run.to_C, units)}",
+                f"{with_unit(run.movement_mm, units)} (low {size(run.movement_low_mm, units)}, high {size(run.movement_high_mm, units)})",
+            ),
+            (
+                f"After setting at {degrees(run.set_at_C, units)}",
+                f"closes by {with_unit(run.closing_mm, units)}, opens by {with_unit(run.opening_mm, units)}",
+            ),
         ]
         figure = _chart(run, named, units)
         if figure is not None:
@@ -79,16 +83,27 @@ def _chart(run: RunMovement, named: dict[str, float], units: Units) -> Figure | 
 
 def _joints(number: int, run: RunMovement, named: dict[str, float], units: Units) -> Table:
     names = list(named)
-    columns = [Column("Joint", True), Column("After"), Column("Before"),
-               *(Column(f"Position, {shown(n)} {degrees(named[n], units)} ({unit(units)})", True) for n in names),
-               *(Column(f"Gap, {shown(n)} ({unit(units)})", True) for n in names), Column(f"Gap to set ({unit(units)})", True)]
+    columns = [
+        Column("Joint", True),
+        Column("After"),
+        Column("Before"),
+        *(Column(f"Position, {shown(n)} {degrees(named[n], units)} ({unit(units)})", True) for n in names),
+        *(Column(f"Gap, {shown(n)} ({unit(units)})", True) for n in names),
+        Column(f"Gap to set ({unit(units)})", True),
+    ]
     table = Table(f"joints-{number}", f"Joints of run {shown(run.run)}", columns)
     for at, joint in enumerate(run.joints, 1):
         figures = [joint.position_mm.get(n) for n in names] + [joint.gap_mm.get(n) for n in names] + [joint.gap_to_set_mm]
-        table.rows.append(Row([
-            Cell(str(at), at), Cell(text(joint.after, "(start of the line)")), Cell(text(joint.before, "(end of the line)")),
-            *(Cell(size(v, units), v, strong=k == len(figures) - 1) for k, v in enumerate(figures)),
-        ]))
+        table.rows.append(
+            Row(
+                [
+                    Cell(str(at), at),
+                    Cell(text(joint.after, "(start of the line)")),
+                    Cell(text(joint.before, "(end of the line)")),
+                    *(Cell(size(v, units), v, strong=k == len(figures) - 1) for k, v in enumerate(figures)),
+                ]
+            )
+        )
     return table
 
 
@@ -111,10 +126,16 @@ def lengths_table(result: Result, units: Units, rows: Sequence[int]) -> Table | 
         if all(v != v for v in figures):  # noqa: PLR0124  (NaN is the only value that differs from itself)
             continue
         known = [None if v != v else float(v) for v in figures]  # noqa: PLR0124
-        table.rows.append(Row([
-            Cell(str(int(numbers[i])), numbers[i], to=row_id(i)), Cell(text(marks[i])), Cell(text(materials[i])),
-            *(Cell(size(v, units), v) for v in known),
-        ]))
+        table.rows.append(
+            Row(
+                [
+                    Cell(str(int(numbers[i])), numbers[i], to=row_id(i)),
+                    Cell(text(marks[i])),
+                    Cell(text(materials[i])),
+                    *(Cell(size(v, units), v) for v in known),
+                ]
+            )
+        )
     return table
 
 
@@ -124,14 +145,25 @@ def materials_table(result: Result, units: Units) -> Table | None:
     if at is None:
         return None
     names = [f"{shown(n)} {degrees(t, units)}" for n, t in at.named.items()]
-    columns = [Column("Material"), *(Column(f"Growth from 20{NO_BREAK}°C, {n} (millionths)", True) for n in names),
-               Column("Coefficient and source"), Column("Law"), Column("Bounds")]
+    columns = [
+        Column("Material"),
+        *(Column(f"Growth from 20{NO_BREAK}°C, {n} (millionths)", True) for n in names),
+        Column("Coefficient and source"),
+        Column("Law"),
+        Column("Bounds"),
+    ]
     table = Table("growth", "Growth of each material", columns, tools=False)
     for found in at.materials:
         growth = [None if e.value is None else e.value * 1e6 for e, _ in found.at.values()]
-        table.rows.append(Row([
-            Cell(shown(found.material.name)), *(Cell(rounding.number(v, 2, gap=NO_BREAK), v) for v in growth),
-            Cell(coefficient_text(found.material, units)), Cell(law_text(found.law, units)),
-            Cell(f"coefficient × {found.spread.low:.3f} to × {found.spread.high:.3f} ({found.spread.source})"),
-        ]))
+        table.rows.append(
+            Row(
+                [
+                    Cell(shown(found.material.name)),
+                    *(Cell(rounding.number(v, 2, gap=NO_BREAK), v) for v in growth),
+                    Cell(coefficient_text(found.material, units)),
+                    Cell(law_text(found.law, units)),
+                    Cell(f"coefficient × {found.spread.low:.3f} to × {found.spread.high:.3f} ({found.spread.source})"),
+                ]
+            )
+        )
     return table

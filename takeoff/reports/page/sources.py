@@ -18,7 +18,14 @@ _PARTS = ("weighed", "assumed", "not_weighed", "heading", "total", "blank", "oth
 
 def tables(result: Result) -> list[Table]:
     """Every table of the last section, in reading order."""
-    return [bases(result), *([additions(result)] if result.added_bases else []), densities(result), words(), inputs(result), account(result)]
+    return [
+        bases(result),
+        *([additions(result)] if result.added_bases else []),
+        densities(result),
+        words(),
+        inputs(result),
+        account(result),
+    ]
 
 
 def _source(source: Source) -> list[str]:
@@ -30,29 +37,53 @@ _SOURCE = [Column("Source"), Column("Clause or table"), Column("Evidence")]
 
 def bases(result: Result) -> Table:
     """How each mass was found, numbered as in the schedule."""
-    columns = [Column("Basis no.", True), Column("Rule of the nominal mass"), *_SOURCE, Column("Rule of light and heavy"), *_SOURCE, Column("Rows", True)]
+    columns = [
+        Column("Basis no.", True),
+        Column("Rule of the nominal mass"),
+        *_SOURCE,
+        Column("Rule of light and heavy"),
+        *_SOURCE,
+        Column("Rows", True),
+    ]
     table = Table("bases", "Bases: how each mass was found, numbered as in the schedule", columns)
     uses = result.members["basis_id"].value_counts().to_dict()
     for number, basis in enumerate(result.bases):
         marks = [m for m, so in (("stated in the list", basis.stated), ("own table", basis.own), ("weighed", basis.weighed)) if so]
         rule = shown(basis.rule) + (f" ({', '.join(marks)})" if marks else "")
         rows = uses.get(number, 0)
-        table.rows.append(Row([
-            Cell(str(number + 1), number + 1), *cells(rule, *_source(basis.nominal), shown(basis.bounds_rule), *_source(basis.bounds)),
-            Cell(str(rows), rows),
-        ], f"basis-{number}"))
+        table.rows.append(
+            Row(
+                [
+                    Cell(str(number + 1), number + 1),
+                    *cells(rule, *_source(basis.nominal), shown(basis.bounds_rule), *_source(basis.bounds)),
+                    Cell(str(rows), rows),
+                ],
+                f"basis-{number}",
+            )
+        )
     return table
 
 
 def additions(result: Result) -> Table:
     """How each addition was found."""
-    columns = [Column("Basis no."), Column("Rule of what is added to one piece"), *_SOURCE, Column("Rule of light and heavy"), *_SOURCE, Column("Rows", True)]
+    columns = [
+        Column("Basis no."),
+        Column("Rule of what is added to one piece"),
+        *_SOURCE,
+        Column("Rule of light and heavy"),
+        *_SOURCE,
+        Column("Rows", True),
+    ]
     table = Table("additions", "Additions: finish, welds, bolts, contents and the like", columns)
     for number, (basis, rows) in enumerate(zip(result.added_bases, added.uses(result), strict=True)):
-        table.rows.append(Row([
-            *cells(f"A{number + 1}", shown(basis.rule), *_source(basis.nominal), shown(basis.bounds_rule), *_source(basis.bounds)),
-            Cell(str(rows), rows),
-        ]))
+        table.rows.append(
+            Row(
+                [
+                    *cells(f"A{number + 1}", shown(basis.rule), *_source(basis.nominal), shown(basis.bounds_rule), *_source(basis.bounds)),
+                    Cell(str(rows), rows),
+                ]
+            )
+        )
     return table
 
 
@@ -77,8 +108,13 @@ def words() -> Table:
 
 def inputs(result: Result) -> Table:
     """Every list with its checksum, and the job file."""
-    table = Table("inputs", "Inputs", [Column("Kind"), Column("File"), Column("Sheets with a list"), Column("Checksum (SHA-256)")], tools=False)
-    table.rows = [Row(cells("list", shown(i.file), ", ".join(shown(s) for s in i.sheets) or "(text file: no sheets)", i.sha256)) for i in result.inputs]
+    table = Table(
+        "inputs", "Inputs", [Column("Kind"), Column("File"), Column("Sheets with a list"), Column("Checksum (SHA-256)")], tools=False
+    )
+    table.rows = [
+        Row(cells("list", shown(i.file), ", ".join(shown(s) for s in i.sheets) or "(text file: no sheets)", i.sha256))
+        for i in result.inputs
+    ]
     if result.job_file:
         table.rows.append(Row(cells("job file", shown(result.job_file), "", "")))
     return table
@@ -88,8 +124,11 @@ def account(result: Result) -> Table:
     """Rows read = rows accounted for."""
     columns = [Column("Sheet"), Column("Rows read", True), *(Column(part.replace("_", " ").capitalize(), True) for part in _PARTS)]
     table = Table("account", "Account of rows: every row from the first with content to the last", columns, tools=False)
-    parts = [("All", result.account)] if not result.sheet_accounts else [
-        (" / ".join(shown(p) for p in (a.file, a.sheet) if p), a.account) for a in result.sheet_accounts]
+    parts = (
+        [("All", result.account)]
+        if not result.sheet_accounts
+        else [(" / ".join(shown(p) for p in (a.file, a.sheet) if p), a.account) for a in result.sheet_accounts]
+    )
     for name, of in parts:
         table.rows.append(Row([Cell(name), Cell(str(of.rows), of.rows), *(Cell(str(getattr(of, p)), getattr(of, p)) for p in _PARTS)]))
     of = result.account

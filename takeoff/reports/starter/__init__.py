@@ -23,11 +23,26 @@ _INK, _HEAD, _QUIET = "#1F2A30", "#E9ECE6", "#5B666C"
 #: heading, width, an example, the note in the heading
 COLUMNS: tuple[tuple[str, float, Any, str], ...] = (
     ("Mark", 22, EXAMPLE_MARK, "The piece's mark, as on the drawing. Any text."),
-    ("Assembly", 14, "A1", "What it is fabricated into: pieces of one assembly are lifted as one, unless Pick says otherwise. May stay blank."),
+    (
+        "Assembly",
+        14,
+        "A1",
+        "What it is fabricated into: pieces of one assembly are lifted as one, unless Pick says otherwise. May stay blank.",
+    ),
     ("Quantity", 10, 4, "How many, a whole number. A blank or 0 is refused, not guessed."),
-    ("Section", 24, "UB 457x191x67", "A designation in any usual spelling (UB 457x191x67, HEA 200, SHS 100x5, L 70x7), or PL, FL, RD and the like with "
-     "the sizes in their columns. The drop-down offers the tables; anything else may be typed."),
-    ("Material", 26, "S355JR / J0 / J2 / K2", "A designation or a trade word (S355, 1.4404, C30/37, oak). The drop-down offers the tables; other words may be typed."),
+    (
+        "Section",
+        24,
+        "UB 457x191x67",
+        "A designation in any usual spelling (UB 457x191x67, HEA 200, SHS 100x5, L 70x7), or PL, FL, RD and the like with "
+        "the sizes in their columns. The drop-down offers the tables; anything else may be typed.",
+    ),
+    (
+        "Material",
+        26,
+        "S355JR / J0 / J2 / K2",
+        "A designation or a trade word (S355, 1.4404, C30/37, oak). The drop-down offers the tables; other words may be typed.",
+    ),
     ("Length (mm)", 13, 7200, "Over the long points. Bare numbers are mm; a cell may name its own unit: 7.2 m."),
     ("Width (mm)", 12, None, "For plates, boards and blocks."),
     ("Thickness (mm)", 15, None, "For plates and boards; the height of a block."),
@@ -72,8 +87,12 @@ def write_list(path: Path) -> None:
     import xlsxwriter
     from xlsxwriter.exceptions import FileCreateError
 
-    options = {"strings_to_formulas": False, "strings_to_urls": False, "strings_to_numbers": False,
-               "default_format_properties": {"font_name": "Arial", "font_size": 10}}
+    options = {
+        "strings_to_formulas": False,
+        "strings_to_urls": False,
+        "strings_to_numbers": False,
+        "default_format_properties": {"font_name": "Arial", "font_size": 10},
+    }
     book = xlsxwriter.Workbook(str(path), options)
     base = {"font_name": "Arial", "font_size": 10, "font_color": _INK, "valign": "vcenter"}
     head = book.add_format(base | {"bold": True, "bg_color": _HEAD, "bottom": 1, "text_wrap": True})
@@ -103,14 +122,24 @@ def write_list(path: Path) -> None:
         at = next(n for n, c in enumerate(COLUMNS) if c[0] == heading)
         letter = "AB"[column]
         # What is not in the tables may be typed all the same: the list says what it is, not the program.
-        sheet.data_validation(1, at, _ROWS, at, {
-            "validate": "list", "source": f"={CHOICES}!${letter}$2:${letter}${len(names) + 1}", "show_error": False,
-        })
+        sheet.data_validation(
+            1, at, _ROWS, at, {"validate": "list", "source": f"={CHOICES}!${letter}$2:${letter}${len(names) + 1}", "show_error": False}
+        )
     at = next(n for n, c in enumerate(COLUMNS) if c[0] == "Quantity")
-    sheet.data_validation(1, at, _ROWS, at, {
-        "validate": "integer", "criteria": ">=", "value": 1, "error_type": "warning", "error_title": "Quantity",
-        "error_message": "A whole number from 1 is read; anything else is refused, with its cell.",
-    })
+    sheet.data_validation(
+        1,
+        at,
+        _ROWS,
+        at,
+        {
+            "validate": "integer",
+            "criteria": ">=",
+            "value": 1,
+            "error_type": "warning",
+            "error_title": "Quantity",
+            "error_message": "A whole number from 1 is read; anything else is refused, with its cell.",
+        },
+    )
     try:
         book.close()
     except FileCreateError as problem:

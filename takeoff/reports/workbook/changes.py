@@ -22,7 +22,9 @@ def write(book: Book, changes: Comparison) -> None:
     sheet.widths([11, 14, 18, 58, 13, 13, 13, 36])
     sheet.height(0, 24)
     sheet.text(0, 0, f"{CHANGES}: {book.title}", "title")
-    sheet.long_text(1, (0, _COLUMNS - 1), f"{changes.sentence(units)} Checksum of the earlier record (SHA-256): {changes.sha256}.", "quiet wrap")
+    sheet.long_text(
+        1, (0, _COLUMNS - 1), f"{changes.sentence(units)} Checksum of the earlier record (SHA-256): {changes.sha256}.", "quiet wrap"
+    )
     first = row = 3
     sheet.texts(row, 0, ("Change", "Mark", "Assembly", "What"), "head")
     for offset, word in enumerate(WORDS):

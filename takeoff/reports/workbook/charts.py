@@ -55,16 +55,29 @@ def write(book: Book, result: Result, groups: dict[str, GroupRows]) -> None:
             (f"{name}: {shown(c.name)}", 100 * (c.utilisation_static or 0.0), 100 * (c.utilisation or 0.0), 100 * c.limit.value, c.verdict)
             for name, c in checks[:MOST_BARS]
         ]
-        heads = ("Pick and crane", "At rest (% of capacity)", "Moving (% of capacity)", "Planning limit, at rest (%)", "Rating (%)", "Verdict")
+        heads = (
+            "Pick and crane",
+            "At rest (% of capacity)",
+            "Moving (% of capacity)",
+            "Planning limit, at rest (%)",
+            "Rating (%)",
+            "Verdict",
+        )
         row = _limits(sheet, "Crane utilisation, with the planning limit and the rating", heads, lines, row, rating=True)
     plan = result.loads
     axles = [(load, a) for load in (plan.loads if plan else ()) for a in load.axles if a.limit_kg]
     if axles:
         blocks.append(row)
         lines = [
-            (f"{shown(load.name)}: {shown(a.name)}", 100 * a.kg / a.limit_kg, 100 * max(a.kg, a.worst_kg) / a.limit_kg, 100.0,
-             "OVER" if max(a.kg, a.worst_kg) > a.limit_kg * (1 + 1e-9) else "within")
-            for load, a in axles[:MOST_BARS] if a.limit_kg
+            (
+                f"{shown(load.name)}: {shown(a.name)}",
+                100 * a.kg / a.limit_kg,
+                100 * max(a.kg, a.worst_kg) / a.limit_kg,
+                100.0,
+                "OVER" if max(a.kg, a.worst_kg) > a.limit_kg * (1 + 1e-9) else "within",
+            )
+            for load, a in axles[:MOST_BARS]
+            if a.limit_kg
         ]
         heads = ("Vehicle and axle", "Loaded (% of limit)", "Worst while unloading (% of limit)", "Limit (%)", "Word")
         row = _limits(sheet, "Axle loads, with their limits", heads, lines, row, rating=False)
@@ -91,13 +104,23 @@ def _masses(sheet: Sheet, result: Result, key: str, at: GroupRows, row: int) -> 
     chart = sheet.book.chart({"type": "bar", "subtype": "stacked"})
     names = [CHARTS, first, _NAME, first + count - 1, _NAME]
     for offset, (word, colour) in enumerate((("light", _FULL), ("light to nominal", _PALE), ("nominal to heavy", _OPEN)), 4):
-        chart.add_series({
-            "name": word, "categories": names, "values": [CHARTS, first, offset, first + count - 1, offset], "gap": 45,
-            "fill": {"color": colour}, "border": {"color": INK, "width": 0.75},
-        })
+        chart.add_series(
+            {
+                "name": word,
+                "categories": names,
+                "values": [CHARTS, first, offset, first + count - 1, offset],
+                "gap": 45,
+                "fill": {"color": colour},
+                "border": {"color": INK, "width": 0.75},
+            }
+        )
     _dress(chart, f"mass in {unit}")
     sheet.chart(row + 1, chart, rows * _ROW_PIXELS)
-    _heads(sheet, first - 1, (key.capitalize(), f"Light ({unit})", f"Nominal ({unit})", f"Heavy ({unit})", "to light", "on to nominal", "on to heavy"))
+    _heads(
+        sheet,
+        first - 1,
+        (key.capitalize(), f"Light ({unit})", f"Nominal ({unit})", f"Heavy ({unit})", "to light", "on to nominal", "on to heavy"),
+    )
     ordered = sorted(result.totals.groups[key], key=lambda g: (-g.mass_kg.heavy, -g.not_weighed))[:count]
     for number, group in enumerate(ordered):
         line = first + number
@@ -121,20 +144,32 @@ def _limits(
     chart = sheet.book.chart({"type": "column"})
     names = [CHARTS, first, _NAME, first + count - 1, _NAME]
     for offset, colour in ((_FIRST, _FULL), (_FIRST + 1, _PALE)):
-        chart.add_series({
-            "name": heads[offset], "categories": names, "values": [CHARTS, first, offset, first + count - 1, offset], "gap": 90,
-            "fill": {"color": colour}, "border": {"color": INK, "width": 0.75},
-        })
+        chart.add_series(
+            {
+                "name": heads[offset],
+                "categories": names,
+                "values": [CHARTS, first, offset, first + count - 1, offset],
+                "gap": 90,
+                "fill": {"color": colour},
+                "border": {"color": INK, "width": 0.75},
+            }
+        )
     strokes = sheet.book.chart({"type": "line"})
     for offset, width in ((_FIRST + 2, 14), (_FIRST + 3, 14))[: 2 if rating else 1]:
-        strokes.add_series({
-            "name": heads[offset], "categories": names, "values": [CHARTS, first, offset, first + count - 1, offset],
-            "line": {"color": INK, "width": 1.25, "dash_type": "dash" if offset == _FIRST + 2 else "solid"},
-            "marker": {"type": "long_dash", "size": width, "border": {"color": INK}, "fill": {"color": INK}},
-        })
+        strokes.add_series(
+            {
+                "name": heads[offset],
+                "categories": names,
+                "values": [CHARTS, first, offset, first + count - 1, offset],
+                "line": {"color": INK, "width": 1.25, "dash_type": "dash" if offset == _FIRST + 2 else "solid"},
+                "marker": {"type": "long_dash", "size": width, "border": {"color": INK}, "fill": {"color": INK}},
+            }
+        )
     chart.combine(strokes)
     _dress(chart, None)
-    chart.set_y_axis({"name": "%", "min": 0, "num_font": {"color": INK}, "major_gridlines": {"visible": True, "line": {"color": "#D5D9D6"}}})
+    chart.set_y_axis(
+        {"name": "%", "min": 0, "num_font": {"color": INK}, "major_gridlines": {"visible": True, "line": {"color": "#D5D9D6"}}}
+    )
     sheet.chart(row + 1, chart, rows * _ROW_PIXELS)
     _heads(sheet, first - 1, heads)
     for number, (name, low, high, limit, word) in enumerate(lines):
@@ -152,7 +187,16 @@ def _limits(
 def _dress(chart: Any, along: str | None) -> None:
     font = {"color": INK, "size": 9}
     chart.set_legend({"position": "top", "font": font})
-    chart.set_x_axis({"name": along or "", "name_font": font, "num_font": font, "line": {"color": QUIET}, "num_format": "#,##0", "label_position": "high" if along is not None else "low",
-                      "major_gridlines": {"visible": along is not None, "line": {"color": "#D5D9D6"}}})
+    chart.set_x_axis(
+        {
+            "name": along or "",
+            "name_font": font,
+            "num_font": font,
+            "line": {"color": QUIET},
+            "num_format": "#,##0",
+            "label_position": "high" if along is not None else "low",
+            "major_gridlines": {"visible": along is not None, "line": {"color": "#D5D9D6"}},
+        }
+    )
     chart.set_y_axis({"reverse": along is not None, "num_font": font, "line": {"color": QUIET}, "major_gridlines": {"visible": False}})
     chart.set_chartarea({"border": {"none": True}})

@@ -25,9 +25,7 @@ def names(result: Result) -> list[str]:
     """A sheet's name for each list, in their order; none where there is one list only."""
     if len(result.inputs) < 2:
         return []
-    return [
-        f"List {number} {_FORBIDDEN.sub(' ', shown(PurePath(i.file).stem))[:20]}".strip() for number, i in enumerate(result.inputs, 1)
-    ]
+    return [f"List {number} {_FORBIDDEN.sub(' ', shown(PurePath(i.file).stem))[:20]}".strip() for number, i in enumerate(result.inputs, 1)]
 
 
 def write(book: Book, result: Result, plan: Plan, *, live: bool) -> None:
@@ -55,11 +53,24 @@ def _list(sheet: Sheet, result: Result, plan: Plan, of: tuple[InputFile, list[in
     for offset, word in enumerate(WORDS):
         letter = "HIJ"[offset]
         total = float(frame.loc[rows, f"total_{word}_kg"].sum())
-        sheet.formula(sums, 7 + offset, f"=SUM({letter}{_HEADINGS + 2}:{letter}{last + 1})", rounding.in_mass_unit(total, units), "total mass")
+        sheet.formula(
+            sums, 7 + offset, f"=SUM({letter}{_HEADINGS + 2}:{letter}{last + 1})", rounding.in_mass_unit(total, units), "total mass"
+        )
     sheet.text(sums, 10, None, "total")
     sheet.height(_HEADINGS, 30)
-    for column, text in enumerate(("Row", "Mark", "Assembly", "Pieces", "Section", "Material", f"One piece, heavy ({unit})",
-                                   *(f"All pieces, {word} ({unit})" for word in WORDS), "State")):
+    for column, text in enumerate(
+        (
+            "Row",
+            "Mark",
+            "Assembly",
+            "Pieces",
+            "Section",
+            "Material",
+            f"One piece, heavy ({unit})",
+            *(f"All pieces, {word} ({unit})" for word in WORDS),
+            "State",
+        )
+    ):
         sheet.text(_HEADINGS, column, text, "head right" if column in (0, 3, 6, 7, 8, 9) else "head")
     for number, i in enumerate(rows):
         row = _HEADINGS + 1 + number
@@ -71,8 +82,10 @@ def _list(sheet: Sheet, result: Result, plan: Plan, of: tuple[InputFile, list[in
         sheet.number(row, 3, of_row["quantity"], "whole")
         sheet.texts(row, 4, (of_row["section"] or BLANKS.get("section"), of_row["material"] or BLANKS.get("material")), "cell wrap")
         weighed = of_row["status"] != "not weighed"
-        figures = [("each_heavy_kg", rounding.in_mass_unit(of_row["each_heavy_kg"], units)),
-                   *((f"total_{word}_kg", masses[word][number]) for word in WORDS)]
+        figures = [
+            ("each_heavy_kg", rounding.in_mass_unit(of_row["each_heavy_kg"], units)),
+            *((f"total_{word}_kg", masses[word][number]) for word in WORDS),
+        ]
         for offset, (key, value) in enumerate(figures):
             style = "mass heavy" if key == "total_heavy_kg" else "mass"
             if not weighed or value != value:  # noqa: PLR0124  (NaN is the only value that differs from itself)
