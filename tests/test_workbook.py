@@ -106,7 +106,7 @@ def test_every_formula_carries_its_result(tmp_path: Path) -> None:
     wanted = formulas(path)
     assert len(wanted) > 50
     assert [place for place in wanted if not isinstance(stored.get(place), int | float)] == []
-    assert {sheet for sheet, _ in wanted} == {"Summary", "Weight schedule", "Picks", "Basis and sources"}
+    assert {sheet for sheet, _ in wanted} == {"Summary", "Charts", "Weight schedule", "Picks", "Basis and sources"}
 
 
 def test_recalculation_is_really_done(tmp_path: Path) -> None:
@@ -242,14 +242,20 @@ def test_links_lead_from_a_row_to_its_basis(tmp_path: Path) -> None:
     assert [r[9].value for r in basis.iter_rows() if r[1].value == "57.1 kg/m × length"] == [2]
 
 
-def test_every_link_leads_to_a_sheet_that_is_there(tmp_path: Path) -> None:
-    """No link of the workbook leads nowhere or out of it."""
+def test_every_link_leads_to_a_sheet_that_is_there_or_to_the_list(tmp_path: Path) -> None:
+    """No link of the workbook leads nowhere; out of it only the place of a row leads, to that row of the list."""
     book = openpyxl.load_workbook(written(make(job=JOB), tmp_path / "w.xlsx"))
     links = [c.hyperlink for s in book for r in s.iter_rows() for c in r if c.hyperlink]
     assert len(links) > 8
+    to_list = 0
     for link in links:
-        assert link.target is None
-        assert link.location.rpartition("!")[0].strip("'") in book.sheetnames
+        if link.target is None:
+            assert link.location.rpartition("!")[0].strip("'") in book.sheetnames
+        else:
+            to_list += 1
+            assert link.target.replace("\\", "/").endswith("/list.xlsx")
+            assert re.fullmatch(r"'Steel'!A[5-9]", link.location)
+    assert to_list == len(SOME_ROWS)
 
 
 def test_account_closes_in_the_workbook(tmp_path: Path) -> None:
