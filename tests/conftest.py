@@ -13,6 +13,12 @@ from typing import Any
 
 import openpyxl
 import pytest
+from hypothesis import HealthCheck
+from hypothesis import settings as hypothesis_settings
+
+# A law that holds is not broken by a busy machine: no time limit on one example, anywhere in the suite.
+hypothesis_settings.register_profile("house", deadline=None, suppress_health_check=[HealthCheck.too_slow])
+hypothesis_settings.load_profile("house")
 
 ROOT = Path(__file__).parent.parent
 SAMPLES = ROOT / "sample_projects"
