@@ -16,6 +16,7 @@ What comes out is an estimate for planning, not a lift plan: `result.cautions` g
 from __future__ import annotations
 
 from collections.abc import Sequence
+from functools import partial
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
@@ -92,7 +93,7 @@ def write(result: Result, *paths: str | Path, replace: bool = False) -> list[Pat
         kind = path.suffix.lower()
         if kind not in _WRITERS:
             raise OutputError("no such kind of output", file=path, right="a name that ends in " + ", ".join(_WRITERS))
-        outputs.append((path, lambda to, kind=kind: _WRITERS[kind](result, to)))
+        outputs.append((path, partial(_WRITERS[kind], result)))
     inputs = [*(i.file for i in result.inputs), *([result.job_file] if result.job_file else [])]
     return files.write_all(outputs, inputs=inputs, replace=replace)
 

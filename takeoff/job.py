@@ -327,6 +327,7 @@ class GuardsPart(_Part):
     rows: Annotated[int, Field(gt=0, le=1_048_576, strict=True)] = 300_000
     cells: Annotated[int, Field(gt=0, le=100_000_000, strict=True)] = 20_000_000
     megabytes: Annotated[float, Field(gt=0, le=4096, strict=True)] = 200.0
+    seconds: Annotated[float, Field(gt=0, le=86_400, strict=True)] = 900.0
 
 
 #: name -> °C: reference (20 unless named), measured, cut, erect, coldest, warmest, and any other name
@@ -360,12 +361,6 @@ class Job(_Part):
         """A file named in the job file, relative to it."""
         folder = self.path.parent if self.path else Path()
         return folder / name
-
-
-#: settings that a later version acts on; naming one is an error, so that nobody relies on it
-LATER = {
-    "guards.seconds",
-}
 
 
 def read_job(path: Path) -> Job:
@@ -413,11 +408,6 @@ def _refuse_unknown(raw: dict[str, Any], model: type[BaseModel], prefix: str, pa
     known = [name for name in model.model_fields if name != "path"]
     for key, value in raw.items():
         full = prefix + key
-        if full in LATER:
-            raise JobError(
-                f"the key {full!r} is not acted on by this version", file=path,
-                right="leave it out, so that nobody relies on it",
-            )
         if key not in known:
             raise JobError(f"unknown key {full!r}", file=path, right=_nearest(full, prefix, known))
         part, several = _part_of(model.model_fields[key].annotation)
@@ -442,7 +432,6 @@ def _nearest(full: str, prefix: str, known: list[str]) -> str:
     from takeoff.names import NormalName, suggest
 
     choices = [NormalName(prefix + name) for name in known]
-    choices += [NormalName(name) for name in LATER if name.startswith(prefix)]
     near = suggest(NormalName(full), choices, floor=60, limit=1)
     return f"{near[0].name}" if near else "one of " + ", ".join(known)
 

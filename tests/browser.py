@@ -24,12 +24,21 @@ class Browser:
         self._read, to_write = os.pipe()
         # The browser reads commands from descriptor 3 and answers on 4; a shell puts the pipes there.
         command = [
-            program, "--headless=new", "--remote-debugging-pipe", f"--user-data-dir={profile}", "--no-sandbox", "--disable-gpu",
-            "--disable-dev-shm-usage", "--no-first-run", "--disable-extensions", "--disable-background-networking", "about:blank",
+            program,
+            "--headless=new",
+            "--remote-debugging-pipe",
+            f"--user-data-dir={profile}",
+            "--no-sandbox",
+            "--disable-gpu",
+            "--disable-dev-shm-usage",
+            "--no-first-run",
+            "--disable-extensions",
+            "--disable-background-networking",
+            "about:blank",
         ]
         shell = f'exec "$@" 3<&{to_read} 4>&{to_write}'
         self._process = subprocess.Popen(
-            ["bash", "-c", shell, "browser", *command], pass_fds=(to_read, to_write), stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL,
+            ["bash", "-c", shell, "browser", *command], pass_fds=(to_read, to_write), stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL
         )
         os.close(to_read)
         os.close(to_write)

@@ -34,7 +34,7 @@ def test_the_excerpt_is_what_the_command_prints(run: Run, tmp_path: Path) -> Non
     assert done.stdout.startswith(excerpt), done.stdout
 
 
-@pytest.mark.parametrize("command", ["schedule", "check", "material", "section", "weigh", "movement", "fit", "lift"])
+@pytest.mark.parametrize("command", ["schedule", "check", "material", "section", "weigh", "movement", "fit", "lift", "loads", "start"])
 def test_every_command_is_documented_and_has_help(run: Run, command: str) -> None:
     """Each command stands in the README, and its help gives an example."""
     assert f"takeoff {command}" in README
@@ -46,7 +46,7 @@ def test_every_command_is_documented_and_has_help(run: Run, command: str) -> Non
 def test_the_help_names_every_command(run: Run) -> None:
     """`takeoff --help` lists the commands, and no argument at all shows the same."""
     help_text = run("--help").stdout
-    for command in ("schedule", "check", "material", "section", "weigh", "movement", "fit", "lift"):
+    for command in ("schedule", "check", "material", "section", "weigh", "movement", "fit", "lift", "loads", "start"):
         assert re.search(rf"^\s*{command}\b", help_text, re.MULTILINE)
 
 

@@ -18,8 +18,9 @@ RANKS = {
 #: heavy packages -> the rooms that may use them (design: numpy from rank 2 up; pandas where members are columns)
 HEAVY = {
     "pint": {"quantities"}, "rapidfuzz": {"names"}, "openpyxl": {"lists"}, "python_calamine": {"lists"},
-    "xlsxwriter": {"reports"},
-    "pandas": {"lists", "weighing", "lifting", "pipeline", "reports", "__init__"},
+    "xlsxwriter": {"reports"}, "jinja2": {"reports"},
+    "highspy": {"transport"},
+    "pandas": {"lists", "weighing", "lifting", "transport", "pipeline", "reports", "__init__"},
     "numpy": {room for room, rank in RANKS.items() if rank >= 2},
 }
 FILES = sorted(PACKAGE.rglob("*.py"))

@@ -8,7 +8,7 @@ import sys
 import pytest
 
 #: pydantic is not among them: the command-line library loads it by itself
-HEAVY = ("pandas", "numpy", "openpyxl", "pint", "xlsxwriter", "python_calamine", "rapidfuzz")
+HEAVY = ("pandas", "numpy", "openpyxl", "pint", "xlsxwriter", "python_calamine", "rapidfuzz", "jinja2")
 
 LOOK_UPS = [
     ["material", "S355J2"], ["material", "gold", "water", "oak"], ["material"], ["section", "UB 203x133x25"],

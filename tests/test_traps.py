@@ -179,6 +179,8 @@ TRAPS = [
     Trap(106, "semicolons with decimal points", "Mark;Qty;Section;Material;Length (m)\nA;1;" + BEAM + ";2.45\n", [W], length=[2450]),
     Trap(108, "groups filled only in their first row", "Assembly;Mark;Qty;Section;Material;Length (mm)\nFrame;A;1;" + BEAM + ";1000\n;B;1;" + BEAM + ";1000\n"
          "Roof;C;1;" + BEAM + ";1000\n", [W, W, W], assembly=["Frame", "Frame", "Roof"]),
+    Trap(108, "a blank assembly among rows that name their own", "Assembly;Mark;Qty;Section;Material;Length (mm)\nFrame;A;1;" + BEAM + ";1000\n"
+         "Frame;B;1;" + BEAM + ";1000\n;C;1;" + BEAM + ";1000\n", [W, W, W], assembly=["Frame", "Frame", None]),
     Trap(108, "a material is never filled down", H + "A;1;CHS 48.3x3.2;1.4404;1000\nB;1;CHS 48.3x3.2;;1000\n", [W, A]),
     Trap(111, "soft hyphens and no-break blanks", H + "A\u00ad1;1;UB\u00a0203x133x25;S355;1\u202f000\n", [W], length=[1000]),
     Trap(112, "umlauts read in the wrong encoding", "Mark;Qty;Profil;Werkstoff;LÃ¤nge (mm)\nA;1;HEA 200;S235;1000\n", [W], length=[1000],

@@ -40,4 +40,8 @@ def test_the_wheel_carries_the_tables_and_does_the_main_job(tmp_path: Path) -> N
     run(programs / "takeoff", "schedule", "list.xlsx", cwd=empty, status=3)
     assert sorted(p.name for p in empty.iterdir()) == ["list.schedule.xlsx", "list.xlsx"]
     assert "Weight schedule" in openpyxl.load_workbook(empty / "list.schedule.xlsx").sheetnames
+    run(programs / "takeoff", "schedule", "list.xlsx", "--out", "again.xlsx", "--page", "page.html", cwd=empty, status=3)
+    assert (empty / "page.html").read_text(encoding="utf-8").count("<script>") == 1
+    run(programs / "takeoff", "start", "new", cwd=empty)
+    assert sorted(p.name for p in (empty / "new").iterdir()) == ["HOWTO.txt", "job.toml", "member_list.xlsx"]
     assert "19 300" in run(programs / "takeoff", "material", "gold", cwd=empty).replace(",", " ")

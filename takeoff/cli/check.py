@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Annotated
 
 import typer
 
-from takeoff.cli import console
+from takeoff.cli import console, progress
 from takeoff.cli.options import JobOption, JsonOption, Lists, QuietOption, StrictOption, UnitsOption, with_units
 
 if TYPE_CHECKING:
@@ -28,8 +28,9 @@ def check(
     from takeoff.reports import checking
 
     the_job = with_units(find_job(lists, job), units)
-    reading = pipeline.read(lists, the_job, strict=strict)
-    result = pipeline.weigh_reading(reading)
+    with progress.shown(quiet, the_job):
+        reading = pipeline.read(lists, the_job, strict=strict)
+        result = pipeline.weigh_reading(reading)
     record = checking.check_record(reading, result)
     if json:
         console.out_json(record)

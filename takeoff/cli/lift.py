@@ -42,7 +42,7 @@ def lift(
 
     the_job = with_units(find_job([member_list], job), units)
     check_page(page, [member_list], the_job, replace=replace)
-    with progress.shown(quiet):
+    with progress.shown(quiet, the_job):
         result = pipeline.schedule([member_list], the_job, strict=strict)
     picks = [p for p in result.picks if pick is None or p.name == pick]
     if not picks:

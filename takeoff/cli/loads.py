@@ -42,7 +42,7 @@ def loads(
     the_job = with_units(find_job([member_list], job), units)
     vehicles_of(the_job)
     check_page(page, [member_list], the_job, replace=replace)
-    with progress.shown(quiet):
+    with progress.shown(quiet, the_job):
         result = pipeline.schedule([member_list], the_job, strict=strict)
     plan = result.loads
     assert plan is not None

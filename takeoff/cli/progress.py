@@ -11,9 +11,13 @@ import threading
 import time
 from collections.abc import Iterator
 from contextlib import contextmanager
+from typing import TYPE_CHECKING
 
 from takeoff import progress
-from takeoff.cli import console
+from takeoff.cli import clock, console
+
+if TYPE_CHECKING:
+    from takeoff.job import Job
 
 #: a run shorter than this says nothing; then the line is renewed at most this often
 PATIENCE_S, EVERY_S = 0.5, 0.2
@@ -49,8 +53,14 @@ class _Line:
 
 
 @contextmanager
-def shown(quiet: bool = False) -> Iterator[None]:
-    """Show what the work inside tells, where there is a terminal to show it on."""
+def shown(quiet: bool, job: Job) -> Iterator[None]:
+    """Show what the work inside tells, where there is a terminal to show it on; stop it at the job's [guards] seconds."""
+    with clock.within(job.guards.seconds), _shown(quiet):
+        yield
+
+
+@contextmanager
+def _shown(quiet: bool) -> Iterator[None]:
     try:
         seen = sys.stderr.isatty() and os.environ.get("TERM") != "dumb"
     except (AttributeError, ValueError):

@@ -45,7 +45,7 @@ def schedule(
     if len(readable) == len(lists):
         files.check_outputs(named, inputs=inputs, replace=replace)
     earlier = compare.read_earlier(against) if against else None
-    with progress.shown(quiet):
+    with progress.shown(quiet, the_job):
         result = pipeline.schedule(lists, with_units(the_job, units), strict=strict)
         changes = compare.compare(result, earlier) if earlier else None
         record = records.to_json(result, changes) if json else ""

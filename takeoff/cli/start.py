@@ -8,12 +8,13 @@ from typing import Annotated
 import typer
 
 from takeoff.cli import console
-from takeoff.cli.options import QuietOption
+from takeoff.cli.options import QuietOption, UnitsOption
 from takeoff.errors import OutputError
 
 
 def start(
     folder: Annotated[Path, typer.Argument(metavar="FOLDER", help="Where to put them; made where it is not there yet.")],
+    units: UnitsOption = None,
     quiet: QuietOption = False,
 ) -> None:
     """Write an empty member list with drop-downs, a commented job.toml and a how-to. Nothing that exists is replaced.
@@ -30,7 +31,7 @@ def start(
             raise OutputError(f"cannot be made ({error.strerror or error})", file=folder, right="a folder in one that exists") from error
     elif not folder.is_dir():
         raise OutputError("is a file", file=folder, right="the name of a folder")
-    outputs = starter.outputs(folder)
+    outputs = starter.outputs(folder, units or "si")
     for path, _ in outputs:
         if Path(path).exists():
             raise OutputError("exists already and is kept; nothing was written", file=path, right="a new folder, or one without it")

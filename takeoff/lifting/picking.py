@@ -91,7 +91,8 @@ class _Pick:
 
     def __init__(self, data: _List, plan: Plan) -> None:
         self.data, self.plan, self.job = data, plan, data.job
-        self.asked = plan.asked or PickPart(name=plan.name)
+        # Not validated: a list's pick may bear a name that no job file would.
+        self.asked = plan.asked or PickPart.model_construct(name=plan.name)
         self.lift = _resolved(data.job.lift, self.asked)
         self.findings: list[Finding] = []
         status = data.columns["status"]

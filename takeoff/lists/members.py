@@ -6,6 +6,7 @@ words say of it. Reading the cells of a column is `takeoff.lists.columns`.
 
 from __future__ import annotations
 
+import itertools
 import math
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
@@ -181,7 +182,9 @@ def _take_assemblies(reader: ColumnReader, part: dict[str, list[Any]], job: Job)
     if "assembly" in table.columns:
         first = next((i for i, text in enumerate(found) if text), None)
         blank = [i for i, text in enumerate(found) if not text and first is not None and i > first]
-        if blank:
+        # A list that repeats a name row by row names each row's own: its blanks are pieces of no assembly.
+        names_each = any(text and text == before for before, text in itertools.pairwise(found))
+        if blank and not names_each:
             last = None
             for i, text in enumerate(found):
                 # A blank row or a sum between two rows ends a group.

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import io
 import zipfile
+import zlib
 
 from takeoff.errors import InputError
 
@@ -41,6 +42,6 @@ def _is_ours(data: bytes) -> bool:
                     text = archive.read(part)
                     if all(mark in text for mark in marks):
                         return True
-    except (zipfile.BadZipFile, EOFError, OSError, NotImplementedError, RuntimeError, ValueError):
+    except (zipfile.BadZipFile, EOFError, OSError, NotImplementedError, RuntimeError, ValueError, zlib.error):
         return False  # what is wrong with it is said where it is read
     return False

@@ -16,7 +16,8 @@ from takeoff.job import Job
 from takeoff.lists import rowwords
 from takeoff.lists.captions import Caption, read_caption, warns
 from takeoff.lists.headings import MEASURES, Heading, read_heading
-from takeoff.lists.sheets import Cell, Sheet, cell_name, column_number, letters
+from takeoff.lists.openxml import column_number, letters
+from takeoff.lists.sheets import Cell, Sheet, cell_name
 from takeoff.names import normal_name
 from takeoff.quantities import number_readings, unit_of
 

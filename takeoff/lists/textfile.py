@@ -10,15 +10,20 @@ from dataclasses import dataclass, field
 
 from takeoff.errors import InputError
 from takeoff.findings import Finding
+from takeoff.job import GuardsPart
 
 SEPARATORS = ";\t,|"
 #: a quoted cell may run over this many lines; a quote still open then was never meant as one
 _MOST_QUOTED_LINES = 20
-_MOST_LINE = 1_000_000
-_MARKS = ((b"\xef\xbb\xbf", "utf-8-sig"), (b"\xff\xfe", "utf-16"), (b"\xfe\xff", "utf-16"))
+#: characters a line may have, for each megabyte that [guards] lets a file have
+_LINE_A_MEGABYTE = 5_000
+_MARKS = ((b"\xff\xfe\0\0", "utf-32"), (b"\0\0\xfe\xff", "utf-32"), (b"\xef\xbb\xbf", "utf-8-sig"), (b"\xff\xfe", "utf-16"),
+          (b"\xfe\xff", "utf-16"))
 #: what UTF-8 letters look like once they were read as Windows-1252 and saved again
 _MISREAD = re.compile(r"Ã[\u0080-\u00bf¤¶¼Ÿ–œ©¨±³¢ª§¡\u00ad²‰]|Â[°²³½¼¾\u00a0]|â€")
-_COMMENT = re.compile(r"<!--.{0,5000}?-->", re.DOTALL)
+_LONGEST_COMMENT = 5_000
+#: from inside a quoted field to behind the quote that closes it; two quotes are one sign of the text
+_CLOSING = re.compile(r'[^"]*+(?:""[^"]*+)*+"')
 _BREAK = re.compile(r"<br\s*/?>", re.IGNORECASE)
 
 
@@ -31,25 +36,26 @@ class TextTable:
     findings: list[Finding] = field(default_factory=list)
 
 
-def read_text(name: str, data: bytes, most_rows: int) -> TextTable:
+def read_text(name: str, data: bytes, guards: GuardsPart) -> TextTable:
     """The records of a text file of any of the usual encodings and separators.
 
-    Raises InputError where it is no text, has a line of more than a million characters, or more rows than `most_rows`.
+    Raises InputError where it is no text, or has longer lines, more rows or more cells than the guards allow.
     """
     table = TextTable([])
     text = _decode(name, data, table.findings)
     text = text.replace("\r\r\n", "\n").replace("\r\n", "\n").replace("\r", "\n")
     if "<!--" in text:
-        # A comment keeps its line ends, so that rows keep their numbers.
-        text = _COMMENT.sub(lambda found: "\n" * found.group(0).count("\n"), text)
+        text = _without_comments(text)
     lines = text.split("\n")
     while lines and not lines[-1].strip():
         lines.pop()
     longest = max(map(len, lines), default=0)
-    if longest > _MOST_LINE:
-        raise InputError(f"has a line of {longest:,} characters", file=name, right=f"lines of at most {_MOST_LINE:,} characters")
+    most_line = int(guards.megabytes * _LINE_A_MEGABYTE)
+    if longest > most_line:
+        raise InputError(f"has a line of {longest:,} characters", file=name,
+                         right=f"lines of at most {most_line:,} characters, or a higher [guards] megabytes in the job file")
     separator = _separator(lines)
-    number = 0
+    number = cells = 0
     while number < len(lines):
         fields, used, why = _record(lines, number, separator)
         number += used
@@ -58,8 +64,11 @@ def read_text(name: str, data: bytes, most_rows: int) -> TextTable:
         table.rows.append([_clean(cell) for cell in fields])
         if why is not None:
             table.broken[len(table.rows)] = why
-        if len(table.rows) > most_rows:
-            raise InputError(f"has more than {most_rows:,} rows", file=name, right="fewer rows, or a higher [guards] rows")
+        cells += len(fields)
+        if len(table.rows) > guards.rows:
+            raise InputError(f"has more than {guards.rows:,} rows", file=name, right="fewer rows, or a higher [guards] rows")
+        if cells > guards.cells:
+            raise InputError(f"has more than {guards.cells:,} cells", file=name, right="fewer cells, or a higher [guards] cells")
     return table
 
 
@@ -124,34 +133,34 @@ def _record(lines: list[str], start: int, separator: str) -> tuple[list[str], in
     line = lines[start]
     if '"' not in line or not _left_open(line, separator):
         return _fields(line, separator), 1, None
-    joined = line
-    for extra in range(1, min(_MOST_QUOTED_LINES, len(lines) - start)):
-        joined += "\n" + lines[start + extra]
-        if '"' in lines[start + extra] and not _left_open(joined, separator):
-            fields = next(csv.reader([joined], delimiter=separator))
+    joined, still_open = [line], True
+    for following in lines[start + 1:start + _MOST_QUOTED_LINES]:
+        joined.append(following)
+        still_open = _left_open(following, separator, quoted=True)
+        if not still_open:
+            fields = _fields("\n".join(joined), separator)
             # A cell that swallowed whole lines of other records is no cell.
             if not any(cell.count("\n") and cell.count(separator) > 1 for cell in fields):
-                return fields, extra + 1, None
+                return fields, len(joined), None
             break
     fields = line.replace('"', "").split(separator)
     return fields, 1, ("unclosed-quote", "a quote in this line is never closed: its fields cannot be told apart")
 
 
-def _left_open(line: str, separator: str) -> bool:
-    """Whether a quote that opens a field is still open at the end; a bare inch mark inside a field opens nothing."""
+def _left_open(line: str, separator: str, *, quoted: bool = False) -> bool:
+    """Whether a quote that opens a field is still open at the end; a bare inch mark inside a field opens nothing.
+
+    `quoted`: the line begins inside a quoted field.
+    """
     position, end = 0, len(line)
     while position <= end:
-        if position < end and line[position] == '"':
-            position += 1
-            while True:
-                close = line.find('"', position)
-                if close < 0:
-                    return True
-                if line[close + 1 : close + 2] == '"':
-                    position = close + 2
-                    continue
-                position = close + 1
-                break
+        if quoted or (position < end and line[position] == '"'):
+            position += 0 if quoted else 1
+            quoted = False
+            closed = _CLOSING.match(line, position)
+            if closed is None:
+                return True
+            position = closed.end()
         following = line.find(separator, position)
         if following < 0:
             return False
@@ -162,8 +171,28 @@ def _left_open(line: str, separator: str) -> bool:
 def _fields(line: str, separator: str) -> list[str]:
     if '"' not in line:
         return line.split(separator)
-    csv.field_size_limit(_MOST_LINE * 2)
+    csv.field_size_limit(max(csv.field_size_limit(), len(line) + 1))
     return next(csv.reader([line], delimiter=separator), [])
+
+
+def _without_comments(text: str) -> str:
+    """Comments of a page taken out, their line ends kept, so that rows keep their numbers."""
+    parts: list[str] = []
+    done = 0
+    while (start := text.find("<!--", done)) >= 0:
+        end = text.find("-->", start + 4)
+        if end < 0:
+            break
+        if end - start > _LONGEST_COMMENT:
+            # Too long for a comment: what stands before its end is looked at anew, but never twice.
+            start = text.rfind("<!--", start, end)
+        if end - start > _LONGEST_COMMENT:
+            parts.append(text[done:end])
+            done = end
+            continue
+        parts += text[done:start], "\n" * text.count("\n", start, end)
+        done = end + 3
+    return "".join([*parts, text[done:]])
 
 
 def _without_edges(fields: list[str]) -> list[str]:

@@ -13,6 +13,7 @@ import math
 from collections import defaultdict
 from collections.abc import Callable, Hashable, Sequence
 from dataclasses import dataclass
+from functools import lru_cache
 from pathlib import Path
 from typing import TYPE_CHECKING, Any, Literal
 
@@ -117,7 +118,7 @@ class Comparison:
         """How much of each, and what it does to the total."""
         parts = []
         for kind in ("added", "removed", "changed"):
-            those = self.of(kind)  # type: ignore[arg-type]
+            those = self.of(kind)
             kg = math.fsum(c.kg[2] for c in those)
             parts.append(f"{counted(len(those), 'row')} {kind}" + (f" ({signed(kg, units)} heavy)" if those else ""))
         total = " / ".join(signed(kg, units, unit=False) for kg in self.total_kg)
@@ -234,6 +235,11 @@ def read_earlier(path: Path) -> Earlier:
     return Earlier(str(path), hashlib.sha256(data).hexdigest(), lines, total, hooks)
 
 
+@lru_cache(maxsize=1000)
+def _sheet_place(file: str | None, sheet: str | None) -> str:
+    return " / ".join(shown(p) for p in (file, sheet) if p)
+
+
 def _three(mass: dict[str, Any]) -> tuple[float, float, float] | None:
     values = [mass[word] for word in WORDS]
     if any(v is None for v in values):
@@ -255,7 +261,7 @@ def _line(member: dict[str, Any], number: int) -> Line:
     }
     if any(isinstance(v, dict | list) for v in fields.values()):
         raise TypeError("a field is no plain value")
-    place = " / ".join(shown(p) for p in (member["file"], member["sheet"]) if p)
+    place = _sheet_place(member["file"], member["sheet"])
     mark = None if member["mark"] is None else str(member["mark"])
     return Line(mark, fields, _three(member["mass_total_kg"]), f"{place} row {int(member['row'])}", number)
 

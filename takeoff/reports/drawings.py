@@ -295,7 +295,7 @@ def chart(series: Sequence[Series], axes: tuple[str, str], title: str, *, uprigh
         return ""
     x_ticks, y_ticks = ticks(min(xs), max(xs), 5), ticks(min([0.0, *ys]), max([0.0, *ys]), 4)
     left, right, top, bottom = 48.0, WIDTH - 24, 22.0, 236.0
-    drawing = Drawing(WIDTH, bottom + 44 + 17 * len(series), title)
+    drawing = Drawing(WIDTH, bottom + 54 + 17 * len(series), title)
 
     def at(p: Flat) -> Flat:
         return (
@@ -323,14 +323,17 @@ def chart(series: Sequence[Series], axes: tuple[str, str], title: str, *, uprigh
         kind = f"series s{number % 6}"
         drawing.line([at(p) for p in line.points], kind)
         for p in line.points:
-            drawing.dot(*at(p), 2.5, "full")
+            drawing.dot(*at(p), 2.5 if len(line.points) > 1 else 5, "full")
         letter = chr(ord("A") + number % 26)
         x, y = at(line.points[-1])
         place = (round(x / 12), round(y / 12))
         taken[place] = taken.get(place, 0) + 1
         drawing.text(x - 5 + 11 * taken[place], y - 4, letter, "start", "t strong")
-        base = bottom + 44 + 17 * number
-        drawing.line([(left, base - 4), (left + 30, base - 4)], kind)
+        base = bottom + 54 + 17 * number
+        if len(line.points) > 1:
+            drawing.line([(left, base - 4), (left + 30, base - 4)], kind)
+        else:
+            drawing.dot(left + 15, base - 4, 5, "full")
         drawing.text(left + 36, base, f"{letter}  {line.label}"[:62])
     return drawing.svg()
 

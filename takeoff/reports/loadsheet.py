@@ -62,8 +62,10 @@ def _load(page: Page, load: Load, units: Units) -> None:
     unit = rounding.mass_unit(units)
     payload = rounding.mass_with_unit(load.payload_kg, "up", units, gap=NO_BREAK)
     limit = rounding.mass_with_unit(load.vehicle.payload_kg, "down", units, gap=NO_BREAK)
-    page.heading(f"{shown(load.name)}: {counted(len(load.pieces), 'unit')}, payload {payload} of {limit} (dunnage and gear "
-                 f"{rounding.mass_with_unit(load.dunnage_kg, 'up', units, gap=NO_BREAK)} in it)")
+    page.heading(
+        f"{shown(load.name)}: {counted(len(load.pieces), 'unit')}, payload {payload} of {limit} (dunnage and gear "
+        f"{rounding.mass_with_unit(load.dunnage_kg, 'up', units, gap=NO_BREAK)} in it)"
+    )
     if any(p.unit.not_weighed for p in load.pieces):
         page.say("INCOMPLETE: pieces of this load could not be weighed. It is heavier than shown.", indent=2)
     _sketch(page, load)
@@ -73,7 +75,10 @@ def _load(page: Page, load: Load, units: Units) -> None:
         [
             [
                 f"{number}. {shown(p.unit.name)}" + (f" (phase {shown(p.unit.phase)})" if p.unit.phase else ""),
-                rounding.mass(p.unit.mass.heavy, "up", units, gap=NO_BREAK), _mm(p.x, units), _mm(p.y, units), str(p.layer),
+                rounding.mass(p.unit.mass.heavy, "up", units, gap=NO_BREAK),
+                _mm(p.x, units),
+                _mm(p.y, units),
+                str(p.layer),
                 *(_mm(v, units) for v in (p.unit.on_deck(p.turned)[:2] if p.unit.size else (None, None))),
             ]
             for number, p in enumerate(load.pieces[:_MOST_PIECES], 1)
@@ -86,8 +91,11 @@ def _load(page: Page, load: Load, units: Units) -> None:
             [f"Axles, {unit}", "light", "heavy", "worst", "limit", "of limit"],
             [
                 [
-                    a.name, rounding.mass(a.light_kg, "down", units, gap=NO_BREAK), rounding.mass(a.kg, "up", units, gap=NO_BREAK),
-                    rounding.mass(a.worst_kg, "up", units, gap=NO_BREAK), rounding.mass(a.limit_kg, "down", units, gap=NO_BREAK),
+                    a.name,
+                    rounding.mass(a.light_kg, "down", units, gap=NO_BREAK),
+                    rounding.mass(a.kg, "up", units, gap=NO_BREAK),
+                    rounding.mass(a.worst_kg, "up", units, gap=NO_BREAK),
+                    rounding.mass(a.limit_kg, "down", units, gap=NO_BREAK),
                     NO_FIGURE if not a.limit_kg else f"{rounding.number(100 * a.worst_kg / a.limit_kg, 1, 'up')}{NO_BREAK}%",
                 ]
                 for a in load.axles
@@ -97,11 +105,17 @@ def _load(page: Page, load: Load, units: Units) -> None:
     for x in load.lashings:
         angle = "" if x.angle_deg is None else f" at {x.angle_deg:g}°"
         friction = "" if x.friction is None else f", friction {x.friction:g}"
-        page.say(f"Hold {shown(x.piece)}: {x.number} {shown(x.method)}{angle} ({shown(x.direction)} governs{friction})"
-                 if x.method != "blocking" else f"Hold {shown(x.piece)}: {shown(x.rule)}", indent=2, hang=4)
+        page.say(
+            f"Hold {shown(x.piece)}: {x.number} {shown(x.method)}{angle} ({shown(x.direction)} governs{friction})"
+            if x.method != "blocking"
+            else f"Hold {shown(x.piece)}: {shown(x.rule)}",
+            indent=2,
+            hang=4,
+        )
     for over in load.over_size:
         value, most = (
-            (rounding.mass_with_unit(over.value, "up", units), rounding.mass_with_unit(over.limit, "down", units)) if over.kind == "gross"
+            (rounding.mass_with_unit(over.value, "up", units), rounding.mass_with_unit(over.limit, "down", units))
+            if over.kind == "gross"
             else (rounding.length_with_unit(over.value, units), rounding.length_with_unit(over.limit, units))
         )
         page.say(f"OVER-SIZE, {over.kind}: {shown(over.name)} {value}, over {most} ({shown(over.rule)})", indent=2, hang=4)

@@ -35,7 +35,10 @@ CAUTIONS = (
 
 
 def load_up(members: pd.DataFrame, sections: Sequence[Section], job: Job, places: dict[int, Place | str] | None = None) -> Plan:
-    """The plan of a weighed list; `places` are those of `takeoff.lifting.gravity.places_of`, where known already. Raises JobError on vehicles, lashings or friction that cannot be, AccountError on a fault of ours."""
+    """The plan of a weighed list; `places` are those of `takeoff.lifting.gravity.places_of`, where known already.
+
+    Raises JobError on vehicles, lashings or friction that cannot be, AccountError on a fault of ours.
+    """
     vehicles = vehicles_of(job)
     units, lost = units_of(members, sections, job, places)
     return plan_units(units, lost, vehicles, job)
@@ -47,29 +50,53 @@ def plan_units(units: Sequence[LoadUnit], lost: Sequence[NotLoaded], vehicles: S
     transport = job.transport
     findings: list[Finding] = []
     if tension_dan(job) < transport.lashing.stf_dan:
-        findings.append(Finding(
-            "note", "lashing-tension", f"the lashings' tension of {transport.lashing.stf_dan:g} daN is more than half of their strength: "
-            f"{tension_dan(job):g} daN are reckoned with", read=f"{transport.lashing.stf_dan:g}", right=f"at most {transport.lashing.lc_dan / 2:g}",
-        ))
+        findings.append(
+            Finding(
+                "note",
+                "lashing-tension",
+                f"the lashings' tension of {transport.lashing.stf_dan:g} daN is more than half of their strength: "
+                f"{tension_dan(job):g} daN are reckoned with",
+                read=f"{transport.lashing.stf_dan:g}",
+                right=f"at most {transport.lashing.lc_dan / 2:g}",
+            )
+        )
     if transport.lashing.angle_deg < rule("useful angle", "EN 12195-1", "any").value:
-        findings.append(Finding("note", "flat-lashing", f"at {transport.lashing.angle_deg:g}° a lashing over the top presses little: use direct lashings", right="35° or more"))
+        findings.append(
+            Finding(
+                "note",
+                "flat-lashing",
+                f"at {transport.lashing.angle_deg:g}° a lashing over the top presses little: use direct lashings",
+                right="35° or more",
+            )
+        )
     if not transport.dunnage_kg:
-        findings.append(Finding("note", "dunnage-not-counted", "no mass of dunnage and lashing gear is in the payload", right="[transport] dunnage_kg"))
+        findings.append(
+            Finding("note", "dunnage-not-counted", "no mass of dunnage and lashing gear is in the payload", right="[transport] dunnage_kg")
+        )
     outcome = planning.plan(
-        units, vehicles, dunnage_mm=transport.dunnage_mm, dunnage_kg=transport.dunnage_kg, apart=transport.separate == "phase",
+        units,
+        vehicles,
+        dunnage_mm=transport.dunnage_mm,
+        dunnage_kg=transport.dunnage_kg,
+        apart=transport.separate == "phase",
         seconds=transport.time_limit_s,
     )
     loads = tuple(
         load_of(name, filled.vehicle, filled.arranged, job, friction)
-        for name, filled in planning.names_in_order(outcome.filled) if filled.arranged is not None
+        for name, filled in planning.names_in_order(outcome.filled)
+        if filled.arranged is not None
     )
     not_loaded = (*outcome.left, *lost)
     proven = len(loads) <= outcome.bound
     if outcome.stopped_by_clock:
-        findings.append(Finding(
-            "note", "stopped-early", f"the search was stopped after {transport.time_limit_s:g} s: the best plan found so far is given",
-            right="a longer [transport] time_limit_s",
-        ))
+        findings.append(
+            Finding(
+                "note",
+                "stopped-early",
+                f"the search was stopped after {transport.time_limit_s:g} s: the best plan found so far is given",
+                right="a longer [transport] time_limit_s",
+            )
+        )
     if not proven:
         findings.append(Finding("note", "not-proven", f"{len(loads)} vehicles were found; whether {outcome.bound} would do is not known"))
     _look_over(loads, not_loaded, units, lost, vehicles, job)
@@ -77,10 +104,17 @@ def plan_units(units: Sequence[LoadUnit], lost: Sequence[NotLoaded], vehicles: S
 
 
 def _look_over(
-    loads: Sequence[Load], not_loaded: Sequence[NotLoaded], units: Sequence[LoadUnit], lost: Sequence[NotLoaded], vehicles: Sequence[Vehicle], job: Job,
+    loads: Sequence[Load],
+    not_loaded: Sequence[NotLoaded],
+    units: Sequence[LoadUnit],
+    lost: Sequence[NotLoaded],
+    vehicles: Sequence[Vehicle],
+    job: Job,
 ) -> None:
     room = {v.name: room_record(v, job) for v in vehicles}
-    found = faults([load.as_record() for load in loads], [n.as_record() for n in not_loaded], [u.name for u in units] + [n.name for n in lost], room)
+    found = faults(
+        [load.as_record() for load in loads], [n.as_record() for n in not_loaded], [u.name for u in units] + [n.name for n in lost], room
+    )
     if found:
         raise AccountError("the loading plan does not hold: " + "; ".join(found[:3]))
 
@@ -89,8 +123,13 @@ def room_record(vehicle: Vehicle, job: Job) -> dict[str, object]:
     """A vehicle as the checker takes it."""
     length, width, height = vehicle.deck or (0.0, 0.0, 0.0)
     return {
-        "length": length, "width": width, "height": height, "overhang": vehicle.rear_overhang_mm, "dunnage": job.transport.dunnage_mm,
-        "payload_kg": vehicle.payload_kg, "line_kg_per_m": vehicle.line_load_kg_per_m,
+        "length": length,
+        "width": width,
+        "height": height,
+        "overhang": vehicle.rear_overhang_mm,
+        "dunnage": job.transport.dunnage_mm,
+        "payload_kg": vehicle.payload_kg,
+        "line_kg_per_m": vehicle.line_load_kg_per_m,
         "axles": {s.name: (s.empty_kg, s.at_front, s.per_mm, s.limit_kg) for s in vehicle.statics.supports} if vehicle.statics else {},
     }
 

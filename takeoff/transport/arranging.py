@@ -46,8 +46,8 @@ class _Segment:
     drop: float
 
 
-def arrange(pieces: Sequence[Placed], vehicle: Vehicle, deck: Deck, dunnage_kg: float) -> Arranged | None:
-    """The pieces moved so that limits hold; None where no order tried does it, or the deck's line load is exceeded."""
+def arrange(pieces: Sequence[Placed], vehicle: Vehicle, deck: Deck, dunnage_kg: float, *, quick: bool = False) -> Arranged | None:
+    """The pieces moved so that limits hold, the first way found where it must be `quick`; None where no order tried does it, or the deck's line load is exceeded."""
     if not line_load_holds(pieces, vehicle):
         return None
     segments = _segments(pieces)
@@ -67,7 +67,7 @@ def arrange(pieces: Sequence[Placed], vehicle: Vehicle, deck: Deck, dunnage_kg: 
         out = not _from_the_rear(shifted)
         if best is None or (short + out) < best.rank[0]:
             best = _made(shifted, segments, deck, short, out)
-        if best.rank[0] == 0:
+        if quick or best.rank[0] == 0:
             break
     return best
 
@@ -86,7 +86,8 @@ def _centre(piece: Placed) -> tuple[float, float, float]:
 
 
 def _extent(piece: Placed) -> tuple[float, float, float, float]:
-    assert piece.x is not None and piece.y is not None
+    assert piece.x is not None
+    assert piece.y is not None
     length, width, _ = piece.unit.on_deck(piece.turned)
     return piece.x, piece.y, piece.x + length, piece.y + width
 
@@ -244,7 +245,12 @@ def _shift(pieces: Sequence[Placed], vehicle: Vehicle, dunnage_kg: float, free: 
 
 
 def _interval(
-    statics: Statics, states: Sequence[Sequence[tuple[float, float, float]]], fixed_kg: float, free: float, *, shares: bool,
+    statics: Statics,
+    states: Sequence[Sequence[tuple[float, float, float]]],
+    fixed_kg: float,
+    free: float,
+    *,
+    shares: bool,
 ) -> tuple[float, float] | None:
     """Shifts in [0, free] where every support holds, each condition being a line in the shift; `fixed_kg` does not move.
 
@@ -298,7 +304,7 @@ def _from_the_rear(pieces: Sequence[Placed]) -> bool:
             fronts[p.unit.drop] = min(fronts.get(p.unit.drop, math.inf), a)
             rears[p.unit.drop] = max(rears.get(p.unit.drop, -math.inf), c)
     drops = sorted(fronts)
-    return all(fronts[early] >= rears[late] - 1.0 for k, early in enumerate(drops) for late in drops[k + 1:])
+    return all(fronts[early] >= rears[late] - 1.0 for k, early in enumerate(drops) for late in drops[k + 1 :])
 
 
 def _balanced(pieces: list[Placed], segments: Sequence[_Segment], deck: Deck) -> list[Placed]:
@@ -363,14 +369,22 @@ def most_line_load(pieces: Sequence[Placed]) -> float:
             stack[floor] = stack.get(floor, 0.0) + p.unit.mass.heavy * part
     spans = [(_extent(pieces[i])[0], _extent(pieces[i])[2], kg) for i, kg in stack.items()]
     return max(
-        (sum(kg / (c - a) * 1000.0 for a, c, kg in spans if a - HAIR <= x < c - _LINE_STEP) for x, _, _ in spans), default=0.0,
+        (sum(kg / (c - a) * 1000.0 for a, c, kg in spans if a - HAIR <= x < c - _LINE_STEP) for x, _, _ in spans),
+        default=0.0,
     )
 
 
 def numbered(pieces: Sequence[Placed]) -> list[Placed]:
     """In loading order: last delivery first, each on what carries it, from the front; `on` renumbered."""
-    order = sorted(range(len(pieces)), key=lambda i: (
-        -pieces[i].unit.drop, pieces[i].layer, pieces[i].x if pieces[i].x is not None else 0.0, pieces[i].y or 0.0, pieces[i].unit.name,
-    ))
+    order = sorted(
+        range(len(pieces)),
+        key=lambda i: (
+            -pieces[i].unit.drop,
+            pieces[i].layer,
+            pieces[i].x if pieces[i].x is not None else 0.0,
+            pieces[i].y or 0.0,
+            pieces[i].unit.name,
+        ),
+    )
     place = {old: new for new, old in enumerate(order)}
     return [replace(pieces[i], on=tuple(sorted(place[k] for k in pieces[i].on))) for i in order]

@@ -50,8 +50,14 @@ class Statics:
 
 
 def rigid(
-    wheelbase_mm: float, deck_front_mm: float, front_empty_kg: float, rear_empty_kg: float,
-    front_limit_kg: float | None = None, rear_limit_kg: float | None = None, least_front: float = 0.0, least_rear: float = 0.0,
+    wheelbase_mm: float,
+    deck_front_mm: float,
+    front_empty_kg: float,
+    rear_empty_kg: float,
+    front_limit_kg: float | None = None,
+    rear_limit_kg: float | None = None,
+    least_front: float = 0.0,
+    least_rear: float = 0.0,
 ) -> Statics:
     """A rigid vehicle; `deck_front_mm` is the deck's front edge behind the front axle, negative ahead of it."""
     front = Support("front", front_empty_kg, 1 - deck_front_mm / wheelbase_mm, -1 / wheelbase_mm, front_limit_kg, least_front)
@@ -72,8 +78,14 @@ class Tractor:
 
 
 def semitrailer(
-    kingpin_to_axles_mm: float, deck_ahead_of_kingpin_mm: float, kingpin_empty_kg: float, axles_empty_kg: float,
-    kingpin_limit_kg: float | None = None, axles_limit_kg: float | None = None, tractor: Tractor | None = None, least_drive: float = 0.0,
+    kingpin_to_axles_mm: float,
+    deck_ahead_of_kingpin_mm: float,
+    kingpin_empty_kg: float,
+    axles_empty_kg: float,
+    kingpin_limit_kg: float | None = None,
+    axles_limit_kg: float | None = None,
+    tractor: Tractor | None = None,
+    least_drive: float = 0.0,
 ) -> Statics:
     """A semitrailer, with its tractor where there is one; else the kingpin stands as a support of its own."""
     ahead, length = deck_ahead_of_kingpin_mm, kingpin_to_axles_mm
@@ -123,14 +135,16 @@ def most_payload_kg(statics: Statics, payload_kg: float, deck_length_mm: float) 
 
     Each limit is a line in the moment, so the largest payload stands where two of them meet, or at an end of the deck.
     """
-    plain = Statics(tuple(Support(s.name, s.empty_kg, s.at_front, s.per_mm, s.limit_kg) for s in statics.supports), statics.empty_kg, statics.on_ground)
+    plain = Statics(
+        tuple(Support(s.name, s.empty_kg, s.at_front, s.per_mm, s.limit_kg) for s in statics.supports), statics.empty_kg, statics.on_ground
+    )
     # P*at_front + per_mm*M <= room, with M = P*x: rows of a small linear programme in P and M.
     rows = [(s.at_front, s.per_mm, s.limit_kg - s.empty_kg) for s in plain.supports if s.limit_kg is not None]
     rows += [(-s.at_front, -s.per_mm, s.empty_kg) for s in plain.supports]
     rows += [(1.0, 0.0, payload_kg), (0.0, -1.0, 0.0), (-deck_length_mm, 1.0, 0.0), (-1.0, 0.0, 0.0)]
     best = 0.0
     for i, (a, b, c) in enumerate(rows):
-        for d, e, f in rows[i + 1:]:
+        for d, e, f in rows[i + 1 :]:
             det = a * e - b * d
             if abs(det) < 1e-12:
                 continue

@@ -112,16 +112,18 @@ def _fill(sizes: Sequence[Size], capacity: Size, order: Sequence[int], best_fit:
             bins.append([])
             room.append(list(capacity))
             fitting = [len(bins) - 1]
-        chosen = min(fitting, key=lambda b: (sum(f / c if c else 0 for f, c in zip(room[b], capacity, strict=True)), b)) if best_fit else fitting[0]
+        chosen = (
+            min(fitting, key=lambda b: (sum(f / c if c else 0 for f, c in zip(room[b], capacity, strict=True)), b))
+            if best_fit
+            else fitting[0]
+        )
         bins[chosen].append(i)
         for d, s in enumerate(sizes[i]):
             room[chosen][d] -= s
     return bins
 
 
-def search(
-    sizes: Sequence[Size], capacity: Size, count: int, clock: Clock, *, moves: int, seed: int = 0
-) -> list[list[int]] | None:
+def search(sizes: Sequence[Size], capacity: Size, count: int, clock: Clock, *, moves: int, seed: int = 0) -> list[list[int]] | None:
     """Items into `count` bins by annealing on what is over the capacity; None where the moves or the clock run out.
 
     Moves shift one item or exchange two between bins. Fixed seed: the same sizes give the same packing.
@@ -187,8 +189,6 @@ def search(
             home[i] = b
             if j >= 0:
                 home[j] = a
-            if step % 64 == 0:
-                total = math.fsum(cost)
-            elif total < 1e-9:
+            if step % 64 == 0 or total < 1e-9:
                 total = math.fsum(cost)
     return None

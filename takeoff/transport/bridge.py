@@ -28,7 +28,9 @@ def formula_lb(distance_ft: int, axles: int) -> int:
     return 500 * math.ceil(exact - Fraction(1, 2))
 
 
-def group_lb(places_ft: Sequence[float], single_lb: Sequence[float] | None = None, tandem_lb: float = TANDEM_LB, gross_lb: float = GROSS_LB) -> float:
+def group_lb(
+    places_ft: Sequence[float], single_lb: Sequence[float] | None = None, tandem_lb: float = TANDEM_LB, gross_lb: float = GROSS_LB
+) -> float:
     """The most that consecutive axles at these places may carry: formula, the caps inside the group, and the gross limit.
 
     `single_lb` gives each axle its own cap (20,000 lb unless given). Two consecutive tandems of 36 ft or more may carry their

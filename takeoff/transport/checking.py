@@ -14,7 +14,9 @@ _MM = 0.01
 _SHARE = 1e-6
 
 
-def faults(loads: Sequence[dict[str, Any]], not_loaded: Sequence[dict[str, Any]], wanted: Sequence[str], room: dict[str, dict[str, Any]]) -> list[str]:
+def faults(
+    loads: Sequence[dict[str, Any]], not_loaded: Sequence[dict[str, Any]], wanted: Sequence[str], room: dict[str, dict[str, Any]]
+) -> list[str]:
     """What is wrong with a plan, as sentences; none where it is right.
 
     `loads` and `not_loaded` are records as in the JSON, `wanted` the names of everything to be loaded. `room` gives for each
@@ -79,7 +81,8 @@ def _place_faults(p: dict[str, Any], pieces: Sequence[dict[str, Any]], room: dic
     least, quarter = (1.0, 1.0) if len(carriers) == 1 else (0.6, 0.4)
     half = [
         (p["x_mm"] + i * p["length_mm"] / 2, p["y_mm"] + j * p["width_mm"] / 2, p["length_mm"] / 2, p["width_mm"] / 2)
-        for i in (0, 1) for j in (0, 1)
+        for i in (0, 1)
+        for j in (0, 1)
     ]
     under = [sum(_shared(box, c) for c in carriers) / (box[2] * box[3]) for box in half]
     if sum(under) / 4 < least - 0.001 or min(under) < quarter - 0.001:
@@ -89,8 +92,8 @@ def _place_faults(p: dict[str, Any], pieces: Sequence[dict[str, Any]], room: dic
 
 def _shared(box: tuple[float, float, float, float], c: dict[str, Any]) -> float:
     """The area of a box (x, y, length, width) that lies over a carrier."""
-    along = min(box[0] + box[2], c["x_mm"] + c["length_mm"]) - max(box[0], c["x_mm"])
-    across = min(box[1] + box[3], c["y_mm"] + c["width_mm"]) - max(box[1], c["y_mm"])
+    along: float = min(box[0] + box[2], c["x_mm"] + c["length_mm"]) - max(box[0], c["x_mm"])
+    across: float = min(box[1] + box[3], c["y_mm"] + c["width_mm"]) - max(box[1], c["y_mm"])
     return max(0.0, along) * max(0.0, across)
 
 

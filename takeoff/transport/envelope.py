@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 from collections.abc import Sequence
 
 from takeoff.findings import Finding
@@ -15,7 +16,9 @@ _KG_PER_LB, _MM_PER_FT = 0.45359237, 304.8
 _CONFIRM = "confirm locally"
 
 
-def over_size(name: str, vehicle: Vehicle, pieces: Sequence[Placed], payload_kg: float, envelope: str, limits: LimitsPart) -> list[OverSize]:
+def over_size(
+    name: str, vehicle: Vehicle, pieces: Sequence[Placed], payload_kg: float, envelope: str, limits: LimitsPart
+) -> list[OverSize]:
     """Pieces and vehicle beyond the thresholds; what is not known is not compared."""
     found: list[OverSize] = []
     width = _limit("width", limits.width_mm, envelope, "any")
@@ -96,10 +99,16 @@ def axle_findings(name: str, vehicle: Vehicle, axles: Sequence[AxleLoad], envelo
         at = [a.at_mm for a in places if a.group == group]
         limit = _group_limit(group, at)
         if limit is not None and load[group] > limit.value * (1 + 1e-9):
-            found.append(Finding(
-                "note", "envelope-axle", f"{name}: {group} carries {load[group]:.0f} kg, over the planning limit of {limit.value:g} kg "
-                f"({limit.source}); {_CONFIRM}", read=f"{load[group]:.0f} kg", right=f"at most {limit.value:g} kg",
-            ))
+            found.append(
+                Finding(
+                    "note",
+                    "envelope-axle",
+                    f"{name}: {group} carries {load[group]:.0f} kg, over the planning limit of {limit.value:g} kg "
+                    f"({limit.source}); {_CONFIRM}",
+                    read=f"{load[group]:.0f} kg",
+                    right=f"at most {limit.value:g} kg",
+                )
+            )
     return found
 
 
@@ -108,7 +117,7 @@ def _group_limit(group: str, at_mm: Sequence[float]) -> Rule | None:
     trailer = group == "trailer"
     if len(at_mm) == 1:
         return rule("axle", name, "driving" if group in {"rear", "drive"} else "single")
-    gap = min(b - a for a, b in zip(at_mm, at_mm[1:], strict=False))
+    gap = min(b - a for a, b in itertools.pairwise(at_mm))
     if len(at_mm) == 2:
         kind = "trailer tandem" if trailer else "motor tandem"
         for below in (1000, 1300, 1800):
@@ -133,8 +142,14 @@ def _bridge(name: str, vehicle: Vehicle, load: dict[str, float]) -> list[Finding
             carried = sum(each[i:j])
             if carried > limit * (1 + 1e-9):
                 which = f"axle {i + 1}" if j == i + 1 else f"axles {i + 1} to {j}"
-                found.append(Finding(
-                    "note", "envelope-axle", f"{name}: {which} carry {carried:.0f} lb, over {limit:.0f} lb (23 USC 127(a), the bridge formula "
-                    f"with ties rounded down, and its caps); {_CONFIRM}", read=f"{carried:.0f} lb", right=f"at most {limit:.0f} lb",
-                ))
+                found.append(
+                    Finding(
+                        "note",
+                        "envelope-axle",
+                        f"{name}: {which} carry {carried:.0f} lb, over {limit:.0f} lb (23 USC 127(a), the bridge formula "
+                        f"with ties rounded down, and its caps); {_CONFIRM}",
+                        read=f"{carried:.0f} lb",
+                        right=f"at most {limit:.0f} lb",
+                    )
+                )
     return found

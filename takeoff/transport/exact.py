@@ -7,6 +7,7 @@ large, an arc-flow model (Valério de Carvalho 1999; recalled) runs over the fil
 
 from __future__ import annotations
 
+import itertools
 import time
 from collections import Counter
 from collections.abc import Sequence
@@ -150,7 +151,7 @@ def _arc_flow(names: Sequence[Size], demand: Sequence[int], capacity: int, count
     for start, end, k in arc_list:
         columns.append([(row[start], -1.0), (row[end], 1.0), (base + k, 1.0)])
         uppers.append(min(demand[k], count))
-    ends_here = [(a, b) for a, b in zip(nodes, nodes[1:], strict=False)]
+    ends_here = [(a, b) for a, b in itertools.pairwise(nodes)]
     for start, end in ends_here:  # what is left of a bin runs empty to its end
         columns.append([(row[start], -1.0), (row[end], 1.0)])
         uppers.append(count)
@@ -161,7 +162,7 @@ def _arc_flow(names: Sequence[Size], demand: Sequence[int], capacity: int, count
     if not isinstance(values, list):
         return values
     flow = Counter({arc: v for arc, v in zip(arc_list, values, strict=False) if v})
-    empty = Counter({arc: v for arc, v in zip(ends_here, values[len(arc_list):], strict=True) if v})
+    empty = Counter({arc: v for arc, v in zip(ends_here, values[len(arc_list) :], strict=True) if v})
     chosen = []
     for _ in range(count):
         at, pattern = 0, Counter[int]()
@@ -187,7 +188,9 @@ def _as_bins(patterns: Sequence[dict[int, int]], names: Sequence[Size], sizes: S
     return [[waiting[names[k]].pop() for k, times in pattern.items() for _ in range(times)] for pattern in patterns]
 
 
-def solve(columns: Sequence[Sequence[tuple[int, float]]], right: Sequence[float], uppers: Sequence[int], seconds: float) -> list[int] | str | None:
+def solve(
+    columns: Sequence[Sequence[tuple[int, float]]], right: Sequence[float], uppers: Sequence[int], seconds: float
+) -> list[int] | str | None:
     """Whole numbers x with 0 <= x <= upper and sum(column * x) = right; "impossible" where proven, None where not found.
 
     One thread, a fixed seed and a limit of nodes make it repeatable; the seconds are the safety stop.
@@ -196,9 +199,15 @@ def solve(columns: Sequence[Sequence[tuple[int, float]]], right: Sequence[float]
     import numpy as np
 
     # The plain solver below the package's own class, which greets on standard output as soon as it is made.
-    model: Any = highspy.Highs.__base__()
+    solver: Any = highspy.Highs.__base__
+    model = solver()
     for name, value in {
-        "output_flag": False, "threads": 1, "random_seed": 7, "time_limit": float(seconds), "mip_max_nodes": 20_000, "mip_rel_gap": 0.0,
+        "output_flag": False,
+        "threads": 1,
+        "random_seed": 7,
+        "time_limit": float(seconds),
+        "mip_max_nodes": 20_000,
+        "mip_rel_gap": 0.0,
     }.items():
         model.setOptionValue(name, value)
     lp: Any = highspy.HighsLp()

@@ -36,16 +36,25 @@ def load_of(name: str, vehicle: Vehicle, arranged: Arranged, job: Job, friction:
         findings.append(Finding("note", "axles-unknown", f"{name}: its axle loads are unknown, since a unit on it has no place"))
     _say_places(name, vehicle, arranged, pieces, findings)
     return Load(
-        name=name, vehicle=vehicle, pieces=tuple(pieces), dunnage_kg=dunnage, axles=tuple(axles),
+        name=name,
+        vehicle=vehicle,
+        pieces=tuple(pieces),
+        dunnage_kg=dunnage,
+        axles=tuple(axles),
         lashings=tuple(lashings_of(pieces, job, friction, findings)),
         over_size=tuple(envelope.over_size(name, vehicle, pieces, payload, job.transport.envelope, job.limits)),
         curve=tuple(curve(vehicle.statics, vehicle.payload_kg, vehicle.deck[0])) if vehicle.statics and vehicle.deck else (),
-        stages=tuple(steps), findings=tuple(dict.fromkeys(findings)),
+        stages=tuple(steps),
+        findings=tuple(dict.fromkeys(findings)),
     )
 
 
 def _axles(
-    pieces: Sequence[Placed], vehicle: Vehicle, dunnage: float, name: str, findings: list[Finding],
+    pieces: Sequence[Placed],
+    vehicle: Vehicle,
+    dunnage: float,
+    name: str,
+    findings: list[Finding],
 ) -> tuple[list[AxleLoad], list[dict[str, object]]]:
     statics = vehicle.statics
     assert statics is not None
@@ -59,14 +68,27 @@ def _axles(
         if least is not None and least < s.least_share * (1 - 1e-9):
             which = "steering" if s.name == "front" else "driving"
             source = rule(f"least {which} share", "", "rigid" if which == "steering" else "any").source
-            findings.append(Finding(
-                "note", "axle-share-low", f"{name}: {s.name} may carry as little as {100 * least:.1f} % of the mass, under the {100 * s.least_share:g} % "
-                f"asked of the {which} axle ({source}); confirm locally", read=f"{100 * least:.1f} %", right=f"{100 * s.least_share:g} % or more",
-            ))
-        found.append(AxleLoad(
-            s.name, heavy, s.load_kg([(m, x) for m, _, x in full]), s.limit_kg, heavy / heavy_all if heavy_all else 0.0,
-            max(worst_kg(s, masses) for _, masses in states), least,
-        ))
+            findings.append(
+                Finding(
+                    "note",
+                    "axle-share-low",
+                    f"{name}: {s.name} may carry as little as {100 * least:.1f} % of the mass, under the {100 * s.least_share:g} % "
+                    f"asked of the {which} axle ({source}); confirm locally",
+                    read=f"{100 * least:.1f} %",
+                    right=f"{100 * s.least_share:g} % or more",
+                )
+            )
+        found.append(
+            AxleLoad(
+                s.name,
+                heavy,
+                s.load_kg([(m, x) for m, _, x in full]),
+                s.limit_kg,
+                heavy / heavy_all if heavy_all else 0.0,
+                max(worst_kg(s, masses) for _, masses in states),
+                least,
+            )
+        )
     steps: list[dict[str, object]] = [
         {"stage": label, "kg": {s.name: s.load_kg([(m, x) for _, m, x in masses]) for s in statics.supports}} for label, masses in states
     ]
@@ -75,20 +97,36 @@ def _axles(
 
 def _say_places(name: str, vehicle: Vehicle, arranged: Arranged, pieces: Sequence[Placed], findings: list[Finding]) -> None:
     if arranged.out_of_order:
-        findings.append(Finding("note", "unloading-order", f"{name}: a later delivery stands behind or beside an earlier one: unload from above or from the side"))
+        findings.append(
+            Finding(
+                "note",
+                "unloading-order",
+                f"{name}: a later delivery stands behind or beside an earlier one: unload from above or from the side",
+            )
+        )
     if vehicle.deck is None:
         return
     allowed, source = rule("lateral eccentricity", "", "any")
     if arranged.beside_mm > allowed * vehicle.deck[1]:
-        findings.append(Finding(
-            "note", "lateral-balance", f"{name}: its load lies {math.ceil(arranged.beside_mm)} mm beside the middle, more than {100 * allowed:g} % of the deck's "
-            f"width ({source})", read=f"{math.ceil(arranged.beside_mm)} mm", right=f"at most {math.floor(allowed * vehicle.deck[1])} mm",
-        ))
+        findings.append(
+            Finding(
+                "note",
+                "lateral-balance",
+                f"{name}: its load lies {math.ceil(arranged.beside_mm)} mm beside the middle, more than {100 * allowed:g} % of the deck's "
+                f"width ({source})",
+                read=f"{math.ceil(arranged.beside_mm)} mm",
+                right=f"at most {math.floor(allowed * vehicle.deck[1])} mm",
+            )
+        )
     for p in pieces:
         if p.x is not None:
             beyond = p.x + p.unit.on_deck(p.turned)[0] - vehicle.deck[0]
             if beyond > 1e-3:
-                findings.append(Finding("note", "rear-overhang", f"{name}: {p.unit.name} reaches {math.ceil(beyond)} mm beyond the deck's tail: mark it"))
+                findings.append(
+                    Finding(
+                        "note", "rear-overhang", f"{name}: {p.unit.name} reaches {math.ceil(beyond)} mm beyond the deck's tail: mark it"
+                    )
+                )
 
 
 def lashings_of(pieces: Sequence[Placed], job: Job, friction: Friction, findings: list[Finding]) -> list[Lashing]:
@@ -114,8 +152,12 @@ def tension_dan(job: Job) -> float:
     """The tension reckoned with, daN: as given, but at most half of LC. Raises JobError where a lashing is weaker than it."""
     lashing = job.transport.lashing
     if lashing.stf_dan > lashing.lc_dan:
-        raise JobError("transport.lashing: its tension stf_dan is above its strength lc_dan", file=job.path,
-                       read=f"{lashing.stf_dan:g} and {lashing.lc_dan:g}", right="a tension of at most half the strength")
+        raise JobError(
+            "transport.lashing: its tension stf_dan is above its strength lc_dan",
+            file=job.path,
+            read=f"{lashing.stf_dan:g} and {lashing.lc_dan:g}",
+            right="a tension of at most half the strength",
+        )
     return min(lashing.stf_dan, lashing.lc_dan * rule("tension of capacity", "EN 12195-1", "any").value)
 
 
@@ -139,23 +181,52 @@ def _by_standard(stack: Sequence[Placed], mass: float, job: Job, friction: Frict
         tilting = [t for t in tilting if t[0] != "forward"]
     held = securing.lashings_over(mass, friction.factor, stf, lc, transport.lashing.angle_deg, directions, tilting)
     rule_text = f"EN 12195-1:2010, 5.4.2; friction {friction.factor:g}: {friction.pair} ({friction.source})"
-    made = [Lashing(
-        below.unit.name, "top-over", held.direction, held.number, friction.factor, transport.lashing.angle_deg, _spots(below, held.number), rule_text,
-    )]
+    made = [
+        Lashing(
+            below.unit.name,
+            "top-over",
+            held.direction,
+            held.number,
+            friction.factor,
+            transport.lashing.angle_deg,
+            _spots(below, held.number),
+            rule_text,
+        )
+    ]
     if blocked:
         force = securing.blocking_kN(mass, c["forward"], friction.factor)
         if force > 0:
-            made.append(Lashing(
-                below.unit.name, "blocking", "forward", 1, friction.factor, None, (), f"a block or headboard that holds {math.ceil(force * 10) / 10:g} kN (balance of 5.4.2)",
-            ))
+            made.append(
+                Lashing(
+                    below.unit.name,
+                    "blocking",
+                    "forward",
+                    1,
+                    friction.factor,
+                    None,
+                    (),
+                    f"a block or headboard that holds {math.ceil(force * 10) / 10:g} kN (balance of 5.4.2)",
+                )
+            )
     if held.tilts:
-        findings.append(Finding("note", "tilting", f"{below.unit.name} and what stands on it can tilt by itself: the lashings are reckoned for one row; neighbours need their own look"))
+        findings.append(
+            Finding(
+                "note",
+                "tilting",
+                f"{below.unit.name} and what stands on it can tilt by itself: "
+                "the lashings are reckoned for one row; neighbours need their own look",
+            )
+        )
     if held.number > _MANY_LASHINGS:
         leg = securing.direct_kN(mass, c["forward"] if not blocked else c["sideways"], friction.factor, _DIRECT_ANGLE, _DIRECT_ASIDE)
-        findings.append(Finding(
-            "note", "many-lashings", f"{below.unit.name} would need {held.number} lashings over the top: raise the friction, block it, or lash it directly "
-            f"(two diagonals a direction at {_DIRECT_ANGLE:g}° and {_DIRECT_ASIDE:g}° in plan: LC {math.ceil(leg * 100):g} daN each)",
-        ))
+        findings.append(
+            Finding(
+                "note",
+                "many-lashings",
+                f"{below.unit.name} would need {held.number} lashings over the top: raise the friction, block it, or lash it directly "
+                f"(two diagonals a direction at {_DIRECT_ANGLE:g}° and {_DIRECT_ASIDE:g}° in plan: LC {math.ceil(leg * 100):g} daN each)",
+            )
+        )
     return made
 
 
@@ -184,4 +255,15 @@ def _by_half_weight(stack: Sequence[Placed], mass: float, job: Job, findings: li
         number = max(number, securing.tiedowns_by_length(below.unit.on_deck(below.turned)[0], mass, blocked=job.transport.blocked_forward))
     if number > _MANY_LASHINGS:
         findings.append(Finding("note", "many-lashings", f"{below.unit.name} would need {number} lashings over the top: use stronger ones"))
-    return [Lashing(below.unit.name, "over the top", "all", number, None, None, _spots(below, number), "49 CFR 393.106(d), 393.110: half the weight, number by length")]
+    return [
+        Lashing(
+            below.unit.name,
+            "over the top",
+            "all",
+            number,
+            None,
+            None,
+            _spots(below, number),
+            "49 CFR 393.106(d), 393.110: half the weight, number by length",
+        )
+    ]

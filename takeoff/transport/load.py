@@ -17,7 +17,7 @@ class LoadUnit:
 
     `size` is (length, width, height) in mm as it lies, None where it is not known; `centre` the centre of gravity from the low
     corner, None for the middle. `drop` counts deliveries, 0 the first to be unloaded. Nothing is put on a unit that does not
-    `carry`.
+    `carry`. A block of like pieces has `parts`, so many across and up as `grid` says; it stands for them while a plan is made.
     """
 
     name: str
@@ -30,6 +30,13 @@ class LoadUnit:
     carries: bool = True
     not_weighed: int = 0
     findings: tuple[Finding, ...] = ()
+    parts: tuple[LoadUnit, ...] = ()
+    grid: tuple[int, int] = (1, 1)
+
+    @property
+    def each_kg(self) -> float:
+        """Heavy mass of what rests on what is below: the unit's own, or that of one piece of a block."""
+        return self.parts[0].mass.heavy if self.parts else self.mass.heavy
 
     def on_deck(self, turned: bool) -> tuple[float, float, float]:
         """Length along the deck, width across it, height."""
@@ -74,9 +81,20 @@ class Placed:
     def as_record(self) -> dict[str, Any]:
         length, width, height = self.unit.on_deck(self.turned) if self.unit.size else (None, None, None)
         return {
-            "name": self.unit.name, "kg": self.unit.mass.heavy, "x_mm": self.x, "y_mm": self.y, "layer": self.layer, "length_mm": length,
-            "width_mm": width, "height_mm": height, "kind": self.unit.kind, "phase": self.unit.phase, "mass_kg": self.unit.mass.as_record(),
-            "bottom_mm": self.z, "turned": self.turned, "on": list(self.on),
+            "name": self.unit.name,
+            "kg": self.unit.mass.heavy,
+            "x_mm": self.x,
+            "y_mm": self.y,
+            "layer": self.layer,
+            "length_mm": length,
+            "width_mm": width,
+            "height_mm": height,
+            "kind": self.unit.kind,
+            "phase": self.unit.phase,
+            "mass_kg": self.unit.mass.as_record(),
+            "bottom_mm": self.z,
+            "turned": self.turned,
+            "on": list(self.on),
             "centre_mm": None if self.centre is None else list(self.centre),
         }
 
@@ -95,8 +113,13 @@ class AxleLoad:
 
     def as_record(self) -> dict[str, Any]:
         return {
-            "name": self.name, "kg": self.kg, "light_kg": self.light_kg, "limit_kg": self.limit_kg, "share": self.share,
-            "worst_kg": self.worst_kg, "least_share": self.least_share,
+            "name": self.name,
+            "kg": self.kg,
+            "light_kg": self.light_kg,
+            "limit_kg": self.limit_kg,
+            "share": self.share,
+            "worst_kg": self.worst_kg,
+            "least_share": self.least_share,
             "utilisation": None if not self.limit_kg else self.worst_kg / self.limit_kg,
         }
 
@@ -116,8 +139,14 @@ class Lashing:
 
     def as_record(self) -> dict[str, Any]:
         return {
-            "piece": self.piece, "method": self.method, "direction": self.direction, "number": self.number, "friction": self.friction,
-            "angle_deg": self.angle_deg, "positions_mm": list(self.positions_mm), "rule": self.rule,
+            "piece": self.piece,
+            "method": self.method,
+            "direction": self.direction,
+            "number": self.number,
+            "friction": self.friction,
+            "angle_deg": self.angle_deg,
+            "positions_mm": list(self.positions_mm),
+            "rule": self.rule,
         }
 
 
@@ -168,14 +197,21 @@ class Load:
         """As in the JSON (design of `vehicles[]`), with the stages of unloading and the payload diagram."""
         deck = self.vehicle.deck
         return {
-            "name": self.name, "kind": self.vehicle.kind, "vehicle": self.vehicle.name, "pieces": [p.as_record() for p in self.pieces],
-            "payload_kg": self.payload_kg, "payload_limit_kg": self.vehicle.payload_kg, "dunnage_kg": self.dunnage_kg,
+            "name": self.name,
+            "kind": self.vehicle.kind,
+            "vehicle": self.vehicle.name,
+            "pieces": [p.as_record() for p in self.pieces],
+            "payload_kg": self.payload_kg,
+            "payload_limit_kg": self.vehicle.payload_kg,
+            "dunnage_kg": self.dunnage_kg,
             "centre_mm": None if self.centre_mm is None else list(self.centre_mm),
             "deck_mm": None if deck is None else [deck[0], deck[1], deck[2] if deck[2] < 1e6 else None],
-            "axles": [a.as_record() for a in self.axles], "lashings": [x.as_record() for x in self.lashings],
+            "axles": [a.as_record() for a in self.axles],
+            "lashings": [x.as_record() for x in self.lashings],
             "over_size": [o.as_record() for o in self.over_size],
             "payload_curve": [{"centre_mm": x, "payload_kg": kg, "governs": why} for x, kg, why in self.curve],
-            "stages": list(self.stages), "findings": [f.as_record() for f in self.findings],
+            "stages": list(self.stages),
+            "findings": [f.as_record() for f in self.findings],
         }
 
 
@@ -209,7 +245,11 @@ class Plan:
     def as_record(self, cautions: Sequence[str] = ()) -> dict[str, Any]:
         """As `loads --json` prints it."""
         return {
-            "vehicles": [load.as_record() for load in self.loads], "not_loaded": [n.as_record() for n in self.not_loaded],
-            "vehicle_count_bound": self.bound, "proven": self.proven, "gap": self.gap,
-            "findings": [f.as_record() for f in self.findings], "cautions": list(cautions),
+            "vehicles": [load.as_record() for load in self.loads],
+            "not_loaded": [n.as_record() for n in self.not_loaded],
+            "vehicle_count_bound": self.bound,
+            "proven": self.proven,
+            "gap": self.gap,
+            "findings": [f.as_record() for f in self.findings],
+            "cautions": list(cautions),
         }

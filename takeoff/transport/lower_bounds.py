@@ -46,17 +46,18 @@ def boxes_needed(boxes: Sequence[tuple[Sequence[tuple[int, int]], int]], room: t
     """
     if not boxes:
         return 0
+    # A hair off, so that the noise of a sum of floats never adds a bin.
+    return max(1, *(_ceil(sum(values) - 1e-6) for values in box_shares(boxes, room)))
+
+
+def box_shares(boxes: Sequence[tuple[Sequence[tuple[int, int]], int]], room: tuple[int, int, int]) -> list[list[float]]:
+    """For each choice of dual feasible functions, the share of one bin that each box takes up at the least."""
     functions = [_functions(side) for side in room]
     tables: list[list[dict[int, float]]] = []
     for axis in range(3):
         values = {ways[axis] for faces, _ in boxes for ways in faces} if axis < 2 else {height for _, height in boxes}
         tables.append([{value: f(value) for value in values} for f in functions[axis]])
-    best = 1
-    for along, across, up in product(*tables):
-        total = sum(min(along[a] * across[b] for a, b in faces) * up[height] for faces, height in boxes)
-        # A hair off, so that the noise of a sum of floats never adds a bin.
-        best = max(best, _ceil(total - 1e-6))
-    return best
+    return [[min(along[a] * across[b] for a, b in faces) * up[height] for faces, height in boxes] for along, across, up in product(*tables)]
 
 
 def _functions(side: int) -> list[_Dual]:

@@ -1,8 +1,8 @@
 """Boxes onto one deck: no overlap, turned by 90° where that helps, in layers, nothing on a lighter piece or on a later drop.
 
 A piece stands on the deck, wholly on one piece, or on several whose tops are level, side by side or end to end. Every flat top
-is a surface like the deck, kept as its largest free rectangles; a piece takes a corner of one. A fixed list of orders and rules is tried, then orders shaken with a
-fixed seed: counted work, so the same units give the same places.
+is a surface like the deck, kept as its largest free rectangles; a piece takes a corner of one. A fixed list of orders and
+rules is tried, then orders shaken with a fixed seed: counted work, so the same units give the same places.
 """
 
 from __future__ import annotations
@@ -41,7 +41,9 @@ class Deck:
         """Whether the unit fits the empty deck this way round."""
         length, width, height = unit.on_deck(turned)
         return (
-            length <= self.length + self.overhang + HAIR and width <= self.width + HAIR and height + self.dunnage <= self.height + HAIR
+            length <= self.length + self.overhang + HAIR
+            and width <= self.width + HAIR
+            and height + self.dunnage <= self.height + HAIR
             and length * (1 - BEARER) <= self.length + HAIR
         )
 
@@ -73,7 +75,8 @@ class _Surface:
             if y2 < d - HAIR:
                 cut.append((a, y2, c, d))
         kept += [
-            rect for k, rect in enumerate(cut)
+            rect
+            for k, rect in enumerate(cut)
             if not any(_within(rect, other) for other in kept)
             and not any(_within(rect, other) and (j < k or not _within(other, rect)) for j, other in enumerate(cut) if j != k)
         ]
@@ -84,16 +87,18 @@ def _within(inner: Rect, outer: Rect) -> bool:
     return outer[0] <= inner[0] + HAIR and outer[1] <= inner[1] + HAIR and outer[2] >= inner[2] - HAIR and outer[3] >= inner[3] - HAIR
 
 
-def place(units: Sequence[LoadUnit], deck: Deck, tries: int) -> list[list[Placed]]:
-    """Ways to place all units: none, or one or two; at most `tries` attempts are made. Units have sizes."""
+def place(units: Sequence[LoadUnit], deck: Deck, tries: int) -> tuple[list[list[Placed]], int]:
+    """Ways to place all units: none, or one or two; and how many attempts that took, at most `tries`. Units have sizes."""
     found: list[list[Placed]] = []
-    for number, (order, low_first) in enumerate(_orders(units)):
-        if number >= tries or len(found) >= 2:
+    made = 0
+    for order, low_first in _orders(units):
+        if made >= tries or len(found) >= 2:
             break
+        made += 1
         placed = _attempt(order, deck, low_first)
         if placed is not None:
             found.append(placed)
-    return found
+    return found, made
 
 
 def _orders(units: Sequence[LoadUnit]) -> Iterator[tuple[list[LoadUnit], bool]]:
@@ -112,7 +117,7 @@ def _orders(units: Sequence[LoadUnit]) -> Iterator[tuple[list[LoadUnit], bool]]:
     shake = random.Random(11)
     for k in range(10_000):
         weight = {id(u): sizes[id(u)][0] * sizes[id(u)][1] * (0.6 + 0.8 * shake.random()) for u in units}
-        yield sorted(units, key=lambda u: (-weight[id(u)], u.name)), k % 2 == 0  # noqa: B023 - used at once
+        yield sorted(units, key=lambda u: (-weight[id(u)], u.name)), k % 2 == 0
 
 
 def _attempt(order: Sequence[LoadUnit], deck: Deck, low_first: bool) -> list[Placed] | None:
@@ -127,7 +132,10 @@ def _attempt(order: Sequence[LoadUnit], deck: Deck, low_first: bool) -> list[Pla
             ways = ways[:1]
         for number, surface in enumerate(surfaces):
             bottom = surface.level + deck.dunnage
-            if bottom + ways[0][3] > deck.height + HAIR or unit.mass.heavy > surface.mass + HAIR or unit.drop > surface.drop:
+            if bottom + ways[0][3] > deck.height + HAIR or unit.each_kg > surface.mass + HAIR or unit.drop > surface.drop:
+                continue
+            # Each piece of a block needs its own rest, which several level tops do not promise.
+            if unit.parts and len(surface.on) > 1:
                 continue
             floor = not surface.on
             for a, b, c, d in surface.free:
@@ -138,12 +146,13 @@ def _attempt(order: Sequence[LoadUnit], deck: Deck, low_first: bool) -> list[Pla
                         continue
                     rest = min(c - a - length, d - b - width)
                     rank = (
-                        (surface.level, a + length if floor else rest, b, number) if low_first
+                        (surface.level, a + length if floor else rest, b, number)
+                        if low_first
                         else (1.0 if floor else 0.0, a + length if floor else rest, b, number)
                     )
                     if best is not None and rank >= best[0]:
                         continue
-                    if len(surface.on) > 1 and not covered((a, b, a + length, b + width), [boxes[k] for k in surface.on]):
+                    if len(surface.on) > 1 and not _borne((a, b, a + length, b + width), [boxes[k] for k in surface.on]):
                         continue
                     best = (rank, surface, a, b, turned)
         if best is None:
@@ -162,7 +171,7 @@ def _attempt(order: Sequence[LoadUnit], deck: Deck, low_first: bool) -> list[Pla
         boxes.append(box)
         tops.append(top)
         if deck.layers and unit.carries:
-            surfaces.append(_Surface([box], top, surface.layer + 1, unit.mass.heavy, unit.drop, (len(placed) - 1,)))
+            surfaces.append(_Surface([box], top, surface.layer + 1, unit.each_kg, unit.drop, (len(placed) - 1,)))
             for across in (True, False):
                 made = _platform(placed, boxes, tops, across)
                 if made is not None:
@@ -173,6 +182,12 @@ def _attempt(order: Sequence[LoadUnit], deck: Deck, low_first: bool) -> list[Pla
 def _overlap(one: Rect, two: Rect) -> float:
     """The area two rectangles share, mm²."""
     return max(0.0, min(one[2], two[2]) - max(one[0], two[0])) * max(0.0, min(one[3], two[3]) - max(one[1], two[1]))
+
+
+def _borne(box: Rect, below: Sequence[Rect]) -> bool:
+    """Whether the pieces below that a box meets carry it: one wholly, several enough of it."""
+    met = [other for other in below if _overlap(box, other) > HAIR]
+    return _within(box, met[0]) if len(met) == 1 else len(met) > 1 and covered(box, met)
 
 
 def covered(box: Rect, below: Sequence[Rect]) -> bool:
@@ -215,8 +230,12 @@ def _platform(placed: Sequence[Placed], boxes: Sequence[Rect], tops: Sequence[fl
     rect = (low, start, high, end) if across else (start, low, end, high)
     level = max(tops[k] for k in chain)
     surface = _Surface(
-        [rect], level, 1 + max(placed[k].layer for k in chain), min(placed[k].unit.mass.heavy for k in chain),
-        min(placed[k].unit.drop for k in chain), tuple(sorted(chain)),
+        [rect],
+        level,
+        1 + max(placed[k].layer for k in chain),
+        min(placed[k].unit.each_kg for k in chain),
+        min(placed[k].unit.drop for k in chain),
+        tuple(sorted(chain)),
     )
     for k, box in enumerate(boxes):
         if tops[k] > level + HAIR:

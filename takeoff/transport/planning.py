@@ -14,23 +14,28 @@ import random
 from collections import Counter
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, replace
-from itertools import combinations_with_replacement
+from itertools import combinations_with_replacement, product
 
+from takeoff import progress
+from takeoff.transport import blocks
 from takeoff.transport.arranging import Arranged, arrange
 from takeoff.transport.binpack import Clock, pack
+from takeoff.transport.blocks import gathered
 from takeoff.transport.load import LoadUnit, NotLoaded, Placed
-from takeoff.transport.lower_bounds import boxes_needed
+from takeoff.transport.lower_bounds import box_shares, boxes_needed
 from takeoff.transport.placing import HAIR, Deck, place
 from takeoff.transport.vehicles import Vehicle
 
 #: orders tried for one set of units on one deck: while units are dealt out, and for a single unit or a last try
 _TRIES, _MANY_TRIES = 6, 30
-#: placements attempted in all for one fleet, and for levelling the loads
-_FLEET_WORK, _LEVEL_WORK = 1600, 200
+#: work (tens of pieces handled) for one fleet, and for levelling the loads
+_FLEET_WORK, _LEVEL_WORK = 7_000, 1_500
 #: mixes of kinds of vehicles looked at for one number of vehicles
 _MOST_MIXES = 24
 #: above this many units each goes to the first vehicle that takes it, without pushing others out
 _MANY_UNITS = 600
+#: ways of counting boxes that are asked before a placement is tried
+_WAYS = 24
 _GRAM = 1000.0
 
 
@@ -59,7 +64,28 @@ class Loader:
     def __init__(self, dunnage_mm: float, dunnage_kg: float, clock: Clock) -> None:
         self.dunnage_mm, self.dunnage_kg, self.clock = dunnage_mm, dunnage_kg, clock
         self.work = 0
-        self._known: dict[tuple[str, frozenset[tuple[object, int]]], bool] = {}
+        self._shares: dict[str, dict[int, tuple[float, ...]]] = {}
+        self._known: dict[tuple[str, tuple[int, ...]], bool] = {}
+        self._kinds: dict[object, int] = {}
+        self._kind_of: dict[int, int] = {}
+        self._asked = 0
+
+    def prepare(self, units: Sequence[LoadUnit], vehicles: Sequence[Vehicle]) -> None:
+        """Remember what share of each deck every unit takes at the least, in the ways of counting that bind most."""
+        for v in vehicles:
+            if v.deck is None:
+                continue
+            sized = [
+                u
+                for u in units
+                if u.size is not None and v.deck is not None and any(self.deck(v).takes(u, turned) for turned in (False, True))
+            ]
+            room = (math.ceil(v.deck[0] + v.rear_overhang_mm - HAIR), math.ceil(v.deck[1] - HAIR), math.ceil(v.deck[2] - HAIR))
+            ways = box_shares(_boxes(sized, room, self.dunnage_mm, flat=room[2] >= 10**6 or not v.layers), room) if sized else []
+            ways.sort(key=lambda values: -sum(values))
+            self._shares[v.name] = (
+                {id(u): tuple(values) for u, values in zip(sized, zip(*ways[:_WAYS], strict=True), strict=True)} if ways else {}
+            )
 
     def deck(self, vehicle: Vehicle) -> Deck:
         assert vehicle.deck is not None
@@ -73,10 +99,20 @@ class Loader:
         """Whether these units are known to go on the vehicle together."""
         if not self._may(units, vehicle):
             return False
-        key = (vehicle.name, frozenset(Counter((u.size, u.mass, u.drop, u.carries, u.centre) for u in units).items()))
+        self._asked += 1
+        self.work += self._asked % 16 == 0
+        key = (vehicle.name, tuple(sorted(self._kind(u) for u in units)))
         if key not in self._known or (tries > _TRIES and not self._known[key]):
-            self._known[key] = self.arranged(units, vehicle, tries) is not None
+            self._known[key] = self.arranged(units, vehicle, tries, quick=True) is not None
         return self._known[key]
+
+    def _kind(self, unit: LoadUnit) -> int:
+        """A number that like units share; they live as long as the plan is made."""
+        known = self._kind_of.get(id(unit))
+        if known is None:
+            kind = (unit.size, unit.mass, unit.drop, unit.carries, unit.centre)
+            known = self._kind_of[id(unit)] = self._kinds.setdefault(kind, len(self._kinds))
+        return known
 
     def _may(self, units: Sequence[LoadUnit], vehicle: Vehicle) -> bool:
         """Masses and volumes leave room: what is quickly told."""
@@ -85,14 +121,12 @@ class Loader:
             return False
         if vehicle.deck is None:
             return True
-        length, width, height = vehicle.deck
-        sized = [u.size for u in units if u.size is not None]
-        if height >= 1e6 or not vehicle.layers:
-            return sum(s[0] * s[1] for s in sized) <= (length + vehicle.rear_overhang_mm) * width + HAIR
-        return sum(s[0] * s[1] * (s[2] + self.dunnage_mm) for s in sized) <= (length + vehicle.rear_overhang_mm) * width * height + HAIR
+        shares = self._shares.get(vehicle.name, {})
+        known = [shares[id(u)] for u in units if id(u) in shares]
+        return all(sum(column) <= 1 + 1e-6 for column in zip(*known, strict=True))
 
-    def arranged(self, units: Sequence[LoadUnit], vehicle: Vehicle, tries: int = _TRIES) -> Arranged | None:
-        """The best arrangement found, None where none is. Units without size are loaded by mass only: the axles are then unknown."""
+    def arranged(self, units: Sequence[LoadUnit], vehicle: Vehicle, tries: int = _TRIES, *, quick: bool = False) -> Arranged | None:
+        """The best arrangement found, None where none is; the first that holds where it must be `quick`. Units without size are loaded by mass only: the axles are then unknown."""
         if not self._may(units, vehicle):
             return None
         sized = [u for u in units if u.size is not None]
@@ -103,17 +137,21 @@ class Loader:
         deck = self.deck(vehicle)
         judged = replace(vehicle, statics=None) if bare else vehicle
         best: Arranged | None = None
-        self.work += 1
-        for placed in place(sized, deck, tries):
-            found = arrange(placed, judged, deck, self.dunnage_kg)
+        ways, attempts = place(sized, deck, tries)
+        # One for every ten pieces handled, so that the limits mean much the same work for few pieces and for many.
+        self.work += 1 + attempts * len(sized) // 10
+        for placed in ways:
+            found = arrange(placed, judged, deck, self.dunnage_kg, quick=quick)
             if found is not None and (best is None or found.rank < best.rank):
                 best = found
-            if best is not None and best.rank[0] == 0:
+            if best is not None and (quick or best.rank[0] == 0):
                 break
         return None if best is None else replace(best, pieces=[*best.pieces, *without])
 
 
-def plan(units: Sequence[LoadUnit], vehicles: Sequence[Vehicle], *, dunnage_mm: float, dunnage_kg: float, apart: bool, seconds: float) -> Outcome:
+def plan(
+    units: Sequence[LoadUnit], vehicles: Sequence[Vehicle], *, dunnage_mm: float, dunnage_kg: float, apart: bool, seconds: float
+) -> Outcome:
     """All units to vehicles. `apart` keeps phases on vehicles of their own."""
     clock = Clock(seconds)
     loader = Loader(dunnage_mm, dunnage_kg, clock)
@@ -133,8 +171,11 @@ def plan(units: Sequence[LoadUnit], vehicles: Sequence[Vehicle], *, dunnage_mm: 
             continue
         share = clock.left() / (len(groups) - number)
         available = [v if v.count is None else replace(v, count=v.count - used[v.name]) for v in vehicles]
-        made, least = _group(group, [v for v in available if v.count != 0], loader, Clock(share), vehicles)
+        dealt_out = gathered(group, _least_room(vehicles), min(loader.room_kg(v) for v in vehicles), dunnage_mm)
+        loader.prepare(dealt_out, vehicles)
+        made, least = _group(dealt_out, group, [v for v in available if v.count != 0], loader, Clock(share), vehicles)
         bound += least
+        made = [_set_apart(f, dunnage_mm) for f in made]
         filled += made
         used.update(f.vehicle.name for f in made)
         loaded = {id(u) for f in made for u in f.units}
@@ -142,16 +183,34 @@ def plan(units: Sequence[LoadUnit], vehicles: Sequence[Vehicle], *, dunnage_mm: 
     return Outcome(filled, left, bound, clock.rang or loader.clock.rang)
 
 
+def _least_room(vehicles: Sequence[Vehicle]) -> tuple[float, float, float]:
+    """The smallest deck length, width and load height of the vehicles whose decks are known."""
+    decks = [v.deck for v in vehicles if v.deck is not None]
+    if not decks:
+        return 0.0, 0.0, 0.0
+    length, width, height = (min(d[k] for d in decks) for k in range(3))
+    return length, width, height if any(v.layers for v in vehicles) else 0.0
+
+
+def _set_apart(filled: Filled, dunnage_mm: float) -> Filled:
+    """The same with every block as its pieces."""
+    units = [part for u in filled.units for part in (u.parts or (u,))]
+    arranged = filled.arranged and replace(filled.arranged, pieces=blocks.apart(filled.arranged.pieces, dunnage_mm))
+    return Filled(filled.vehicle, units, arranged)
+
+
 def why_not(unit: LoadUnit, vehicles: Sequence[Vehicle], loader: Loader) -> str:
     """Why a unit fits no vehicle: what is wrong with the one that comes nearest to it in mass."""
     able = [v for v in vehicles if unit.mass.heavy <= loader.room_kg(v)]
     if not able:
         most = max(vehicles, key=lambda v: (loader.room_kg(v), v.name))
-        return f"heavier than any vehicle may carry: {math.ceil(unit.mass.heavy - 1e-9):g} kg against {math.floor(max(0.0, loader.room_kg(most))):g} kg on {most.name}"
+        carried = math.floor(max(0.0, loader.room_kg(most)))
+        return f"heavier than any vehicle may carry: {math.ceil(unit.mass.heavy - 1e-9):g} kg against {carried:g} kg on {most.name}"
     sized = [v for v in able if v.deck is not None and unit.size is not None]
     if sized and not any(loader.deck(v).takes(unit, turned) for v in sized for turned in (False, True)):
         most = max(sized, key=lambda v: (v.deck or (0.0, 0.0, 0.0), v.name))
-        assert most.deck is not None and unit.size is not None
+        assert most.deck is not None
+        assert unit.size is not None
         room = " x ".join(f"{side:g}" for side in most.deck if side < 1e6)
         size = " x ".join(f"{math.ceil(side - 1e-6):g}" for side in unit.size)
         return f"larger than any deck that may carry it: {size} mm against {room} mm on {most.name}"
@@ -159,29 +218,40 @@ def why_not(unit: LoadUnit, vehicles: Sequence[Vehicle], loader: Loader) -> str:
 
 
 def _group(
-    units: list[LoadUnit], vehicles: Sequence[Vehicle], loader: Loader, clock: Clock, fleet: Sequence[Vehicle],
+    units: list[LoadUnit],
+    single: list[LoadUnit],
+    vehicles: Sequence[Vehicle],
+    loader: Loader,
+    clock: Clock,
+    fleet: Sequence[Vehicle],
 ) -> tuple[list[Filled], int]:
-    """The plan of units that may share vehicles, and the least number of vehicles that any plan of them needs."""
+    """The plan of units that may share vehicles, and the least number of vehicles that any plan of them needs.
+
+    `single` are the same units with no blocks: the bound is reckoned with them.
+    """
     loader.clock = clock
-    least, dealt = _least(units, fleet, loader, clock)
+    progress.tell(f"placing {len(units)} units on vehicles")
+    least, dealt = _least(single, fleet, loader, clock)
     if not vehicles:
         return [], least
     there = sum(math.inf if v.count is None else v.count for v in vehicles)
     best: list[Filled] | None = None
     if dealt is not None and len(dealt) <= there and len(vehicles) == 1:
-        best = _as_filled(dealt, units, vehicles[0], loader)
+        best = _as_filled(dealt, single, vehicles[0], loader)
     # A first plan without a fixed number, so that there is one whatever happens; then one vehicle less, as long as that is found.
     greedy = _one_by_one(units, vehicles, loader)
     if best is None:
         best = greedy
         start = len(greedy) - 1 if _complete(greedy, units) else int(min(there, len(greedy)))
         for count in range(start, least - 1, -1):
+            progress.tell(f"placing on vehicles: {least} at least, {len(best)} at best, trying {count}")
             found = _with_count(units, vehicles, count, loader, clock)
             if found is None:
                 break
             best = found
     if _complete(greedy, units) and len(greedy) < len(best):
         best = greedy
+    progress.tell(f"placing on vehicles: {least} at least, {len(best)} at best, evening the loads")
     best = _cheaper(best, units, vehicles, loader, clock)
     _level(best, loader, clock)
     return best, least
@@ -203,7 +273,10 @@ def _least(units: Sequence[LoadUnit], fleet: Sequence[Vehicle], loader: Loader, 
     decked = [v for v in fleet if v.deck is not None]
     boxed = [u for u in units if u.size is not None]
     if boxed and len(decked) == len(fleet):
-        most = tuple(max(math.ceil(side - HAIR) for side in sides) for sides in zip(*((v.deck[0] + v.rear_overhang_mm, v.deck[1], v.deck[2]) for v in decked if v.deck), strict=True))
+        most = tuple(
+            max(math.ceil(side - HAIR) for side in sides)
+            for sides in zip(*((v.deck[0] + v.rear_overhang_mm, v.deck[1], v.deck[2]) for v in decked if v.deck), strict=True)
+        )
         least = max(least, _by_boxes(boxed, decked, (most[0], most[1], most[2]), loader))
     sizes: list[tuple[int, ...]] = [(m,) for m in masses]
     capacity: tuple[int, ...] = (largest,)
@@ -232,13 +305,21 @@ def _by_sum(total: int, rooms: Sequence[int]) -> int:
 
 
 def _by_boxes(units: Sequence[LoadUnit], fleet: Sequence[Vehicle], room: tuple[int, int, int], loader: Loader) -> int:
-    flat = room[2] >= 10**6 or not any(v.layers for v in fleet)
+    return boxes_needed(_boxes(units, room, loader.dunnage_mm, flat=room[2] >= 10**6 or not any(v.layers for v in fleet)), room)
+
+
+def _boxes(
+    units: Sequence[LoadUnit], room: tuple[int, int, int], dunnage_mm: float, *, flat: bool
+) -> list[tuple[list[tuple[int, int]], int]]:
+    """Units as boxes of whole mm, rounded down so that a bound stays one; where nothing may be put on anything, of full height."""
     boxes = []
     for u in units:
         length, width, height = (math.floor(side + HAIR) for side in u.on_deck(False))
-        ways = [(a, b) for a, b in ((length, width), (width, length)) if a <= room[0] and b <= room[1]] or [(min(length, room[0]), min(width, room[1]))]
-        boxes.append((ways, room[2] if flat else min(room[2], height + math.floor(loader.dunnage_mm))))
-    return boxes_needed(boxes, room)
+        ways = [(a, b) for a, b in ((length, width), (width, length)) if a <= room[0] and b <= room[1]] or [
+            (min(length, room[0]), min(width, room[1]))
+        ]
+        boxes.append((ways, room[2] if flat else min(room[2], height + math.floor(dunnage_mm))))
+    return boxes
 
 
 def _one_lane(units: Sequence[LoadUnit], fleet: Sequence[Vehicle], loader: Loader) -> tuple[list[int], int] | None:
@@ -273,26 +354,18 @@ def _as_filled(dealt: Sequence[Sequence[int]], units: Sequence[LoadUnit], vehicl
     return filled
 
 
-def _hardest_first(units: Sequence[LoadUnit], vehicles: Sequence[Vehicle], loader: Loader, *, by_volume: bool) -> list[LoadUnit]:
-    room = max(loader.room_kg(v) for v in vehicles)
-    deck = max((v.deck[0] * v.deck[1] for v in vehicles if v.deck), default=0.0)
-
-    def share(u: LoadUnit) -> float:
-        heavy = u.mass.heavy / room if room else 0.0
-        if u.size is None or not deck:
-            return heavy
-        area = u.size[0] * u.size[1] / deck
-        return area * (u.size[2] if by_volume else 1.0) if by_volume else max(heavy, area)
-
-    return sorted(units, key=lambda u: (-share(u), -u.mass.heavy, u.name))
-
-
 def _one_by_one(units: Sequence[LoadUnit], vehicles: Sequence[Vehicle], loader: Loader) -> list[Filled]:
     """Hardest first, each to the fullest open vehicle that takes it, else to a new one: the one of most payload left."""
     filled: list[Filled] = []
     used: Counter[str] = Counter()
-    for unit in _hardest_first(units, vehicles, loader, by_volume=False):
-        order = sorted(range(len(filled)), key=lambda k: (-math.fsum(u.mass.heavy for u in filled[k].units) / filled[k].vehicle.payload_kg, k))
+    hard = _hardness(units, vehicles, loader)[0]
+    for unit in sorted(units, key=lambda u: (-hard[id(u)], u.name)):
+        order = sorted(
+            range(len(filled)), key=lambda k: (-math.fsum(u.mass.heavy for u in filled[k].units) / filled[k].vehicle.payload_kg, k)
+        )
+        if loader.clock.over():
+            # The safety stop: from here on only the newest vehicle is asked.
+            order = [len(filled) - 1] if filled else []
         home = next((k for k in order if loader.fits([*filled[k].units, unit], filled[k].vehicle, 2)), None)
         if home is not None:
             filled[home].units.append(unit)
@@ -309,7 +382,11 @@ def _finished(filled: list[Filled], loader: Loader) -> list[Filled]:
     """The same with every load arranged with care."""
     for f in filled:
         if f.arranged is None:
-            f.arranged = loader.arranged(f.units, f.vehicle, _MANY_TRIES) or loader.arranged(f.units, f.vehicle, _TRIES) or loader.arranged(f.units, f.vehicle, 2)
+            f.arranged = (
+                loader.arranged(f.units, f.vehicle, _MANY_TRIES)
+                or loader.arranged(f.units, f.vehicle, _TRIES)
+                or loader.arranged(f.units, f.vehicle, 2)
+            )
             assert f.arranged is not None
     return filled
 
@@ -358,68 +435,103 @@ def _cheaper(best: list[Filled], units: Sequence[LoadUnit], vehicles: Sequence[V
 
 
 def _deal(units: Sequence[LoadUnit], mix: Sequence[Vehicle], loader: Loader, clock: Clock, work: int) -> list[Filled] | None:
-    """All units on exactly these vehicles; None where the work runs out first."""
+    """All units on exactly these vehicles; None where the work runs out first.
+
+    Hardest first to begin with; then, while something is left over, two vehicles are emptied in part and what came off them is
+    dealt out again with what was left, in an order shaken with a fixed seed. What leaves no more behind is kept.
+    """
     limit = loader.work + work
-    for attempt, (by_volume, even) in enumerate(((False, True), (True, True), (False, False), (True, False))):
-        found = _push(_hardest_first(units, mix, loader, by_volume=by_volume), mix, loader, clock, loader.work + (limit - loader.work) // (4 - attempt), even, attempt)
-        if found is not None:
-            return _finished(found, loader)
+    shake = random.Random(3)
+    hard = _hardness(units, mix, loader)
+    loads: list[list[LoadUnit]] = []
+    waiting: list[LoadUnit] = list(units)
+    several = len({u.drop for u in units}) > 1
+    for measure, even in product(range(len(hard)), (True, False)):
+        started: list[list[LoadUnit]] = [[] for _ in mix]
+        left = _insert(_ordered(units, hard[measure], False), started, mix, loader, even=even)
+        if not loads or _leftover(left, hard) < _leftover(waiting, hard):
+            loads, waiting = started, left
+        if not left:
+            return _finished([Filled(v, load, None) for v, load in zip(mix, loads, strict=True) if load], loader)
         if clock.over() or len(units) > _MANY_UNITS:
-            break
-    return None
-
-
-def _push(
-    order: list[LoadUnit], mix: Sequence[Vehicle], loader: Loader, clock: Clock, limit: int, even: bool, seed: int,
-) -> list[Filled] | None:
-    """Deal units out one by one; one that finds no place pushes a smaller one out of some vehicle and stands there itself."""
-    shake = random.Random(seed)
-    loads: list[list[LoadUnit]] = [[] for _ in mix]
-    mass = [0.0] * len(mix)
-    waiting = list(reversed(order))
-    pushed: Counter[int] = Counter()
-    rank = {id(u): k for k, u in enumerate(order)}
-    while waiting:
-        if clock.over() or loader.work > limit:
             return None
-        unit = waiting.pop()
-        fill = [m / v.payload_kg for m, v in zip(mass, mix, strict=True)]
-        places = sorted(range(len(mix)), key=lambda k: ((fill[k] if even else -fill[k]), k))
-        home = next((k for k in places if loader.fits([*loads[k], unit], mix[k])), None)
+    if len(mix) == 1:
+        return None
+    while waiting and loader.work < limit and not clock.over():
+        one, two = shake.sample(range(len(mix)), 2)
+        part = shake.choice((0.3, 0.6, 1.0))
+        tried = [list(load) for load in loads]
+        out = list(waiting)
+        for k in (one, two):
+            off = [u for u in tried[k] if shake.random() < part]
+            tried[k] = [u for u in tried[k] if not any(u is o for o in off)]
+            out += off
+        measure = shake.randrange(len(hard))
+        weight = {id(u): hard[measure][id(u)] * (0.75 + 0.5 * shake.random()) for u in out}
+        out = _ordered(out, weight, several and shake.random() < 0.3)
+        left = _insert(out, tried, mix, loader, even=shake.random() < 0.5, first=(one, two))
+        if _leftover(left, hard) <= _leftover(waiting, hard) * 1.02 + 1e-9:
+            loads, waiting = tried, left
+    if waiting:
+        return None
+    return _finished([Filled(v, load, None) for v, load in zip(mix, loads, strict=True) if load], loader)
+
+
+def _ordered(units: Sequence[LoadUnit], hard: dict[int, float], by_drop: bool) -> list[LoadUnit]:
+    """Hardest first; `by_drop` the last delivery before all others, since nothing may stand on what leaves earlier."""
+    return sorted(units, key=lambda u: (-u.drop if by_drop else 0, -hard[id(u)], u.name))
+
+
+def _hardness(units: Sequence[LoadUnit], mix: Sequence[Vehicle], loader: Loader) -> list[dict[int, float]]:
+    """How hard a unit is to place, measured in several ways: the larger share of mass and area, the volume, length, mass."""
+    room = max(loader.room_kg(v) for v in mix)
+    decks = [v.deck for v in mix if v.deck is not None]
+    mass = {id(u): u.mass.heavy / room if room else 0.0 for u in units}
+    if not decks:
+        return [mass]
+    length, width, height = (max(d[k] for d in decks) for k in range(3))
+    sides = {id(u): u.size or (0.0, 0.0, 0.0) for u in units}
+    area = {i: a * b / (length * width) for i, (a, b, _) in sides.items()}
+    volume = {i: area[i] * (c + loader.dunnage_mm) / height for i, (_, _, c) in sides.items()}
+    return [
+        {i: max(area[i], mass[i]) for i in mass},
+        {i: max(volume[i], mass[i]) for i in mass},
+        {i: sides[i][0] / length + area[i] for i in mass},
+        mass,
+    ]
+
+
+def _leftover(units: Sequence[LoadUnit], hard: Sequence[dict[int, float]]) -> float:
+    return math.fsum(hard[0][id(u)] + hard[min(1, len(hard) - 1)][id(u)] for u in units)
+
+
+def _insert(
+    order: Sequence[LoadUnit],
+    loads: list[list[LoadUnit]],
+    mix: Sequence[Vehicle],
+    loader: Loader,
+    *,
+    even: bool,
+    first: Sequence[int] = (),
+) -> list[LoadUnit]:
+    """Put units on vehicles one by one, in place; returns those that found no place. Like units fail only once."""
+    left: list[LoadUnit] = []
+    mass = [math.fsum(u.mass.heavy for u in load) for load in loads]
+    failed: set[object] = set()
+    for unit in order:
+        kind = (unit.size, unit.mass.heavy, unit.drop, unit.carries, unit.centre)
+        home = None
+        if kind not in failed:
+            fill = [m / v.payload_kg for m, v in zip(mass, mix, strict=True)]
+            places = sorted(range(len(mix)), key=lambda k: (k not in first, fill[k] if even else -fill[k], k))
+            home = next((k for k in places if loader.fits([*loads[k], unit], mix[k], 4)), None)
         if home is None:
-            found = _push_out(unit, loads, mix, places, loader, pushed, rank, shake, limit)
-            if found is None:
-                return None
-            home, out = found
-            loads[home].remove(out)
-            mass[home] -= out.mass.heavy
-            pushed[id(out)] += 1
-            waiting.append(out)
-        loads[home].append(unit)
-        mass[home] += unit.mass.heavy
-    return [Filled(v, load, None) for v, load in zip(mix, loads, strict=True) if load]
-
-
-def _push_out(
-    unit: LoadUnit, loads: Sequence[list[LoadUnit]], mix: Sequence[Vehicle], places: Sequence[int], loader: Loader, pushed: Counter[int],
-    rank: dict[int, int], shake: random.Random, limit: int,
-) -> tuple[int, LoadUnit] | None:
-    """A vehicle, and the unit to push out of it so that `unit` fits: easy units and those pushed least come first."""
-    options = []
-    for k in places:
-        kinds: dict[object, LoadUnit] = {}
-        for other in loads[k]:
-            kinds.setdefault((other.size, other.mass), other)
-        for other in kinds.values():
-            if (other.size, other.mass) != (unit.size, unit.mass):
-                options.append((pushed[id(other)] * 3 + shake.random() - 2.0 * (rank[id(other)] > rank[id(unit)]) - rank[id(other)] / len(rank), k, other))
-    options.sort(key=lambda o: (o[0], o[1], o[2].name))
-    for _, k, other in options[:60]:
-        if loader.work > limit:
-            return None
-        if loader.fits([u for u in loads[k] if u is not other] + [unit], mix[k]):
-            return k, other
-    return None
+            failed.add(kind)
+            left.append(unit)
+        else:
+            loads[home].append(unit)
+            mass[home] += unit.mass.heavy
+    return left
 
 
 def _level(filled: list[Filled], loader: Loader, clock: Clock) -> None:
@@ -430,8 +542,12 @@ def _level(filled: list[Filled], loader: Loader, clock: Clock) -> None:
     stuck: set[tuple[int, int]] = set()
     while not clock.over() and loader.work < limit:
         share = [math.fsum(u.mass.heavy for u in f.units) / f.vehicle.payload_kg for f in filled]
-        pairs = [(a, b) for a in sorted(range(len(filled)), key=lambda k: -share[k]) for b in sorted(range(len(filled)), key=lambda k: share[k])
-                 if share[a] - share[b] > 0.01 and (a, b) not in stuck]
+        pairs = [
+            (a, b)
+            for a in sorted(range(len(filled)), key=lambda k: -share[k])
+            for b in sorted(range(len(filled)), key=lambda k: share[k])
+            if share[a] - share[b] > 0.01 and (a, b) not in stuck
+        ]
         if not pairs:
             return
         a, b = pairs[0]
@@ -459,7 +575,11 @@ def _even_out(full: Filled, light: Filled, gap: float, loader: Loader, limit: in
             continue
         first = loader.arranged(one, full.vehicle)
         second = loader.arranged(two, light.vehicle) if first is not None else None
-        if first is None or second is None or (full.arranged and light.arranged and first.rank[0] + second.rank[0] > full.arranged.rank[0] + light.arranged.rank[0]):
+        if (
+            first is None
+            or second is None
+            or (full.arranged and light.arranged and first.rank[0] + second.rank[0] > full.arranged.rank[0] + light.arranged.rank[0])
+        ):
             continue
         full.units, full.arranged, light.units, light.arranged = one, first, two, second
         return True
@@ -468,7 +588,15 @@ def _even_out(full: Filled, light: Filled, gap: float, loader: Loader, limit: in
 
 def names_in_order(filled: Sequence[Filled]) -> Iterator[tuple[str, Filled]]:
     """Each vehicle with a name of its own, by the earliest delivery it carries, then by kind."""
-    order = sorted(filled, key=lambda f: (min(u.drop for u in f.units), f.vehicle.name, -math.fsum(u.mass.heavy for u in f.units), min(u.name for u in f.units)))
+    order = sorted(
+        filled,
+        key=lambda f: (
+            min(u.drop for u in f.units),
+            f.vehicle.name,
+            -math.fsum(u.mass.heavy for u in f.units),
+            min(u.name for u in f.units),
+        ),
+    )
     total = Counter(f.vehicle.name for f in order)
     seen: Counter[str] = Counter()
     for f in order:

@@ -40,7 +40,9 @@ def top_over_effect_kN(mu: float, tension_kN: float, angle_deg: float) -> float:
     return 2 * mu * tension_kN * math.sin(math.radians(angle_deg))
 
 
-def top_over_tilting(mass_kg: float, c: float, across_mm: float, up_mm: float, width_mm: float, tension_kN: float, angle_deg: float, factor: float) -> float:
+def top_over_tilting(
+    mass_kg: float, c: float, across_mm: float, up_mm: float, width_mm: float, tension_kN: float, angle_deg: float, factor: float
+) -> float:
     """Lashings over the top against tilting of one row: `across_mm` from the centre of gravity to the edge, `up_mm` its height."""
     weight = mass_kg * GRAVITY / 1000.0
     return max(0.0, factor * weight * (c * up_mm - across_mm) / (width_mm * tension_kN * math.sin(math.radians(angle_deg))))
@@ -67,7 +69,11 @@ def direct_kN(mass_kg: float, c: float, mu: float, angle_deg: float, aside_deg: 
 
 
 def direct_sliding_holds(
-    mass_kg: float, c: float, mu: float, lashings: Sequence[tuple[float, float, float]], share: float = 0.75,
+    mass_kg: float,
+    c: float,
+    mu: float,
+    lashings: Sequence[tuple[float, float, float]],
+    share: float = 0.75,
 ) -> bool:
     """Vector form: each lashing as (force kN, its part in the direction opposed to motion, its part downward), parts of 1."""
     weight = mass_kg * GRAVITY / 1000.0
@@ -76,7 +82,11 @@ def direct_sliding_holds(
 
 
 def direct_tilting_holds(
-    mass_kg: float, c: float, across_mm: float, up_mm: float, lashings: Sequence[tuple[float, float, float, float, float]],
+    mass_kg: float,
+    c: float,
+    across_mm: float,
+    up_mm: float,
+    lashings: Sequence[tuple[float, float, float, float, float]],
 ) -> bool:
     """Moments about the tilting edge: each lashing as (force kN, downward part, its lever mm, opposing part, its height mm)."""
     weight = mass_kg * GRAVITY / 1000.0
@@ -100,8 +110,14 @@ class Held:
 
 
 def lashings_over(
-    mass_kg: float, mu: float, stf_kN: float, lc_kN: float, angle_deg: float, directions: Sequence[tuple[str, float, float]],
-    tilting: Sequence[tuple[str, float, float, float, float, float]] = (), least: int = 2,
+    mass_kg: float,
+    mu: float,
+    stf_kN: float,
+    lc_kN: float,
+    angle_deg: float,
+    directions: Sequence[tuple[str, float, float]],
+    tilting: Sequence[tuple[str, float, float, float, float, float]] = (),
+    least: int = 2,
 ) -> Held:
     """The most lashings over the top that any direction asks for, and at least `least` (2 a piece that stands alone).
 

@@ -39,8 +39,12 @@ class _List:
     def __init__(self, members: pd.DataFrame, sections: Sequence[Section], places: dict[int, Place | str]) -> None:
         names = ("mark", "phase", "bundle", "status", "reason", "row", "quantity", "section_id", *_SIZES)
         self.columns: dict[str, list[Any]] = {name: members[name].tolist() for name in names}
-        self.mass = [Bounds(a, b, c) if a == a else None for a, b, c in zip(  # noqa: PLR0124 - NaN: not weighed
-            *(members[f"each_{word}_kg"].tolist() for word in ("light", "nominal", "heavy")), strict=True)]
+        self.mass = [
+            None if math.isnan(a) else Bounds(a, b, c)
+            for a, b, c in zip(
+                *(members[f"each_{word}_kg"].tolist() for word in ("light", "nominal", "heavy")), strict=True
+            )
+        ]
         self.sections = sections
         self.places = places
 
@@ -78,7 +82,10 @@ class _List:
 
 
 def units_of(
-    members: pd.DataFrame, sections: Sequence[Section], job: Job, places: dict[int, Place | str] | None = None,
+    members: pd.DataFrame,
+    sections: Sequence[Section],
+    job: Job,
+    places: dict[int, Place | str] | None = None,
 ) -> tuple[list[LoadUnit], list[NotLoaded]]:
     """Units in the list's order, and what cannot be loaded because it was not weighed. `members` is a weighed frame.
 
@@ -179,12 +186,19 @@ def _singles(i: int, data: _List, drops: dict[str | None, int], seen: Counter[st
         if len(made) > MOST_UNITS:
             from takeoff.errors import InputError
 
-            raise InputError(f"{name} alone is {quantity} pieces to load one by one", right="[transport] max_bundle_kg, so that loose pieces are bundled")
+            raise InputError(
+                f"{name} alone is {quantity} pieces to load one by one", right="[transport] max_bundle_kg, so that loose pieces are bundled"
+            )
     return made
 
 
 def _sizeless(name: str) -> Finding:
-    return Finding("note", "unit-size-unknown", f"{name} has no known size: it is loaded by mass only", right="its sizes, or the positions of its members")
+    return Finding(
+        "note",
+        "unit-size-unknown",
+        f"{name} has no known size: it is loaded by mass only",
+        right="its sizes, or the positions of its members",
+    )
 
 
 def _pick(plan: PickPlan, data: _List, drops: dict[str | None, int]) -> LoadUnit | None:
@@ -196,7 +210,9 @@ def _pick(plan: PickPlan, data: _List, drops: dict[str | None, int]) -> LoadUnit
         return _bundle(plan.name, weighed, data, drops, missing=missing)
     findings: list[Finding] = []
     if missing:
-        findings.append(Finding("note", "pick-incomplete", f"{plan.name} lacks {missing} rows that were not weighed: it is heavier than shown"))
+        findings.append(
+            Finding("note", "pick-incomplete", f"{plan.name} lacks {missing} rows that were not weighed: it is heavier than shown")
+        )
     mass = _sum(weighed, data)
     if plan.asked is not None and plan.asked.weighed_kg is not None:
         mass = Bounds(mass.light, min(mass.nominal, max(mass.heavy, plan.asked.weighed_kg)), max(mass.heavy, plan.asked.weighed_kg))
@@ -215,7 +231,11 @@ def _pick(plan: PickPlan, data: _List, drops: dict[str | None, int]) -> LoadUnit
             if y > x:
                 size, centre = (y, x, z), (offset[1], offset[0], offset[2])
             if found.at_least:
-                findings.append(Finding("note", "unit-size-at-least", f"the size of {plan.name} is the least it can be: some piece's reach is not known"))
+                findings.append(
+                    Finding(
+                        "note", "unit-size-at-least", f"the size of {plan.name} is the least it can be: some piece's reach is not known"
+                    )
+                )
     if size is None:
         findings.append(_sizeless(plan.name))
     return LoadUnit(plan.name, "pick", mass, size, centre, phase, drop, carries=False, not_weighed=missing, findings=tuple(findings))

@@ -16,8 +16,14 @@ from takeoff.transport.rules import rule
 
 _RIGID = ("wheelbase_mm", "deck_front_mm", "front_empty_kg", "rear_empty_kg")
 _SEMITRAILER = ("kingpin_to_axles_mm", "deck_ahead_of_kingpin_mm", "kingpin_empty_kg", "axles_empty_kg")
-_LIMITS = {"front": "front_limit_kg", "rear": "rear_limit_kg", "kingpin": "kingpin_limit_kg", "trailer": "axles_limit_kg",
-           "steer": "tractor.front_limit_kg", "drive": "tractor.drive_limit_kg"}
+_LIMITS = {
+    "front": "front_limit_kg",
+    "rear": "rear_limit_kg",
+    "kingpin": "kingpin_limit_kg",
+    "trailer": "axles_limit_kg",
+    "steer": "tractor.front_limit_kg",
+    "drive": "tractor.drive_limit_kg",
+}
 
 
 @dataclass(frozen=True, slots=True)
@@ -46,11 +52,15 @@ class Vehicle:
 def vehicles_of(job: Job) -> list[Vehicle]:
     """The job's vehicles in its order. Raises JobError on an empty fleet, a name twice, or figures that contradict each other."""
     if not any(part.count != 0 for part in job.vehicles):
-        raise JobError("the job file names no vehicle to load", file=job.path, right="[[vehicles]] with a name and payload_kg, and their count")
+        raise JobError(
+            "the job file names no vehicle to load", file=job.path, right="[[vehicles]] with a name and payload_kg, and their count"
+        )
     names = [part.name for part in job.vehicles]
     for number, name in enumerate(names):
         if name in names[:number]:
-            raise JobError(f"vehicles.{number}.name: two vehicles have one name", file=job.path, read=name, right="each kind once, with its count")
+            raise JobError(
+                f"vehicles.{number}.name: two vehicles have one name", file=job.path, read=name, right="each kind once, with its count"
+            )
     return [_vehicle(part, number, job) for number, part in enumerate(job.vehicles) if part.count != 0]
 
 
@@ -66,29 +76,49 @@ def _vehicle(part: VehiclePart, number: int, job: Job) -> Vehicle:
         if room <= 0:
             _contradict(job.path, number, "gross_limit_kg", part.gross_limit_kg, f"the empty vehicle has {empty:g} kg")
         if payload is not None and payload > room * (1 + 1e-9):
-            findings.append(Finding(
-                "note", "vehicle-limits", f"{part.name}: its payload of {payload:g} kg would exceed its gross limit: {room:g} kg are used",
-                read=f"{payload:g}", right=f"at most {room:g}",
-            ))
+            findings.append(
+                Finding(
+                    "note",
+                    "vehicle-limits",
+                    f"{part.name}: its payload of {payload:g} kg would exceed its gross limit: {room:g} kg are used",
+                    read=f"{payload:g}",
+                    right=f"at most {room:g}",
+                )
+            )
         payload = room if payload is None else min(payload, room)
     elif part.gross_limit_kg is not None:
         findings.append(Finding("note", "vehicle-limits", f"{part.name}: its empty mass is not known, so its gross limit is not looked at"))
     if payload is None:
-        raise JobError(f"vehicles.{number}: what {part.name} may carry is not given", file=job.path, right="payload_kg, or gross_limit_kg and the empty axle loads")
+        raise JobError(
+            f"vehicles.{number}: what {part.name} may carry is not given",
+            file=job.path,
+            right="payload_kg, or gross_limit_kg and the empty axle loads",
+        )
     deck = _deck(part, job, findings)
     length = deck[0] + part.rear_overhang_mm if deck else 0.0
     most = most_payload_kg(statics, payload, length) if statics and deck else payload
     return Vehicle(
-        name=part.name, kind=part.kind, count=part.count, payload_kg=payload, most_kg=min(payload, most), empty_kg=empty,
-        gross_limit_kg=part.gross_limit_kg, deck=deck, layers=part.load_height_mm is not None or part.deck_height_mm is not None,
-        deck_height_mm=part.deck_height_mm, rear_overhang_mm=part.rear_overhang_mm, line_load_kg_per_m=part.deck_line_load_kg_per_m,
-        statics=statics if deck else None, part=part, findings=tuple(findings),
+        name=part.name,
+        kind=part.kind,
+        count=part.count,
+        payload_kg=payload,
+        most_kg=min(payload, most),
+        empty_kg=empty,
+        gross_limit_kg=part.gross_limit_kg,
+        deck=deck,
+        layers=part.load_height_mm is not None or part.deck_height_mm is not None,
+        deck_height_mm=part.deck_height_mm,
+        rear_overhang_mm=part.rear_overhang_mm,
+        line_load_kg_per_m=part.deck_line_load_kg_per_m,
+        statics=statics if deck else None,
+        part=part,
+        findings=tuple(findings),
     )
 
 
 def _empty(part: VehiclePart) -> float | None:
     if part.kind == "rigid":
-        known = (part.front_empty_kg, part.rear_empty_kg)
+        known: tuple[float | None, ...] = (part.front_empty_kg, part.rear_empty_kg)
     else:
         tractor = part.tractor
         known = (part.kingpin_empty_kg, part.axles_empty_kg) + ((tractor.front_empty_kg, tractor.drive_empty_kg) if tractor else ())
@@ -97,23 +127,42 @@ def _empty(part: VehiclePart) -> float | None:
 
 def _deck(part: VehiclePart, job: Job, findings: list[Finding]) -> tuple[float, float, float] | None:
     if part.deck_length_mm is None or part.deck_width_mm is None:
-        findings.append(Finding(
-            "note", "deck-unknown", f"{part.name} is loaded by mass only: no place on its deck, no axle load",
-            right="deck_length_mm and deck_width_mm",
-        ))
+        findings.append(
+            Finding(
+                "note",
+                "deck-unknown",
+                f"{part.name} is loaded by mass only: no place on its deck, no axle load",
+                right="deck_length_mm and deck_width_mm",
+            )
+        )
         return None
     height = part.load_height_mm
     if height is None:
         limit, source = rule("height", "96/53/EC", "any")
         if part.deck_height_mm is not None and part.deck_height_mm < limit:
             height = limit - part.deck_height_mm
-            findings.append(Finding("note", "vehicle-limits", f"{part.name}: load height taken as {height:g} mm, to {limit:g} mm above the road ({source})"))
+            findings.append(
+                Finding(
+                    "note", "vehicle-limits", f"{part.name}: load height taken as {height:g} mm, to {limit:g} mm above the road ({source})"
+                )
+            )
         else:
             height = 1e6
-            findings.append(Finding("note", "vehicle-limits", f"{part.name}: no load height is given: one layer, and heights are not looked at", right="load_height_mm"))
+            findings.append(
+                Finding(
+                    "note",
+                    "vehicle-limits",
+                    f"{part.name}: no load height is given: one layer, and heights are not looked at",
+                    right="load_height_mm",
+                )
+            )
     if part.deck_ahead_of_kingpin_mm is not None and part.kind == "semitrailer" and part.deck_ahead_of_kingpin_mm > part.deck_length_mm:
-        raise JobError(f"vehicle {part.name}: its deck ends ahead of the kingpin", file=job.path, read=f"{part.deck_ahead_of_kingpin_mm:g}",
-                       right="deck_ahead_of_kingpin_mm below deck_length_mm")
+        raise JobError(
+            f"vehicle {part.name}: its deck ends ahead of the kingpin",
+            file=job.path,
+            read=f"{part.deck_ahead_of_kingpin_mm:g}",
+            right="deck_ahead_of_kingpin_mm below deck_length_mm",
+        )
     return part.deck_length_mm, part.deck_width_mm, height
 
 
@@ -126,20 +175,49 @@ def _statics(part: VehiclePart, number: int, job: Job, findings: list[Finding]) 
     figures = {name: float(getattr(part, name)) for name in names}
     if part.kind == "rigid":
         made = rigid(
-            *figures.values(), part.front_limit_kg, part.rear_limit_kg, least_front=rule("least steering share", "", "rigid")[0],
+            figures["wheelbase_mm"],
+            figures["deck_front_mm"],
+            figures["front_empty_kg"],
+            figures["rear_empty_kg"],
+            part.front_limit_kg,
+            part.rear_limit_kg,
+            least_front=rule("least steering share", "", "rigid")[0],
             least_rear=rule("least driving share", "", "any")[0],
         )
     else:
         t = part.tractor
         if t is None:
-            findings.append(Finding("note", "axles-unknown", f"{part.name}: no tractor is given: only kingpin and trailer axles are known", right="tractor = {...}"))
+            findings.append(
+                Finding(
+                    "note",
+                    "axles-unknown",
+                    f"{part.name}: no tractor is given: only kingpin and trailer axles are known",
+                    right="tractor = {...}",
+                )
+            )
         elif t.fifth_wheel_ahead_mm > t.wheelbase_mm:
             _contradict(job.path, number, "tractor.fifth_wheel_ahead_mm", t.fifth_wheel_ahead_mm, f"the wheelbase is {t.wheelbase_mm:g} mm")
-        tractor = None if t is None else Tractor(
-            t.wheelbase_mm, t.fifth_wheel_ahead_mm, t.front_empty_kg, t.drive_empty_kg, t.front_limit_kg, t.drive_limit_kg,
+        tractor = (
+            None
+            if t is None
+            else Tractor(
+                t.wheelbase_mm,
+                t.fifth_wheel_ahead_mm,
+                t.front_empty_kg,
+                t.drive_empty_kg,
+                t.front_limit_kg,
+                t.drive_limit_kg,
+            )
         )
         made = semitrailer(
-            *figures.values(), part.kingpin_limit_kg, part.axles_limit_kg, tractor, least_drive=rule("least driving share", "", "any")[0],
+            figures["kingpin_to_axles_mm"],
+            figures["deck_ahead_of_kingpin_mm"],
+            figures["kingpin_empty_kg"],
+            figures["axles_empty_kg"],
+            part.kingpin_limit_kg,
+            part.axles_limit_kg,
+            tractor,
+            least_drive=rule("least driving share", "", "any")[0],
         )
     supports = tuple(_with_axles(s, part) for s in made.supports)
     for s in supports:
@@ -147,7 +225,9 @@ def _statics(part: VehiclePart, number: int, job: Job, findings: list[Finding]) 
             _contradict(job.path, number, _LIMITS[s.name], s.limit_kg, f"it carries {s.empty_kg:g} kg empty")
     unlimited = [s.name for s in supports if s.limit_kg is None]
     if unlimited:
-        findings.append(Finding("note", "axles-unknown", f"{part.name}: no limit is given for {', '.join(unlimited)}: its load is not checked"))
+        findings.append(
+            Finding("note", "axles-unknown", f"{part.name}: no limit is given for {', '.join(unlimited)}: its load is not checked")
+        )
     return Statics(supports, made.empty_kg, made.on_ground)
 
 

@@ -64,7 +64,7 @@ def to_page(result: Result, *, parts: Collection[str] = PARTS, pick: str | None 
         "heaviest": _heaviest(result, units) if whole else "",
         "likely": masses.likely(result, units),
         "likely_is_for": LIKELY_IS_FOR,
-        "pieces": rounding.number(result.totals.quantity, 0, gap=NO_BREAK),
+        "rows": _rows(result),
         "account": result.account.as_record(),
         "not_counted": added.not_counted(result),
         "cautions": [shown(c) for c in _cautions(result, parts)],
@@ -75,7 +75,7 @@ def to_page(result: Result, *, parts: Collection[str] = PARTS, pick: str | None 
         "picks": lifts.picks_table(result, units, picks) if "picks" in parts and picks else None,
         "pick_blocks": lifts.blocks(result, units, picks) if "picks" in parts else [],
         "load_blocks": loads.blocks(result, units) if "loads" in parts else [],
-        "load_words": loads.words(result, units) if "loads" in parts else [],
+        "load_words": loads.words(result) if "loads" in parts else [],
         "not_loaded": loads.not_loaded_table(result, units) if "loads" in parts else None,
         "run_blocks": movements.blocks(result, units) if "temperatures" in parts else [],
         "growth": movements.materials_table(result, units) if "temperatures" in parts else None,
@@ -94,6 +94,15 @@ def to_page(result: Result, *, parts: Collection[str] = PARTS, pick: str | None 
 def _group_keys(result: Result) -> list[str]:
     named = [key for key in ("pick", "phase") if result.members[key].notna().any()]
     return ["material", "assembly", *named]
+
+
+def _rows(result: Result) -> str:
+    """How many pieces, and in rows of which state."""
+    account, pieces = result.account, rounding.number(result.totals.quantity, 0, gap=NO_BREAK)
+    return (
+        f"{pieces} {'piece' if result.totals.quantity == 1 else 'pieces'} weighed: {counted(account.weighed, 'row')} as they stand, "
+        f"{counted(account.assumed, 'row')} assumed. {counted(account.not_weighed, 'row')} not weighed."
+    )
 
 
 def _heaviest(result: Result, units: Units) -> str:

@@ -186,7 +186,7 @@ def _views(result: Result, pick: Pick, units: Units) -> list[Figure]:
         return []
     outlines = _outlines(result, pick)
     size = [_length(v, units) for v in centre.size]
-    figures = []
+    figures: list[Figure] = []
     for name, first, second in (("Plan, from above", 0, 1), ("Elevation along y", 0, 2), ("Elevation along x", 1, 2)):
 
         def flat(p: tuple[float, float, float], a: int = first, b: int = second) -> Flat:
@@ -203,7 +203,7 @@ def _views(result: Result, pick: Pick, units: Units) -> list[Figure]:
             centre.at_least,
         )
         axes = ("xyz"[first], "xyz"[second])
-        said = f"{name} of {shown(pick.name)}: {axes[0]} {size[first]}, {axes[1]} {size[second]}, centre of gravity and lifting points to scale"
+        said = f"{name} of {shown(pick.name)}: {axes[0]} {size[first]}, {axes[1]} {size[second]}, with centre of gravity, points"
         legend = (
             ""
             if figures

@@ -11,21 +11,20 @@ from takeoff.reports.wording import counted, shown
 
 if TYPE_CHECKING:
     from takeoff.pipeline import Result
-    from takeoff.transport.load import AxleLoad, Load
+    from takeoff.transport.load import Load
 
 #: what a limit that is not given leaves open
 _OPEN = "unknown: no limit is given"
 
 
-def words(result: Result, units: Units) -> list[str]:
+def words(result: Result) -> list[str]:
     """How many vehicles, how many at least, and whether that is proven."""
     plan = result.loads
     if plan is None:
         return []
     several = counted(len(plan.loads), "vehicle")
-    proven = (
-        "no plan can do with fewer" if plan.proven else f"at least {plan.bound} are needed; whether {plan.bound} would do is not proven"
-    )
+    open_question = f"whether fewer would do is not proven; none can do with fewer than {plan.bound}"
+    proven = "no plan can do with fewer" if plan.proven else open_question
     said = [f"{several}: {proven}." if plan.loads else "Nothing is on a vehicle."]
     if plan.not_loaded:
         said.append(f"NOT LOADED: {counted(len(plan.not_loaded), 'piece')}, on no vehicle and in no figure below.")
@@ -108,10 +107,7 @@ def _block(number: int, load: Load, units: Units) -> Block:
     if load.lashings:
         block.tables.append(_lashings(number, load))
     for over in load.over_size:
-        value, most = (
-            (rounding.mass_with_unit(v, way, units, gap=NO_BREAK) if over.kind == "gross" else _long(v, units))
-            for v, way in ((over.value, "up"), (over.limit, "down"))
-        )  # type: ignore[arg-type]
+        value, most = _over(over.value, over.kind, "up", units), _over(over.limit, over.kind, "down", units)
         block.facts.append((f"OVER-SIZE, {over.kind}", f"{shown(over.name)}: {value}, over {most} ({shown(over.rule)})"))
     for f in load.findings:
         read = f" (read: {shown(f.read)})" if f.read else ""
@@ -131,6 +127,10 @@ def _size(mm: float | None, units: Units) -> Cell:
 
 def _long(mm: float, units: Units) -> str:
     return rounding.length_with_unit(round(mm, 1), units, NO_BREAK)
+
+
+def _over(value: float, kind: str, way: rounding.Way, units: Units) -> str:
+    return rounding.mass_with_unit(value, way, units, gap=NO_BREAK) if kind == "gross" else _long(value, units)
 
 
 def _deck(load: Load, units: Units) -> Figure | None:
@@ -185,7 +185,7 @@ def _axles(number: int, load: Load, units: Units) -> Table:
     most = max(max(a.kg, a.worst_kg, a.limit_kg or 0.0) for a in load.axles) * 1.05
     for a in load.axles:
         used = None if not a.limit_kg else max(a.worst_kg, a.kg) / a.limit_kg
-        word = _axle_word(a, used)
+        word = _axle_word(used)
         heavy = rounding.mass(a.kg, "up", units, gap=NO_BREAK)
         title = f"{a.name}: {heavy} {unit}, {word}"
         table.rows.append(
@@ -205,7 +205,7 @@ def _axles(number: int, load: Load, units: Units) -> Table:
     return table
 
 
-def _axle_word(axle: AxleLoad, used: float | None) -> str:
+def _axle_word(used: float | None) -> str:
     return _OPEN if used is None else "OVER" if used > 1 + 1e-9 else "within"
 
 

@@ -24,6 +24,10 @@ _NAME, _FIRST = 0, 1
 MOST_BARS = 16
 #: rows of the sheet a chart covers, and the height of such a row in pixels
 _ROW_PIXELS = 20
+_CRANE_HEADS = (
+    "Pick and crane", "At rest (% of capacity)", "Moving (% of capacity)", "Planning limit, at rest (%)", "Rating (%)", "Verdict",
+)
+_AXLE_HEADS = ("Vehicle and axle", "Loaded (% of limit)", "Worst while unloading (% of limit)", "Limit (%)", "Word")
 _FULL, _PALE, _OPEN = "#4F6B6A", "#B9C9C5", "#FFFFFF"
 
 
@@ -51,19 +55,11 @@ def write(book: Book, result: Result, groups: dict[str, GroupRows]) -> None:
     checks = [(shown(p.name), c) for p in result.picks for c in p.cranes if c.utilisation is not None]
     if checks:
         blocks.append(row)
-        lines = [
+        lines: list[tuple[str, float, float, float, str]] = [
             (f"{name}: {shown(c.name)}", 100 * (c.utilisation_static or 0.0), 100 * (c.utilisation or 0.0), 100 * c.limit.value, c.verdict)
             for name, c in checks[:MOST_BARS]
         ]
-        heads = (
-            "Pick and crane",
-            "At rest (% of capacity)",
-            "Moving (% of capacity)",
-            "Planning limit, at rest (%)",
-            "Rating (%)",
-            "Verdict",
-        )
-        row = _limits(sheet, "Crane utilisation, with the planning limit and the rating", heads, lines, row, rating=True)
+        row = _limits(sheet, "Crane utilisation, with the planning limit and the rating", _CRANE_HEADS, lines, row, rating=True)
     plan = result.loads
     axles = [(load, a) for load in (plan.loads if plan else ()) for a in load.axles if a.limit_kg]
     if axles:
@@ -79,8 +75,7 @@ def write(book: Book, result: Result, groups: dict[str, GroupRows]) -> None:
             for load, a in axles[:MOST_BARS]
             if a.limit_kg
         ]
-        heads = ("Vehicle and axle", "Loaded (% of limit)", "Worst while unloading (% of limit)", "Limit (%)", "Word")
-        row = _limits(sheet, "Axle loads, with their limits", heads, lines, row, rating=False)
+        row = _limits(sheet, "Axle loads, with their limits", _AXLE_HEADS, lines, row, rating=False)
     sheet.paginate(_COLUMNS, blocks, row)
 
 
@@ -194,6 +189,7 @@ def _dress(chart: Any, along: str | None) -> None:
             "num_font": font,
             "line": {"color": QUIET},
             "num_format": "#,##0",
+            **({"min": 0} if along is not None else {}),
             "label_position": "high" if along is not None else "low",
             "major_gridlines": {"visible": along is not None, "line": {"color": "#D5D9D6"}},
         }

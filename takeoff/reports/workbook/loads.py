@@ -31,7 +31,11 @@ def write(book: Book, result: Result) -> None:
     sheet.text(0, 0, f"{LOADS}: {book.title}", "title")
     sheet.text(1, 0, book.subtitle or None, "subtitle")
     row = 2
-    said = [vehicles_words(plan)[0].upper() + vehicles_words(plan)[1:] + ".", *(shown(f.message) for f in plan.findings), *map(shown, CAUTIONS)]
+    said = [
+        vehicles_words(plan)[0].upper() + vehicles_words(plan)[1:] + ".",
+        *(shown(f.message) for f in plan.findings),
+        *map(shown, CAUTIONS),
+    ]
     for text in said:
         sheet.long_text(row, (0, len(_WIDTHS) - 1), text, "quiet wrap")
         row += 1
@@ -72,8 +76,20 @@ def _load(sheet: Sheet, load: Load, row: int) -> int:
     length_style = "size us" if units == "us" else "size"
     sheet.heading(row, f"{shown(load.name)}: {counted(len(load.pieces), 'unit')}", len(_WIDTHS))
     row += 1
-    heads = ("Order", "Unit", f"Heavy ({unit})", f"From front ({size})", f"From left ({size})", "Layer", f"Length ({size})", f"Width ({size})",
-             f"Height ({size})", f"Centre from front ({size})", f"Light ({unit})", "Phase")
+    heads = (
+        "Order",
+        "Unit",
+        f"Heavy ({unit})",
+        f"From front ({size})",
+        f"From left ({size})",
+        "Layer",
+        f"Length ({size})",
+        f"Width ({size})",
+        f"Height ({size})",
+        f"Centre from front ({size})",
+        f"Light ({unit})",
+        "Phase",
+    )
     for column, text in enumerate(heads):
         sheet.text(row, column, text, "head" if column in (1, 11) else "head right")
     first = row + 1
@@ -103,18 +119,28 @@ def _load(sheet: Sheet, load: Load, row: int) -> int:
         row = _axles(sheet, load, row, masses, f"{letters(_CENTRE)}{first + 1}:{letters(_CENTRE)}{dunnage}", f"{letters(_KG)}{dunnage + 1}")
     for x in load.lashings:
         angle = "" if x.angle_deg is None else f" at {x.angle_deg:g}°"
-        spots = "; at " + ", ".join(rounding.length_with_unit(round(s), units) for s in x.positions_mm[:24]) + " from the front" if x.positions_mm else ""
+        spots = (
+            "; at " + ", ".join(rounding.length_with_unit(round(s), units) for s in x.positions_mm[:24]) + " from the front"
+            if x.positions_mm
+            else ""
+        )
         _line(sheet, row, "Securing", f"{shown(x.piece)}: {x.number} {x.method}{angle}, {x.direction}{spots}. {shown(x.rule)}")
         row += 1
     for over in load.over_size:
         value, limit = (
-            (rounding.mass_with_unit(over.value, "up", units), rounding.mass_with_unit(over.limit, "down", units)) if over.kind == "gross"
+            (rounding.mass_with_unit(over.value, "up", units), rounding.mass_with_unit(over.limit, "down", units))
+            if over.kind == "gross"
             else (rounding.length_with_unit(over.value, units), rounding.length_with_unit(over.limit, units))
         )
         _line(sheet, row, f"OVER-SIZE, {over.kind}", f"{shown(over.name)}: {value}, over {limit} ({shown(over.rule)})")
         row += 1
     for finding in load.findings:
-        _line(sheet, row, finding.level.capitalize(), shown(finding.message) + (f"; right would be: {shown(finding.right)}" if finding.right else ""))
+        _line(
+            sheet,
+            row,
+            finding.level.capitalize(),
+            shown(finding.message) + (f"; right would be: {shown(finding.right)}" if finding.right else ""),
+        )
         row += 1
     return row
 
@@ -129,9 +155,22 @@ def _axles(sheet: Sheet, load: Load, row: int, masses: str, centres: str, dunnag
     """Heavy axle loads as live formulas: empty + sum of mass x share at its place; shares are straight lines in the place."""
     units, unit = sheet.book.units, sheet.book.mass_unit
     statics, deck = load.vehicle.statics, load.vehicle.deck
-    assert statics is not None and deck is not None
-    heads = ("", "Axle or group", f"Heavy ({unit})", f"Empty ({unit})", f"Light ({unit})", "", f"Worst ({unit})", f"Limit ({unit})", "Worst of limit",
-             "Share at the front edge", "Share a length more", "")
+    assert statics is not None
+    assert deck is not None
+    heads = (
+        "",
+        "Axle or group",
+        f"Heavy ({unit})",
+        f"Empty ({unit})",
+        f"Light ({unit})",
+        "",
+        f"Worst ({unit})",
+        f"Limit ({unit})",
+        "Worst of limit",
+        "Share at the front edge",
+        "Share a length more",
+        "",
+    )
     for column, text in enumerate(heads):
         sheet.text(row, column, text, "head" if column == 1 else "head right")
     per = rounding.MM_PER_IN if units == "us" else 1.0

@@ -9,11 +9,10 @@ from typing import TYPE_CHECKING
 from takeoff.reports import rounding
 from takeoff.reports.wording import counted, shown
 from takeoff.reports.workbook.schedule import BLANKS, FIRST, WORDS, Plan
-from takeoff.reports.workbook.sheet import Book, Sheet, place
+from takeoff.reports.workbook.sheet import SCHEDULE, Book, Sheet, place
 
 if TYPE_CHECKING:
     from takeoff.pipeline import InputFile, Result
-from takeoff.reports.workbook.sheet import SCHEDULE
 
 _COLUMNS = 11
 _HEADINGS = 5
@@ -72,21 +71,18 @@ def _list(sheet: Sheet, result: Result, plan: Plan, of: tuple[InputFile, list[in
         )
     ):
         sheet.text(_HEADINGS, column, text, "head right" if column in (0, 3, 6, 7, 8, 9) else "head")
+    texts = {key: frame[key].tolist() for key in ("mark", "assembly", "section", "material", "status")}
+    figures = {key: frame[key].astype(float).tolist() for key in ("row", "quantity", "each_heavy_kg")}
     for number, i in enumerate(rows):
-        row = _HEADINGS + 1 + number
-        of_row = frame.loc[i]
-        there = FIRST + i
-        sheet.link(row, 0, place(SCHEDULE, there, plan.index("mark"), fixed=False), float(of_row["row"]))
-        sheet.text(row, 1, of_row["mark"], "cell wrap")
-        sheet.text(row, 2, of_row["assembly"] or BLANKS.get("assembly"), "cell wrap")
-        sheet.number(row, 3, of_row["quantity"], "whole")
-        sheet.texts(row, 4, (of_row["section"] or BLANKS.get("section"), of_row["material"] or BLANKS.get("material")), "cell wrap")
-        weighed = of_row["status"] != "not weighed"
-        figures = [
-            ("each_heavy_kg", rounding.in_mass_unit(of_row["each_heavy_kg"], units)),
-            *((f"total_{word}_kg", masses[word][number]) for word in WORDS),
-        ]
-        for offset, (key, value) in enumerate(figures):
+        row, there = _HEADINGS + 1 + number, FIRST + i
+        sheet.link(row, 0, place(SCHEDULE, there, plan.index("mark"), fixed=False), figures["row"][i])
+        for column, key in ((1, "mark"), (2, "assembly"), (4, "section"), (5, "material")):
+            sheet.text(row, column, texts[key][i] or BLANKS.get(key), "cell wrap")
+        sheet.number(row, 3, figures["quantity"][i], "whole")
+        weighed = texts["status"][i] != "not weighed"
+        values = [("each_heavy_kg", rounding.in_mass_unit(figures["each_heavy_kg"][i], units))]
+        values += [(f"total_{word}_kg", masses[word][number]) for word in WORDS]
+        for offset, (key, value) in enumerate(values):
             style = "mass heavy" if key == "total_heavy_kg" else "mass"
             if not weighed or value != value:  # noqa: PLR0124  (NaN is the only value that differs from itself)
                 sheet.text(row, 6 + offset, None, style)
@@ -94,7 +90,7 @@ def _list(sheet: Sheet, result: Result, plan: Plan, of: tuple[InputFile, list[in
                 sheet.formula(row, 6 + offset, f"={place(SCHEDULE, there, plan.index(key))}", value, style)
             else:
                 sheet.number(row, 6 + offset, value, style)
-        sheet.text(row, 10, of_row["status"], "cell" if weighed else "cell bold")
+        sheet.text(row, 10, texts["status"][i], "cell" if weighed else "cell bold")
     if not rows:
         sheet.texts(_HEADINGS + 1, 0, ("(none)", *[None] * 10), "cell")
     sheet.raw.freeze_panes(_HEADINGS + 1, 2)

@@ -12,6 +12,7 @@ from typing import TYPE_CHECKING
 
 from takeoff.reports import added, rounding
 from takeoff.reports.wording import ROUNDED, row_place, shown
+from takeoff.reports.workbook.block import Block
 from takeoff.reports.workbook.sheet import BASIS, SCHEDULE, Book, Sheet, cell_text, letters, place
 
 if TYPE_CHECKING:
@@ -246,89 +247,125 @@ def _top(sheet: Sheet, book: Book, result: Result, plan: Plan) -> None:
         sheet.text(_HEADINGS, index, column.heading, "head right" if column.figures else "head")
 
 
+#: rows that are laid out together: enough to be quick, few enough to be small
+_ROWS_AT_ONCE = 5_000
+
+
 def _rows(sheet: Sheet, result: Result, plan: Plan, basis_rows: Sequence[int]) -> None:
-    frame, units = result.members, sheet.book.units
-    us = units == "us"
-    notes = _notes(result)
-    values = {column.key: frame[column.key].tolist() for column in plan.columns if column.key in frame}
-    rows_at = [frame[key].tolist() for key in ("file", "sheet", "row")]
-    places = [row_place(*at) for at in zip(*rows_at, strict=True)]
-    linked = len(frame) <= _MOST_LINKED
-    basis_ids, statuses = frame["basis_id"].tolist(), frame["status"].tolist()
-    at = {column.key: index for index, column in enumerate(plan.columns)}
-    # A text that wraps makes its row taller, so those beyond the printed columns stay on one line.
-    printed = at["note"]
-    quantity_letter = letters(at["quantity"])
-    each_letters = {word: letters(at[f"each_{word}_kg"]) for word in WORDS}
-    parts = {
-        word: [letters(at[key]) for key in (f"bare_{word}_kg", *(f"add_{kind}_{word}_kg" for kind in added.kinds(frame))) if key in at]
-        for word in WORDS
-    }
-    bare, bare_heavy = (frame[f"bare_{word}_kg"].tolist() for word in ("nominal", "heavy"))
-    addition_numbers = added.basis_numbers(result) if "added" in at else []
-    for number in range(len(frame)):
-        row, weighed = FIRST + number, statuses[number] != "not weighed"
-        for index, column in enumerate(plan.columns):
-            key = column.key
-            if key == "basis":
-                if basis_ids[number] >= 0:
-                    there = place(BASIS, basis_rows[basis_ids[number]], 0, fixed=False)
-                    sheet.link(row, index, there, basis_ids[number] + 1)
-                else:
-                    sheet.text(row, index, None, "cell")
-            elif key == "note":
-                sheet.text(row, index, notes.get(number), "cell wrap")
-            elif key == "where":
-                to = input_link(sheet.book, *(values_at[number] for values_at in rows_at)) if linked else None
-                if to is None:
-                    sheet.text(row, index, places[number], "cell")
-                else:
-                    sheet.link_out(row, index, to, places[number])
-            elif key == "status":
-                sheet.text(row, index, statuses[number], _STATUS_STYLE[statuses[number]])
-            elif key in {"row", "quantity"}:
-                sheet.number(row, index, values[key][number], "whole")
-            elif key.startswith("each_"):
-                value = rounding.in_mass_unit(values[key][number], units) if weighed else None
-                style = "mass heavy" if key == "each_heavy_kg" else "mass"
-                pieces = parts[key.split("_")[1]]
-                if value is not None and pieces:
-                    sheet.formula(row, index, "=" + "+".join(f"{letter}{row + 1}" for letter in pieces), value, style)
-                else:
-                    sheet.number(row, index, value, style)
-            elif key.startswith(_PART_KEYS):
-                value = values[key][number]
-                sheet.number(row, index, rounding.in_mass_unit(value, units), "mass")
-            elif key == "apart":
-                _apart(sheet, row, index, (values["claimed_each_kg"][number], bare[number]), at)
-            elif key == "of_which":
-                value = rounding.in_mass_unit(values["each_heavy_kg"][number] - bare_heavy[number], units)
-                formula = f"={each_letters['heavy']}{row + 1}-{parts['heavy'][0]}{row + 1}"
-                if weighed:
-                    sheet.formula(row, index, formula, value, "mass")
-                else:
-                    sheet.text(row, index, None, "mass")
-            elif key == "added":
-                sheet.text(row, index, addition_numbers[number], "cell")
-            elif key.startswith("total_"):
-                _, word, _ = key.split("_")
-                style = "mass heavy" if word == "heavy" else "mass"
-                value = values[key][number]
-                if weighed and value == value:  # noqa: PLR0124  (not NaN)
-                    formula = f"={quantity_letter}{row + 1}*{each_letters[word]}{row + 1}"
-                    sheet.formula(row, index, formula, rounding.in_mass_unit(value, units), style)
-                else:
-                    sheet.text(row, index, None, style)
-            elif key in _SIZES:
-                value = values[key][number]
-                if us and key == "length_mm":
-                    sheet.text(row, index, rounding.feet_inches(value) if value == value else None, "cell right")  # noqa: PLR0124
-                else:
-                    sheet.number(row, index, value / rounding.MM_PER_IN if us else value, "size us" if us else "size")
+    frame = result.members
+    columns = _Columns(sheet.book, result, plan, basis_rows)
+    for start in range(0, len(frame), _ROWS_AT_ONCE):
+        part = slice(start, min(start + _ROWS_AT_ONCE, len(frame)))
+        with sheet.block(FIRST + start, part.stop - start) as block:
+            for index, column in enumerate(plan.columns):
+                columns.write(block, column.key, index, part)
+
+
+class _Columns:
+    """The cells of the schedule's rows, by column and part of the list."""
+
+    def __init__(self, book: Book, result: Result, plan: Plan, basis_rows: Sequence[int]) -> None:
+        self.book, self.frame = book, result.members
+        self.us = book.units == "us"
+        # The factor is the one every mass is printed by.
+        self.factor = rounding.in_mass_unit(1.0, book.units)
+        self.notes = _notes(result)
+        self.at = {column.key: index for index, column in enumerate(plan.columns)}
+        # A text that wraps makes its row taller, so those beyond the printed columns stay on one line.
+        self.printed = self.at["note"]
+        kinds = added.kinds(self.frame)
+        self.parts = {
+            word: [letters(self.at[key]) for key in (f"bare_{word}_kg", *(f"add_{kind}_{word}_kg" for kind in kinds)) if key in self.at]
+            for word in WORDS
+        }
+        self.addition_numbers = added.basis_numbers(result) if "added" in self.at else []
+        self.linked = len(self.frame) <= _MOST_LINKED
+        self.basis_links = [(place(BASIS, row, 0, fixed=False), number + 1) for number, row in enumerate(basis_rows)]
+        self._weighed = self.frame["status"].ne("not weighed").to_numpy()
+
+    def _letter(self, key: str) -> str:
+        return letters(self.at[key])
+
+    def _masses(self, key: str, part: slice) -> list[float]:
+        """A column of masses in the unit they are printed in."""
+        masses: list[float] = (self.frame[key].to_numpy(dtype=float)[part] * self.factor).tolist()
+        return masses
+
+    def _masses_weighed(self, key: str, part: slice) -> list[float | None]:
+        return [m if w else None for m, w in zip(self._masses(key, part), self._weighed[part].tolist(), strict=True)]
+
+    def write(self, block: Block, key: str, index: int, part: slice) -> None:
+        """The cells of one column."""
+        frame = self.frame
+        word = key.split("_")[1] if key.startswith(("each_", "total_")) else ""
+        style = "mass heavy" if word == "heavy" else "mass"
+        if key == "basis":
+            block.links([self.basis_links[i] if i >= 0 else None for i in frame["basis_id"].to_numpy()[part].tolist()])
+        elif key == "note":
+            block.texts([self.notes.get(number) for number in range(part.start, part.stop)], "cell wrap")
+        elif key == "where":
+            self._where(block, part)
+        elif key == "status":
+            statuses = frame["status"].to_numpy()[part].tolist()
+            block.texts(statuses, [_STATUS_STYLE[status] for status in statuses])
+        elif key in {"row", "quantity"}:
+            block.numbers(frame[key].to_numpy()[part].tolist(), "whole")
+        elif key.startswith("each_"):
+            values = self._masses_weighed(key, part)
+            if self.parts[word]:
+                block.formulas("=" + "+".join(f"{letter}#" for letter in self.parts[word]), values, style)
             else:
-                value = values[key][number]
-                text = value if isinstance(value, str) and value else BLANKS.get(key)
-                sheet.text(row, index, text, "cell wrap" if index < printed else "cell")
+                block.numbers(values, style)
+        elif key.startswith(_PART_KEYS):
+            block.numbers(self._masses(key, part), "mass")
+        elif key == "apart":
+            self._apart(block, part)
+        elif key == "of_which":
+            each, bare = (self._masses_weighed(name, part) for name in ("each_heavy_kg", "bare_heavy_kg"))
+            more = [None if e is None or b is None else e - b for e, b in zip(each, bare, strict=True)]
+            block.formulas(f"={self._letter('each_heavy_kg')}#-{self.parts['heavy'][0]}#", more, "mass")
+        elif key == "added":
+            block.texts(self.addition_numbers[part], "cell")
+        elif key.startswith("total_"):
+            formula = f"={self._letter('quantity')}#*{self._letter(f'each_{word}_kg')}#"
+            block.formulas(formula, self._masses_weighed(key, part), style)
+        elif key in _SIZES:
+            sizes: list[float] = frame[key].to_numpy(dtype=float)[part].tolist()
+            if self.us and key == "length_mm":
+                block.texts([rounding.feet_inches(v) if v == v else None for v in sizes], "cell right")  # noqa: PLR0124 - not NaN
+            else:
+                block.numbers([v / rounding.MM_PER_IN for v in sizes] if self.us else sizes, "size us" if self.us else "size")
+        else:
+            blank = BLANKS.get(key)
+            texts = [v if isinstance(v, str) and v else blank for v in frame[key].to_numpy(dtype=object)[part].tolist()]
+            block.texts(texts, "cell wrap" if index < self.printed else "cell")
+
+    def _where(self, block: Block, part: slice) -> None:
+        rows_at = [self.frame[key].to_numpy(dtype=object)[part].tolist() for key in ("file", "sheet", "row")]
+        files = {file: row_place(file, None, 0).removesuffix("row 0") for file in dict.fromkeys(rows_at[0])}
+        places = [
+            f"{files[file]}row {row}" if not isinstance(sheet, str) else row_place(file, sheet, row)
+            for file, sheet, row in zip(*rows_at, strict=True)
+        ]
+        if not self.linked or block.quick:
+            block.texts(places, "cell")
+            return
+
+        def write(number: int, row: int, column: int) -> None:
+            to = input_link(self.book, *(values[number] for values in rows_at))
+            if to is None:
+                block.sheet.text(row, column, places[number], "cell")
+            else:
+                block.sheet.link_out(row, column, to, places[number])
+
+        block.by_cell(write)
+
+    def _apart(self, block: Block, part: slice) -> None:
+        """How far the list's own mass of a piece is from ours, percent; live where the bare mass has a column."""
+        stated, ours = (self.frame[key].to_numpy(dtype=float)[part].tolist() for key in ("claimed_each_kg", "bare_nominal_kg"))
+        here = letters(self.at.get("bare_nominal_kg", self.at["each_nominal_kg"]))
+        apart = [100 * (s / o - 1) if s > 0 and o > 0 else None for s, o in zip(stated, ours, strict=True)]
+        block.formulas(f"=100*({self._letter('claimed_each_kg')}#/{here}#-1)", apart, "size")
 
 
 def input_link(book: Book, file: object, sheet: object, row: int) -> str | None:
@@ -341,16 +378,6 @@ def input_link(book: Book, file: object, sheet: object, row: int) -> str | None:
         return to
     name = sheet.replace("'", "''")
     return f"{to}#'{name}'!A{int(row)}"
-
-
-def _apart(sheet: Sheet, row: int, index: int, masses: tuple[float, float], at: dict[str, int]) -> None:
-    """How far the list's own mass of a piece is from ours, percent; live where the bare mass has a column."""
-    stated, ours = masses
-    if not (stated > 0 and ours > 0):
-        sheet.number(row, index, None, "size")
-        return
-    here = letters(at.get("bare_nominal_kg", at["each_nominal_kg"]))
-    sheet.formula(row, index, f"=100*({letters(at['claimed_each_kg'])}{row + 1}/{here}{row + 1}-1)", 100 * (stated / ours - 1), "size")
 
 
 def _notes(result: Result) -> dict[int, str]:

@@ -6,7 +6,7 @@ import contextlib
 import re
 import tempfile
 import textwrap
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from datetime import UTC, date, datetime
 from pathlib import Path
 from types import TracebackType
@@ -14,6 +14,7 @@ from typing import TYPE_CHECKING, Any, Self
 
 from takeoff.reports.rounding import Units
 from takeoff.reports.wording import shown
+from takeoff.reports.workbook.block import Block
 
 if TYPE_CHECKING:
     from takeoff.pipeline import Result
@@ -211,11 +212,30 @@ class Sheet:
         clean = cell_text(text)
         self.raw.write_string(row, column, clean, self.styles[style])
         if style in _WRAPPED:
-            self._grow(row, lines_of(clean, (self.column_widths[column] - 1.5) * _fill(style)))
+            self._grow(row, self.lines(clean, column, style))
+
+    def block(self, first: int, count: int) -> Block:
+        """Rows to be written column by column; after them, rows below may be written cell by cell again."""
+        return Block(self, first, count)
+
+    def wraps(self, style: str) -> bool:
+        return style in _WRAPPED
+
+    def lines(self, text: str, column: int, style: str) -> int:
+        """How many lines a text takes in a column in this style."""
+        return lines_of(text, (self.column_widths[column] - 1.5) * _fill(style))
+
+    def points(self, lines: int) -> float:
+        """The height of a row of so many lines."""
+        return min(_LINE * lines + 2.5, _TALLEST)
+
+    def note_heights(self, heights: Mapping[int, float]) -> None:
+        """Keep in mind the heights of rows that were written at once."""
+        self._heights.update(heights)
 
     def _grow(self, row: int, lines: int) -> None:
         """Make a row tall enough for its wrapped texts: not every program does so by itself when it opens a file."""
-        points = min(_LINE * lines + 2.5, _TALLEST)
+        points = self.points(lines)
         if lines > 1 and points > self._heights.get(row, 0.0):
             self.height(row, points)
 
@@ -280,7 +300,7 @@ class Sheet:
         breaks, used = [], self._height(0, blocks[0]) if blocks else 0.0
         for start, stop in zip(blocks, [*blocks[1:], end][: len(blocks)], strict=True):
             height = self._height(start, stop)
-            if start in new_page or (used + height > room and used > 0):
+            if start in new_page or (used + height > room and used > 0 and start != blocks[0]):
                 breaks.append(start)
                 used = 0.0
             used = (used + height) % room
