@@ -47,7 +47,10 @@ class _Segment:
 
 
 def arrange(pieces: Sequence[Placed], vehicle: Vehicle, deck: Deck, dunnage_kg: float, *, quick: bool = False) -> Arranged | None:
-    """The pieces moved so that limits hold, the first way found where it must be `quick`; None where no order tried does it, or the deck's line load is exceeded."""
+    """The pieces moved so that limits hold, the first way found where it must be `quick`.
+
+    None where no order tried does it, or the deck's line load is exceeded.
+    """
     if not line_load_holds(pieces, vehicle):
         return None
     segments = _segments(pieces)

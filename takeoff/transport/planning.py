@@ -29,7 +29,7 @@ from takeoff.transport.vehicles import Vehicle
 #: orders tried for one set of units on one deck: while units are dealt out, and for a single unit or a last try
 _TRIES, _MANY_TRIES = 6, 30
 #: work (tens of pieces handled) for one fleet, and for levelling the loads
-_FLEET_WORK, _LEVEL_WORK = 7_000, 1_500
+_FLEET_WORK, _LEVEL_WORK = 25_000, 3_000
 #: mixes of kinds of vehicles looked at for one number of vehicles
 _MOST_MIXES = 24
 #: above this many units each goes to the first vehicle that takes it, without pushing others out
@@ -126,7 +126,10 @@ class Loader:
         return all(sum(column) <= 1 + 1e-6 for column in zip(*known, strict=True))
 
     def arranged(self, units: Sequence[LoadUnit], vehicle: Vehicle, tries: int = _TRIES, *, quick: bool = False) -> Arranged | None:
-        """The best arrangement found, None where none is; the first that holds where it must be `quick`. Units without size are loaded by mass only: the axles are then unknown."""
+        """The best arrangement found, None where none is; the first that holds where it must be `quick`.
+
+        Units without size are loaded by mass only: the axles are then unknown.
+        """
         if not self._may(units, vehicle):
             return None
         sized = [u for u in units if u.size is not None]

@@ -117,7 +117,7 @@ class Block:
         parts[0] = parts[0].removeprefix("=")
         self.columns.append([
             f'<c r="{letter}{number}" s="{style}"/>' if value is None or value != value  # noqa: PLR0124
-            else f'<c r="{letter}{number}" s="{style}"><f>{number.join(parts)}</f><v>{value:.16G}</v></c>'
+            else f'<c r="{letter}{number}" s="{style}"><f>{number.join(parts)}</f><v>{value!r}</v></c>'
             for number, value, style in zip(self.numbers_of_rows, values, self._styles(styles), strict=True)
         ])
 

@@ -162,9 +162,9 @@ def columns_for(result: Result) -> tuple[Column, ...]:
         if key in frame and frame[key].notna().any():
             columns.append(Column(key, f"{heading} ({unit})", 10.5, figures=True))
     if "handling" in frame:
-        columns.append(Column("handling", "Handling", 17))
+        columns.append(Column("handling", "Handling", 22))
     columns += [Column("status", "State", 11), Column("basis", "Basis no.", 7)]
-    columns += [Column("note", "What to know", 31), *_parts_columns(frame, unit)]
+    columns += [Column("note", "What to know", 36), *_parts_columns(frame, unit)]
     columns += [
         Column("where", "Place in the list", 34),
         Column("section_text", "Section in the list", _fit(frame, "section_text", 16, 34)),
@@ -267,8 +267,6 @@ class _Columns:
     def __init__(self, book: Book, result: Result, plan: Plan, basis_rows: Sequence[int]) -> None:
         self.book, self.frame = book, result.members
         self.us = book.units == "us"
-        # The factor is the one every mass is printed by.
-        self.factor = rounding.in_mass_unit(1.0, book.units)
         self.notes = _notes(result)
         self.at = {column.key: index for index, column in enumerate(plan.columns)}
         # A text that wraps makes its row taller, so those beyond the printed columns stay on one line.
@@ -288,7 +286,7 @@ class _Columns:
 
     def _masses(self, key: str, part: slice) -> list[float]:
         """A column of masses in the unit they are printed in."""
-        masses: list[float] = (self.frame[key].to_numpy(dtype=float)[part] * self.factor).tolist()
+        masses: list[float] = rounding.in_mass_unit(self.frame[key].to_numpy(dtype=float)[part], self.book.units).tolist()
         return masses
 
     def _masses_weighed(self, key: str, part: slice) -> list[float | None]:
