@@ -18,7 +18,8 @@ PROGRAM = """
 import sys, time
 from takeoff import progress
 from takeoff.cli import progress as line
-with line.shown({quiet}):
+from takeoff.job import Job
+with line.shown({quiet}, Job()):
     progress.tell("12 000 rows read")
     time.sleep({seconds})
 """
