@@ -45,7 +45,7 @@ def _list(sheet: Sheet, result: Result, plan: Plan, of: tuple[InputFile, list[in
     said = f"{counted(len(rows), 'row')} of this list" + (f", INCOMPLETE: {counted(lacking, 'row')} not weighed" if lacking else "")
     sheet.text(1, 0, f"{said}. Checksum (SHA-256) {source.sha256}", "quiet")
     sums = 3
-    sheet.text(sums, 0, "Total of this list, all rows weighed", "total")
+    sheet.text(sums, 0, "Total of this list, of the rows weighed", "total")
     sheet.texts(sums, 1, [None] * 6, "total")
     masses = {word: [rounding.in_mass_unit(v, units) for v in frame.loc[rows, f"total_{word}_kg"].tolist()] for word in WORDS}
     last = _HEADINGS + max(len(rows), 1)

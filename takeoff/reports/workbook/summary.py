@@ -76,7 +76,7 @@ def _total(sheet: Sheet, result: Result, plan: Plan, row: int) -> int:
     values = {word: rounding.in_mass_unit(getattr(totals.mass_kg, word), units) for word in WORDS}
     decimals = rounding.decimals_for(values["heavy"])
     sheet.height(row, 22)
-    sheet.text(row, _NAME, "All rows weighed" if result.complete else "All rows weighed: INCOMPLETE, see below", "cell bold")
+    sheet.text(row, _NAME, "All rows weighed" if result.complete else "Of the rows weighed: INCOMPLETE, see below", "cell bold")
     sheet.formula(row, _PIECES, f"={plan.total('quantity')}", totals.quantity, "figure")
     for column, word, way in ((_LIGHT, "light", "down"), (_NOMINAL, "nominal", "nearest"), (_HEAVY, "heavy", "up")):
         cell = plan.total(f"total_{word}_kg")
