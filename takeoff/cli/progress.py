@@ -5,6 +5,7 @@ Silent where standard error is no terminal, or where the terminal cannot go back
 
 from __future__ import annotations
 
+import contextlib
 import os
 import sys
 import threading
@@ -53,9 +54,9 @@ class _Line:
 
 
 @contextmanager
-def shown(quiet: bool, job: Job) -> Iterator[None]:
+def shown(quiet: bool = False, job: Job | None = None) -> Iterator[None]:
     """Show what the work inside tells, where there is a terminal to show it on; stop it at the job's [guards] seconds."""
-    with clock.within(job.guards.seconds), _shown(quiet):
+    with clock.within(job.guards.seconds) if job else contextlib.nullcontext(), _shown(quiet):
         yield
 
 

@@ -48,14 +48,14 @@ def schedule(
     with progress.shown(quiet, the_job):
         result = pipeline.schedule(lists, with_units(the_job, units), strict=strict)
         changes = compare.compare(result, earlier) if earlier else None
-        record = records.to_json(result, changes) if json else ""
+        record = records.to_json(result, changes) if to_stream else ""
         outputs: list[files.Output] = [(target, lambda path: workbook.write_workbook(result, path, changes))]
         if page:
             from takeoff.reports.page import to_page
 
             outputs.append((page, lambda path: save_text(path, to_page(result, changes=changes))))
         if json and not to_stream:
-            outputs.append((Path(json), lambda path: save_text(path, record)))
+            outputs.append((Path(json), lambda path: records.write_json(path, result, changes)))
         if csv:
             outputs.append((csv, lambda path: save_text(path, records.to_csv(result))))
         files.write_all(outputs, inputs=inputs, replace=replace)

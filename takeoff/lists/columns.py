@@ -64,6 +64,8 @@ class ColumnReader:
     def __init__(self, table: Table, start: int, job: Job, members: Members) -> None:
         self.table, self.start, self.job, self.members = table, start, job, members
         self.count = len(table.member_rows)
+        rows = table.sheet.rows
+        self._rows: list[list[Cell]] = [rows[n - 1] if n <= len(rows) else [] for n in table.member_rows]
         self.decimal, self.mixed = _decimal_sign(table, job)
         self.inches = _speaks_inches(table) and job.reading.thousands != "apostrophe"
         self._fill_merged()
@@ -78,8 +80,8 @@ class ColumnReader:
         return self._cells_at(column.number)
 
     def _cells_at(self, number: int) -> list[Cell]:
-        rows, at = self.table.sheet.rows, number - 1
-        cells = [row[at] if at < len(row) else None for row in (rows[n - 1] if n <= len(rows) else [] for n in self.table.member_rows)]
+        at = number - 1
+        cells = [row[at] if at < len(row) else None for row in self._rows]
         merged = self.merged.get(number)
         return [merged.get(n, cell) for n, cell in zip(self.table.member_rows, cells, strict=True)] if merged else cells
 

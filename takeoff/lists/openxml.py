@@ -114,6 +114,11 @@ def look_over(name: str, data: bytes, guards: GuardsPart) -> dict[str, Look]:
             parts = {info.filename: info for info in archive.infolist()}
             if "xl/workbook.xml" not in parts:
                 raise InputError("is no workbook of the usual kind", file=name, right="a workbook saved as .xlsx")
+            if "_rels/.rels" in parts:
+                main = [link.get("Target", "") for link in ET.fromstring(_part(name, archive, "_rels/.rels"))
+                        if link.get("Type", "").endswith("/officeDocument")]
+                if main and main[0].lstrip("/") != "xl/workbook.xml":
+                    raise InputError("the workbook keeps its sheets in an unusual place", file=name, right=_RIGHT)
             # Unpacked in full, each part's checksum and true size are checked before the reader sees it.
             book, links = (ET.fromstring(_part(name, archive, part)) for part in ("xl/workbook.xml", "xl/_rels/workbook.xml.rels"))
             for part in parts:

@@ -23,8 +23,8 @@ _MADE: dict[str, Callable[[str], Any]] = {"datetime": datetime.fromisoformat, "d
 def read(data: bytes, cells: int) -> dict[str, Any]:
     """All sheets of a workbook, plain enough to be sent: ``sheets`` as (name, hidden, rows, odd cells), or ``error``.
 
-    Blank cells are None. Dates and times stand in `odd` as (row, column, kind, numbers), counted from 0. A sheet of more
-    than `cells` cells is not read: its rows are then (rows, columns).
+    Blank cells are None. Dates and times stand in `odd`, once `sendable` took them out, as (row, column, kind, value), counted
+    from 0. A sheet of more than `cells` cells is not read: its rows are then (rows, columns).
     """
     import python_calamine as calamine
 
@@ -39,13 +39,24 @@ def read(data: bytes, cells: int) -> dict[str, Any]:
             sheets.append((meta.name, hidden, (sheet.total_height, sheet.total_width), []))
             continue
         rows = [[None if cell == "" else cell for cell in row] for row in sheet.to_python(skip_empty_area=False)]
-        sheets.append((meta.name, hidden, rows, _take_out_odd(rows)))
+        sheets.append((meta.name, hidden, rows, []))
     return {"sheets": sheets}
 
 
-def _take_out_odd(rows: list[list[Any]]) -> list[tuple[int, int, str, Any]]:
+def sendable(answer: dict[str, Any]) -> bytes:
+    """An answer of `read` as bytes; dates and times, where there are any, taken out of the rows first."""
+    try:
+        return marshal.dumps(answer)
+    except ValueError:
+        sheets = [(name, hidden, rows, _take_out_odd(rows)) for name, hidden, rows, _ in answer["sheets"]]
+        return marshal.dumps({"sheets": sheets})
+
+
+def _take_out_odd(rows: Any) -> list[tuple[int, int, str, Any]]:
     """Take cells out of the rows that cannot be sent as they are, and say what they were."""
     odd: list[tuple[int, int, str, Any]] = []
+    if isinstance(rows, tuple):
+        return odd
     for number, row in enumerate(rows):
         for column, cell in enumerate(row):
             if isinstance(cell, _PLAIN):
@@ -88,10 +99,10 @@ def main() -> None:
     megabytes, seconds, cells = map(int, sys.argv[1:4])
     _limit(megabytes, seconds)
     try:
-        answer = read(sys.stdin.buffer.read(), cells)
+        sent = sendable(read(sys.stdin.buffer.read(), cells))
     except BaseException as error:  # noqa: BLE001 - a panic of the reader is no Exception; the parent says what it was
-        answer = {"error": str(error) or type(error).__name__}
-    marshal.dump(answer, sys.stdout.buffer)
+        sent = marshal.dumps({"error": str(error) or type(error).__name__})
+    sys.stdout.buffer.write(sent)
     sys.stdout.buffer.flush()
 
 

@@ -48,12 +48,27 @@ COUNT_IN_NAME = re.compile(r"\(\s*x?\s*\d+\s*x?\s*\)|\bx\s?\d+\b$|^\d+\s?x\s")
 PACK = re.compile(
     r"\b(?:packs?|boxe?s?|bags?) of (\d{1,5})\b|\b(\d{1,5}) per (?:pack|box|bag)\b|\bvpe\s?:?\s?(\d{1,5})\b"
     r"|\bpaquets? de (\d{1,5})\b")
+#: a mere code (``M12``, ``A1-b``): one word with a digit in it, which none of these patterns can match
+_CODE = re.compile(r"[^ (\d]*\d[^ (]*")
 RULE = re.compile(r"[-=_*.–—~#:|\s]+")
 
 
-def says_nothing(text: str) -> bool:
-    """Whether a text is a mere code (``M12``, ``A1-b``): one word with a digit in it, which no pattern here can match."""
-    return " " not in text and "(" not in text and any(char.isdigit() for char in text)
+@lru_cache(maxsize=1 << 14)
+def _heard(text: str) -> tuple[str | None, bool]:
+    if not text or text.isspace():
+        return None, False
+    name = label(text)
+    return name, any(pattern.search(name) for pattern in (
+        TOTAL, MONEY, EXAMPLE, EXAMPLE_ROW, ALTERNATIVE, ELSEWHERE, OPTIONAL, ASSEMBLY_ROW,
+    ))
+
+
+_NOTHING = (None, False)
+
+
+def heard(text: str) -> tuple[str | None, bool]:
+    """A cell's text as a label, None for a blank or a mere code, and whether any pattern of a whole row fits it."""
+    return _NOTHING if _CODE.fullmatch(text) else _heard(text)
 
 
 @lru_cache(maxsize=1 << 16)

@@ -1,8 +1,8 @@
-"""Files become grids of cells: the only module that opens a workbook or a text table.
+"""Files become grids of cells: the only module that opens a workbook or a text table. Rank 3.
 
-A fast reader gives the cell values; it drops what matters to us (errors, formulas without a stored result, hidden rows,
-merged cells) and trusts what it is told about a sheet's size. So the sheet's XML is looked over first, which also keeps
-out the sheets that make a reader run wild, and where it shows errors or unsaved formulas a second reader names the cells.
+A fast reader gives the cell values. It drops what matters to us (errors, formulas without a stored result, hidden rows,
+merged cells), so an .xlsx is also looked over by `openxml`, which refuses what no reader takes in safely; and some files
+end the reader's whole process, so it runs apart (`apart`).
 """
 
 from __future__ import annotations
@@ -122,6 +122,9 @@ def _read_workbook(name: str, data: bytes, guards: GuardsPart) -> list[Sheet]:
         looks = openxml.look_over(name, data, guards) if kind == "xlsx" else {}
         sheets = []
         for title, hidden, rows in reading.sheets():
+            if looks and title not in looks:
+                raise InputError("the sheets of the workbook cannot be told apart", file=name, sheet=title,
+                                 right="a workbook opened and saved once in a spreadsheet program")
             look = looks.get(title, openxml.Look())
             if len(rows) > guards.rows:
                 raise InputError(

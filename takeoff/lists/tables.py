@@ -107,6 +107,13 @@ class Table:
     caption: Caption = field(default_factory=Caption)
     group_of: dict[int, str] = field(default_factory=dict)
     row_findings: dict[int, list[Finding]] = field(default_factory=dict)
+    _key_places: list[tuple[str, int]] = field(default_factory=list, repr=False)
+
+    def key_places(self) -> list[tuple[str, int]]:
+        """The columns that can make a row a member, with their places in a row (from 0)."""
+        if not self._key_places:
+            self._key_places = [(name, column.number - 1) for name, column in self.columns.items() if name in _KEY_FIELDS]
+        return self._key_places
 
     @property
     def unit_note(self) -> str | None:
@@ -146,6 +153,10 @@ def is_blank(cell: Cell) -> bool:
     return cell is None or cell == "" or (type(cell) is str and cell.isspace())
 
 
+def _is_blank_row(cells: list[Cell]) -> bool:
+    return all(map(is_blank, cells))
+
+
 def read_sheet(sheet: Sheet, job: Job) -> SheetReading:
     """Find the lists of a sheet and give every row its kind. Raises JobError on a range of `[reading] tables` that is none."""
     return _Walk(sheet, job).reading()
@@ -171,7 +182,7 @@ class _Walk:
 
     def reading(self) -> SheetReading:
         troubled = {row for row, _ in self.sheet.errors} | {row for row, _ in self.sheet.unsaved}
-        filled = [n for n, cells in enumerate(self.sheet.rows, 1) if not all(is_blank(c) for c in cells)]
+        filled = [n for n, cells in enumerate(self.sheet.rows, 1) if not _is_blank_row(cells)]
         if filled or troubled:
             joined = 0
             for number in range(min([*filled, *troubled]), max([*filled, *troubled]) + 1):
@@ -200,7 +211,7 @@ class _Walk:
             self._is(number, "other")
             self._note(number, "row-skipped", "skipped, since the job file says so")
             return 0
-        if all(is_blank(c) for c in cells) and not troubled:
+        if not troubled and _is_blank_row(cells):
             outside = (
                 self.ranges is not None and number <= len(self.sheet.rows) and not all(is_blank(c) for c in self.sheet.rows[number - 1])
             )
@@ -381,7 +392,9 @@ class _Walk:
             table.units_below = {column: unit for column, cell in enumerate(cells, 1) if isinstance(cell, str) and (unit := unit_of(cell))}
             table.heading_rows.append(number)
             return
-        labels = [rowwords.label(c) for c in cells if type(c) is str and c and not c.isspace() and not rowwords.says_nothing(c)]
+        heard = [rowwords.heard(c) for c in cells if type(c) is str]
+        # Where no pattern of words fits any text, as in nearly every row, there is nothing to look at.
+        labels = [label for label, _ in heard if label is not None] if any(tells for _, tells in heard) else []
         kind = _kind_of(table, cells, number, self.sheet, labels)
         if kind == "other" and len(labels) == 1 and rowwords.EXAMPLE.match(labels[0]) and table.member_rows:
             self._is(number, "other")
@@ -593,15 +606,13 @@ def _is_unit_row(cells: list[Cell]) -> bool:
 
 
 def _kind_of(table: Table, cells: list[Cell], number: int, sheet: Sheet, labels: list[str]) -> RowKind:
-    troubled = {
-        name
-        for name, column in table.columns.items()
-        if (number, column.number) in sheet.errors or (number, column.number) in sheet.unsaved
-    }
-    filled = {name for name in table.columns if name in _KEY_FIELDS and (name in troubled or not is_blank(table.cell(number, name)))}
+    end = len(cells)
+    filled = {name for name, at in table.key_places() if at < end and not is_blank(cells[at])}
+    if sheet.errors or sheet.unsaved:
+        filled |= {name for name, at in table.key_places() if (number, at + 1) in sheet.errors or (number, at + 1) in sheet.unsaved}
     if any(rowwords.TOTAL.match(label) for label in labels) and not ("section" in filled and filled & _COUNTS and filled & _SIZES):
         return "total"
-    rules = [c for c in cells if type(c) is str and len(c) > 2 and rowwords.RULE.fullmatch(c)]
+    rules = [c for c in cells if type(c) is str and len(c) > 2 and not c[0].isalnum() and rowwords.RULE.fullmatch(c)]
     if rules and all(type(c) is not str or rowwords.RULE.fullmatch(c) or number_readings(c) for c in cells):
         return "other"
     named = filled & _NAMES

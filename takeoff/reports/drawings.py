@@ -275,6 +275,70 @@ def deck(pieces: Sequence[Placed], length_mm: float, width_mm: float, title: str
     return drawing.svg()
 
 
+@dataclass(frozen=True, slots=True)
+class Standing:
+    """A piece as seen from the deck's left side, mm: its end nearest the front, its place from the left, its underside above the deck."""
+
+    number: int
+    x: float
+    y: float
+    bottom: float
+    length: float
+    height: float
+    layer: int
+
+
+def deck_side(pieces: Sequence[Standing], length_mm: float, limit_mm: float, title: str, said: tuple[str, str]) -> str:
+    """A deck from its left side, its front to the left, at the scale of `deck`: nearer pieces are drawn over farther ones.
+
+    `said` are the words at the limit of the load's height and at what reaches beyond the deck's rear.
+    """
+    length = max(length_mm, 1.0)
+    reach = max([length, *(p.x + p.length for p in pieces)])
+    high = max([limit_mm, 1.0, *(p.bottom + p.height for p in pieces)])
+    across, left, top = 760.0, 44.0, 24.0
+    per_mm = across / reach
+    floor = top + high * per_mm
+    drawing = Drawing(across + 60, floor + 40, title)
+    for p in sorted(pieces, key=lambda p: -p.y):
+        y = floor - (p.bottom + p.height) * per_mm
+        kind = "piece" if p.layer == 1 else "piece upper"
+        drawing.rect(left + p.x * per_mm, y, p.length * per_mm, p.height * per_mm, kind)
+    drawing.line([(left, floor), (left + length * per_mm, floor)], "tick")
+    drawing.line([(left, floor + 3), (left + length * per_mm, floor + 3)], "tick")
+    drawing.text(4, floor - 4, "front")
+    drawing.text(left, floor + 18, "deck")
+    line = floor - limit_mm * per_mm
+    drawing.line([(left, line), (left + reach * per_mm, line)], "limit")
+    drawing.text(left, line - 6, said[0])
+    if reach > length + 0.5:
+        rear, end = left + length * per_mm, left + reach * per_mm
+        drawing.line([(rear, floor - 8), (rear, floor + 12)], "tick")
+        drawing.line([(rear, floor + 8), (end, floor + 8)], "tick")
+        drawing.line([(end, floor + 4), (end, floor + 12)], "tick")
+        drawing.text(end, floor + 24, said[1], "end")
+    same: dict[tuple[float, ...], list[Standing]] = {}
+    for p in pieces:
+        same.setdefault((round(p.x), round(p.bottom), round(p.length), round(p.height), p.layer), []).append(p)
+    taken: list[tuple[float, float, float]] = []
+    for several in same.values():
+        p = several[0]
+        x, y = left + p.x * per_mm + 4, floor - (p.bottom + p.height / 2) * per_mm + 4
+        numbers = ", ".join(str(q.number) for q in several[:6]) + (f" and {len(several) - 6} more" if len(several) > 6 else "")
+        for label in (f"{numbers} (layer {p.layer})", numbers):
+            wide = _LETTER * len(label)
+            if p.height * per_mm < 9 or wide + 8 > p.length * per_mm:
+                continue
+            # Pieces behind each other share room: a number goes where none stands yet.
+            places = [x + 12 * k for k in range(int((p.length * per_mm - wide - 8) / 12) + 1)]
+            free = [at for at in places if all(abs(y - b) > 11 or at > d or at + wide < a for a, d, b in taken)]
+            if free:
+                drawing.text(free[0], y, label)
+                taken.append((free[0], free[0] + wide, y))
+                break
+    return drawing.svg()
+
+
 # --- movement --------------------------------------------------------------------------------------------------------
 
 

@@ -6,10 +6,12 @@ Columns become plain lists once; a list of 100,000 members is written without to
 
 from __future__ import annotations
 
+import itertools
 import json
 import math
 import re
-from collections.abc import Iterable
+from collections.abc import Iterable, Iterator
+from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 from takeoff.reports import added
@@ -36,6 +38,16 @@ def to_json(result: Result, changes: Comparison | None = None) -> str:
 
     Raises ValueError on an infinite figure, which no list can bring about.
     """
+    return "".join(_pieces(result, changes))
+
+
+def write_json(path: Path, result: Result, changes: Comparison | None = None) -> None:
+    """What `to_json` gives, to a file piece by piece: the text of a long list is never held whole."""
+    with path.open("w", encoding="ascii", newline="") as handle:
+        handle.writelines(_pieces(result, changes))
+
+
+def _pieces(result: Result, changes: Comparison | None) -> Iterator[str]:
     from takeoff import __version__
 
     job = result.job.job
@@ -67,21 +79,30 @@ def to_json(result: Result, changes: Comparison | None = None) -> str:
     }
     if changes is not None:
         parts["against"] = changes.as_record()
-    body = ",\n".join(
-        f'"{key}": {value.text() if isinstance(value, _Lines) else _JSON.encode(_no_nan(value))}'
-        for key, value in parts.items()
-    )
-    return "{\n" + body + "\n}\n"
+    before = "{\n"
+    for key, value in parts.items():
+        yield f'{before}"{key}": '
+        if isinstance(value, _Lines):
+            yield from value.pieces()
+        else:
+            yield _JSON.encode(_no_nan(value))
+        before = ",\n"
+    yield "\n}\n"
 
 
 class _Lines:
     """A JSON array whose entries are encoded already and stand on lines of their own."""
 
-    def __init__(self, entries: list[str]) -> None:
-        self.entries = entries
+    def __init__(self, entries: Iterable[str]) -> None:
+        self.entries = iter(entries)
 
-    def text(self) -> str:
-        return "[\n" + ",\n".join(self.entries) + "\n]" if self.entries else "[]"
+    def pieces(self) -> Iterator[str]:
+        """The array's text; entries are taken as they are needed, many at a time."""
+        before = "[\n"
+        while some := list(itertools.islice(self.entries, 1000)):
+            yield before + ",\n".join(some)
+            before = ",\n"
+        yield "[]" if before == "[\n" else "\n]"
 
 
 def _account(account: Any) -> dict[str, int]:
@@ -89,7 +110,7 @@ def _account(account: Any) -> dict[str, int]:
     return {name: int(getattr(account, name)) for name in names}
 
 
-def _members(result: Result) -> list[str]:
+def _members(result: Result) -> Iterator[str]:
     """Each member as one line of JSON, in reading order. Columns are put into JSON one by one, then laid side by side."""
     frame = result.members
     keys = [_JSON.encode(m.key) for m in result.materials]
@@ -132,7 +153,7 @@ def _members(result: Result) -> list[str]:
     ]
     fields["position_mm"] = _positions(result)
     template, columns = _template(fields)
-    return [template % values for values in zip(*columns, strict=True)]
+    return (template % values for values in zip(*columns, strict=True))
 
 
 def _positions(result: Result) -> list[str]:

@@ -38,8 +38,11 @@ def shown(text: object) -> str:
     Line breaks and tabs become blanks; other control signs, halves of signs and unassigned ones become a replacement sign,
     so that something is seen where they were.
     """
+    text = str(text)
+    if text.isprintable():  # nothing to be taken out, as nearly always
+        return text.strip()
     out: list[str] = []
-    for char in str(text):
+    for char in text:
         kind = unicodedata.category(char)
         if char in "\n\r\t\v\f\x85" or kind in {"Zl", "Zp"}:
             out.append(" ")

@@ -1,10 +1,10 @@
 """Which vehicle carries what: fewest vehicles, then least payload capacity, then even loads, with a proven least number.
 
-No single model does it. The least number comes from bounds that hold whatever the plan (masses by exact packing, boxes by dual
-feasible functions, payload as the axles leave it). For a fleet of so many vehicles, units go one by one to the vehicle that
-suits, each time with a real placement and its axles; what finds no place pushes others out and on. Where mass alone, or mass
-and the length of one lane, decide, the exact packing is the plan itself. Work is counted, the seed fixed, ties go by name; the
-clock is only a safety stop, and the plan says when it rang.
+No single model does it. The least number comes from bounds that hold whatever the plan (masses by exact packing, boxes by
+dual feasible functions, payload as the axles leave it). For a fleet of so many vehicles, units go one by one to the vehicle
+that suits, each time with a real placement and its axles; while something is left over, two vehicles are dealt out anew.
+Where mass alone, or mass and the length of one lane, decide, the exact packing is the plan itself. Work is counted, the seed
+fixed, ties go by name; the clock is only a safety stop, and the plan says when it rang.
 """
 
 from __future__ import annotations
@@ -18,24 +18,21 @@ from itertools import combinations_with_replacement, product
 
 from takeoff import progress
 from takeoff.transport import blocks
-from takeoff.transport.arranging import Arranged, arrange
+from takeoff.transport.arranging import Arranged
 from takeoff.transport.binpack import Clock, pack
 from takeoff.transport.blocks import gathered
-from takeoff.transport.load import LoadUnit, NotLoaded, Placed
-from takeoff.transport.lower_bounds import box_shares, boxes_needed
-from takeoff.transport.placing import HAIR, Deck, place
+from takeoff.transport.load import LoadUnit, NotLoaded
+from takeoff.transport.loader import MANY_TRIES, TRIES, Loader, boxes_of
+from takeoff.transport.lower_bounds import boxes_needed
+from takeoff.transport.placing import HAIR
 from takeoff.transport.vehicles import Vehicle
 
-#: orders tried for one set of units on one deck: while units are dealt out, and for a single unit or a last try
-_TRIES, _MANY_TRIES = 6, 30
 #: work (tens of pieces handled) for one fleet, and for levelling the loads
 _FLEET_WORK, _LEVEL_WORK = 25_000, 3_000
 #: mixes of kinds of vehicles looked at for one number of vehicles
 _MOST_MIXES = 24
-#: above this many units each goes to the first vehicle that takes it, without pushing others out
+#: above this many units each goes to the first vehicle that takes it, without dealing out anew
 _MANY_UNITS = 600
-#: ways of counting boxes that are asked before a placement is tried
-_WAYS = 24
 _GRAM = 1000.0
 
 
@@ -58,100 +55,6 @@ class Outcome:
     stopped_by_clock: bool
 
 
-class Loader:
-    """Tries sets of units on vehicles, and remembers the answers: like units on like vehicles need one try."""
-
-    def __init__(self, dunnage_mm: float, dunnage_kg: float, clock: Clock) -> None:
-        self.dunnage_mm, self.dunnage_kg, self.clock = dunnage_mm, dunnage_kg, clock
-        self.work = 0
-        self._shares: dict[str, dict[int, tuple[float, ...]]] = {}
-        self._known: dict[tuple[str, tuple[int, ...]], bool] = {}
-        self._kinds: dict[object, int] = {}
-        self._kind_of: dict[int, int] = {}
-        self._asked = 0
-
-    def prepare(self, units: Sequence[LoadUnit], vehicles: Sequence[Vehicle]) -> None:
-        """Remember what share of each deck every unit takes at the least, in the ways of counting that bind most."""
-        for v in vehicles:
-            if v.deck is None:
-                continue
-            sized = [
-                u
-                for u in units
-                if u.size is not None and v.deck is not None and any(self.deck(v).takes(u, turned) for turned in (False, True))
-            ]
-            room = (math.ceil(v.deck[0] + v.rear_overhang_mm - HAIR), math.ceil(v.deck[1] - HAIR), math.ceil(v.deck[2] - HAIR))
-            ways = box_shares(_boxes(sized, room, self.dunnage_mm, flat=room[2] >= 10**6 or not v.layers), room) if sized else []
-            ways.sort(key=lambda values: -sum(values))
-            self._shares[v.name] = (
-                {id(u): tuple(values) for u, values in zip(sized, zip(*ways[:_WAYS], strict=True), strict=True)} if ways else {}
-            )
-
-    def deck(self, vehicle: Vehicle) -> Deck:
-        assert vehicle.deck is not None
-        length, width, height = vehicle.deck
-        return Deck(length, width, height, vehicle.rear_overhang_mm, self.dunnage_mm, vehicle.layers)
-
-    def room_kg(self, vehicle: Vehicle) -> float:
-        return vehicle.most_kg - self.dunnage_kg
-
-    def fits(self, units: Sequence[LoadUnit], vehicle: Vehicle, tries: int = _TRIES) -> bool:
-        """Whether these units are known to go on the vehicle together."""
-        if not self._may(units, vehicle):
-            return False
-        self._asked += 1
-        self.work += self._asked % 16 == 0
-        key = (vehicle.name, tuple(sorted(self._kind(u) for u in units)))
-        if key not in self._known or (tries > _TRIES and not self._known[key]):
-            self._known[key] = self.arranged(units, vehicle, tries, quick=True) is not None
-        return self._known[key]
-
-    def _kind(self, unit: LoadUnit) -> int:
-        """A number that like units share; they live as long as the plan is made."""
-        known = self._kind_of.get(id(unit))
-        if known is None:
-            kind = (unit.size, unit.mass, unit.drop, unit.carries, unit.centre)
-            known = self._kind_of[id(unit)] = self._kinds.setdefault(kind, len(self._kinds))
-        return known
-
-    def _may(self, units: Sequence[LoadUnit], vehicle: Vehicle) -> bool:
-        """Masses and volumes leave room: what is quickly told."""
-        mass = math.fsum(u.mass.heavy for u in units)
-        if mass > self.room_kg(vehicle) * (1 + 1e-9) + 1e-6:
-            return False
-        if vehicle.deck is None:
-            return True
-        shares = self._shares.get(vehicle.name, {})
-        known = [shares[id(u)] for u in units if id(u) in shares]
-        return all(sum(column) <= 1 + 1e-6 for column in zip(*known, strict=True))
-
-    def arranged(self, units: Sequence[LoadUnit], vehicle: Vehicle, tries: int = _TRIES, *, quick: bool = False) -> Arranged | None:
-        """The best arrangement found, None where none is; the first that holds where it must be `quick`.
-
-        Units without size are loaded by mass only: the axles are then unknown.
-        """
-        if not self._may(units, vehicle):
-            return None
-        sized = [u for u in units if u.size is not None]
-        bare = [u for u in units if u.size is None]
-        without = [Placed(u, None, None, 0.0, 1, False) for u in bare]
-        if vehicle.deck is None or not sized:
-            return Arranged([Placed(u, None, None, 0.0, 1, False) for u in sized] + without, False, False, 0.0)
-        deck = self.deck(vehicle)
-        judged = replace(vehicle, statics=None) if bare else vehicle
-        best: Arranged | None = None
-        ways, attempts = place(sized, deck, tries)
-        # One for every ten pieces handled, so that the limits mean much the same work for few pieces and for many.
-        self.work += 1 + attempts * len(sized) // 10
-        for placed in ways:
-            found = arrange(placed, judged, deck, self.dunnage_kg, quick=quick)
-            if found is not None and (best is None or found.rank < best.rank):
-                best = found
-            if best is not None and (quick or best.rank[0] == 0):
-                break
-        return None if best is None else replace(best, pieces=[*best.pieces, *without])
-
-
 def plan(
     units: Sequence[LoadUnit], vehicles: Sequence[Vehicle], *, dunnage_mm: float, dunnage_kg: float, apart: bool, seconds: float
 ) -> Outcome:
@@ -161,7 +64,7 @@ def plan(
     left: list[NotLoaded] = []
     loadable: list[LoadUnit] = []
     for unit in units:
-        if any(loader.fits([unit], v, _MANY_TRIES) for v in vehicles):
+        if any(loader.fits([unit], v, MANY_TRIES) for v in vehicles):
             loadable.append(unit)
         else:
             left.append(NotLoaded(unit.name, unit.mass.heavy, why_not(unit, vehicles, loader)))
@@ -308,21 +211,7 @@ def _by_sum(total: int, rooms: Sequence[int]) -> int:
 
 
 def _by_boxes(units: Sequence[LoadUnit], fleet: Sequence[Vehicle], room: tuple[int, int, int], loader: Loader) -> int:
-    return boxes_needed(_boxes(units, room, loader.dunnage_mm, flat=room[2] >= 10**6 or not any(v.layers for v in fleet)), room)
-
-
-def _boxes(
-    units: Sequence[LoadUnit], room: tuple[int, int, int], dunnage_mm: float, *, flat: bool
-) -> list[tuple[list[tuple[int, int]], int]]:
-    """Units as boxes of whole mm, rounded down so that a bound stays one; where nothing may be put on anything, of full height."""
-    boxes = []
-    for u in units:
-        length, width, height = (math.floor(side + HAIR) for side in u.on_deck(False))
-        ways = [(a, b) for a, b in ((length, width), (width, length)) if a <= room[0] and b <= room[1]] or [
-            (min(length, room[0]), min(width, room[1]))
-        ]
-        boxes.append((ways, room[2] if flat else min(room[2], height + math.floor(dunnage_mm))))
-    return boxes
+    return boxes_needed(boxes_of(units, room, loader.dunnage_mm, flat=room[2] >= 10**6 or not any(v.layers for v in fleet)), room)
 
 
 def _one_lane(units: Sequence[LoadUnit], fleet: Sequence[Vehicle], loader: Loader) -> tuple[list[int], int] | None:
@@ -350,7 +239,7 @@ def _as_filled(dealt: Sequence[Sequence[int]], units: Sequence[LoadUnit], vehicl
     filled = []
     for members in dealt:
         chosen = [units[i] for i in members]
-        arranged = loader.arranged(chosen, vehicle, _MANY_TRIES)
+        arranged = loader.arranged(chosen, vehicle, MANY_TRIES)
         if arranged is None:
             return None
         filled.append(Filled(vehicle, chosen, arranged))
@@ -374,7 +263,7 @@ def _one_by_one(units: Sequence[LoadUnit], vehicles: Sequence[Vehicle], loader: 
             filled[home].units.append(unit)
             continue
         for v in sorted(vehicles, key=lambda v: (-v.payload_kg, v.name)):
-            if (v.count is None or used[v.name] < v.count) and loader.fits([unit], v, _MANY_TRIES):
+            if (v.count is None or used[v.name] < v.count) and loader.fits([unit], v, MANY_TRIES):
                 used[v.name] += 1
                 filled.append(Filled(v, [unit], None))
                 break
@@ -386,8 +275,8 @@ def _finished(filled: list[Filled], loader: Loader) -> list[Filled]:
     for f in filled:
         if f.arranged is None:
             f.arranged = (
-                loader.arranged(f.units, f.vehicle, _MANY_TRIES)
-                or loader.arranged(f.units, f.vehicle, _TRIES)
+                loader.arranged(f.units, f.vehicle, MANY_TRIES)
+                or loader.arranged(f.units, f.vehicle, TRIES)
                 or loader.arranged(f.units, f.vehicle, 2)
             )
             assert f.arranged is not None

@@ -41,9 +41,7 @@ class _List:
         self.columns: dict[str, list[Any]] = {name: members[name].tolist() for name in names}
         self.mass = [
             None if math.isnan(a) else Bounds(a, b, c)
-            for a, b, c in zip(
-                *(members[f"each_{word}_kg"].tolist() for word in ("light", "nominal", "heavy")), strict=True
-            )
+            for a, b, c in zip(*(members[f"each_{word}_kg"].tolist() for word in ("light", "nominal", "heavy")), strict=True)
         ]
         self.sections = sections
         self.places = places

@@ -5,6 +5,8 @@ Sums are of unrounded figures. The likely range follows `takeoff.bounds.likely_r
 
 from __future__ import annotations
 
+import itertools
+import math
 from dataclasses import dataclass, field
 from typing import TYPE_CHECKING, Any
 
@@ -14,6 +16,8 @@ from takeoff.weighing.counted import EVERYTHING, with_open_rows
 
 if TYPE_CHECKING:
     import pandas as pd
+
+    from takeoff.weighing.work import Ints
 
 #: members column -> the name that stands for a blank there
 GROUPINGS = {
@@ -78,8 +82,8 @@ def total_up(members: pd.DataFrame, not_counted: tuple[str, ...] = EVERYTHING) -
         quantity=int(pieces.sum()),
         mass_kg=_bounds(counted),
         likely_kg=likely_range(likely_groups(counted)),
-        volume_m3=float((counted["volume_m3"] * pieces).sum()),
-        surface_m2=float((counted["surface_m2"] * pieces).sum()),
+        volume_m3=_sum(counted["volume_m3"] * pieces),
+        surface_m2=_sum(counted["surface_m2"] * pieces),
         not_weighed=int((~weighed).sum()),
         not_counted=with_open_rows(not_counted, members),
         bare_kg=_of_pieces(counted, "bare"),
@@ -94,23 +98,44 @@ def by(members: pd.DataFrame, column: str, blank: str) -> list[GroupTotal]:
         return []
     names = members[column].fillna("").where(members[column].fillna("").ne(""), blank)
     weighed = members["status"].ne("not weighed")
-    frame = members.loc[:, ["quantity", "total_light_kg", "total_nominal_kg", "total_heavy_kg"]].where(weighed, 0.0)
-    frame["lacking"] = (~weighed).astype(int)
-    sums = frame.fillna(0.0).groupby(names, sort=False).sum()
+    import pandas as pd
+
+    codes, found = pd.factorize(names)
+    frame = members.loc[:, ["quantity", *_MASSES]].where(weighed, 0.0)
+    frame["lacking"] = (~weighed).astype(float)
+    sums = _sums(frame.fillna(0.0), codes, len(found))
     return [
         GroupTotal(str(name), int(quantity), Bounds(light, nominal, heavy), int(lacking))
-        for name, quantity, light, nominal, heavy, lacking in sums.itertuples()
+        for name, (quantity, light, nominal, heavy, lacking) in zip(found, sums, strict=True)
     ]
 
 
+_MASSES = [f"total_{word}_kg" for word in ("light", "nominal", "heavy")]
+
+
+def _sum(column: pd.Series[float]) -> float:
+    """The exact sum, rounded once: the same in whatever order, on whatever machine, with whatever version of a library."""
+    return math.fsum(column.dropna().tolist())
+
+
+def _sums(frame: pd.DataFrame, codes: Ints, count: int) -> list[tuple[float, ...]]:
+    """For each of `count` groups the exact sums of the frame's columns; `codes` gives each row's group."""
+    import numpy as np
+
+    order = np.argsort(codes, kind="stable")
+    starts = np.searchsorted(codes[order], np.arange(count + 1)).tolist()
+    columns = [frame[name].to_numpy(dtype=float)[order].tolist() for name in frame.columns]
+    return [tuple(math.fsum(column[start:end]) for column in columns) for start, end in itertools.pairwise(starts)]
+
+
 def _bounds(counted: pd.DataFrame) -> Bounds:
-    light, nominal, heavy = (float(counted[f"total_{word}_kg"].sum()) for word in ("light", "nominal", "heavy"))
+    light, nominal, heavy = (_sum(counted[name]) for name in _MASSES)
     return Bounds(light, nominal, heavy)
 
 
 def _of_pieces(counted: pd.DataFrame, part: str) -> Bounds:
     """A part of each piece's mass, over all pieces."""
-    light, nominal, heavy = (float((counted[f"{part}_{word}_kg"] * counted["quantity"]).sum()) for word in ("light", "nominal", "heavy"))
+    light, nominal, heavy = (_sum(counted[f"{part}_{word}_kg"] * counted["quantity"]) for word in ("light", "nominal", "heavy"))
     return Bounds(light, nominal, heavy)
 
 
@@ -119,7 +144,5 @@ def likely_groups(counted: pd.DataFrame) -> list[Bounds]:
     if counted.empty:
         return []
     # Rows without a section of ours (stated masses) have nothing that ties them together but their text.
-    sums = counted.groupby(["section", "material"], sort=False, dropna=False)[
-        ["total_light_kg", "total_nominal_kg", "total_heavy_kg"]
-    ].sum()
-    return [Bounds(light, nominal, heavy) for light, nominal, heavy in sums.itertuples(index=False)]
+    codes: Ints = counted.groupby(["section", "material"], sort=False, dropna=False).ngroup().to_numpy().astype("int64")
+    return [Bounds(light, nominal, heavy) for light, nominal, heavy in _sums(counted[_MASSES], codes, int(codes.max()) + 1)]

@@ -1,4 +1,4 @@
-"""The page's loads: each vehicle's deck in plan, its axles against their limits, its lashings, and what is on no vehicle. Rank 9."""
+"""The page's loads: each vehicle in plan and from its side, axles against limits, lashings, and what is on no vehicle. Rank 9."""
 
 from __future__ import annotations
 
@@ -67,6 +67,9 @@ def _block(number: int, load: Load, units: Units) -> Block:
     figure = _deck(load, units)
     if figure is not None:
         block.figures.append(figure)
+    side = _side(load, units)
+    if side is not None:
+        block.figures.append(side)
     curve = _curve(load, units)
     if curve is not None:
         block.figures.append(curve)
@@ -147,6 +150,28 @@ def _deck(load: Load, units: Units) -> Figure | None:
     return Figure(
         drawings.deck(placed, deck[0], deck[1], title),
         f"{title}, to scale. Numbers as in the table; a heavier outline lies on another piece.",
+        wide=True,
+    )
+
+
+def _side(load: Load, units: Units) -> Figure | None:
+    """The deck from its left side, where the deck and the places on it are known."""
+    deck = load.vehicle.deck
+    standing = []
+    for number, p in enumerate(load.pieces, 1):
+        if p.x is not None and p.y is not None and p.unit.size is not None:
+            length, _, height = p.unit.on_deck(p.turned)
+            standing.append(drawings.Standing(number, p.x, p.y, p.z, length, height, p.layer))
+    if deck is None or not standing:
+        return None
+    beyond = max(p.x + p.length for p in standing) - deck[0]
+    rear = f"rear overhang {_long(beyond, units)}" if beyond > 0.5 else ""
+    title = f"Load of {shown(load.name)} from its left side, load height limit {_long(deck[2], units)} above the deck, front to the left"
+    if rear:
+        title += f", {rear}"
+    return Figure(
+        drawings.deck_side(standing, deck[0], deck[2], title, (f"load height limit {_long(deck[2], units)}", rear)),
+        f"{title}, to scale. Numbers as in the table, where there is room; a heavier outline lies on another piece.",
         wide=True,
     )
 

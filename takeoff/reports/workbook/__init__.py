@@ -9,8 +9,8 @@ from __future__ import annotations
 from pathlib import Path
 from typing import TYPE_CHECKING
 
-from takeoff.reports.workbook import basis, changes, charts, lists, loads, perlist, picks, schedule, summary, temperatures
-from takeoff.reports.workbook.sheet import CHANGES, LOADS, PICKS, SCHEDULE, SHEETS, Book
+from takeoff.reports.workbook import basis, changes, charts, lists, loads, perlist, pickdrawings, picks, schedule, summary, temperatures
+from takeoff.reports.workbook.sheet import CHANGES, DRAWINGS, LOADS, PICKS, SCHEDULE, SHEETS, Book
 
 if TYPE_CHECKING:
     from takeoff.pipeline import Result
@@ -31,6 +31,8 @@ def write_workbook(result: Result, path: str | Path, against: Comparison | None 
             book.add(name)
             for list_name in perlist.names(result) if name == SCHEDULE else ():
                 book.add(list_name)
+            if name == PICKS and pickdrawings.drawn(result):
+                book.add(DRAWINGS)
             if name == PICKS and result.loads is not None:
                 book.add(LOADS)
             if name == PICKS and result.temperatures is not None:
@@ -41,7 +43,7 @@ def write_workbook(result: Result, path: str | Path, against: Comparison | None 
         plan = schedule.plan_for(result)
         bases = basis.lay_out(book, result, plan)
         schedule.write(book, result, plan, bases.basis_rows)
-        pick_cells = picks.write(book, result, plan)
+        pick_cells = picks.write(book, result, plan, pickdrawings.write(book, result))
         if result.temperatures is not None:
             temperatures.write(book, result)
         lists.write_not_weighed(book, result)

@@ -124,8 +124,7 @@ class Block:
     def links(self, targets: Sequence[tuple[str, int] | None], style: str = "link", blank: str = "cell") -> None:
         """Numbers that lead to another place of the workbook, ``("'Basis'!A4", 3)``; None is a blank cell.
 
-        The targets are the program's own, never text of a list. A long list's links are formulas: a sheet may have only so
-        many of the other kind.
+        In a long list they are numbers alone: a sheet may have only so many links.
         """
         column, letter = self._place()
         if not self.quick:
@@ -136,13 +135,9 @@ class Block:
                     self.sheet.link(row, column, *target, style)
             self.columns.append([])
             return
-        linked, empty = (str(self.sheet.styles[name]._get_xf_index()) for name in (style, blank))
-        known = {
-            target: f' s="{linked}"><f>HYPERLINK("#{target[0]}",{target[1]})</f><v>{target[1]}</v></c>'
-            for target in dict.fromkeys(targets) if target is not None
-        }
+        shown, empty = (str(self.sheet.styles[name]._get_xf_index()) for name in ("whole", blank))
         self.columns.append([
-            f'<c r="{letter}{number}" s="{empty}"/>' if target is None else f'<c r="{letter}{number}"{known[target]}'
+            f'<c r="{letter}{number}" s="{empty}"/>' if target is None else f'<c r="{letter}{number}" s="{shown}"><v>{target[1]}</v></c>'
             for number, target in zip(self.numbers_of_rows, targets, strict=True)
         ])
 

@@ -1,4 +1,4 @@
-"""The sheet of vehicle loads: each vehicle's loading list, its axles and lashings, and what is on no vehicle. Rank 9.
+"""The sheet of vehicle loads: each vehicle's loading list and views to scale, its axles and lashings, and what is on no vehicle. Rank 9.
 
 Payloads and axle loads are live: the sum of the rows above them, and of mass times the share that statics gives its place.
 """
@@ -10,6 +10,7 @@ from typing import TYPE_CHECKING
 from takeoff.reports import rounding
 from takeoff.reports.loadsheet import vehicles_words
 from takeoff.reports.wording import counted, shown
+from takeoff.reports.workbook import loaddrawings
 from takeoff.reports.workbook.sheet import LOADS, Book, Sheet, letters
 from takeoff.transport import CAUTIONS
 
@@ -26,7 +27,7 @@ def write(book: Book, result: Result) -> None:
     plan = result.loads
     assert plan is not None
     sheet = book.sheets[LOADS]
-    sheet.widths(list(_WIDTHS))
+    sheet.widths([*_WIDTHS, 3, *[11] * loaddrawings.COLUMNS])
     sheet.height(0, 24)
     sheet.text(0, 0, f"{LOADS}: {book.title}", "title")
     sheet.text(1, 0, book.subtitle or None, "subtitle")
@@ -40,10 +41,17 @@ def write(book: Book, result: Result) -> None:
         sheet.long_text(row, (0, len(_WIDTHS) - 1), text, "quiet wrap")
         row += 1
     row = _not_loaded(sheet, plan, row + 1)
+    pictured = [number for number, load in enumerate(plan.loads) if loaddrawings.drawn(load)]
+    more = len(pictured) - loaddrawings.MOST_VEHICLES
+    if more > 0:
+        text = f"Plan and side view are drawn for the first {loaddrawings.MOST_VEHICLES} vehicles; {counted(more, 'vehicle')} more without."
+        sheet.long_text(row, (0, len(_WIDTHS) - 1), text, "quiet wrap")
+        row += 2
     starts = []
-    for load in plan.loads:
+    for number, load in enumerate(plan.loads):
         starts.append(row)
-        row = _load(sheet, load, row) + 1
+        row = _load(sheet, load, row, starts, drawn=number in pictured[: loaddrawings.MOST_VEHICLES]) + 1
+    sheet.raw.print_area(0, 0, row, len(_WIDTHS) - 1)
     sheet.paginate(len(_WIDTHS), starts, row)
 
 
@@ -63,15 +71,18 @@ def _not_loaded(sheet: Sheet, plan: Plan, row: int) -> int:
     return row + 2
 
 
-def _load(sheet: Sheet, load: Load, row: int) -> int:
+def _load(sheet: Sheet, load: Load, row: int, starts: list[int], *, drawn: bool) -> int:
     units, unit = sheet.book.units, sheet.book.mass_unit
     size = "mm" if units == "si" else "in"
 
     def kg(value: float) -> float:
         return rounding.in_mass_unit(value, units)
 
+    def to_size(value: float) -> float:
+        return value / rounding.MM_PER_IN if units == "us" else value
+
     def mm(value: float | None) -> float | None:
-        return None if value is None else value / rounding.MM_PER_IN if units == "us" else value
+        return None if value is None else to_size(value)
 
     length_style = "size us" if units == "us" else "size"
     sheet.heading(row, f"{shown(load.name)}: {counted(len(load.pieces), 'unit')}", len(_WIDTHS))
@@ -92,6 +103,9 @@ def _load(sheet: Sheet, load: Load, row: int) -> int:
     )
     for column, text in enumerate(heads):
         sheet.text(row, column, text, "head" if column in (1, 11) else "head right")
+    pictured = dict(loaddrawings.drawn(load)) if drawn else {}
+    if pictured:
+        loaddrawings.heads(sheet, row, size)
     first = row + 1
     for number, p in enumerate(load.pieces, 1):
         row += 1
@@ -106,10 +120,14 @@ def _load(sheet: Sheet, load: Load, row: int) -> int:
         sheet.number(row, _CENTRE, mm(p.centre[0]) if p.centre else None, length_style)
         sheet.number(row, 10, kg(p.unit.mass.light), "mass")
         sheet.text(row, 11, p.unit.phase, "cell")
+        if number in pictured:
+            loaddrawings.corners(sheet, row, number, p, to_size, length_style)
     row += 1
     sheet.texts(row, 0, (None, "dunnage and lashing gear"), "cell")
     sheet.number(row, _KG, kg(load.dunnage_kg), "mass")
     dunnage = row
+    if pictured:
+        loaddrawings.frame(sheet, row, load, to_size, length_style)
     row += 1
     masses = f"{letters(_KG)}{first + 1}:{letters(_KG)}{dunnage}"
     sheet.texts(row, 0, (None, f"payload (limit {rounding.mass_with_unit(load.vehicle.payload_kg, 'down', units)})"), "total")
@@ -117,6 +135,16 @@ def _load(sheet: Sheet, load: Load, row: int) -> int:
     row += 1
     if load.axles and load.vehicle.statics is not None and load.vehicle.deck is not None:
         row = _axles(sheet, load, row, masses, f"{letters(_CENTRE)}{first + 1}:{letters(_CENTRE)}{dunnage}", f"{letters(_KG)}{dunnage + 1}")
+    if pictured:
+        undrawn = loaddrawings.left_out(load)
+        if undrawn:
+            _line(sheet, row, "Drawn below", f"the first {len(pictured)} pieces with a place; {counted(undrawn, 'piece')} more not drawn")
+            row += 1
+        text = "to scale; numbers as in the list, where there is room; a heavier outline lies on another piece"
+        _line(sheet, row, "Plan and side view", text)
+        row, views = loaddrawings.views(sheet, load, row + 1, first, dunnage, to_size, size)
+        starts += [*views, row]
+        row += 1
     for x in load.lashings:
         angle = "" if x.angle_deg is None else f" at {x.angle_deg:g}°"
         spots = (

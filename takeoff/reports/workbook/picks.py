@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
@@ -31,8 +31,15 @@ class PickCells:
     force: str
 
 
-def write(book: Book, result: Result, plan: Plan) -> list[PickCells]:
-    """Write the sheet; returns where each pick's figures stand, in the order of `result.picks`."""
+#: a formula holds no longer text
+_LONGEST_LITERAL = 250
+
+
+def write(book: Book, result: Result, plan: Plan, drawn: Mapping[int, str] | None = None) -> list[PickCells]:
+    """Write the sheet; returns where each pick's figures stand, in the order of `result.picks`.
+
+    `drawn` says by a pick's number where its drawings are, such as ``'Drawings'!A8``.
+    """
     sheet = book.sheets[PICKS]
     sheet.widths([40, 9, 14, 52, 44, 16])
     sheet.height(0, 24)
@@ -47,21 +54,23 @@ def write(book: Book, result: Result, plan: Plan) -> list[PickCells]:
         sheet.text(row, 0, "No picks: the list names no assembly.", "text")
     cells, names = [], _names(result, plan)
     starts = []
-    for pick in result.picks:
+    for number, pick in enumerate(result.picks):
         starts.append(row)
-        row, found = _pick(sheet, names, pick, plan, row)
+        row, found = _pick(sheet, names, pick, plan, row, (drawn or {}).get(number))
         cells.append(found)
     sheet.paginate(_COLUMNS, starts, row)
     return cells
 
 
-def _pick(sheet: Sheet, names: Names, pick: Pick, plan: Plan, row: int) -> tuple[int, PickCells]:
+def _pick(sheet: Sheet, names: Names, pick: Pick, plan: Plan, row: int, drawn: str | None) -> tuple[int, PickCells]:
     units, unit = sheet.book.units, sheet.book.mass_unit
 
     def kg(value: float) -> float:
         return rounding.in_mass_unit(value, units)
 
     sheet.heading(row, f"{shown(pick.name)}: {counted(pick.pieces, 'piece')}", _COLUMNS)
+    if drawn is not None:
+        sheet.link(row, _SOURCE, drawn, "Plan and elevation, drawn to scale", "block link")
     row += 1
     if pick.not_weighed:
         sheet.text(
@@ -176,6 +185,8 @@ def _sum_of_rows(names: Names, pick: Pick, plan: Plan, word: str) -> str | None:
     """A live sum over the pick's rows; None where no formula can tell its name from another."""
     # The name stands in the formula itself: the block's heading holds more than the name.
     if pick.listed is None:
+        return None
+    if len(pick.name) > _LONGEST_LITERAL:
         return None
     literal = '"' + cell_text(pick.name).replace('"', '""') + '"'
     return plan.one_of(names, pick.name, literal, f"total_{word}_kg")

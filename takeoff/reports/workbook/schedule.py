@@ -229,7 +229,7 @@ def _top(sheet: Sheet, book: Book, result: Result, plan: Plan) -> None:
     )
     units = book.units
     for row, label, function, style in (
-        (TOTAL, "Total, all rows weighed", "SUM(", "total"), (_SHOWN, "Of the rows the filter shows", "SUBTOTAL(109,", "shown"),
+        (TOTAL, "Total of the rows weighed", "SUM(", "total"), (_SHOWN, "Of the rows the filter shows", "SUBTOTAL(109,", "shown"),
     ):
         for index, column in enumerate(plan.columns):
             if column.key == "quantity" and row == TOTAL:
@@ -286,8 +286,9 @@ class _Columns:
 
     def _masses(self, key: str, part: slice) -> list[float]:
         """A column of masses in the unit they are printed in."""
-        masses: list[float] = rounding.in_mass_unit(self.frame[key].to_numpy(dtype=float)[part], self.book.units).tolist()
-        return masses
+        units = self.book.units
+        masses: list[float] = self.frame[key].to_numpy(dtype=float)[part].tolist()
+        return masses if units == "si" else [rounding.in_mass_unit(mass, units) for mass in masses]
 
     def _masses_weighed(self, key: str, part: slice) -> list[float | None]:
         return [m if w else None for m, w in zip(self._masses(key, part), self._weighed[part].tolist(), strict=True)]

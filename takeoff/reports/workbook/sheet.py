@@ -23,7 +23,7 @@ if TYPE_CHECKING:
 SUMMARY, CHARTS, SCHEDULE, PICKS = "Summary", "Charts", "Weight schedule", "Picks"
 NOT_WEIGHED, ASSUMPTIONS, BASIS = "Not weighed", "Assumptions", "Basis and sources"
 #: sheets that are there where there is something for them
-LOADS, CHANGES = "Loads", "Changes"
+LOADS, CHANGES, DRAWINGS = "Loads", "Changes", "Drawings"
 SHEETS = (SUMMARY, CHARTS, SCHEDULE, PICKS, NOT_WEIGHED, ASSUMPTIONS, BASIS)
 
 #: what a spreadsheet cell can hold
@@ -46,6 +46,7 @@ _STYLES: dict[str, dict[str, Any]] = {
     "bold wrap": {"bold": True, "text_wrap": True},
     "title": {"bold": True, "font_size": 17}, "subtitle": {"font_size": 11, "font_color": QUIET},
     "block": {"bold": True, "font_size": 12, "bottom": 2, "bottom_color": INK},
+    "block link": {"indent": 1, "bottom": 2, "bottom_color": INK, "underline": 1, "align": "left"},
     "head": {
         "bold": True, "text_wrap": True, "bg_color": HEAD, "bottom": 1, "bottom_color": INK, "valign": "bottom",
         "align": "left", "indent": 1,
@@ -306,6 +307,10 @@ class Sheet:
             used = (used + height) % room
         self.raw.set_print_scale(int(100 * scale))
         self.raw.set_h_pagebreaks(breaks[:1000])  # the format takes few more
+
+    def tall(self, start: int, stop: int) -> float:
+        """How tall the rows from `start` to before `stop` are, in points."""
+        return self._height(start, stop)
 
     def _height(self, start: int, stop: int) -> float:
         return sum(self._heights.get(row, _ROW) for row in range(start, stop))
