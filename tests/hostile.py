@@ -10,7 +10,7 @@ LINKS = "http://schemas.openxmlformats.org/officeDocument/2006/relationships"
 STRICT = {MAIN: "http://purl.oclc.org/ooxml/spreadsheetml/main", LINKS: "http://purl.oclc.org/ooxml/officeDocument/relationships"}
 HEADINGS = ("Mark", "Quantity", "Section", "Material", "Length (mm)")
 
-WORKBOOK = f'<?xml version="1.0"?><workbook xmlns="{MAIN}" xmlns:r="{LINKS}"><sheets><sheet name="List" sheetId="1" r:id="rId1"/></sheets></workbook>'
+WORKBOOK = f'<?xml version="1.0"?><workbook xmlns="{MAIN}" xmlns:r="{LINKS}"><sheets><sheet name="List" sheetId="1" r:id="rId1"/></sheets></workbook>'  # noqa: E501
 RELATIONS = (
     '<?xml version="1.0"?><Relationships xmlns="http://schemas.openxmlformats.org/package/2006/relationships">'
     f'<Relationship Id="rId1" Type="{LINKS}/worksheet" Target="worksheets/sheet1.xml"/></Relationships>'
