@@ -6,10 +6,12 @@ read (a table; an error where no list is left). The example rows are invented. N
 
 from __future__ import annotations
 
+import datetime
 import re
 from dataclasses import dataclass, field
 from pathlib import Path
 
+import openpyxl
 import pytest
 
 from takeoff import pipeline
@@ -223,3 +225,63 @@ def test_trap(trap: Trap, tmp_path: Path) -> None:
         assert account[part] == count, (account, detail)
     if A in trap.status:
         assert any(f.level == "assumed" for f in result.all_findings())
+
+
+def _book(path: Path, rows: list[list[object]]) -> openpyxl.Workbook:
+    book = openpyxl.Workbook()
+    sheet = book.active
+    assert sheet is not None
+    sheet.append(["Mark", "Qty", "Section", "Material", "Length (mm)"])
+    for row in rows:
+        sheet.append(row)
+    book.save(path)
+    return book
+
+
+@pytest.fixture
+def book(tmp_path: Path) -> Path:
+    _book(tmp_path / "list.xlsx", [["A", 1, "UB 203x133x25", "S355", 6000], ["B", 2, "UB 203x133x25", "S355", 3000]])
+    return tmp_path / "list.xlsx"
+
+
+def test_trap_031_rows_hidden_by_a_filter(book: Path) -> None:
+    """Hidden rows are read like the others, and their number is said."""
+    opened = openpyxl.load_workbook(book)
+    opened.worksheets[0].row_dimensions[3].hidden = True
+    opened.save(book)
+    result = pipeline.schedule([book])
+    assert result.members["status"].tolist() == [W, W]
+    assert [f.count for f in result.findings if f.kind == "hidden-rows"] == [1]
+
+
+def test_trap_066_a_time_in_a_length_cell(book: Path) -> None:
+    """A time or a date is no length: the row is refused."""
+    opened = openpyxl.load_workbook(book)
+    opened.worksheets[0]["E2"] = datetime.time(5, 0)
+    opened.worksheets[0]["E3"] = datetime.date(2026, 5, 1)
+    opened.save(book)
+    assert pipeline.schedule([book]).members["status"].tolist() == [N, N]
+
+
+def test_trap_107_a_number_merged_over_rows(book: Path) -> None:
+    """One quantity over two rows belongs to neither alone: both are refused."""
+    opened = openpyxl.load_workbook(book)
+    opened.worksheets[0].merge_cells("B2:B3")
+    opened.save(book)
+    result = pipeline.schedule([book])
+    assert result.members["status"].tolist() == [N, N]
+    assert "merged-number" in {f.kind for f in result.all_findings()}
+
+
+MORE = [
+    Trap(32, "bought parts repeated in a second table", H + ROW + "\nName;Qty;Section;Material;Length (mm)\nA1;2;" + BEAM + ";6000\n", [W, W]),
+    Trap(65, "a size that may be meant in cm is taken as typed", H + "A;1;Board 80x60;C24;2000\n", [W], kg=0.08 * 0.06 * 2 * 420),
+    Trap(67, "a stud's height is its length", "Mark;Qty;Section;Material;Height (mm)\nA;4;45x95;C24;2400\n", [A], length=[2400], kinds=("height-as-length",)),
+    Trap(113, "text from right to left is kept as it stands", H + "\u05e6\u05d9\u05e8 1;1;" + BEAM + ";1000\n", [W], kg=KG),
+]
+
+
+@pytest.mark.parametrize("trap", MORE, ids=lambda t: f"{t.number:03d} {t.what}")
+def test_further_trap(trap: Trap, tmp_path: Path) -> None:
+    """As above."""
+    test_trap(trap, tmp_path)
