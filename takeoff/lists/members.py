@@ -14,7 +14,7 @@ from typing import TYPE_CHECKING, Any
 from takeoff import materials, sections
 from takeoff.job import Job
 from takeoff.lists import counts, positions, rowwords, temperatures
-from takeoff.lists.columns import ColumnReader, as_text, unit_of_column
+from takeoff.lists.columns import ColumnReader, as_text
 from takeoff.lists.log import FindingLog
 from takeoff.lists.tables import SheetReading, Table, is_blank
 from takeoff.names import normal_name
@@ -383,6 +383,3 @@ def _say_row_words(reader: ColumnReader) -> None:
             reader.members.log.add(finding, [reader.start + i])
             if finding.level == "refused":
                 reader.members.refused.setdefault(reader.start + i, finding.message)
-
-
-__all__ = ["Members", "build", "unit_of_column"]

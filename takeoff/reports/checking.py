@@ -7,8 +7,8 @@ from typing import TYPE_CHECKING, Any
 
 from takeoff.jobwriter import JobLine
 from takeoff.jobwriter import shown as shown_lines
+from takeoff.lists.columns import unit_of_column
 from takeoff.lists.headings import MEASURES
-from takeoff.lists.members import unit_of_column
 from takeoff.lists.tables import Column, Table
 from takeoff.reports.plainpage import Page
 from takeoff.reports.wording import counted, listed, shown

@@ -81,19 +81,6 @@ def direct_sliding_holds(
     return held >= weight * (c - share * mu) * (1 - 1e-12)
 
 
-def direct_tilting_holds(
-    mass_kg: float,
-    c: float,
-    across_mm: float,
-    up_mm: float,
-    lashings: Sequence[tuple[float, float, float, float, float]],
-) -> bool:
-    """Moments about the tilting edge: each lashing as (force kN, downward part, its lever mm, opposing part, its height mm)."""
-    weight = mass_kg * GRAVITY / 1000.0
-    held = sum(force * (down * lever + along * height) for force, down, lever, along, height in lashings)
-    return held >= weight * (c * up_mm - across_mm) * (1 - 1e-12)
-
-
 def blocking_kN(mass_kg: float, c: float, mu: float, factor: float = 1.0) -> float:
     """What a headboard, bar or chock must hold; `factor` is an extra margin some documents ask for."""
     return max(0.0, (c - mu) * mass_kg * GRAVITY / 1000.0 * factor)
