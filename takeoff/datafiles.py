@@ -7,11 +7,15 @@ not map them, so both places are looked in, the package first.
 from __future__ import annotations
 
 import csv
+import stat
 from collections.abc import Iterator
 from functools import cache
 from pathlib import Path
 
-from takeoff.errors import DataError
+from takeoff.errors import DataError, InputError, TakeoffError
+
+#: a job file, a table of one's own or an earlier record of the run is not larger than this
+MOST_MEGABYTES = {"job": 4, "table": 20, "record": 2_000}
 
 
 @cache
@@ -22,6 +26,23 @@ def data_folder() -> Path:
         if (folder / "sources.csv").is_file():
             return folder
     raise DataError("the tables are missing from this installation", file=package / "data", right="install the package again")
+
+
+def refuse_odd_file(path: Path, what: str, kind: str, error: type[TakeoffError] = InputError) -> None:
+    """Before a file that the user named is opened: whether there is one, an ordinary one, of a size that is read.
+
+    what : how a message calls it, such as ``the job file``; kind : a key of MOST_MEGABYTES. A pipe or device may never end.
+    Raises `error` (InputError) saying so.
+    """
+    try:
+        status = path.stat()
+    except (OSError, ValueError) as failed:
+        why = "there is no such file" if isinstance(failed, FileNotFoundError) else getattr(failed, "strerror", None) or str(failed)
+        raise error(f"{what} cannot be read ({why})", file=path) from failed
+    if not stat.S_ISREG(status.st_mode):
+        raise error(f"{what} is no ordinary file", file=path, right="the name of a file")
+    if status.st_size > MOST_MEGABYTES[kind] * 1e6:
+        raise error(f"{what} is {status.st_size / 1e6:,.1f} MB, more than is read", file=path, right=f"at most {MOST_MEGABYTES[kind]:,} MB")
 
 
 def read_table(path: Path) -> Iterator[tuple[int, dict[str, str]]]:

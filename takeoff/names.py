@@ -20,6 +20,16 @@ _DIGITS = re.compile(r"\d+(?:[.,]\d+)?")
 _INVISIBLE = re.compile(r"[\u00ad\u200b-\u200f\u202a-\u202e\u2060-\u2064\u2066-\u2069\ufeff]")
 
 
+def first_twice(names: Sequence[str | None]) -> int | None:
+    """The place of the first name that stands earlier already; None where each stands once."""
+    seen: set[str | None] = set()
+    for number, name in enumerate(names):
+        if name in seen:
+            return number
+        seen.add(name)
+    return None
+
+
 def plain_text(text: str) -> str:
     """Text without marks that have no look of their own: soft hyphens, zero-width and direction signs; blanks made plain."""
     return " ".join(_INVISIBLE.sub("", unicodedata.normalize("NFKC", text)).split())

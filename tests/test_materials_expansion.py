@@ -179,3 +179,31 @@ def test_the_printed_means_of_a_row_are_continuous() -> None:
     assert found is not None
     assert found.elongation(300) == pytest.approx(280 * 17.0e-6)
     assert found.elongation(250) == pytest.approx(230 * 16.75e-6)
+
+
+def test_a_row_with_printed_means_goes_by_them_above_100_degrees() -> None:
+    """Ferritic 1.4512 (mean 12.0 to 400 °C), duplex 1.4162 (14.0 to 300 °C), heat-resisting 1.4845 (15.5 to 200, 18.0 to 800 °C)."""
+    printed = [("1.4512", 400, 12.0), ("1.4162", 300, 14.0), ("1.4057", 400, 10.5), ("1.4845", 200, 15.5), ("1.4845", 800, 18.0)]
+    for key, to_C, mean in printed:
+        found = elongation(by_key(key), to_C)
+        assert found.value == pytest.approx(mean * 1e-6 * (to_C - 20), rel=0.01), key
+        assert found.within_validity
+    assert elongation(by_key("1.4845"), -196).within_validity
+
+
+def test_low_alloy_steels_go_on_above_100_degrees() -> None:
+    """Quenched and case-hardening steels have the group means of older tables, 12.1 to 200 and 14.1 to 600 °C, within 4 %."""
+    for key in ("16mncr5", "51crv4", "30crnimo8"):
+        for to_C, mean in ((200, 12.1), (300, 12.9), (500, 13.9), (600, 14.1)):
+            found = elongation(by_key(key), to_C)
+            assert found.within_validity
+            assert found.value == pytest.approx(mean * 1e-6 * (to_C - 20), rel=0.04), (key, to_C)
+
+
+@pytest.mark.parametrize("key", ["3103", "5005", "5754", "6005a", "6060", "6063", "6082", "7020", "8011a", "5083"])
+def test_wrought_alloys_of_the_structural_code_follow_its_curve(key: str) -> None:
+    """EN 1999-1-2: 0.1e-7 T² + 22.5e-6 T - 4.5e-4, from 100 to 300 °C 4.5e-3 + 0.8e-3 more; the row's own coefficient to 100 °C."""
+    here, there = elongation(by_key(key), 300), elongation(by_key(key), 100)
+    assert here.within_validity
+    assert here.value is not None
+    assert here.value - there.value == pytest.approx(22.5e-6 * 200 + 1e-8 * (300**2 - 100**2), rel=1e-6)

@@ -158,3 +158,186 @@ def test_case_blanks_and_hyphens_do_not_matter(key: str, change) -> None:  # typ
     """A key is found however it is cased and spaced."""
     found = lookup(change(key))
     assert key in ([found.material.key] if found.material else [c.key for c in found.candidates])
+
+
+@pytest.mark.parametrize(
+    ("text", "key"),
+    [
+        ("1.0114 S235J0", "s235"), ("1.4301 X5CrNi18-10", "1.4301"), ("1.4305 (303)", "1.4305"), ("X5CrNi18-10 (1.4301)", "1.4301"),
+        ("duplex 2205 1.4462", "1.4462"), ("Edelstahl 1.4301 AISI 304", "1.4301"), ("EN AW-5754 [AlMg3]", "5754"),
+        ("EN AW-6082 AlSi1MgMn T6", "6082"), ("5.1301 (EN-JL1040)", "gjl-250"), ("S355J2+N 1.0577", "s355"), ("St 52-3 (S355J2)", "s355"),
+        ("lamellé-collé GL24h", "glulam-gl24h"), ("BSH GL28h", "glulam-gl28h"), ("CW614N CuZn39Pb3", "cw614n"), ("C45 1.0503", "c45"),
+        ("1.7225 42CrMo4+QT", "42crmo4"), ("acier inox 316L 1.4404", "1.4404"),
+    ],
+)  # fmt: skip
+def test_several_names_of_one_material_name_it(text: str, key: str) -> None:
+    """A number and a short name of the same grade, side by side or in brackets, are one material; the clash of one is settled."""
+    found = lookup(text)
+    assert found.match == "alias", found
+    assert found.material is not None
+    assert found.material.key == key
+
+
+@pytest.mark.parametrize(
+    "text", ["1.4301 1.4404", "S235JR S355J2", "1.4301 X5CrNiMo17-12-2", "oak beech", "1.0114 S235J9", "C35 C45", "copper aluminium"]
+)
+def test_names_of_different_materials_name_none(text: str) -> None:
+    """Two grades in one text, or a grade beside something unknown, are not taken for the one that is known."""
+    found = lookup(text)
+    assert found.match in ("none", "ambiguous")
+    assert found.material is None
+
+
+@pytest.mark.parametrize(
+    ("text", "key"),
+    [
+        ("6082T6", "6082"), ("6082T651", "6082"), ("6061T6", "6061"), ("AA6061", "6061"), ("AA 6061-T6", "6061"), ("AA7075-T651", "7075"),
+        ("5083H111", "5083"), ("5083-O", "5083"), ("5083 O", "5083"), ("5754 H22", "5754"), ("AlMgSi0.5 F22", "6060"),
+        ("AlMgSi1 F31", "6082"),
+        ("AlMg3 W19", "5754"), ("AlMgSi0,5 F25", "6060"), ("1050A-H14", "1050a"), ("6060 T66", "6060"), ("EN AW 6060T66", "6060"),
+    ],
+)  # fmt: skip
+def test_tempers_of_aluminium_change_nothing(text: str, key: str) -> None:
+    """A temper, written on or beside the alloy, new or old, leaves the alloy."""
+    found = lookup(text).material
+    assert found is not None
+    assert found.key == key
+
+
+@pytest.mark.parametrize(
+    ("text", "key"),
+    [
+        ("LC25/28 D1.6", "concrete-lightweight-16"), ("LC 30/33 D1,8", "concrete-lightweight-18"),
+        ("lightweight concrete D1.4", "concrete-lightweight-14"),
+        ("Leichtbeton LC20/22 D 1,6", "concrete-lightweight-16"), ("LC25/28", None),
+    ],
+)  # fmt: skip
+def test_the_density_class_of_lightweight_concrete_decides(text: str, key: str | None) -> None:
+    """EN 206 density classes are rows of the table; a strength class alone leaves them open."""
+    found = lookup(text)
+    assert (found.material.key if found.material else None) == key
+    assert found.match == ("alias" if key else "ambiguous")
+
+
+@pytest.mark.parametrize("text", ["bruc", "titel", "tyle", "stel", "fhir", "oks"])
+def test_short_words_are_no_near_misses(text: str) -> None:
+    """One letter in a short word is too much: `tile` is no utile."""
+    assert lookup(text).match in ("none", "ambiguous")
+
+
+@pytest.mark.parametrize(
+    "text",
+    [
+        "tile", "benzene", "silicon carbide", "silicon nitride", "gear oil", "glycol", "arenito", "phenolic", "Fe 410",
+    ],
+)  # fmt: skip
+def test_words_that_once_were_taken_for_something_lighter(text: str) -> None:
+    """Words that a similar name used to catch, now names of their own or open."""
+    found = lookup(text)
+    assert found.match in ("exact", "alias", "ambiguous")
+    lighter = ("utile", "petrol", "silicon", "glycerol", "silver", "spruce-norway", "1.4006")
+    assert found.material is None or found.material.key not in lighter
+
+
+@pytest.mark.parametrize(
+    ("text", "key"),
+    [
+        ("S235JR, galvanized", "s235"), ("steel S275, painted", "s275"), ("Steel, galvanised", "steel-structural"),
+        ("steel, mild", "steel-structural"),
+        ("granite, flamed", "granite"), ("oak, European", "oak-european"), ("European oak, sawn", "oak-european"),
+        ("steel (galv.)", "steel-structural"),
+        ("SS 304L 2B finish", "1.4307"), ("1.4301 K240", "1.4301"), ("A53-B ERW", "astm-a106"), ("A53 GR B SMLS", "astm-a106"),
+        ("ASTM A36/A36M", "astm-a36"), ("SA-240 304L", "1.4307"), ("ALUM 6061", "6061"), ("Cu-DHP R250", "cu-dhp"), ("DX51D Z275", "dx51d"),
+        ("C30/37 XC4", "concrete"), ("Beton C25/30 XC2 XF1", "concrete"), ("HA-25", "concrete-reinforced"),
+        ("hormigón HA-25", "concrete-reinforced"),
+        ("Rck 30", "concrete"), ("HDPE SDR11", "pe-hd"), ("PE100 SDR 17,6", "pe-hd"), ("PVC-U PN10", "pvc-u"),
+        ("VSG 66.2", "glass-laminated"),
+        ("VSG 2x8", "glass-laminated"), ("laminated glass 44.2", "glass-laminated"), ("lead sheet code 5", "lead"), ("code 4 lead", "lead"),
+        ("SPF #2", "spruce-pine-fir"), ("DF-L #2", "douglas-fir"), ("SYP #2 PT", "southern-pine"), ("Hem-Fir No. 2", "hemlock-western"),
+        ("zinc titanium", "zinc-sheet"), ("titanium zinc", "zinc-sheet"), ("ali", "aluminium-structural"),
+        ("alum.", "aluminium-structural"),
+        ("AH36", "s355"), ("clear polycarbonate", "pc"), ("Portland limestone", "limestone-generic"), ("Carrara marble", "marble"),
+        ("bright bar", "steel-structural"), ("St.St. 316", "1.4401"), ("water 20°C", "water-fresh"), ("A913 Gr 65", "astm-a992"),
+    ],
+)  # fmt: skip
+def test_marks_of_grade_product_and_finish_are_set_aside(text: str, key: str) -> None:
+    """What lists write behind a material: finishes after a comma, product standards, grades of wood, exposure classes, sizes."""
+    found = lookup(text)
+    assert found.match in ("exact", "alias"), found
+    assert found.material is not None
+    assert found.material.key == key
+
+
+@pytest.mark.parametrize(
+    ("text", "key"),
+    [
+        ("spruce C24", "spruce-norway"), ("Fichte C24", "spruce-norway"), ("C24 Fichte", "spruce-norway"),
+        ("KVH Fichte C24", "spruce-norway"),
+        ("Fichte S10", "spruce-norway"), ("larch C24", "larch-european"), ("oak D30", "oak-european"), ("vuren C18", "spruce-norway"),
+        ("BSH Fichte GL32h", "glulam-gl32h"), ("Douglas fir C24", "douglas-fir"), ("pine C50", "pine-scots"),
+    ],
+)  # fmt: skip
+def test_a_species_with_a_strength_class_is_the_heavier_of_the_two(text: str, key: str) -> None:
+    """Both are true of the piece; a class's mean can be far below its species (larch C24: 420 against 600)."""
+    found = lookup(text)
+    assert found.match == "alias", found
+    assert found.material is not None
+    assert found.material.key == key
+    assert "heavier" in found.reason
+
+
+@pytest.mark.parametrize(
+    "text",
+    [
+        "not oak, steel", "oak, steel", "spruce C24 steel", "C24 oak beech", "glass 66.2 steel", "titanium, zinc plated lead",
+    ],
+)  # fmt: skip
+def test_a_comma_or_a_class_joins_no_strangers(text: str) -> None:
+    """Two materials are two, with a comma or a class beside them."""
+    found = lookup(text)
+    assert found.material is None, found
+
+
+@pytest.mark.parametrize(
+    ("text", "key"),
+    [
+        ("Grauguss GG20", "gjl-200"), ("Sphäroguss GGG40", "gjs-400-15"), ("VA 1.4301", "1.4301"), ("Alublech AlMg3", "5754"),
+        ("Edelstahlblech 1.4571", "1.4571"), ("Messingblech CuZn37", "c27200"), ("madera de pino", "pine-scots"),
+        ("legno di abete", "spruce-norway"),
+        ("Eiche massiv", "oak-european"), ("chêne massif", "oak-european"), ("Sperrholz Birke", "plywood-birch"),
+        ("Kantholz C24", "timber-c24"),
+        ("drewno świerk", "spruce-norway"), ("Rotguss Rg7", "c93200"), ("rostfri plåt 1.4404", "1.4404"), ("chapa de aço S275", "s275"),
+    ],
+)  # fmt: skip
+def test_a_general_word_beside_a_grade_gives_way(text: str, key: str) -> None:
+    """A general name and a grade of the same group: the grade."""
+    found = lookup(text)
+    assert found.match == "alias", found
+    assert found.material is not None
+    assert found.material.key == key
+
+
+@pytest.mark.parametrize("text", ["Grauguss AlMg3", "Messing S235", "madera S235", "stainless oak", "glass C24"])
+def test_a_general_word_of_another_group_does_not(text: str) -> None:
+    """Brass S235 is nothing."""
+    assert lookup(text).material is None
+
+
+@pytest.mark.parametrize(
+    ("text", "key"),
+    [
+        ("1.4301/304", "1.4301"), ("304/1.4301", "1.4301"), ("X5CrNi18-10/1.4301", "1.4301"), ("S235JR/1.0038", "s235"),
+        ("1.4301 / AISI 304", "1.4301"), ("316L / 1.4404", "1.4404"), ("1.4301/1.4404", None), ("316/304", None), ("S355 / 6082", None),
+    ],
+)  # fmt: skip
+def test_a_slash_between_names_of_one_material(text: str, key: str | None) -> None:
+    """A number counts as a name beside a slash: one material, or several and then none of them."""
+    found = lookup(text)
+    assert (found.material.key if found.material else None) == key
+    assert found.match == ("alias" if key else "ambiguous")
+
+
+@pytest.mark.parametrize("text", ["316 kg", "304 mm", "12 off 304", "as per spec", "see drawing", "m2", "ladder", "ground", "si", "no. 2"])
+def test_remarks_units_and_things_name_no_material(text: str) -> None:
+    """What stands in a material column without being one is not taken for one, not even for a similar one."""
+    assert lookup(text).material is None

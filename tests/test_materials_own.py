@@ -84,9 +84,9 @@ def test_an_own_row_may_grow_by_a_law_of_ours(tmp_path: Path) -> None:
 
 def test_a_missing_own_table_and_a_folder_are_said(tmp_path: Path) -> None:
     """No file, or a folder in its place: an input error."""
-    with pytest.raises(InputError, match="no such table"):
+    with pytest.raises(InputError, match="there is no such file"):
         load_own(tmp_path / "none.csv")
-    with pytest.raises(InputError, match="no such table"):
+    with pytest.raises(InputError, match="no ordinary file"):
         load_own(tmp_path)
 
 

@@ -93,7 +93,7 @@ def test_sources_and_side_tables_point_at_rows_that_exist() -> None:
     used = set()
     for _, _, row in table().rows.values():
         used |= {row["density_source"], row["alpha_source"]}
-    for name in ("curves", "means", "directions", "green"):
+    for name in ("curves", "means", "directions", "green", "liquid_densities"):
         for _, row in read_table(data_folder() / f"{name}.csv"):
             used.add(row["source"])
             if name != "curves":

@@ -19,6 +19,7 @@ from takeoff.errors import TakeoffError
 from takeoff.materials.curves import curves
 from takeoff.materials.directions import directional_coefficients
 from takeoff.materials.laws import PRACTICE_C, laws, row_range
+from takeoff.materials.liquids import Points, density_ratio, liquid_points
 from takeoff.materials.material import Material
 from takeoff.materials.means import mean_points
 from takeoff.materials.water import WATERS
@@ -117,7 +118,7 @@ def elongation(material: Material, temperature_C: float, *, law: str | None = No
 
 
 def density_at(material: Material, temperature_C: float, *, law: str | None = None) -> DensityAt:
-    """Density at a temperature from the density at 20 °C; water and sea water by formula.
+    """Density at a temperature from the density at 20 °C; water and sea water by formula, other liquids by published points.
 
     Raises TakeoffError on an unknown law name, ValueError below absolute zero.
     """
@@ -125,6 +126,8 @@ def density_at(material: Material, temperature_C: float, *, law: str | None = No
         value, within, reason = WATERS[material.key](temperature_C)
         return DensityAt(None if value is None else Spread(value, value, value), within, reason)
     grown = elongation(material, temperature_C, law=law)
+    if not material.own and (points := liquid_points().get(material.key)):
+        return _by_points(material, points, temperature_C)
     if material.kind == "liquid":
         if temperature_C == REFERENCE_C:
             return DensityAt(material.density, True, "")
@@ -135,6 +138,17 @@ def density_at(material: Material, temperature_C: float, *, law: str | None = No
     density = material.density
     nominal = None if density.nominal is None else density.nominal / volume
     return DensityAt(Spread(density.low / volume, nominal, density.high / volume), grown.within_validity, grown.reason)
+
+
+def _by_points(material: Material, points: Points, temperature_C: float) -> DensityAt:
+    """The row's density carried along the points, from the temperature it is stated at (20 °C where none is)."""
+    stated = _STATED_C.match(material.density_condition)
+    ratio = density_ratio(points, float(stated.group(1)) if stated else REFERENCE_C, temperature_C)
+    if ratio is None:
+        reason = f"this liquid's density is published from {points[0][0]:g} to {points[-1][0]:g} °C only"
+        return DensityAt(None, False, reason)
+    low, nominal, high = material.density.low, material.density.nominal, material.density.high
+    return DensityAt(Spread(low * ratio, None if nominal is None else nominal * ratio, high * ratio), True, "")
 
 
 def _volume_at_reference(material: Material, law: str | None) -> float:

@@ -15,8 +15,10 @@ from typing import TYPE_CHECKING, Literal
 
 from takeoff.materials.material import Material
 from takeoff.materials.nameindex import fold
+from takeoff.materials.partings import Part, agreed, group_of, is_general, species_and_class
+from takeoff.materials.readings import readings, spellings
 from takeoff.materials.table import by_key, family_of, kind_of, name_of, table
-from takeoff.materials.words import METALS, PRODUCT_STANDARD, STRENGTH_CLASS, Words, condition, words
+from takeoff.materials.words import words
 from takeoff.names import NormalName, digits_of, has_hidden_marks, has_lookalikes, normal_name, plain_text, suggest
 
 if TYPE_CHECKING:
@@ -29,6 +31,12 @@ MAX_LENGTH = 120
 #: A suggestion at or above this score, in the lead by `LEAD` over the next other material, is taken as similar.
 SIMILAR, LEAD, FLOOR = 84.0, 4.0, 60.0
 _LONG_CODE = 8
+#: In a shorter word one letter makes another thing of it: tile and utile, a wood.
+_LONG_WORD = 7
+#: A number beside one of these is a size or a count, no grade: 304 mm.
+_UNITS = frozenset({"mm", "cm", "m", "kg", "g", "t", "lb", "lbs", "in", "ft", "m2", "m3", "l", "pcs", "stk", "off", "ea"})
+#: No more words than this are tried as several names of one material.
+_MOST_WORDS = 8
 _OR = r"[\s(]+(?:or|and|oder|und|ou|et|o|y|of|en|e)\s+|\s*[/&;|]\s*|\s+\+\s+|,\s+"
 
 
@@ -100,14 +108,19 @@ class _Search:
         self.own = own
 
     def run(self, name: NormalName) -> MaterialMatch:
-        for reading, allowed in _readings(name):
-            answer = self._named(reading, allowed, plain=reading == name)
+        spelled = spellings(name)
+        if self._finish_only(name):
+            return MaterialMatch(self.text, "none", 0.0, None, reason="the text names a finish, not what is under it")
+        for spelling in spelled:
+            for reading, allowed in readings(spelling):
+                answer = self._named(reading, allowed, plain=reading == name)
+                if answer:
+                    return answer
+        for spelling in spelled:
+            answer = self._together(spelling)
             if answer:
                 return answer
-        parts = self._parts()
-        if parts:
-            return parts
-        return self._suggested(name)
+        return self._parts() or self._suggested(name)
 
     # -- names that stand in a table -------------------------------------------------------------------------------
 
@@ -131,6 +144,19 @@ class _Search:
         candidates = tuple(Candidate(key, name_of(key), 100.0) for key in keys)
         return MaterialMatch(self.text, "ambiguous", 100.0, None, candidates, "several materials answer to this name")
 
+    def _finish_only(self, name: NormalName) -> bool:
+        """Whether the only name is that of a finish: `chrome plated`, `gold anodised`, `oak effect`."""
+        tokens = name.replace("-", " ").split()
+        surfaces = words().surfaces
+        for at, token in enumerate(tokens):
+            if at == 0 or token not in surfaces or table().index.find(name):
+                continue
+            keys = self._keys(NormalName(tokens[at - 1]))
+            others = [t for t in tokens[: at - 1] + tokens[at + 1 :] if t not in words().set_aside and t not in surfaces]
+            if keys and not others and not any(family_of(key) in surfaces[token] for key in keys):
+                return True
+        return False
+
     def _keys(self, name: NormalName) -> dict[str, bool]:
         clash = table().clashes.get(fold(name))
         if clash and (digits_of(name) == digits_of(normal_name(table().clash_names[fold(name)]))):
@@ -147,7 +173,7 @@ class _Search:
 
     def _parts(self) -> MaterialMatch | None:
         """Texts that name several materials (`PVC or aluminium tube`), or one among unknown words."""
-        pieces = [p for p in re.split(_OR, plain_text(self.text).casefold()) if not _says_nothing(normal_name(p))]
+        pieces = [p for p in re.split(_OR, plain_text(self.text).casefold()) if self._says_something(normal_name(p))]
         if len(pieces) < 2:
             return None
         answers = [self.within(normal_name(piece)) for piece in pieces[:6]]
@@ -161,9 +187,47 @@ class _Search:
             return MaterialMatch(self.text, "none", 50.0, None, candidates, "the text also names something unknown")
         return None
 
+    def _together(self, name: NormalName) -> MaterialMatch | None:
+        """A text made of several names of one material and nothing else: `1.4301 X5CrNi18-10`, `BSH GL24h`."""
+        for reading, allowed in readings(name):
+            tokens = reading.split()
+            if not 2 <= len(tokens) <= _MOST_WORDS:
+                continue
+            parted = list(self._partings(tokens, allowed))
+            common = agreed(parted)
+            if len(common) == 1:
+                return self._hit(self._row(next(iter(common))), exact=False)
+            for parts in parted:
+                both = species_and_class(parts)
+                if both:
+                    heavier = max(map(self._row, both), key=lambda m: m.density.nominal or m.density.high)
+                    return replace(self._hit(heavier, exact=False), reason="a species and a strength class: the heavier of the two")
+        return None
+
+    def _partings(self, tokens: list[str], allowed: frozenset[str] | None) -> Iterator[list[Part]]:
+        """Each way to part all the words into names that the table holds: the keys of every part."""
+        if not tokens:
+            yield []
+        for end in range(1, len(tokens) + 1):
+            keys = self._keys(NormalName(" ".join(tokens[:end])))
+            part = Part(key for key in keys if allowed is None or family_of(key) in allowed)
+            if part:
+                for rest in self._partings(tokens[end:], allowed):
+                    yield [part, *rest]
+
+    def _row(self, key: str) -> Material:
+        """The row of a key; the user's own where it takes the place of ours."""
+        mine = self.own.materials.get(key) if self.own else None
+        return mine or by_key(key)
+
+    def _says_something(self, name: NormalName) -> bool:
+        """Whether a piece of text holds more than shapes, finishes and numbers; or a number that is a name (`1.4301/304`)."""
+        tokens = name.split()
+        return any(t not in words().set_aside and any(c.isalpha() for c in t) for t in tokens) or bool(self._keys(name))
+
     def within(self, name: NormalName) -> tuple[str, ...]:
         """Keys of ours that this text names, as a whole or after words set aside."""
-        for reading, allowed in _readings(name):
+        for reading, allowed in readings(name):
             keys = self._keys(reading)
             if allowed is not None:
                 keys = {key: exact for key, exact in keys.items() if family_of(key) in allowed}
@@ -178,6 +242,8 @@ class _Search:
         tokens = name.split()
         if words().negations.intersection(tokens):
             return MaterialMatch(self.text, "none", 0.0, None, reason="the text says what it is not")
+        if words().more.intersection(tokens):
+            return MaterialMatch(self.text, "none", 0.0, None, reason="the text tells of something in, on or round the material")
         scores: dict[str, float] = {}
         digits = digits_of(name)
         index = table().index
@@ -190,8 +256,10 @@ class _Search:
         inside, sure = self._inside(tokens)
         ranked = sorted(scores.items(), key=lambda item: -item[1])
         # One letter more or less in a short designation is another designation: E24 and EN24.
-        short_code = bool(digits) and len(fold(name)) < _LONG_CODE
-        if ranked and ranked[0][1] >= SIMILAR and not short_code:
+        too_short = len(fold(name)) < (_LONG_CODE if digits else _LONG_WORD)
+        # Names of another group among the words: the likeness of the whole says nothing (`stainless oak`).
+        strangers = bool(ranked) and any(not is_general(k) and group_of(k) != group_of(ranked[0][0]) for k in inside)
+        if ranked and ranked[0][1] >= SIMILAR and not too_short and not strangers:
             fitting = [(k, s) for k, s in ranked if self.hint in (kind_of(k), family_of(k))] if self.hint else []
             lead = (fitting or ranked) if fitting and fitting[0][1] >= SIMILAR else ranked
             candidates = tuple(Candidate(k, name_of(k), s) for k, s in ranked[:5])
@@ -227,7 +295,8 @@ class _Search:
                 window = tokens[start : start + size]
                 phrase = NormalName(" ".join(window))
                 keys = self._keys(phrase) if len(phrase) > 2 else {}
-                if not keys:
+                number = not any(c.isalpha() for c in phrase)
+                if not keys or phrase == "per" or (number and _UNITS.intersection(tokens)):
                     continue
                 rest = tokens[:start] + tokens[start + size :]
                 unread = any(c.isdigit() for token in rest for c in token)
@@ -237,41 +306,3 @@ class _Search:
             if found:
                 return found, sure
         return {}, False
-
-
-def _says_nothing(name: NormalName) -> bool:
-    """Whether a piece of text holds no more than shapes, finishes and numbers."""
-    return all(token in words().set_aside or not any(c.isalpha() for c in token) for token in name.split())
-
-
-def _readings(name: NormalName) -> Iterator[tuple[NormalName, frozenset[str] | None]]:
-    """The name, then with less and less around it; each with the families its own words allow (None: any)."""
-    yield name, None
-    known = words()
-    seen: set[tuple[NormalName, frozenset[str] | None]] = {(name, None)}
-    for tokens, allowed in _reduced(condition().sub("", name).split(), known):
-        reading = (NormalName(" ".join(tokens)), allowed)
-        if tokens and reading not in seen:
-            seen.add(reading)
-            yield reading
-
-
-def _reduced(tokens: list[str], known: Words) -> Iterator[tuple[list[str], frozenset[str] | None]]:
-    """The tokens with standards' names, shapes and finishes, strength classes and general words set aside, in turn."""
-    yield tokens, None
-    headless = tokens
-    while headless and headless[0] in known.standards:
-        headless = headless[1:]
-        yield headless, None
-    if len(headless) > 1 and re.fullmatch(PRODUCT_STANDARD, headless[0]):
-        yield [t for t in headless[1:] if t not in known.standards], METALS
-    kept = [t for t in tokens if t not in known.set_aside]
-    yield kept, None
-    yield [t for t in kept if not re.fullmatch(STRENGTH_CLASS, t)], None
-    plain = [t for t in kept if t not in known.standards]
-    yield plain, None
-    groups = [known.groups[t] for t in plain if t in known.groups]
-    if groups:
-        allowed = frozenset.intersection(*groups) or frozenset.union(*groups)
-        yield [t for t in plain if t not in known.groups], allowed
-        yield [t for t in kept if t not in known.groups], allowed

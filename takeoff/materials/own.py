@@ -9,7 +9,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from pathlib import Path
 
-from takeoff.datafiles import read_table
+from takeoff.datafiles import read_table, refuse_odd_file
 from takeoff.errors import DataError, InputError
 from takeoff.materials.laws import laws
 from takeoff.materials.material import COLUMNS, REQUIRED, Material, material_from_row
@@ -34,8 +34,7 @@ def load_own(path: str | Path) -> OwnTable:
     check, or two rows answer to one name.
     """
     path = Path(path)
-    if not path.is_file():
-        raise InputError("there is no such table of materials", file=path, right="the path of a CSV file")
+    refuse_odd_file(path, "the table of materials", "table")
     rows = list(_rows(path))
     materials: dict[str, Material] = {}
     names: dict[str, list[str]] = {}
