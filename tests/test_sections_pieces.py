@@ -10,7 +10,6 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from takeoff.errors import DataError
 from takeoff.sections import columns, pieces, read, tolerances
 from takeoff.sections.section import Section
 
@@ -176,27 +175,24 @@ def test_an_end_cut_takes_off_what_a_clipped_prism_lacks() -> None:
     section = _section("L 150x75x10")
     area, height = section.area_mm2, section.dimensions_mm["h"]
     assert area is not None
-    lost = pieces.length_lost_mm(section, 30)
+    half, near = pieces.cut_depths_mm(section)
     strips = np.linspace(0, height, 30_001)
     middle = (strips[1:] + strips[:-1]) / 2
     d = {k: section.dimensions_mm[k] for k in ("h", "b", "tf")}
     width = np.where(middle < d["tf"], d["b"], d["tf"])  # the sharp-cornered angle: fillets move its centroid by little
-    volume = (width * middle).sum() / width.sum() * math.tan(math.radians(30))
-    assert min(lost.light, lost.heavy) == pytest.approx(volume, rel=0.02)
-    assert lost.light + lost.heavy == pytest.approx(height * math.tan(math.radians(30)))
+    volume = (width * middle).sum() / width.sum()  # lost on the axis over the tangent of the angle, the heel the short face
+    assert near == pytest.approx(volume, rel=0.02)
+    assert half == height / 2
 
 
 @pytest.mark.parametrize(
     ("text", "expected"), [("UB 203x133x25", 203.2 / 2), ("FL 100x10", 50), ("RD 20", 10), ("SHS 100x5", 50), ("Board 45x195", 97.5)]
 )
 def test_a_45_degree_cut_takes_half_the_depth(text: str, expected: float) -> None:
-    """A symmetrical section loses half its depth on the axis at 45 degrees."""
-    assert pieces.length_lost_mm(_section(text), 45).nominal == pytest.approx(expected)
+    """A symmetrical section loses half its depth on the axis at 45 degrees, whichever face is long."""
+    assert pieces.cut_depths_mm(_section(text)) == pytest.approx((expected, expected))
 
 
-def test_a_cut_that_cannot_be_is_refused() -> None:
-    """Cuts nearly along the axis, and solids, have no end cut."""
-    with pytest.raises(DataError, match="no end cut"):
-        pieces.length_lost_mm(_section("FL 100x10"), 88)
-    with pytest.raises(DataError, match="no depth"):
-        pieces.length_lost_mm(_section("Block 600x300x80"), 30)
+def test_solids_have_no_end_cut() -> None:
+    """A block has no depth to cut across: nothing is known, so nothing is deducted."""
+    assert all(math.isnan(depth) for depth in pieces.cut_depths_mm(_section("Block 600x300x80")))

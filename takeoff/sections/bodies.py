@@ -54,13 +54,6 @@ def _body(
     )
 
 
-def _checked(**sizes: float) -> None:
-    """Raises DataError on a size that cannot be."""
-    why = made.check_sizes({name.replace("_", " "): value for name, value in sizes.items()})
-    if why:
-        raise DataError(why)
-
-
 def open_body(shape: str, kind: str | None = None) -> Section:
     """A cylinder, sphere or triangle whose sizes the row gives."""
     most = 2.0 if shape == "triangle" else 1.0
@@ -79,7 +72,7 @@ def open_body(shape: str, kind: str | None = None) -> Section:
 
 def cylinder(diameter: float, height: float, kind: str | None = None, word: str = "Cylinder") -> Section:
     """A solid cylinder or disc. Centroid from the corner of its enclosing box."""
-    _checked(diameter=diameter, height=height)
+    made.check_sizes(diameter=diameter, height=height)
     return _body(
         f"{word} Ø{made.number(diameter)}x{made.number(height)}",
         "cylinder",
@@ -94,7 +87,7 @@ def cylinder(diameter: float, height: float, kind: str | None = None, word: str 
 
 def ring(outer: float, inner: float, height: float, kind: str | None = None) -> Section:
     """A flat ring or hollow cylinder."""
-    _checked(outer_diameter=outer, inner_diameter=inner, height=height)
+    made.check_sizes(outer_diameter=outer, inner_diameter=inner, height=height)
     if inner >= outer:
         raise DataError(f"the inner diameter {made.number(inner)} mm is no less than the outer {made.number(outer)} mm")
     rule = made.solid_rule(kind)
@@ -117,7 +110,7 @@ def ring(outer: float, inner: float, height: float, kind: str | None = None) -> 
 
 def cone(base: float, top: float, height: float, kind: str | None = None) -> Section:
     """A cone (top 0) or its frustum, by diameters. The larger diameter is at the bottom."""
-    _checked(base=base, height=height)
+    made.check_sizes(base=base, height=height)
     if top < 0:
         raise DataError(f"top {made.number(top)} mm is not a size")
     base, top = max(base, top), min(base, top)
@@ -139,7 +132,7 @@ def cone(base: float, top: float, height: float, kind: str | None = None) -> Sec
 
 def pyramid(base: tuple[float, float], top: tuple[float, float], height: float, kind: str | None = None) -> Section:
     """A right pyramid (top 0 × 0) or its frustum on a rectangle. Prismatoid formula."""
-    _checked(base_length=base[0], base_width=base[1], height=height)
+    made.check_sizes(base_length=base[0], base_width=base[1], height=height)
     a1, b1 = base
     a2, b2 = top
     if a2 < 0 or b2 < 0 or a2 > a1 or b2 > b1:
@@ -169,7 +162,7 @@ def pyramid(base: tuple[float, float], top: tuple[float, float], height: float, 
 
 def sphere(diameter: float, kind: str | None = None) -> Section:
     """A ball."""
-    _checked(diameter=diameter)
+    made.check_sizes(diameter=diameter)
     half = diameter / 2
     return _body(
         f"Sphere Ø{made.number(diameter)}",
@@ -185,7 +178,7 @@ def sphere(diameter: float, kind: str | None = None) -> Section:
 
 def cap(radius: float, height: float, kind: str | None = None) -> Section:
     """A cap of a sphere: sphere's radius and the cap's height, base at the bottom."""
-    _checked(radius=radius, height=height)
+    made.check_sizes(radius=radius, height=height)
     if height > 2 * radius:
         raise DataError(f"a cap of {made.number(height)} mm is higher than its sphere")
     base = height * (2 * radius - height)
@@ -206,7 +199,7 @@ def cap(radius: float, height: float, kind: str | None = None) -> Section:
 
 def triangle(a: float, b: float, thickness: float, kind: str | None = None) -> Section:
     """A right triangle of plate by its two legs, such as a gusset; heavy covers the full rectangle, since corners are often kept."""
-    _checked(leg_a=a, leg_b=b, thickness=thickness)
+    made.check_sizes(leg_a=a, leg_b=b, thickness=thickness)
     return _body(
         f"Triangle {made.number(a)}x{made.number(b)}x{made.number(thickness)}",
         "triangle",
@@ -223,7 +216,7 @@ def triangle(a: float, b: float, thickness: float, kind: str | None = None) -> S
 
 def prism(area_mm2: float, length: float, kind: str | None = None) -> Section:
     """Any prism by the area of its face; its surface and centroid are not told by that."""
-    _checked(area=area_mm2, length=length)
+    made.check_sizes(area=area_mm2, length=length)
     side = math.sqrt(area_mm2)
     factor = made.block_factor((side, side, length), kind)
     return Section(
@@ -241,7 +234,7 @@ def prism(area_mm2: float, length: float, kind: str | None = None) -> Section:
 
 def volume(cubic_metres: float) -> Section:
     """A plain volume as stated."""
-    _checked(volume=cubic_metres)
+    made.check_sizes(volume=cubic_metres)
     factor, tolerance = tolerances.mass_factor("stated")
     return Section(
         designation=f"Volume {made.number(cubic_metres)} m3",
@@ -321,7 +314,7 @@ def head(kind: str, diameter: float, thickness: float, skirt: float = 0.0) -> Se
     kind: ``torispherical`` (crown D, knuckle 0.1 D), ``korbbogen`` (0.8 D, 0.154 D), ``elliptical`` (2:1),
     ``hemispherical``. Raises DataError on sizes that cannot be.
     """
-    _checked(diameter=diameter, thickness=thickness)
+    made.check_sizes(diameter=diameter, thickness=thickness)
     if thickness >= diameter / 4:
         raise DataError(f"a wall of {made.number(thickness)} mm does not fit a head of {made.number(diameter)} mm")
 
@@ -372,13 +365,13 @@ def arc_length(
     Radius from chord c and rise f: (c²/4 + f²) / 2f; angle 4 atan(2f / c). Raises DataError on sizes that cannot be.
     """
     if radius is not None and angle_deg is not None:
-        _checked(radius=radius, angle=angle_deg)
+        made.check_sizes(radius=radius, angle=angle_deg)
         if angle_deg > 360:
             raise DataError(f"an arc cannot span {made.number(angle_deg)} degrees")
         return radius * math.radians(angle_deg)
     if chord is None or rise is None:
         raise DataError("a bent member needs its radius (R) and angle (A), or its chord (C) and rise (F)")
-    _checked(chord=chord, rise=rise)
+    made.check_sizes(chord=chord, rise=rise)
     return (chord**2 / 4 + rise**2) / (2 * rise) * 4 * math.atan(2 * rise / chord)
 
 
@@ -396,7 +389,7 @@ def catenary(span: float, sag: float, kg_per_m: float) -> Catenary:
     The catenary's parameter a solves sag = a (cosh(span / 2a) - 1), by bisection; length 2 a sinh(span / 2a), tension
     w a at the lowest point and w (a + sag) at the ends, with w = kg/m × 9.80665 m/s². Raises DataError on sizes that cannot be.
     """
-    _checked(span=span, sag=sag, mass_per_metre=kg_per_m)
+    made.check_sizes(span=span, sag=sag, mass_per_metre=kg_per_m)
     if sag > 5 * span:
         raise DataError("the sag is more than five spans")
     low, high = 1e-9 / span, 20.0 / span  # 1 / a

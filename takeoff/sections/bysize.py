@@ -6,18 +6,46 @@ from collections.abc import Callable
 from dataclasses import replace
 
 from takeoff.sections import catalogue, goods, made
-from takeoff.sections.answers import Answer, Given, Refused, material_of, no_open, one_chain, sizes_of, take_size
+from takeoff.sections.answers import LEAST_LENGTH_MM, Answer, Given, Refused, material_of, no_open, one_chain, sizes_of, take_size
 from takeoff.sections.catalogue import Row
 from takeoff.sections.parse import Chain, Parsed
 from takeoff.sections.section import Candidate, Section
+from takeoff.sections.words import TIMBER_IN_CM
 
 #: Beyond this thickness a text that says sheet, pane or panel has a size or a unit wrong (cross-laminated timber panels reach it).
 THICKEST_SHEET_MM = 120.0
 
 
+#: Widths and sizes below these, in mm and without a unit, are more likely inches.
+LEAST_FLAT_MM, LEAST_BAR_MM, LEAST_PLATE_MM, LEAST_THIN_PLATE_MM = 7.0, 3.0, 9.0, 12.5
+
+
+#: A plate told whole whose sizes all stay below this, and no thicker than the second, is as likely in inches (1.5x12x24).
+LEAST_PLAN_MM, THIN_MM = 49.0, 3.0
+#: No pane is so narrow; VSG 2x6x1000 is two panes of 6 mm.
+LEAST_PANE_MM = 25.0
+#: Beyond this nobody gives a plate's size in inches.
+MOST_INCHES = 240.0
+
+
+def inch_like(chain: Chain, least_mm: float, what: str) -> None:
+    """Refuse sizes without a unit that are too small for millimetres and would be usual in inches (``PL0.5X6``, ``SB 1``)."""
+    bare = [t for t in chain.numbers if not t.unit]
+    # 0.375 and 0.1875 are fractions of an inch; no thickness in mm is told to a thousandth.
+    fraction = any(len(t.text.partition(".")[2]) >= 3 and (t.value * 16).is_integer() for t in bare)
+    fractions = fraction and len(bare) == len(chain.numbers) and max(t.value for t in bare) <= MOST_INCHES
+    numbers = [t for t in chain.numbers if t.mm < LEAST_LENGTH_MM]
+    least = 1 if "bar" in what or what == "hexagon" else 2  # PL 8x1800x6200 has one small size, its thickness
+    if fractions or (len(numbers) >= least and all(not t.unit for t in numbers) and max(t.value for t in numbers) < least_mm):
+        shown = "x".join(t.raw for t in numbers)
+        raise Refused(f"a {what} of {shown} mm is implausible: if the sizes are inches, write the unit", "implausible-size")
+
+
 def read_flat(p: Parsed, given: Given) -> Answer:
     no_open(p)
     values = sizes_of(one_chain(p, "flat"), 3, "flat")
+    if len(values) >= 2:
+        inch_like(p.chains[0], LEAST_FLAT_MM, "flat")
     length = values.pop() if len(values) == 3 else None
     if length is not None and length < max(values):
         raise Refused("the third size of a flat should be its length, the longest", "ambiguous-section")
@@ -55,6 +83,8 @@ def _single(shape: str, field: str, *labels: str) -> Callable[[Parsed, Given], A
     def build(p: Parsed, given: Given) -> Answer:
         no_open(p)
         values = sizes_of(one_chain(p, shape), 3, shape)
+        if values:
+            inch_like(p.chains[0], LEAST_BAR_MM, shape)
         size = take_size(p, *labels)
         length = None
         if shape == "square bar" and len(values) >= 2 and values[0] == values[1]:
@@ -95,10 +125,17 @@ def read_sheet(kind: str, p: Parsed, given: Given) -> Answer:
         # "Sheet 1.5 mm | 2x1 m", "12 mm plate 200x450": the lone number is the thickness.
         lone, pair = sorted(chains, key=lambda c: len(c.numbers))
         values = [lone.mm[0], *pair.mm]
+        if lone.numbers[0].unit == "in" and pair.mm[0] == 4 and pair.mm[1] in (8, 9, 10) and kind == "panel":
+            values[1:] = [n * 304.8 for n in pair.mm]  # a US sheet of 4 by 8 feet
         if values[0] > min(values[1:]):
             raise Refused("which of the sizes is the thickness cannot be told", "ambiguous-section")
     else:
         values = list(sizes_of(one_chain(p, kind), 3, kind))
+        if len(values) >= 2 and kind == "plate":
+            small = LEAST_THIN_PLATE_MM if min(values) < THIN_MM else LEAST_PLATE_MM
+            inch_like(p.chains[0], LEAST_PLAN_MM if len(values) == 3 and min(values) <= THIN_MM else small, "plate")
+        if kind == "pane" and len(values) == 3 and sorted(values)[1] < LEAST_PANE_MM:
+            raise Refused("a pane so narrow is implausible: two panes in one need each its row", "implausible-size")
     if thickness is not None and len(values) == 3:
         if thickness not in values:
             raise Refused("the thickness is given twice, and differently", "ambiguous-section")
@@ -165,6 +202,8 @@ def lumber_row(chain: Chain) -> Row | None:
 def read_board(p: Parsed, given: Given) -> Answer:
     no_open(p)
     chain = one_chain(p, "board")
+    if given.material != "metal" and _in_centimetres(p, chain):
+        return _of_centimetres(p, given, chain, read_board)
     row = lumber_row(chain) if len(chain.numbers) >= 2 and given.material != "metal" else None
     if row is not None:
         spare = chain.numbers[3:] if chain.joins[0] == "/" else chain.numbers[2:]
@@ -199,10 +238,34 @@ def read_board(p: Parsed, given: Given) -> Answer:
     return Answer(made.bar("board", {"thickness": thickness, "width": width}, material_of(p, given)), "exact", length)
 
 
+def _in_centimetres(p: Parsed, chain: Chain) -> bool:
+    """``KVH 6/24``, ``BSH 16/48``: structural timber whose bare sizes are too small for mm, and usual in cm."""
+    sizes = chain.numbers[:2]
+    return (
+        bool(p.named & TIMBER_IN_CM)
+        and len(sizes) == 2
+        and all(not t.unit for t in sizes)
+        and max(t.value for t in sizes) < (100 if "glulam" in p.kinds else 45)
+        and min(t.value for t in sizes) >= 4
+    )
+
+
+def _of_centimetres(p: Parsed, given: Given, chain: Chain, build: Callable[[Parsed, Given], Answer]) -> Answer:
+    """The same text with its two sizes in cm: assumed, since the unit is inferred."""
+    p.chains = [Chain([*(t._replace(unit="cm") for t in chain.numbers[:2]), *chain.numbers[2:]], chain.joins)]
+    answer = build(p, given)
+    answer.match = "ambiguous"
+    answer.section = replace(answer.section, readings=(answer.section.designation,))
+    answer.notes = (*answer.notes, "sizes taken as centimetres")
+    return answer
+
+
 def read_glulam(p: Parsed, given: Given) -> Answer:
     """``GL 90x315``: width × depth."""
     no_open(p)
-    values = sizes_of(one_chain(p, "glulam"), 3, "glulam")
+    if _in_centimetres(p, chain := one_chain(p, "glulam")):
+        return _of_centimetres(p, given, chain, read_glulam)
+    values = sizes_of(chain, 3, "glulam")
     length = values.pop() if len(values) == 3 else None
     if length is not None and length < 2 * max(values):
         raise Refused("which of the sizes is the length cannot be told", "ambiguous-section")
@@ -216,10 +279,16 @@ def read_glulam(p: Parsed, given: Given) -> Answer:
 def read_tread(p: Parsed, given: Given) -> Answer:
     """Tread plate on the plain thickness; ``5/7`` is plain over pattern."""
     pattern = "tear" if any(w.casefold() in ("tear", "tranen", "tranenblech") for w in p.others) or "tear" in p.properties else "stud"
+    if [len(c.numbers) for c in p.chains] == [1, 1] and p.chains[1].mm[0] <= 3 < p.chains[0].mm[0]:
+        p.chains.pop()  # 5+2: plain thickness and height of the pattern
+    plan: list[float] = []
+    if len(p.chains) == 2 and len(p.chains[1].numbers) == 2 and min(p.chains[1].mm) > max(p.chains[0].mm):
+        plan = p.chains.pop().mm  # tread plate 5/7 1500x1000
     chain = one_chain(p, "tread plate")
     values = sizes_of(chain, 3, "tread plate")
     if len(values) >= 2 and chain.joins[0] == "/":
         values.pop(1)
+    values += plan
     thickness = take_size(p, "thickness")
     if thickness is None and values:
         thickness = min(values)
@@ -245,13 +314,17 @@ def read_gauge(p: Parsed, given: Given) -> Answer:
             system = name
     values = sizes_of(one_chain(p, "sheet"), 2, "sheet")
     width, length = values if len(values) == 2 else (given.width, given.length)
+    if p.gauge.endswith(" swg"):
+        p.gauge, system = p.gauge.removesuffix(" swg"), "swg"
+    if p.gauge.endswith(" g"):
+        raise Refused(f"{p.gauge.replace(' ', '')} may be a gauge or a mass in grams", "ambiguous-section")
     section = goods.gauge_sheet(p.gauge, system, width, length)
     if section is None:
         raise Refused(
             f"no {system} gauge {p.gauge} in the tables",
             "unknown-section",
             tuple(
-                Candidate(f"Sheet {g} ga {system}", 50.0)
+                Candidate(f"Sheet {g} swg" if system == "swg" else f"Sheet {g} ga {system}", 50.0)
                 for g in ("10", "12", "14", "16", "18", "20")
                 if goods.gauge_thickness_mm(g, system)
             ),

@@ -13,7 +13,7 @@ from functools import cache
 from pathlib import Path
 
 from takeoff.bounds import Bounds
-from takeoff.datafiles import data_folder, read_table
+from takeoff.datafiles import data_folder, read_table, refuse_odd_file
 from takeoff.errors import DataError
 from takeoff.provenance import Source
 from takeoff.sections import made, shapes, tolerances
@@ -36,11 +36,13 @@ FAMILIES: dict[str, tuple[str, tuple[str, ...]]] = {
     "HP": ("wide flange bearing piles", ("en_10365", "csa_g40", "astm_a6")),
     "UPE": ("European parallel flange channels", ("en_10365",)),
     "UPN": ("European tapered channels", ("en_10365",)),
-    "L": ("angles", ("en_10056_1", "csa_g40", "astm_a6")),
+    "RSJ": ("British tapered joists", ("bs_4",)),
+    "UAP": ("French parallel flange channels", ("nf_a45_255",)),
+    "L": ("angles", ("en_10056_1", "csa_g40", "astm_a6", "din_1028", "jis_g_3192", "gb_t_706", "is_808")),
     "T": ("rolled tees", ("en_10055",)),
-    "SHS": ("square hollow sections", ("en_10210_2", "en_10219_2")),
-    "RHS": ("rectangular hollow sections", ("en_10210_2", "en_10219_2")),
-    "CHS": ("circular hollow sections", ("en_10210_2", "en_10219_2")),
+    "SHS": ("square hollow sections", ("en_10210_2", "en_10219_2", "as_nzs_1163", "jis_g_3466")),
+    "RHS": ("rectangular hollow sections", ("en_10210_2", "en_10219_2", "as_nzs_1163", "jis_g_3466")),
+    "CHS": ("circular hollow sections", ("en_10210_2", "en_10219_2", "as_nzs_1163")),
     "W": ("US and Canadian wide flange shapes", ("csa_g40", "astm_a6")),
     "M": ("US and Canadian miscellaneous I shapes", ("csa_g40", "astm_a6")),
     "S": ("US and Canadian tapered I shapes", ("csa_g40", "astm_a6")),
@@ -54,6 +56,9 @@ FAMILIES: dict[str, tuple[str, tuple[str, ...]]] = {
     "WWT": ("Canadian welded tees", ("csa_g40",)),
     "WRF": ("Canadian welded girders with two flange widths", ("csa_g40",)),
     "PIPE": ("pipe by nominal size and schedule", ("asme_b36", "astm_a53")),
+    "PIPE EN 10255": ("threadable tubes, light, medium and heavy", ("en_10255",)),
+    "I": ("Japanese and Chinese tapered I beams", ("jis_g_3192", "gb_t_706")),
+    "CH": ("Japanese and Chinese tapered channels", ("jis_g_3192", "gb_t_706")),
     "H": ("Japanese H shapes", ("jis_g_3192",)),
     "HW": ("Chinese wide H shapes", ("gb_t_11263",)),
     "HM": ("Chinese medium H shapes", ("gb_t_11263",)),
@@ -70,7 +75,7 @@ FAMILIES: dict[str, tuple[str, tuple[str, ...]]] = {
     "ISLC": ("Indian light channels", ("is_808",)),
     "ISJC": ("Indian junior channels", ("is_808",)),
     "TUBE": ("steel tubes by diameter and wall", ("en_10220",)),
-    "REBAR": ("reinforcing bars", ("en_10080", "astm_a615", "csa_g30_18", "as_nzs_4671")),
+    "REBAR": ("reinforcing bars", ("en_10080", "astm_a615", "csa_g30_18", "as_nzs_4671", "jis_g_3112")),
     "MESH": ("reinforcing fabrics", ("meshes",)),
     "LUMBER": ("US dressed lumber by nominal size", ("ps_20",)),
     "FL": ("flat bars", ("en_10058",)),
@@ -149,7 +154,9 @@ def _index(rows: list[Row]) -> dict[Key, list[Row]]:
     keys: dict[Key, list[Row]] = {}
     for row in rows:
         keys.setdefault(row.key, []).append(row)
-        if "nps" in row.cells:
+        if "series" in row.cells and "nps" in row.cells:
+            others: list[Key] = [(row.family, row.cells["series"], (size,)) for size in (f"DN{row.cells['dn']}", f"NPS{row.cells['nps']}")]
+        elif "nps" in row.cells:
             others = _pipe_keys(row.cells)
         else:
             others = [(row.family, row.key[1], numbers) for numbers in _other_numbers(row) if numbers != row.key[2]]
@@ -191,10 +198,13 @@ def _other_numbers(row: Row) -> list[tuple[str, ...]]:
     family, _, numbers = row.key
     cells = row.cells
     found: list[tuple[str, ...]] = []
-    if family in ("UB", "UC", "UBP", "PFC", "HD", "HP") and cells.get("published_kg_per_m"):
+    if family in ("UB", "UC", "UBP", "PFC", "HD", "HP", "RSJ") and cells.get("published_kg_per_m"):
         found.append((*numbers[:-1], canonical(cells["published_kg_per_m"])))
-    if family == "PFC":
+    if family in ("PFC", "RSJ"):
         found.append(numbers[:2])
+    if family in ("I", "CH"):
+        found.append(tuple(canonical(cells[f"{name}_mm"]) for name in ("h", "b", "tw")))
+        found.append(tuple(canonical(cells[f"{name}_mm"]) for name in ("h", "b")))
     if family in ("UPN", "UPE", "IPN", "IPE", "T") and len(numbers) == 1:
         found.append((numbers[0], canonical(cells["b_mm"])))
     if family in ("L", "RHS", "SHS") and len(numbers) == 3:
@@ -202,6 +212,8 @@ def _other_numbers(row: Row) -> list[tuple[str, ...]]:
             found.append((numbers[0], numbers[2]))
         else:
             found.append((numbers[1], numbers[0], numbers[2]))
+    if family == "T":
+        found += [(numbers[0], canonical(cells["tf_mm"])), (numbers[0], numbers[0], canonical(cells["tf_mm"]))]
     if family == "FL":
         found.append((numbers[1], numbers[0]))
     if family in ("H", "HW", "HM", "HN", "HT"):
@@ -209,6 +221,8 @@ def _other_numbers(row: Row) -> list[tuple[str, ...]]:
         found += [numbers[:2], (*numbers[:2], web, flange)]
     if family.startswith("IS") and len(numbers) == 2:
         found.append(numbers[:1])
+    if family.startswith("IS") and len(numbers) == 1:
+        found.append((numbers[0], canonical(cells["b_mm"])))
     if family == "HSS" and len(numbers) == 3 and numbers[0] != numbers[1]:
         found.append((numbers[1], numbers[0], numbers[2]))
     if cells.get("metric_designation"):
@@ -240,6 +254,8 @@ def load(path: Path, own: bool = False) -> Table:
 
     Raises DataError on a missing column, a row without a source, an unknown shape or family twice named.
     """
+    if own:
+        refuse_odd_file(path, "the table of sections", "table")
     table = Table()
     seen: dict[str, int] = {}
     known: dict[tuple[str, str, str], Source] = {}
@@ -324,6 +340,9 @@ def sizes(row: Row) -> dict[str, float]:
 _MASS_RULES = {
     "EN 10210-2": "en10210-2",
     "EN 10219-2": "en10219-2",
+    "AS/NZS 1163": "as1163",
+    "JIS G 3466": "jis3466",
+    "EN 10255": "en10255",
     "ASTM A53": "a53",
     "ASME B36.10M": "a53",
     "ASME B36.19M": "a312",
@@ -332,7 +351,7 @@ _MASS_RULES = {
 
 def mass_rule(shape: str, standard: str, family: str, d: dict[str, float]) -> tuple[Bounds, Tolerance]:
     """The mass tolerance of a rolled or hollow section by its standard and shape."""
-    if standard in ("JIS G 3192", "GB/T 11263", "AS/NZS 3679.1", "IS 808"):
+    if standard in ("JIS G 3192", "GB/T 11263", "GB/T 706", "AS/NZS 3679.1", "IS 808"):
         return tolerances.mass_factor("rolled-other")
     if standard == "EN 10220":
         return tube_rule(d)

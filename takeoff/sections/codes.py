@@ -10,7 +10,8 @@ from takeoff.sections.answers import Answer, Given, Refused, length_left, one_ch
 from takeoff.sections.catalogue import Row
 from takeoff.sections.parse import Parsed
 from takeoff.sections.pipes import nominal_inches
-from takeoff.sections.section import Candidate
+from takeoff.sections.rolled import covering
+from takeoff.sections.section import Candidate, Match
 
 _WELDED_WIRE = re.compile(r"(?:^|\s)(\d{1,2})\s?x\s?(\d{1,2})\s?-?\s?([WD]\d{1,2}\.\d)\s?x\s?([WD]\d{1,2}\.\d)", re.IGNORECASE)
 
@@ -37,21 +38,35 @@ def read_code(p: Parsed) -> Answer | None:
     """``T16``, ``#5``, ``15M``, ``N16``, ``A393``, ``Q257A``; None where no table has the code."""
     found: list[tuple[str, Row]] = []
     for letters, number, tail in p.codes:
-        if letters in ("T", "H", "B", "Y", "#", "M", "N") and not tail:
-            variant = "" if letters in ("T", "H", "B", "Y") else letters
+        if letters in ("T", "H", "B", "Y", "R", "#", "M", "N", "D") and not tail:
+            variant = "" if letters in ("T", "H", "B", "Y", "R") else letters
             found += [(letters, row) for row in catalogue.find("REBAR", variant, (number,))]
         found += [(letters, row) for row in catalogue.find("MESH", letters + tail, (number,))]
+    if not found and [c[0] for c in p.codes] == ["T"] and not p.codes[0][2]:
+        tees = catalogue.find("T", "", (p.codes[0][1],))  # T80: no bar has that size
+        if tees:
+            p.codes.clear()
+            return Answer(tees[0].section, "exact", length_left([t for c in p.chains for t in c.numbers]))
     if not found:
         return None
     if len(found) > 1:
         raise Refused("several bars or fabrics are named", "ambiguous-section", tuple(Candidate(row.designation, 90.0) for _, row in found))
     letters, row = found[0]
+    strange = [f"{c[0]}{c[1]}" for c in p.codes if c[0] != letters and float(c[1]) < _LEAST_STRENGTH]
+    if strange or {"plate", "flat", "sheet"} & set(p.kinds):
+        beside = strange[0] if strange else "plate, flat or sheet"  # b200 t10, plate t10: sizes behind their letters
+        raise Refused(f"it may be a bar or a fabric, or sizes beside {beside}", "ambiguous-section", (Candidate(row.designation, 80.0),))
     if letters == "T" and "rebar" not in p.kinds:
         tees = catalogue.find("T", "", (row.key[2][0],))
         if tees:
             names = (Candidate(row.designation, 90.0), Candidate(tees[0].designation, 90.0))
             raise Refused("it may be a reinforcing bar or a tee", "ambiguous-section", names)
     section, length = row.section, None
+    match: Match = "exact"
+    if letters == "D" and section.family == "REBAR" and "rebar" not in p.kinds and not p.grades:
+        # D16 is a Japanese bar, or a diameter of 16: their masses lie within 4 % of each other.
+        round_bar = made.bar("round bar", {"diameter": float(row.key[2][0])}, "metal")
+        section, match = covering([section, round_bar]), "ambiguous"
     numbers = [t for c in p.chains for t in c.numbers]
     if section.form == "area mass" and len(numbers) == 2:
         width, length_mm = sorted(t.mm for t in numbers)
@@ -59,7 +74,7 @@ def read_code(p: Parsed) -> Answer | None:
     elif numbers:
         length = length_left(numbers)
     p.codes = [c for c in p.codes if c[0] != letters]
-    return Answer(section, "exact", length)
+    return Answer(section, match, length)
 
 
 def read_rebar(p: Parsed, given: Given) -> Answer:
@@ -82,10 +97,16 @@ def read_rebar(p: Parsed, given: Given) -> Answer:
     return Answer(rows[0].section, "exact", length_left(numbers))
 
 
+#: From here on a code beside a bar's own is its strength (H16 B500).
+_LEAST_STRENGTH = 400.0
+
 _CLASSES = frozenset(("4.6", "4.8", "5.6", "5.8", "6.8", "8.8", "10.9", "12.9"))
 
 
-_FASTENER_STANDARDS = ("931", "933", "934", "125", "6914", "6915", "6916", "4014", "4017", "4032", "7089", "14399")
+#: standard -> what it is where no word says so
+_NUTS, _WASHERS, _SOCKETS = frozenset(("934", "4032", "6915")), frozenset(("125", "7089", "6916")), frozenset(("912", "4762"))
+PARTS_BY_NUMBER = _NUTS | _WASHERS
+_FASTENER_STANDARDS = ("912", "4762", "931", "933", "934", "125", "6914", "6915", "6916", "4014", "4017", "4032", "7089", "14399")
 
 
 def read_fastener(p: Parsed, given: Given) -> Answer | None:  # noqa: ARG001 (one signature for all goods)
@@ -101,7 +122,6 @@ def read_fastener(p: Parsed, given: Given) -> Answer | None:  # noqa: ARG001 (on
         "coach",
         "self-drilling",
         "countersunk",
-        "socket",
         "stud",
         "studbolt",
         "eyebolt",
@@ -115,6 +135,10 @@ def read_fastener(p: Parsed, given: Given) -> Answer | None:  # noqa: ARG001 (on
     if len(chains) != 1:
         return None
     numbers = chains[0].numbers
+    numbered = {part for s in p.standards for part in s.split()}
+    socket = bool(said & {"socket", "shcs", "allen", "inbus", "innensechskant"} or numbered & _SOCKETS)
+    if socket and said & {"button", "set", "grub", "flat", "low", "shoulder", "countersunk"}:
+        return None
     strong = "hv" in said or any("6914" in s or "14399" in s for s in p.standards)
     complete = bool(said & {"bolt", "bolts"}) and bool(said & {"nut", "nuts"})
     metric = ("M", "") in p.families or "M" in p.letters
@@ -123,7 +147,8 @@ def read_fastener(p: Parsed, given: Given) -> Answer | None:  # noqa: ARG001 (on
         return None
     if len(numbers) == 1 and metric:
         for word, item in (("nut", "nut"), ("nuts", "nut"), ("mutter", "nut"), ("washer", "washer"), ("washers", "washer")):
-            if word in said and not said & {"bolt", "bolts"}:
+            by_number = numbered & (_NUTS if item == "nut" else _WASHERS)
+            if (word in said or by_number) and not said & {"bolt", "bolts"}:
                 section = goods.small_part(item, numbers[0].text, high_strength=strong)
                 return Answer(section) if section is not None else None
         raise Refused("a bolt without its length", "impossible-geometry")
@@ -142,9 +167,10 @@ def read_fastener(p: Parsed, given: Given) -> Answer | None:  # noqa: ARG001 (on
         size, length, table = nominal_inches(numbers[0]), catalogue.canonical(f"{numbers[1].value:.4f}"), "fasteners_us"
     else:
         return None
-    section = goods.fastener(size, length, high_strength=strong, complete=complete, table=table)
+    section = goods.fastener(size, length, high_strength=strong, complete=complete, socket=socket, table=table)
     if section is None:
-        near = sorted(goods.fastener_lengths(size, table), key=lambda value: abs(value - numbers[1].value))[:3]
-        shown = [f"Bolt M{size}x{made.number(n)}" if metric else f"Bolt {size} in x {made.number(n)} in" for n in near]
+        near = sorted(goods.fastener_lengths(size, table, socket), key=lambda value: abs(value - numbers[1].value))[:3]
+        word = "Socket screw" if socket else "Bolt"
+        shown = [f"{word} M{size}x{made.number(n)}" if metric else f"Bolt {size} in x {made.number(n)} in" for n in near]
         raise Refused("no bolt of that size in the tables", "unknown-section", tuple(Candidate(n, 60.0) for n in shown))
     return Answer(section)

@@ -34,7 +34,7 @@ def _source(row: dict[str, str]) -> Source:
 
 
 def gauge_thickness_mm(gauge: str, system: str) -> tuple[float, Source] | None:
-    """Thickness of a sheet gauge in one of the systems steel, stainless, aluminium, galvanized; None where there is none."""
+    """Thickness of a sheet gauge in one of the systems steel, stainless, aluminium, galvanized, swg; None where there is none."""
     for row in _rows("sheet_gauges"):
         if row["system"] == system and row["gauge"] == gauge:
             return float(row["thickness_in"]) * 25.4, _source(row)
@@ -48,7 +48,7 @@ def gauge_sheet(gauge: str, system: str, width: float | None, length: float | No
         return None
     thickness, source = found
     section = made.sheet(round(thickness, 4), width, length, "metal", prefix="Sheet", note=f"{gauge} gauge, {system}")
-    return replace(section, designation=f"Sheet {gauge} ga {system}", source=source)
+    return replace(section, designation=f"Sheet {gauge} swg" if system == "swg" else f"Sheet {gauge} ga {system}", source=source)
 
 
 def tread_plate(thickness: float | None, pattern: str, width: float | None, length: float | None) -> Section:
@@ -88,13 +88,17 @@ def _fasteners(table: str) -> dict[tuple[str, str, str], dict[str, str]]:
     }
 
 
-def fastener_lengths(size: str, table: str = "fasteners_metric") -> list[float]:
-    """The bolt lengths listed for one thread size."""
-    return sorted({float(length) for item, s, length in _fasteners(table) if s == size and length and item != "nut"})
+def fastener_lengths(size: str, table: str = "fasteners_metric", socket: bool = False) -> list[float]:
+    """The lengths listed for one thread size, of bolts or of socket screws."""
+    return sorted({float(length) for item, s, length in _fasteners(table) if s == size and length and (item == "socket screw") == socket})
 
 
-def fastener(size: str, length: str, *, high_strength: bool, complete: bool, table: str = "fasteners_metric") -> Section | None:
+def fastener(
+    size: str, length: str, *, high_strength: bool, complete: bool, socket: bool = False, table: str = "fasteners_metric"
+) -> Section | None:
     """A bolt by thread and length: alone, or complete with nut and washer. None where the size is not listed.
+
+    A socket screw is told alone: no nut comes with it unless it is complete.
 
     Nominal of a bolt alone is the bolt; its heavy covers nut and two washers, since lists say `M20x60` for both. A
     complete one is nominal with nut and one washer, heavy with two.
@@ -102,17 +106,20 @@ def fastener(size: str, length: str, *, high_strength: bool, complete: bool, tab
     items = _fasteners(table)
     kinds = ("hv bolt", "hv nut", "hv washer") if high_strength else ("bolt", "nut", "washer")
     bolt = items.get((kinds[0], size, length)) or (items.get(("screw", size, length)) if not high_strength else None)
+    if socket:
+        bolt = items.get(("socket screw", size, length))
     if bolt is None:
         return None
     nut, washer = items.get((kinds[1], size, "")), items.get((kinds[2], size, ""))
     alone = float(bolt["kg_per_1000"]) / 1000
     nut_kg, washer_kg = (float(row["kg_per_1000"]) / 1000 if row is not None else 0.0 for row in (nut, washer))
     nominal = alone + nut_kg + washer_kg if complete else alone
-    most = alone + nut_kg + 2 * washer_kg
+    most = alone if socket and not complete else alone + nut_kg + 2 * washer_kg
     factor, tolerance = tolerances.mass_factor("fastener")
     name = f"M{size}x{length}" if table == "fasteners_metric" else f"{size} in x {length} in"
+    what = "Socket screw" if socket else "Bolt"
     return Section(
-        designation=f"Bolt {name}" + (" HV" if high_strength else "") + (" with nut and washer" if complete else ""),
+        designation=f"{what} {name}" + (" HV" if high_strength else "") + (" with nut and washer" if complete else ""),
         family="BOLT",
         shape="fastener",
         form="each",
@@ -124,7 +131,13 @@ def fastener(size: str, length: str, *, high_strength: bool, complete: bool, tab
         tolerance=tolerance,
         is_steel_standard=True,
         material_hint="metal",
-        note=("with nut and one washer; heavy with two" if complete else "the bolt alone; heavy with nut and two washers")
+        note=(
+            "with nut and one washer; heavy with two"
+            if complete
+            else "the screw alone"
+            if socket
+            else "the bolt alone; heavy with nut and two washers"
+        )
         + (f"; {bolt['note']}" if bolt["note"] else ""),
     )
 

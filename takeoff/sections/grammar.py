@@ -8,16 +8,21 @@ from __future__ import annotations
 
 from takeoff.errors import DataError
 from takeoff.names import has_hidden_marks, has_lookalikes, normal_name, squeezed
-from takeoff.sections import catalogue, nearest, tokens
+from takeoff.sections import catalogue, nearest, surplus, tokens
 from takeoff.sections.answers import Answer, Given, Hollow, Refused, stated_mass
 from takeoff.sections.catalogue import Table
 from takeoff.sections.parse import Chain, Parsed, parse, words_only
-from takeoff.sections.rolled import HOLLOW_FAMILIES, read_rolled
+from takeoff.sections.rolled import HOLLOW_FAMILIES, read_indian_parallel, read_rolled
 from takeoff.sections.section import Candidate, Match, SectionMatch
-from takeoff.sections.words import BEFORE_SIZES
+from takeoff.sections.words import BEFORE_SIZES, INNER_WORDS
 
 #: Families of bars and plates, which may have any size.
 MADE_TO_SIZE = frozenset(("FL", "PL", "RD", "SQ", "HEX"))
+
+_TUBE_FAMILIES = frozenset((*HOLLOW_FAMILIES, "HSS"))
+#: Nominal pipe sizes whose outside diameter is larger (ASME B36.10M).
+_NOMINAL_INCHES = frozenset((0.125, 0.25, 0.375, 0.5, 0.75, 1, 1.25, 1.5, 2, 2.5, 3, 3.5, 4, 5, 6, 8, 10, 12))
+_TUBE_KINDS = frozenset(("pipe", "round tube", "tube", "box", "square tube", "rectangular tube"))
 
 #: Kinds in the order in which they win over one another when a text holds several ("cap plate", "square bar").
 KIND_ORDER = (
@@ -136,7 +141,7 @@ def _read(text: str, given: Given, heading: str | None) -> Answer:
     for token in [t for c in parsed.chains for t in c.numbers] + list(parsed.labels.values()):
         if token.value <= 0:
             raise Refused(f"a size cannot be {token.raw}", "impossible-geometry", _near(parsed, cleaned))
-    return _resolve(parsed, cleaned, given, heading)
+    return _resolve(parsed, cut, cleaned, given, heading)
 
 
 def _near(parsed: Parsed, text: str) -> tuple[Candidate, ...]:
@@ -153,7 +158,7 @@ def _near(parsed: Parsed, text: str) -> tuple[Candidate, ...]:
     return nearest.anywhere(text, parsed.chains[0].texts if parsed.chains else ())
 
 
-def _resolve(p: Parsed, text: str, given: Given, heading: str | None) -> Answer:
+def _resolve(p: Parsed, cut: list[tokens.Token], text: str, given: Given, heading: str | None) -> Answer:
     if "prism" in p.kinds or "m3" in text.casefold():
         from takeoff.sections.solidtext import read_plain_volume
 
@@ -174,6 +179,8 @@ def _resolve(p: Parsed, text: str, given: Given, heading: str | None) -> Answer:
         special = kinds.read_special(p, text, families, given)
         if special is not None:
             return _finish(special, p, [])
+    if families in ([], ["C"]) and (answer := _lipped(p, given)) is not None:
+        return _finish(answer, p, [])
     changed = [w for w in p.changed if w.casefold() not in ("laminated", "tapered") or p.families]
     if _kind(p, given) == "tread":
         changed = [w for w in changed if w.casefold() != "tread"]
@@ -181,12 +188,34 @@ def _resolve(p: Parsed, text: str, given: Given, heading: str | None) -> Answer:
         raise Refused(f"{p.bought[0]!r} is told by its own mass, not by a section: give a unit mass")
     if changed:
         raise Refused(f"{changed[0]!r} changes the section, so its table mass would be wrong")
+    if families in (["SQ"], ["RD"]) and {"tube", "box", "pipe"} & set(p.kinds):
+        p.families, p.properties, families = [], p.properties | {"square" if families == ["SQ"] else "round"}, []
+    if not families and {"tube", "box"} & set(p.kinds) and (strange := [w for w in p.others if len(w) == 1]):
+        raise Refused(f"{strange[0]} names no family known here", "unknown-section", _near(p, text))  # Z-Profil 100x50x3 is no tube
     if len(families) > 1:
         raise Refused("several sections are named: " + ", ".join(families), "ambiguous-section")
+    variants = {variant for _, variant in p.families if variant}
+    if len(variants) > 1:
+        raise Refused("several sections are named: " + ", ".join(f"{f} {v}" for f, v in p.families), "ambiguous-section")
+    tube = bool(_TUBE_FAMILIES & set(families) or (not families and _TUBE_KINDS & set(p.kinds)))
+    if _kind(p, given) != "tread" and (reason := surplus.why_more(cut, tube=tube, designated=bool(families))):
+        raise Refused(reason, "unknown-section", _near(p, text))
+    if tube and not {"inner diameter", "outer diameter"} & p.labels.keys() and p.nominal is None:
+        _outside_only(p, cut, families)
+    rolled = bool(families) and not tube and not MADE_TO_SIZE & set(families)
+    if rolled and "box" in p.kinds:
+        raise Refused("a box of rolled sections is more than one of them: give each its row", "unknown-section", _near(p, text))
+    beside = [w.casefold() for w in p.others]
+    if not families and "sheet" in p.kinds and {"pile", "piles", "piling", "code"} & set(beside):
+        raise Refused("sheet piles and lead by its code are told by their own tables: give a unit mass", "unknown-section")
+    if surplus.back_to_back(cut):
+        p.double = p.double_loose = True  # UPN 160 back to back
+    if p.double and not rolled:
+        raise Refused("two pieces side by side are told: give the one, and how many", "unknown-section", _near(p, text))
     notes: list[str] = []
     if p.others:
         notes.append("not read as part of the section: " + " ".join(p.others[:6]))
-    if (p.nominal is not None or p.schedule) and set(families) <= {"CHS"} and set(p.kinds) <= {"pipe", "round tube", "tube"}:
+    if (p.nominal is not None or p.schedule or p.series) and set(families) <= {"CHS"} and set(p.kinds) <= {"pipe", "round tube", "tube"}:
         from takeoff.sections.pipes import read_pipe
 
         answer = read_pipe(p, given)
@@ -196,6 +225,10 @@ def _resolve(p: Parsed, text: str, given: Given, heading: str | None) -> Answer:
         kind = _kind(p, given)
         if kind is None and heading:
             said = words_only([t for t in tokens.cut(tokens.clean(heading[: tokens.LONGEST])) or [] if t.kind == "word"])
+            strange = [w for w in p.others if len(w) == 1]
+            if strange:
+                # Z 200x2 under a heading "Profile": a letter nobody knows is no remark.
+                raise Refused(f"{strange[0]} names no family known here", "unknown-section", _near(p, text))
             named = [f for f, _ in said.families if len(f) > 1]
             if len(set(named)) == 1 and p.chains:
                 answer = _family(named[0], p, given)
@@ -218,11 +251,28 @@ def _resolve(p: Parsed, text: str, given: Given, heading: str | None) -> Answer:
     return _finish(answer, p, notes)
 
 
+def _outside_only(p: Parsed, cut: list[tokens.Token], families: list[str]) -> None:
+    """Refuse a tube told by its bore, or by inches that are a pipe's nominal size: read as the outside, either is too light."""
+    if {t.text for t in cut if t.kind == "word"} & INNER_WORDS:
+        raise Refused("the diameter told is an inner one: give the outer diameter and the wall", "impossible-geometry")
+    first = p.chains[0].numbers[0] if p.chains else None
+    if first is None or first.unit != "in" or len(p.chains[0].numbers) > 2 or p.schedule or p.series:
+        return
+    rest = [t for c in p.chains for t in c.numbers][1:] + [p.labels[name] for name in ("wall", "thickness") if name in p.labels]
+    # A wall in inches beside tube or HSS goes by the outside; pipe and Rohr, and any wall in mm, by the nominal size.
+    by_outside = bool(rest) and rest[0].unit == "in" and not {"pipe", "round tube"} & set(p.kinds)
+    square = {"square", "rectangular"} & p.properties or {"square tube", "rectangular tube", "box"} & set(p.kinds)
+    if rest and not by_outside and not square and families in ([], ["CHS"]) and first.value in _NOMINAL_INCHES:
+        raise Refused(f"{first.raw} in may be a pipe's nominal size, which is no outside diameter: give that in mm", "ambiguous-section")
+
+
 def _is_coded(p: Parsed, families: list[str], text: str) -> bool:
     """Whether the text may name reinforcement, a gauge or a fastener."""
-    if p.codes or p.gauge or families in (["M"], ["T"]):
+    if p.codes or p.gauge or families in (["M"], ["T"]) or "6x6" in text or "4x4" in text:
         return True
-    return bool({"fastener", "rebar"} & set(p.kinds)) or "6x6" in text or "4x4" in text
+    if "M" in p.letters and p.standards:
+        return True  # DIN 934 M20
+    return bool({"fastener", "rebar", "threaded"} & set(p.kinds)) or any(w.casefold() == "threaded" for w in p.changed)
 
 
 def _finish(answer: Answer, p: Parsed, notes: list[str]) -> Answer:
@@ -244,6 +294,25 @@ def _finish(answer: Answer, p: Parsed, notes: list[str]) -> Answer:
     return replace_answer(answer, match, (*answer.notes, *notes))
 
 
+def _lipped(p: Parsed, given: Given) -> Answer | None:
+    """A formed channel or Z told by words: ``lipped channel 150x65x20x2.5``, ``Z purlin 200x75x20x2``."""
+    said = {w.casefold() for w in (*p.changed, *p.others)}
+    purlin = {"purlin", "purlins"} & p.named
+    if [len(c.numbers) for c in p.chains] not in ([4], [5]) or not (said & {"lipped", "lip", "lips"} or purlin):
+        return None
+    from takeoff.sections import formed
+
+    if "z" in said or "zed" in said or "Z" in p.letters:
+        answer: Answer | None = formed.read_zed(p, given)
+    else:
+        answer = formed.read_channel(p, given, "C")
+    if answer is not None:
+        p.changed = [w for w in p.changed if w.casefold() not in ("lipped", "lip", "lips")]
+        if p.changed:
+            return None
+    return answer
+
+
 def replace_answer(answer: Answer, match: Match, notes: tuple[str, ...]) -> Answer:
     return Answer(answer.section, match, answer.length_mm, notes)
 
@@ -260,12 +329,19 @@ def _kind(p: Parsed, given: Given) -> str | None:
         return "plate"
     if kind == "cylinder" and "tube" in found:
         return "ring"
+    if kind in ("round tube", "pipe") and not p.schedule:
+        for name in ("square", "rectangular"):
+            if name in p.properties:
+                return f"{name} tube"  # vierkante buis, rura kwadratowa
     if kind in ("plate", "sheet") and any(w.casefold() == "tread" for w in p.changed):
         return "tread"
     if kind in ("beam", "column") and (p.wood or given.material == "wood"):
         return "board"
     if kind == "beam" and "H" not in p.letters and "block" in found:
         return "block"
+    single = [len(c.numbers) for c in p.chains] == [1]
+    if kind in ("beam", "tube") and (p.letters[:1] == ["U"] or (p.letters[:1] == ["H"] and single)) and "round" not in p.properties:
+        return "letter"  # U-Profil, U-balk, H-Träger: the letter tells more than the word
     if kind in ("bar",) and "round" in p.properties:
         return "rod"
     if kind in ("bar",) and "square" in p.properties:
@@ -278,6 +354,8 @@ def _kind(p: Parsed, given: Given) -> str | None:
         for name in ("square", "rectangular", "round"):
             if name in p.properties:
                 return f"{name} tube"
+    if kind == "pane" and "wool" in (w.casefold() for w in p.others):
+        return "panel"  # glass wool is no glass
     if kind == "pane" and not p.glass and "panel" in found:
         return "panel"
     if kind == "panel" and p.glass:
@@ -295,4 +373,31 @@ def _family(family: str, p: Parsed, given: Given) -> Answer:
         from takeoff.sections.bysize import MADE_FAMILIES, read_sheet
 
         return read_sheet("plate", p, given) if family == "PL" else MADE_FAMILIES[family](p, given)
+    if family in ("Z", "BH") or (family == "L" and "cold" in p.properties):
+        from takeoff.sections import formed
+
+        return {"Z": formed.read_zed, "BH": formed.read_welded_h, "L": formed.read_angle}[family](p, given)
+    if family in ("NPB", "WPB"):
+        return read_indian_parallel(p, ("IPE",) if family == "NPB" else ("HE",))
+    if family == "C":
+        return _c_section(p, given)
     return read_rolled(family, p, given)
+
+
+def _c_section(p: Parsed, given: Given) -> Answer:
+    """A C of the US and Canadian tables, of the Japanese one by its four sizes, or formed from strip by its sizes."""
+    try:
+        return read_rolled("C", p, given)
+    except Refused as refused:
+        sizes = [t.value for c in p.chains for t in c.numbers]
+        if len(p.chains) != 1 or len(sizes) < 3:
+            raise
+        from takeoff.sections import formed
+        from takeoff.sections.rolled import table_rows
+
+        if len(sizes) in (3, 4) and table_rows(("CH",), "", p.chains[0].texts, given.own):
+            return read_rolled("CH", p, given)
+        answer = formed.read_channel(p, given, "C")
+        if answer is None:
+            raise refused from None
+        return answer

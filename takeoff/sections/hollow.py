@@ -7,9 +7,13 @@ from dataclasses import replace
 
 from takeoff.sections import catalogue, made, nearest, tolerances
 from takeoff.sections.answers import LEAST_LENGTH_MM, Answer, Given, Refused, key_texts, length_left, one_chain
+from takeoff.sections.bysize import inch_like
 from takeoff.sections.parse import Parsed
 from takeoff.sections.rolled import covering, look_up, table_rows, why_impossible
 from takeoff.sections.section import Candidate, Section
+
+#: Without a unit a smaller one is more likely told in inches (``tube 2x2x0.25``).
+LEAST_ROUND_MM, LEAST_BOX_MM = 3.0, 9.0
 
 
 def read_hollow(families: tuple[str, ...], p: Parsed, given: Given, *, listed_only: bool = True, also: tuple[str, ...] = ()) -> Answer:
@@ -22,6 +26,8 @@ def read_hollow(families: tuple[str, ...], p: Parsed, given: Given, *, listed_on
     outside = p.labels.pop("outer diameter", None) or p.labels.pop("diameter", None)
     bore = p.labels.pop("inner diameter", None)
     length = None
+    if outside is not None and wall is None and bore is None and len(numbers) in (1, 2) and numbers[0].mm < outside.mm / 2:
+        wall = numbers.pop(0)  # 60.3 OD x 3.2: the size behind a labelled diameter is the wall
     if outside is not None and numbers:
         length = length_left(numbers)  # the diameters are labelled: what is left can only be the length
         numbers, values, keys = [], [], []
@@ -57,6 +63,8 @@ def read_hollow(families: tuple[str, ...], p: Parsed, given: Given, *, listed_on
     if len(values) > most:
         raise Refused("too many sizes for a hollow section", "impossible-geometry", nearest.in_families(families, "", values[:most]))
     near = nearest_hollow(families, values)
+    if numbers and wall is None and bore is None:
+        inch_like(chain, LEAST_ROUND_MM if len(values) == 2 else LEAST_BOX_MM, "hollow section")
     if len(values) < 2:
         raise Refused("the wall is missing", "impossible-geometry", near())
     why = why_impossible(families, values)
@@ -87,8 +95,14 @@ def read_hollow(families: tuple[str, ...], p: Parsed, given: Given, *, listed_on
                 square = _hollow_rows(also, tuple(keys), p, given) or made.tube((values[0], values[0]), values[1])
                 return Answer(covering([section, square]), "ambiguous", length)
             return Answer(section, "exact", length)
+    if listed_only and chosen == ("CHS",) and (tubes := catalogue.find("TUBE", "", tuple(keys))) and _standard(p) is None:
+        # A size of the tube standard, called by the structural name.
+        return Answer(replace(tubes[0].section, designation=f"CHS {'x'.join(keys)}", note="a tube size of EN 10220"), "exact", length)
     if listed_only:
-        raise Refused(f"no {chosen[0]} of that size in the tables" + _standard_named(p), "unknown-section", near())
+        # A size that no table has may be a slip; whoever means it writes Tube, which is computed from its sizes.
+        shown = "x".join(made.number(v) for v in (values if chosen == ("CHS",) else [values[0], values[-2], values[-1]]))
+        meant = Candidate(f"Tube {'Ø' if chosen == ('CHS',) else ''}{shown}", 30.0)
+        raise Refused(f"no {chosen[0]} of that size in the tables" + _standard_named(p), "unknown-section", (*near(), meant))
     outer = values[0] if len(values) == 2 and chosen == ("CHS",) else (values[0], values[-2])
     section = made.tube(outer, values[-1], note="not a listed size: computed from its sizes")
     if also and len(values) == 2:

@@ -10,6 +10,8 @@ from collections.abc import Callable
 from takeoff.sections import catalogue, goods, made, nearest
 from takeoff.sections.answers import LEAST_LENGTH_MM, Answer, Given, Refused, key_texts, one_chain
 from takeoff.sections.bysize import (
+    LEAST_BAR_MM,
+    LEAST_FLAT_MM,
     MADE_FAMILIES,
     lumber_row,
     read_block,
@@ -21,7 +23,7 @@ from takeoff.sections.bysize import (
     read_sheet,
     read_tread,
 )
-from takeoff.sections.codes import read_code, read_fastener, read_rebar, read_welded_wire
+from takeoff.sections.codes import PARTS_BY_NUMBER, read_code, read_fastener, read_rebar, read_welded_wire
 from takeoff.sections.hollow import read_hollow
 from takeoff.sections.parse import Chain, Parsed
 from takeoff.sections.pipes import read_pipe_by_size
@@ -37,6 +39,7 @@ from takeoff.sections.rolled import (
     table_rows,
 )
 from takeoff.sections.section import Candidate
+from takeoff.sections.tokens import Token
 from takeoff.sections.words import INNER_WORDS, LETTERED, LUMBER_WORDS
 
 
@@ -54,11 +57,36 @@ def read_special(p: Parsed, text: str, families: list[str], given: Given) -> Ans
         answer = read_code(p)
         if answer is not None:
             return answer
+    if [c[0] for c in p.codes] == ["C"] and not p.chains and given.material == "metal" and p.kinds in ([], ["channel"]):
+        size = p.codes.pop()[1]  # C160: a channel in Poland, and no fabric of that number
+        p.chains.append(Chain([Token("num", size, size, float(size))]))
+        p.letters.insert(0, "C")
+        return read_letter(p, given)
+    series = [v for v in ((p.codes[0][2] if len(p.codes) == 1 else ""), *p.letters) if v in ("A", "AA", "B", "M")]
+    if [c[0] for c in p.codes] == ["H"] and len(series) == 1 and not p.chains and not p.kinds:
+        size = p.codes.pop()[1]  # H200B
+        return by_numbers(("HE",), series[0], Chain([Token("num", size, size, float(size))]), given)
     p.others += [f"{letters}{number}{tail}" for letters, number, tail in p.codes]
     if p.gauge:
         return read_gauge(p, given)
-    threaded = "fastener" in p.kinds or (families == ["M"] and p.chains and not look_up(("M",), "", p.chains[0].numbers, given.own))
+    if _is_threaded(p):
+        from takeoff.sections.formed import read_threaded_rod
+
+        p.changed = [w for w in p.changed if w.casefold() != "threaded"]
+        return read_threaded_rod(p)
+    by_number = "M" in p.letters and bool(PARTS_BY_NUMBER & {part for s in p.standards for part in s.split()})
+    threaded = (
+        "fastener" in p.kinds
+        or by_number
+        or (families == ["M"] and bool(p.chains) and not look_up(("M",), "", p.chains[0].numbers, given.own))
+    )
     return read_fastener(p, given) if threaded else None
+
+
+def _is_threaded(p: Parsed) -> bool:
+    """Whether the text names threaded rod: by its own word, by threaded beside rod, bar or stud, or by DIN 975 and 976."""
+    said = any(w.casefold() == "threaded" for w in p.changed) and bool({"rod", "bar", "board"} & set(p.kinds))
+    return said or "threaded" in p.kinds or any(s.startswith(("din 975", "din 976")) for s in p.standards)
 
 
 def read_made(kind: str, p: Parsed, given: Given) -> Answer:
@@ -83,10 +111,25 @@ def read_made(kind: str, p: Parsed, given: Given) -> Answer:
         from takeoff.sections.solidtext import SOLIDS
 
         return SOLIDS[kind](p, given)
+    if kind == "board" and p.named & {"stud", "studs"}:
+        headed = {w.casefold() for w in p.others} & {"shear", "headed", "weld", "welded"}
+        if headed or given.material == "metal" or p.metal:
+            from takeoff.sections.formed import read_stud
+
+            if headed or [len(c.numbers) for c in p.chains] == [2]:
+                return read_stud(p)
     if kind in simple:
         return simple[kind](p, given)
+    if kind in ("angle", "channel") and "cold" in p.properties:
+        from takeoff.sections import formed
+
+        made_of_strip = formed.read_angle(p, given) if kind == "angle" else formed.read_channel(p, given, "U")
+        if made_of_strip is not None:
+            return made_of_strip
     if kind == "angle":
         return by_numbers(("L",), "", one_chain(p, "angle"), given)
+    if kind == "letter":
+        return read_letter(p, given)
     if kind == "tee":
         return by_numbers(("T",), "", one_chain(p, "tee"), given)
     if kind == "channel":
@@ -131,7 +174,9 @@ def read_bare(p: Parsed, text: str, given: Given) -> Answer:
     if round_sign and {w.casefold() for w in p.others} & INNER_WORDS:
         raise Refused("only the inner diameter is given: the wall is missing", "impossible-geometry")
     if round_sign and (count or p.labels):
-        if count >= 2 or "inner diameter" in p.labels or "wall" in p.labels or "thickness" in p.labels:
+        label = p.labels.get("diameter") or p.labels.get("outer diameter")
+        walled = label is not None and count == 1 and chain.mm[0] < label.mm / 2  # 219.1Ø x 6.3
+        if count >= 2 or walled or "inner diameter" in p.labels or "wall" in p.labels or "thickness" in p.labels:
             return read_hollow(("CHS",), p, given, listed_only=False)
         return MADE_FAMILIES["RD"](p, given)
     if "square" in p.properties and count == 1:
@@ -196,10 +241,11 @@ def _refuse_bare(p: Parsed, text: str, chain: Chain) -> None:
             readings += [Candidate(r.designation, 90.0) for r in catalogue.find(family, "", keys)]
         shown = "x".join(made.number(v) for v in chain.mm)
         if len(numbers) == 2:
-            readings += [Candidate(f"FL {shown}", 80.0), Candidate(f"Board {shown}", 70.0)]
+            flat = [Candidate(f"FL {shown}", 80.0)] if max(chain.mm) >= LEAST_FLAT_MM else []
+            readings += [*flat, Candidate(f"Board {shown}", 70.0)]
         elif len(numbers) == 3:
             readings.append(Candidate(f"Block {shown}", 60.0))
         elif len(numbers) == 1:
-            readings += [Candidate(f"{f} {shown}", 50.0) for f in ("RD", "SQ", "PL")]
+            readings += [Candidate(f"{f} {shown}", 50.0) for f in (("RD", "SQ", "PL") if chain.mm[0] >= LEAST_BAR_MM else ("PL",))]
         raise Refused("nothing names the kind of section", "ambiguous-section", nearest.unique(readings, 8))
     raise Refused("names no section in the tables", "unknown-section", nearest.anywhere(text, numbers))

@@ -37,14 +37,14 @@ def number(value: float) -> str:
     return text or "0"
 
 
-def check_sizes(sizes: Mapping[str, float | None]) -> str:
-    """Why one of these sizes cannot be; empty where all can."""
-    for name, value in sizes.items():
-        if value is None:
-            continue
+def check_sizes(**sizes: float | None) -> dict[str, float]:
+    """The sizes in mm that are known. Raises DataError naming one that cannot be."""
+    known = {name: value for name, value in sizes.items() if value is not None}
+    for name, value in known.items():
         if not math.isfinite(value) or value <= 0:
-            return f"{name} {number(value) if math.isfinite(value) else value} mm is not a size"
-    return ""
+            shown = number(value) if math.isfinite(value) else value
+            raise DataError(f"{name.replace('_', ' ')} {shown} mm is not a size")
+    return known
 
 
 def computed(title: str) -> Source:
@@ -99,13 +99,10 @@ def bar(
 ) -> Section:
     """A flat, round, square, hexagon or board from its sizes in mm; unknown ones None. Raises DataError on sizes that cannot be."""
     family, prefix, standard, terms = BARS[shape]
-    why = check_sizes(sizes)
-    if why:
-        raise DataError(why)
-    known = {t: sizes[t] for t in terms}
-    values = {t: v for t, v in known.items() if v is not None}
+    given = check_sizes(**sizes)
+    values = {t: given[t] for t in terms if t in given}
     designation = name or " ".join([prefix, "x".join(number(values[t]) for t in terms)] if len(values) == len(terms) else [prefix])
-    needs = (*(t for t in terms if known[t] is None), "length")
+    needs = (*(t for t in terms if t not in values), "length")
     source = source or computed("Geometry of a " + shape)
     steel = kind in ("metal", None) and shape != "board"
     if len(values) < len(terms):
@@ -155,13 +152,9 @@ def sheet(
     note: str = "",
 ) -> Section:
     """Plate, sheet, pane or panel, sizes in mm, unknown ones None. Raises DataError on sizes that cannot be."""
-    sizes = {"thickness": thickness, "width": width, "length": length}
-    why = check_sizes(sizes)
-    if why:
-        raise DataError(why)
+    values = check_sizes(thickness=thickness, width=width, length=length)
     rule = SHEET_RULES.get(kind, "sheet-planning")
-    values = {t: v for t, v in sizes.items() if v is not None}
-    shown = [number(v) for v in (thickness, width, length) if v is not None] if thickness is not None else []
+    shown = [number(v) for v in values.values()] if thickness is not None else []
     limits, tolerance = None, tolerances.rules()[rule][-1].tolerance
     if thickness is not None:
         limits, tolerance = tolerances.size_limits(rule, thickness, rule)
@@ -177,7 +170,7 @@ def sheet(
         source=computed("Geometry of a plate"),
         dimensions_mm=values,
         standard="EN 10029" if rule == "plate" and thickness is not None and thickness >= 3 and prefix == "PL" else None,
-        needs=tuple(t for t, v in sizes.items() if v is None),
+        needs=tuple(t for t in ("thickness", "width", "length") if t not in values),
         thickness_mm=thickness,
         thickness_bounds_mm=limits,
         volume_m3=volume,
@@ -198,11 +191,7 @@ def block(
     note: str = "",
 ) -> Section:
     """A rectangular solid, length × width × height in mm, unknown ones None. Raises DataError on sizes that cannot be."""
-    sizes = {"length": length, "width": width, "height": height}
-    why = check_sizes(sizes)
-    if why:
-        raise DataError(why)
-    values = {t: v for t, v in sizes.items() if v is not None}
+    values = check_sizes(length=length, width=width, height=height)
     factor, tolerance = Bounds.exact(1.0), tolerances.rules()[solid_rule(kind)][0].tolerance
     volume = surface = centroid = None
     if length is not None and width is not None and height is not None:
@@ -218,7 +207,7 @@ def block(
         form="solid",
         source=computed("Geometry of a block"),
         dimensions_mm=values,
-        needs=tuple(t for t, v in sizes.items() if v is None),
+        needs=tuple(t for t in ("length", "width", "height") if t not in values),
         centroid_mm=centroid,
         volume_m3=volume,
         surface_m2=surface,
@@ -300,9 +289,7 @@ def tube(outer: tuple[float, float] | float, wall: float, *, note: str = "") -> 
 
 def glulam(width: float, depth: float) -> Section:
     """Glued laminated timber, width × depth in mm, with the limits of EN 390. Raises DataError on sizes that cannot be."""
-    why = check_sizes({"width": width, "depth": depth})
-    if why:
-        raise DataError(why)
+    check_sizes(width=width, depth=depth)
     narrow, tolerance = tolerances.size_limits("en390-width", width, "en390-width")
     deep, _ = tolerances.size_limits("en390", depth, "en390")
     g = shapes.geometry("flat", {"b": depth, "tf": width})

@@ -21,8 +21,6 @@ from __future__ import annotations
 import math
 from typing import TYPE_CHECKING, Any
 
-from takeoff.bounds import Bounds
-from takeoff.errors import DataError
 from takeoff.sections import bodies, made, solids, tolerances
 from takeoff.sections.section import Section
 
@@ -157,12 +155,7 @@ def _solid(c: _Columns, section: Section) -> tuple[Floats, Floats, Floats, Float
         width = c.size("width", "length")
         sizes = (np.full(c.n, around[0]), np.full(c.n, around[1]), width)
         volume, surface = area * width, 2 * area + perimeter * width
-    rule = section.tolerance.rule if section.tolerance is not None else "block"
-    light, heavy = np.full(c.n, section.factor.light), np.full(c.n, section.factor.heavy)
-    for size in sizes:
-        low, high = c.limits(rule, rule, size)
-        light, heavy = light * low, heavy * high
-    return volume, surface, light, heavy
+    return volume, surface, *_size_limits(c, section, sizes)
 
 
 def _body(c: _Columns, section: Section) -> tuple[Floats, Floats, Floats, Floats]:
@@ -178,12 +171,17 @@ def _body(c: _Columns, section: Section) -> tuple[Floats, Floats, Floats, Floats
     else:
         a, b, t = c.size("length"), c.size("width", "height"), c.size("thickness")
         volume, surface, sizes = a * b * t / 2, a * b + t * (a + b + np.hypot(a, b)), (a, b, t)
+    return volume, surface, *_size_limits(c, section, sizes)
+
+
+def _size_limits(c: _Columns, section: Section, sizes: tuple[Floats, ...]) -> tuple[Floats, Floats]:
+    """Light and heavy shares of a volume with every size at its least and greatest."""
     rule = section.tolerance.rule if section.tolerance is not None else "block"
-    light, heavy = np.full(c.n, section.factor.light), np.full(c.n, section.factor.heavy)
+    light, heavy = c.np.full(c.n, section.factor.light), c.np.full(c.n, section.factor.heavy)
     for size in sizes:
         low, high = c.limits(rule, rule, size)
         light, heavy = light * low, heavy * high
-    return volume, surface, light, heavy
+    return light, heavy
 
 
 def _bar(c: _Columns, section: Section, kind: str | None) -> tuple[Floats, Floats, Floats, Floats]:
@@ -191,7 +189,7 @@ def _bar(c: _Columns, section: Section, kind: str | None) -> tuple[Floats, Float
     shape = section.shape
     ones = np.ones(c.n)
     if shape in ("flat", "board"):
-        thickness = c.size("thickness")
+        thickness = _board_thickness(c) if shape == "board" else c.size("thickness")
         width = c.size("width", "height") if shape == "board" else c.size("width")
         thickness, width = np.fmin(thickness, width) * (thickness / thickness), np.fmax(thickness, width) * (width / width)
         area, around = thickness * width, 2 * (thickness + width)
@@ -216,21 +214,30 @@ def _bar(c: _Columns, section: Section, kind: str | None) -> tuple[Floats, Float
     return area * length, around * length, light, heavy
 
 
-def length_lost_mm(section: Section, angle_deg: float) -> Bounds:
-    """Length in mm that one bevelled end takes off a piece measured over its long points, on the section's axis.
+def _board_thickness(c: _Columns) -> Floats:
+    """A board's thickness; of timber told by width and height, the height stands in, and the lesser is the thickness."""
+    if "thickness" in c.section.dimensions_mm or "width" in c.section.dimensions_mm:
+        return c.size("thickness")
+    with_width = ~c.np.isnan(c.given["width"])
+    filled = c.np.where(c.np.isnan(c.given["thickness"]) & with_width, c.given["height"], c.given["thickness"])
+    before, c.given["thickness"] = c.given["thickness"], filled
+    thickness = c.size("thickness")
+    c.given["thickness"] = before
+    return thickness
 
-    `angle_deg` is from square, in the plane of the web (of the width, for flats, boards and plates). The cut takes
-    tan(angle) × the distance from the centroid to the long face. Which face is long is not told: of an unsymmetrical
-    section light and heavy of the loss are the two faces', nominal their mean. Raises DataError where the angle is 85°
-    or more, or the section has no such depth.
+
+def cut_depths_mm(section: Section) -> tuple[float, float]:
+    """Half the depth that an end cut runs across, and the lesser distance from an edge to the centroid, mm; NaN where not known.
+
+    A bevel at an angle from square, in the plane of the web (of the width, for flats and boards), takes off the axis tan(angle)
+    times the distance from the centroid to the long face. Which face is long is not told: of an unsymmetrical section half the
+    depth is the mean of the two, the lesser distance the least that can be lost.
     """
-    if not abs(angle_deg) < 85:
-        raise DataError(f"a cut of {made.number(abs(angle_deg))} degrees from square is no end cut")
-    d = section.dimensions_mm
-    depth = d.get("h") or d.get("width") or d.get("diameter") or d.get("b")
-    if depth is None or section.form not in ("prismatic", "sheet"):
-        raise DataError(f"{section.designation} has no depth to cut across")
-    below = section.centroid_mm[1] if "h" in d and section.centroid_mm is not None else depth / 2
-    slope = abs(math.tan(math.radians(angle_deg)))
-    faces = (below * slope, (depth - below) * slope)
-    return Bounds(min(faces), sum(faces) / 2, max(faces))
+    sizes = section.dimensions_mm
+    if section.form not in ("prismatic", "sheet"):
+        return math.nan, math.nan
+    depth = sizes.get("h") or sizes.get("diameter") or sizes.get("width")
+    if not depth:
+        return math.nan, math.nan
+    centre = section.centroid_mm[1] if section.centroid_mm and len(section.centroid_mm) > 1 and sizes.get("h") else depth / 2
+    return depth / 2, max(0.0, min(centre, depth - centre))

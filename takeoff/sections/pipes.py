@@ -14,6 +14,9 @@ from takeoff.sections.section import Candidate, Section
 
 def read_pipe(p: Parsed, given: Given) -> Answer:
     """``PIPE DN100 SCH 40``, ``4" SCH 40S``, ``NPS 6 STD``, ``DN 50 x 4``: ASME B36.10M and B36.19M."""
+    series = p.series or _lettered_series(p)
+    if series and not p.schedule:
+        return _threadable(series, p)
     chains = [c for c in p.chains if not c.bracketed]
     remark = [c for c in p.chains if c.bracketed]
     numbers = [t for c in chains for t in c.numbers]
@@ -21,8 +24,17 @@ def read_pipe(p: Parsed, given: Given) -> Answer:
     if p.nominal is not None:
         system, size = p.nominal
         names = [f"{system}{nominal_inches(size) if system == 'NPS' else size.text}"]
+        if not numbers and not p.schedule and len(remark) == 1:
+            numbers, remark = list(remark[0].numbers), []  # DN 65 (76.1x3.6)
+        outer = {float(row.cells["h_mm"]) for row in catalogue.find("PIPE", "", (names[0],))}
+        if len(numbers) in (2, 3) and not p.schedule and any(abs(numbers[0].mm - d) <= 0.05 * d for d in outer):
+            # DN 100 - 114.3x3.6: the size by its name and by its diameter
+            p.nominal, p.chains = None, [Chain(numbers, [""] * (len(numbers) - 1))]
+            return read_hollow(("CHS",), p, given, listed_only=False)
         wall = numbers.pop(0) if numbers and not p.schedule else None
     else:
+        if not numbers and (label := p.labels.get("diameter")) is not None and label.unit == "in":
+            numbers.append(p.labels.pop("diameter"))  # 3"Ø SCH 40
         if not numbers:
             raise Refused("a schedule without a pipe size", "unknown-section")
         size, wall = numbers.pop(0), None
@@ -70,6 +82,36 @@ def read_pipe(p: Parsed, given: Given) -> Answer:
             )
     p.labels.pop("wall", None)
     return Answer(_pipe_tolerance(section, p), "exact", length)
+
+
+def _lettered_series(p: Parsed) -> str:
+    """The M or H beside EN 10255 or BS 1387: medium or heavy."""
+    if not any("10255" in s or "1387" in s for s in p.standards):
+        return ""
+    return next((name for letter, name in (("M", "medium"), ("H", "heavy")) if letter in p.letters or letter.lower() in p.others), "")
+
+
+def _threadable(series: str, p: Parsed) -> Answer:
+    """``DN 50 medium``, ``2" heavy pipe``, ``EN 10255 DN50 M``: tube for threading by its nominal size and weight."""
+    numbers = [t for c in p.chains for t in c.numbers]
+    if p.nominal is not None:
+        system, size = p.nominal
+        if size.unit == "in":
+            system = "NPS"
+    elif numbers:
+        size = numbers.pop(0)
+        system = "NPS" if size.unit == "in" else "DN"
+    else:
+        raise Refused("a weight of pipe without its nominal size", "unknown-section")
+    name = f"{system}{nominal_inches(size) if system == 'NPS' else size.text}"
+    rows = catalogue.find("PIPE EN 10255", series, (name,))
+    if not rows:
+        offered = [row for row in catalogue.rows("PIPE EN 10255") if row.cells["series"] == series]
+        wanted = size.value * (25 if system == "NPS" else 1)
+        offered.sort(key=lambda row: abs(float(row.cells["dn"]) - wanted))
+        near = tuple(Candidate(row.designation, 60.0) for row in offered[:3])
+        raise Refused(f"no {series} pipe of nominal size {size.raw}", "unknown-section", near)
+    return Answer(rows[0].section, "exact", length_left(numbers))
 
 
 def nominal_inches(token: tokens.Token) -> str:

@@ -43,9 +43,13 @@ class Geometry(NamedTuple):
     centroid: tuple[float, float]
 
 
+#: where the thickness of a tapered flange may be measured; empty for the toe itself
+PLACES = ("b/4", "b/2", "(b-tw)/2", "(b-tw)/4", "")
+
+
 def from_toe(rule: str, b: float, tw: float) -> float:
     """mm from the flange toe at which the flange thickness is measured, by the name of the place."""
-    places = {"b/4": b / 4, "b/2": b / 2, "(b-tw)/2": (b - tw) / 2, "(b-tw)/4": (b - tw) / 4, "": 0.0}
+    places = dict(zip(PLACES, (b / 4, b / 2, (b - tw) / 2, (b - tw) / 4, 0.0), strict=True))
     if rule not in places:
         raise DataError("unknown place of the flange thickness", read=rule, right="one of " + ", ".join(filter(None, places)))
     return places[rule]

@@ -78,9 +78,7 @@ def arch_stone(
     Area = angle/2 × (outer² - inner²); the chord c of the inner face subtends 2 asin(c / 2R). The centroid lies on the
     bisector at 2/3 × (Ro³ - Ri³)/(Ro² - Ri²) × sin(a/2)/(a/2). Raises DataError on sizes that cannot be.
     """
-    why = made.check_sizes({"inner radius": inner_radius, "depth": depth, "angle": angle_deg, "chord": chord, "width": width})
-    if why:
-        raise DataError(why)
+    made.check_sizes(inner_radius=inner_radius, depth=depth, angle=angle_deg, chord=chord, width=width)
     if angle_deg is None:
         if chord is None:
             raise DataError("an arch stone needs its angle (A) or its inner chord (C)")
@@ -108,9 +106,7 @@ def arch_stone(
 
 def wedge(length: float, thick: float, thin: float, width: float | None = None, kind: str | None = None) -> Section:
     """A wedge: length × thick end / thin end × width, mm. The face is a right trapezium with the thick end at the left."""
-    why = made.check_sizes({"length": length, "thick end": thick, "thin end": thin, "width": width})
-    if why:
-        raise DataError(why)
+    made.check_sizes(length=length, thick_end=thick, thin_end=thin, width=width)
     thick, thin = max(thick, thin), min(thick, thin)
     x = length * (thick + 2 * thin) / (3 * (thick + thin))
     y = (thick**2 + thick * thin + thin**2) / (3 * (thick + thin))

@@ -73,7 +73,26 @@ _SIGNS = str.maketrans(
         "Φ": "Ø",
         "φ": "Ø",
         "\\": " ",
+        "∟": " L",
+        "∠": " L",
+        "□": " box",
+        "▢": " box",
+        "◻": " box",
     }
+)
+#: Ways of writing that one look at the whole text must settle, behind what gives them away: words with a figure or a
+#: stroke in them, and the open bracket that stands for a channel in Asian lists (``[100x50x5x7.5``, ``[20a``).
+_SPELT = (
+    (re.compile(r"\b4-?kt\b", re.IGNORECASE), "vkt"),
+    (re.compile(r"\b6-?kt\b", re.IGNORECASE), "skt"),
+    (re.compile(r"\ball[ -]thread", re.IGNORECASE), "allthread"),
+    (re.compile(r"\b([oi])/d\b", re.IGNORECASE), r"\1d"),
+    (re.compile(r"(?:\bdouble extra[ -](?:strong|heavy)\b|xx-?\s?(?:strong|heavy)\b)", re.IGNORECASE), " xxs"),
+    (re.compile(r"(?:\bextra[ -](?:strong|heavy)\b|x-?\s?(?:strong|heavy)\b)", re.IGNORECASE), " xs"),
+    (re.compile(r"\bt&g\b", re.IGNORECASE), "tg"),
+    (re.compile(r"\bosb\s?/?\s?[0-4](?=\s+(?!mm|cm|in\b)[^x*\s\"]|$)", re.IGNORECASE), "osb"),
+    (re.compile(r"(?<![\d.])(\d{2,3})\.(\d{2,3})\.(\d{1,2})(?![\d.])"), r"\1x\2x\3"),
+    (re.compile(r"^\[\s?-?\s?(?=\d[^\]]*$)"), "gbc "),
 )
 _VULGAR = {
     "½": "1/2",
@@ -86,6 +105,7 @@ _VULGAR = {
     "⅓": "1/3",
     "⅔": "2/3",
 }
+_SPELT_SIGNS = ("kt", "/d", "strong", "heavy", "thread", "osb", "t&g")
 _SCAN = re.compile(r"\d+(?:[.,]\d+)*|[^\W\d_]+|\S")
 _DENOMINATORS = frozenset((2, 4, 8, 16, 32, 64))
 _SEPARATORS = frozenset(("x", "*", "/", "|", "by"))
@@ -125,7 +145,13 @@ def clean(text: str) -> str:
     for sign, plain in _VULGAR.items():
         if sign in text:
             text = text.replace(sign, "-" + plain if sign in text[1:] and text[text.index(sign) - 1].isdigit() else " " + plain)
-    return plain_text(text.translate(_SIGNS)).translate(_SIGNS).translate(_LOOKALIKES).replace("''", '"')
+    text = plain_text(text.translate(_SIGNS)).translate(_SIGNS).translate(_LOOKALIKES).replace("''", '"')
+    small = text[:LONGEST].lower()
+    if text[:1] == "[" or small.count(".") > 1 or any(sign in small for sign in _SPELT_SIGNS):
+        text = text[: LONGEST + 1]
+        for pattern, plain in _SPELT:
+            text = pattern.sub(plain, text)
+    return text.strip()
 
 
 def canonical(text: str) -> str:
@@ -182,8 +208,10 @@ def cut(text: str) -> list[Token] | None:
                 glued = True
         else:
             rough.append(Token("sep" if raw in _SEPARATORS else "mark", raw, raw, glued=glued))
-        if glued and len(rough) > 2 and raw.isdecimal() and rough[-2].raw == "." and rough[-3].kind == "sep":
-            # x.25 leaves out the nought
+        if glued and len(rough) > 1 and raw.isdecimal() and rough[-2].raw == "." and (
+            not rough[-2].glued or (len(rough) > 2 and rough[-3].kind == "sep")
+        ):
+            # x.25 and PL .375 leave out the nought
             text = canonical(f"0.{rough[-1].raw}")
             rough[-2:] = [Token("num", text, f".{rough[-1].raw}", float(text), "", False, rough[-2].glued)]
     return _units(_fractions(rough))

@@ -1,0 +1,138 @@
+"""Rows that look like a plain section and are more than it: read as the section alone they would be silently too light.
+
+Each text once was, or nearly was, weighed below its truth. A row may be refused or assumed; what it may not be is weighed light.
+"""
+
+from __future__ import annotations
+
+import csv
+from pathlib import Path
+
+import pytest
+
+import takeoff
+from takeoff import materials, sections
+
+#: Several pieces, fillings, linings and parts fixed on, told beside a designation.
+MORE_THAN_THE_SECTION = (
+    "Zwillings-HEA 200", "Doppel-UPN 200", "doppio UPN 200", "doble IPE 300", "two HEA 200", "zwei UPN 200", "deux IPE 300", "dos HEA 200",
+    "dwa UPN 200", "två HEA 200", "triple HEA 200", "L4x4x1/2 in coppia", "HEA 200 doubled", "UPN 200 boxed", "box UPN 200",
+    "RHS 100x50x5 back to back", "][ RHS 100x50x5", "CHS 114.3x5 Rücken an Rücken", "HEA 200 bundle", "HEA 200 pack", "HEA 200 kit",
+    "HEA 200 stiffened", "HEA 200 compound", "HEA 200 cover plated", "HEA 200 assembly",
+    "HEA 200 concrete encased", "HEA 200 mit Beton gefüllt", "HEA 200 rempli de béton", "CHS 323.9x10 concrete filled",
+    "CHS 323.9x10 / concrete", "RHS 200x200x8 infill concrete", "pipe 323.9x10 full of water", "pipe 323.9x10 cement lined",
+    "pipe 323.9x10 rubber lined", "jacketed pipe 114.3x6.3", "finned tube 25x2",
+    "HEA 200 with rail", "HEA 200 + stiffeners", "HEA 200 with end plates", "HEA 200 and bolts", "HEA 200 w/ plate", "HEA 200 c/w brackets",
+    "UPN 200 mit Kopfplatte", "UPN 200 avec platine",
+    "HEA/HEB 200", "HEA 200?", "glass 6+6x1000",
+)  # fmt: skip
+
+#: Sizes that are not what the first reading makes of them.
+OTHER_SIZES = (
+    'CHS 4" x 6.3', 'pipe 4" x 6.3', "Rohr 4in 6.3 wt", 'pipe 2"x0.154"', "pipe inside dia 101.7 x 6.3", "pipe bore 101.7 x 6.3",
+    "Rohr Innen 101.7 x 6.3", "plate b200 t10", "b200 t10", "tube 2x2x0.25", "PL 0.375x24x48", "PL .375x24x48", "PL 1.5x12x24",
+    "VSG 2x6x1000", 'PL 600x1200x3/8"',
+)  # fmt: skip
+
+#: Remarks that change no mass.
+REMARKS = (
+    "HEA 200 with holes", "HEA 200 mit Bohrungen", "column HEA 200 primed", "HEA 200 zinc plated", "HEA 200 S355J2+N",
+    "HEA 200 drilled and painted", "UPN 200 avec trous",
+)  # fmt: skip
+
+
+@pytest.mark.parametrize("text", MORE_THAN_THE_SECTION)
+@pytest.mark.parametrize("kind", [None, "metal", "glass"])
+def test_more_than_the_section_is_never_read_as_the_section(text: str, kind: str | None) -> None:
+    """Several pieces, a filling or parts fixed on refuse the text, with the word that tells."""
+    match = sections.read(text, material_kind=kind)
+    assert match.section is None
+    assert match.reason
+
+
+@pytest.mark.parametrize("text", OTHER_SIZES)
+def test_sizes_that_may_be_others_are_refused(text: str) -> None:
+    """Inches without their mark, inner diameters, nominal sizes and lettered sizes are no outside mm."""
+    match = sections.read(text, material_kind="glass" if text.startswith("VSG") else "metal")
+    assert match.section is None
+    assert match.kind in ("implausible-size", "ambiguous-section", "impossible-geometry", "unknown-section")
+
+
+@pytest.mark.parametrize("text", REMARKS)
+def test_remarks_that_weigh_nothing_stay_remarks(text: str) -> None:
+    """Holes, paint, grades and where it goes leave the section read."""
+    match = sections.read(text, material_kind="metal")
+    assert match.section is not None
+    assert match.match in ("exact", "alias")
+
+
+def test_a_metre_belongs_to_the_length_only() -> None:
+    """`10x200x1m` is a plate 10 mm thick and 1 m long, not one of 10 m by 200 m."""
+    match = sections.read("PL 10x200x1m", material_kind="metal")
+    assert match.section is not None
+    assert match.section.dimensions_mm == sections.read("PL 10x200x1000", material_kind="metal").section.dimensions_mm  # type: ignore[union-attr]
+
+
+def test_a_small_a_is_no_variant_letter() -> None:
+    """`dos à dos` and `a 45 gradi` do not make the light IPE A of an IPE."""
+    assert sections.read("IPE 300 a").section != sections.read("IPE 300").section
+    for text in ("IPE 300 a inglete", "IPE 300 à souder"):
+        match = sections.read(text)
+        assert match.section is None or match.section == sections.read("IPE 300").section
+
+
+@pytest.mark.parametrize(
+    "text",
+    [
+        "chrome plated", "zinc plated", "gold anodised", "silver grey", "oak effect", "PVC coated", "rubber coated", "copper finish",
+        "oak faced",
+    ],
+)  # fmt: skip
+def test_a_finish_alone_is_no_material(text: str) -> None:
+    """What is under the finish is not told."""
+    assert materials.lookup(text).material is None
+
+
+@pytest.mark.parametrize("text", ["aluminium anodised", "steel galvanised", "steel coated", "zinc plated steel", "stainless finish 2B"])
+def test_a_finish_beside_its_material_leaves_it(text: str) -> None:
+    """A metal with its finish is that metal, or is refused; it never becomes the finish."""
+    found = materials.lookup(text).material
+    assert found is None or found.family in ("aluminium", "carbon steel", "stainless")
+
+
+@pytest.mark.parametrize("text", ["betongefüllt S355", "S355 grouted", "S355 clad", "lead lined plywood"])
+def test_a_material_with_more_in_or_on_it_is_refused(text: str) -> None:
+    """A filling or lining weighs as well."""
+    assert materials.lookup(text).material is None
+
+
+def test_tin_plate_is_steel() -> None:
+    """Tin plate is thin steel under a film of tin: as tin it would be light."""
+    found = materials.lookup("tin plate").material
+    assert found is not None
+    assert found.family == "carbon steel"
+
+
+#: Section text, material text: the two contradict each other.
+CONTRADICTIONS = (
+    ("PL 10x200 lead", "S355"), ("PL10x200 S355", "aluminium"), ("HEA 200 S355", "aluminium"), ("steel HEA 200", "oak"), ("HEA 200", "oak"),
+    ("UPN 200", "concrete"), ("steel plate 10x200", "plywood"),
+)  # fmt: skip
+AGREEMENTS = (
+    ("PL10x200 S355", "S275"), ("HEA 200 S355", "steel"), ("copper pipe 54x2", "brass"), ("aluminium RHS 100x50x5", "6082"),
+    ("UPN 200", "GRP"),
+    ("PL 10x200 aluminium", "S355"), ("L 50x50x5", "oak"), ("T16 rebar", "B500B"),
+)  # fmt: skip
+
+
+def test_a_section_text_that_names_a_heavier_metal_than_the_material_is_refused(tmp_path: Path) -> None:
+    """Which of the two is right is not known, so the row is not weighed; agreeing or lighter words change nothing."""
+    rows = [*CONTRADICTIONS, *AGREEMENTS]
+    path = tmp_path / "list.csv"
+    with path.open("w", encoding="utf-8", newline="") as handle:
+        writer = csv.writer(handle)
+        writer.writerow(["Mark", "Quantity", "Section", "Material", "Length (mm)"])
+        writer.writerows([f"M{i}", 1, section, material, 1000] for i, (section, material) in enumerate(rows))
+    frame = takeoff.weigh(path).frame()
+    weighed = {(row.section_text, row.material_text) for row in frame.itertuples() if row.status != "not weighed"}
+    assert weighed == set(AGREEMENTS)
