@@ -21,7 +21,7 @@ from takeoff.lists.headings import MEASURES
 from takeoff.lists.log import FindingLog
 from takeoff.lists.recognise import Recogniser, Recognition
 from takeoff.lists.sheets import Sheet, SourceFile, read_file
-from takeoff.lists.tables import SheetReading, Table, read_sheet
+from takeoff.lists.tables import SheetReading, Table, check_told, read_sheet
 from takeoff.thermal import CAUTIONS as THERMAL_CAUTIONS
 from takeoff.thermal.members import Temperatures, of_list
 from takeoff.thermal.runs import RunMovement
@@ -154,6 +154,7 @@ def read(paths: Sequence[str | Path], job: Job | None = None, *, job_path: Path 
     _refuse_twice(files_named)
     if job is None:
         job = find_job(files_named, job_path)
+    check_told(job)
     progress.tell("reading " + ", ".join(path.name for path in files_named[:3]))
     files = [read_file(path, job.guards) for path in files_named]
     sheets = [read_sheet(sheet, job) for file in files for sheet in _wanted(file, job)]
@@ -275,7 +276,7 @@ def _refuse_without_list(file: SourceFile, sheets: list[SheetReading]) -> None:
             cell=f"A{table.heading_rows[0]}",
             right="member rows below the headings",
         )
-    usable = {"section", "name", *MEASURES}
+    usable = {"section", "name", "size", *MEASURES}
     if not any(usable & set(t.columns) for t in tables):
         table = tables[0]
         raise InputError(

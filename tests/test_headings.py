@@ -264,6 +264,27 @@ def test_headings_that_hold_their_unit(text: str, field: str, unit: str) -> None
     assert (found.field, found.unit) == (field, unit)
 
 
+@pytest.mark.parametrize(("text", "field", "unit"), [
+    ("Weight ea. lbs", "unit_mass", "lb"), ("Wt. per pc (kgs)", "unit_mass", "kg"), ("Poids/u", "unit_mass", None),
+    ("Peso kg/cad", "unit_mass", "kg"),
+    ("Ciężar całk.", "total_mass", None), ("Gew. ges. kg", "total_mass", "kg"), ("Weight kgs", "mass", "kg"), ("Cut len.", "length", None),
+    ("Length/pc (m)", "length", "m"), ("Length o/a", "length", None), ("Tot. length m", "total_length", "m"),
+    ("Antal st", "quantity", None),
+    ("Poids T", "total_mass", None), ("WT (mm)", "thickness", "mm"),
+])
+def test_headings_made_of_known_words(text: str, field: str, unit: str | None) -> None:
+    """A heading that no table has is read word by word, where every word is known."""
+    found = read_heading(text)
+    assert found is not None
+    assert (found.field, found.unit) == (field, unit)
+
+
+@pytest.mark.parametrize("text", ["Weight length", "Weight (mm)", "Length (kg)", "Total of all", "Wt per m run x", "Each"])
+def test_words_that_make_no_heading(text: str) -> None:
+    """Words of two fields, or of none, make no heading."""
+    assert read_heading(text) is None
+
+
 @pytest.mark.parametrize("text", (
     "Preis | Prix | Precio | Prezzo | Prijs | Cena | Preço | Pris | GP | Montant | Importe | Drawing No. | Zeichnung | N° plan | Plano | "
     "Disegno | Tekening | Rysunek | Desenho | Ritning | Colour | Farbe | Couleur | Colore | Kleur | Kolor | Cor | Färg | Fläche gesamt | "

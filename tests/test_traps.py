@@ -166,7 +166,7 @@ TRAPS = [
     Trap(95, "edge banding is no board", "Mark;Qty;Section;Material;Length (mm);Width (mm);Banding\nA;1;18 mm;MDF;600;300;ABS 1,0 mm\n", [W],
          kg=0.018 * 0.6 * 0.3 * 780),
     Trap(96, "catalogue profiles", H + "A;1;T-slot 2040;aluminium;1000\n", [N]),
-    Trap(97, "purchased parts with sizes", H + "A;1;DIN 912 M16 x 40;;\n", [N]),
+    Trap(97, "purchased parts with sizes", H + "A;1;DIN 7991 M16 x 40;;\n", [N]),
     Trap(98, "a stated kg/m that disagrees", "Mark;Qty;Section;Material;Length (m);kg/m\nA;10;L 50x50x5;S235;6;5.0\n", [W], kinds=("stated-mass-differs",)),
     Trap(99, "a mass, and no size", "Mark;Qty;Section;Material;Unit mass (kg)\nA;1;Sheet 2 mm;S235;25.85\n", [W], kg=25.85, kinds=("stated-mass",)),
     Trap(100, "a mass per row, not each", "Mark;Qty;Section;Material;Length (mm);Total mass (kg)\nA;3;L 50x50x5;S235;1000;11.3\n", [W]),
@@ -283,5 +283,105 @@ MORE = [
 
 @pytest.mark.parametrize("trap", MORE, ids=lambda t: f"{t.number:03d} {t.what}")
 def test_further_trap(trap: Trap, tmp_path: Path) -> None:
+    """As above."""
+    test_trap(trap, tmp_path)
+
+
+#: met in invented lists of many trades, typed before they were read here; numbered on from the traps above
+TRADES = [
+    Trap(121, "a row of units, each of them also a heading", "Mark;Section;Material;Qty;Length;Weight each;Total wt\n;;;;mm;kg;kg\n"
+         "A;" + BEAM + ";2;6000;;\n", [W], kg=12 * KG, parts={"heading": 2}),
+    Trap(121, "a row of units with dashes and words for pieces", "Pos;Stk;Section;Material;Length;Weight each\n-;Stk.;-;-;[m];[kg]\n"
+         "A;2;" + BEAM + ";6;\n", [W], kg=12 * KG, parts={"heading": 2}),
+    Trap(121, "a row of units in feet and inches", "Mark;Qty;Section;Material;Length;Wt\n;;;;FT-IN;LB\nA;1;" + BEAM + ";10'-0\"\n", [W],
+         length=[3048], parts={"heading": 2}),
+    Trap(122, "numbered items beside descriptions", "Item;Qty;Description;Material;Length (mm)\n1;1;" + BEAM + ";1000\n2;1;" + BEAM + ";1000\n", [W, W],
+         kg=2 * KG),
+    Trap(122, "coded items beside descriptions", "Spool No.;Item;Qty;Description;Material;Length (mm)\nS1;1;1;" + BEAM + ";1000\nS1;2;1;" + BEAM + ";1000\n",
+         [W, W], kg=2 * KG),
+    Trap(122, "items numbered again for each mark", "Spool No.;Item;Qty;Description;Material;Length (mm)\nS1;1;1;" + BEAM + ";1000\nS1;2;1;" + BEAM + ";1000\n"
+         "S2;1;1;" + BEAM + ";1000\n", [W] * 3, kg=3 * KG),
+    Trap(123, "a column Nr that counts, beside marks", "Ref;Section;Material;Length (m);Nr\nA;" + BEAM + ";1;12\nB;" + BEAM + ";1;2\nC;" + BEAM + ";1;6\n",
+         [W, W, W], kg=20 * KG),
+    Trap(123, "a column Nr that numbers", "Nr;Qty;Section;Material;Length (m)\n1;4;" + BEAM + ";1\n2;4;" + BEAM + ";1\n", [W, W], kg=8 * KG),
+    Trap(124, "ditto marks for section and material", H + ROW + "".join(
+        f"A;1;{mark};{mark};1000\n" for mark in (
+            '""""', '"-""-"', "do.", "- do -", "ditto", "dito", "dto.", "idem", "〃", "''", "„", "-,,-", "as above", "wie vor", "w.o.", "j.w.")), [W] * 17,
+         kg=28 * KG, kinds=("ditto",)),
+    Trap(124, "a ditto mark with nothing above it", H + 'A;1;"""";S355;1000\n' + ROW + "B;1;" + BEAM.replace("S355", "") + ";1000\nC;1;do;do;1000\n", [N, W, A, N]),
+    Trap(124, "a ditto mark is no quantity", H + ROW + 'A;"""";' + BEAM + ";1000\n", [W, N]),
+    Trap(125, "sections under material, beside a grade", "Pos;Qty;Name;Materiaal;Kwaliteit;Lengte (mm)\n1;1;Post;Koker 100x100x5;1.4301;1000\n"
+         "2;1;Beam;HEA160;S355;1000\n", [W, W], kinds=("heading-misleads",)),
+    Trap(126, "a piece by name and three sizes", "Name;Qty;Material;Length (mm);Width (mm);Thickness (mm)\nCover;2;S235;900;400;2\nBusbar;1;copper;1500;80;10\n",
+         [A, A], kg=2 * 0.9 * 0.4 * 0.002 * 7850 + 1.5 * 0.08 * 0.01 * 8930, kinds=("plain-piece",)),
+    Trap(126, "three sizes and nothing else", "Pos;Pcs;t (mm);b (mm);l (mm);Mat\nP1;6;10;120;340;S355\n", [A], kg=6 * 0.01 * 0.12 * 0.34 * 7850),
+    Trap(126, "an angle by three sizes is no flat piece", "Name;Qty;Material;Length (mm);Width (mm);Thickness (mm)\nAngle;2;S235;900;50;5\nZ 200;2;S235;900;200;2\n",
+         [N, N]),
+    Trap(126, "metal by outside sizes may be hollow", "Name;Qty;Material;Length (mm);Width (mm);Height (mm)\nCabinet;1;S235;900;400;800\n", [N]),
+    Trap(127, "timber by width, height and length", "Pos;Bauteil;Anz;B;H;L;Material\n;;;[cm];[cm];[m];\n1;Aussteifung;22;8;20;5,85;C24\n", [A],
+         kg=22 * 0.08 * 0.2 * 5.85 * 420),
+    Trap(127, "stone by width, height and length", "Name;Qty;L (mm);B (mm);H (mm);Material\nCorbel;2;1000;300;150;granite\n", [A],
+         kg=2 * 1.0 * 0.3 * 0.15 * 2700),
+    Trap(127, "a bar by its diameter", "Pos;Qty;Ø (mm);Length (m);Material\n1;10;12;3.45;B500B\n", [A], kg=10 * 3.45 * 0.012**2 * 0.7853981633974483 * 7850),
+    Trap(128, "sizes in the order that their heading names", "Plate No.;Pcs;Grade;t x b x L (mm)\n101;2;S355;12 x 2500 x 9000\n", [A],
+         kg=2 * 0.012 * 2.5 * 9 * 7850),
+    Trap(129, "masses in pounds beside lengths in feet", "Mark;Qty;Section;Grade;Length;Weight\nA;1;W12X26;A992;10'-0\";260\nB;1;Winch;;;100\n", [W, A],
+         kg=(26 * 10 + 100) * 0.45359237 + 0.0),
+    Trap(130, "a bar schedule with many columns that are not ours",
+         "Member;Bar mark;Type & size;No. of mbrs;No. in each;Total no.;Length of each bar mm;Shape code;A;B;C;Rev\n"
+         "PC4;01;H20;2;12;24;2850;21;300;2300;;\n", [A], quantity=[24], length=[2850]),
+    Trap(130, "members and bars in each, without a total", "Bar mark;Type & size;No. of mbrs;No. in each;Length of each bar mm;Material\n01;H20;2;12;2850;B500B\n",
+         [W], quantity=[24], kinds=("quantity-per-and-total",)),
+    Trap(131, "a size column that holds lengths", "Part;Material;Size;Qty\nRail;Pine PAR 20x69;1200;4\nStile;Pine PAR 20x69;2440;2\n", [A, A], length=[1200, 2440]),
+    Trap(132, "an assembly's own row among its parts", "Item;Parent;Description;Qty;Section;Length (mm);Material\nF1;;Main frame;1;;;\nF2;F1;Rail;2;UB 203x133x25;1000;S355\n",
+         [W], kg=2 * KG, parts={"other": 1}, kinds=("assembly-row",)),
+    Trap(133, "feet and inches in two columns", "Mark;Qty;Section;Material;Ft;In\nA;1;" + BEAM + ";12;6\nB;1;" + BEAM + ";3;4 1/2\nC;1;" + BEAM + ";2;\n", [W, W, W],
+         length=[3810, 1028.7, 609.6]),
+    Trap(134, "the kind in one column, the sizes in another", "Name;Qty;Section;Material;Length (mm)\nRohr;1;168,3 x 4,5;P235GH;1000\nFlat bar;1;100x10;S235;1000\n",
+         [W, W], kinds=("section-from-name",)),
+    Trap(135, "size and schedule in two columns", "Mark;Qty;Size (NPS);Sch;Description;Material;Length (mm)\n1;1;\"4\"\"\";40;Pipe;A106;1000\n", [W], kg=16.08),
+    Trap(137, "a row whose words are also headings", "Name;Qty;Material;Remarks\nFrame;2;Steel;Note\n", [N]),
+    Trap(137, "a statement in the title whose words are also headings", "Material;Concrete\nMark;Qty;Section;Length (mm)\nA;1;Block 600x300x200;\n", [W],
+         kg=0.6 * 0.3 * 0.2 * 2400),
+    Trap(137, "a title inside the list whose words are also headings", H + ROW + "Material;Steel;;;\n" + ROW, [W, N, W]),
+    Trap(126, "sheet that is bent is no flat piece", "Name;Qty;Material;Length (mm);Width (mm);Thickness (mm)\nTrapezblech;2;S235;6000;1000;1\n", [N]),
+    Trap(138, "a section's own word is no material", "Mark;Qty;Section;Material;Length (mm)\nA;1;IPE 160;;1000\nB;1;H20;;1000\n", [A, A], kg=15.8 + 2.466),
+    Trap(139, "sums of masses by their label", H.replace("\n", ";Total mass (kg)\n") + "A1;2;" + BEAM + ";6000;301.2\n;;;;Peso totale;301.2\nEmpty weight;;;;;301.2\n", [W],
+         parts={"total": 2}),
+    Trap(140, "a column No of counted words", "Ref;No;Section;Material;Length (mm)\nA;2x;" + BEAM + ";1000\nB;2no;" + BEAM + ";1000\nC;1 off;" + BEAM + ";1000\n", [W] * 3,
+         quantity=[2, 2, 1]),
+    Trap(141, "masses in ton, and marks that are also bars", "Element;Aantal;Lengte [mm];Gewicht [ton]\nK1;1;3600;1,44\nB2;1;3600;1,44\nT4;1;4000;5,1\n", [W] * 3,
+         kg=2 * 1440 + 5100),
+    Trap(142, "a unit column called like a quantity", "Partida;Ud;Descripción;Cantidad;Largo (m);Material\n1;ud;UB 203x133x25;4;2,1;S275\n2;ml;UB 203x133x25;24;;S275\n",
+         [W, W], kg=(8.4 + 24) * KG),
+    Trap(143, "groups beside descriptions", "Part;What;Qty;Material;Length (mm)\nStage A;UB 203x133x25;1;S355;1000\nStage A;SHS 60x60x4;1;S355;500\n"
+         "Stage B;UB 203x133x25;1;S355;1000\n", [W] * 3, assembly=["Stage A", "Stage A", "Stage B"]),
+    Trap(144, "words of the section beside its sizes", "Mark;Qty;Section;Size;Grade;Length (mm)\nA;1;Flat;65x10;S275;1000\nB;1;Angle;50x50x5;S275;1000\n", [W, W]),
+    Trap(145, "the section in the material cell", "Part;Qty;Material;Length (cm)\nLeg;24;Rohr 48,3x3,2 Stahl;80\nPost;1;S355;80\nDeck;1;C24;80\n", [W, N, N], kg=24 * 0.8 * 3.56),
+    Trap(145, "timber and its sizes in the material cell", "Part;Qty;Material;Length (cm)\nLatte;16;Fichte 24x48;250\n", [W]),
+    Trap(146, "a board's thickness in the material cell", "Ref;Qty;Material;Dimensions\nA;1;Granite 30mm;2400 x 620\n", [A], kg=2.4 * 0.62 * 0.03 * 2700),
+    Trap(147, "a sheet by its area", "Name;Qty;Material;Thickness (mm);Area (m2)\nFloor plate;2;S275;6;1.5\nCover;2;S275;6;1.5\n", [W, A], kg=4 * 1.5 * 6 * 7.85),
+    Trap(148, "a length that says so", H + "A;1;" + BEAM + ";L=1200\n", [W], length=[1200]),
+    Trap(149, "a count in brackets or behind its sign", H + "A;(2);" + BEAM + ";1000\nB;x 3;" + BEAM + ";1000\n", [W, W], quantity=[2, 3]),
+    Trap(150, "WT beside a diameter is the wall", "Name;Qty;OD (mm);WT;Thk (mm);Length (mm);Material\nPipe;1;114.3;5;;1000;S235\n", [A], kg=13.5),
+    Trap(150, "a kind with its sizes in columns", "Section;Qty;Height (mm);Width (mm);Thickness (mm);Length (mm);Material\nRHS;1;120;60;5;1000;S235\n", [W]),
+    Trap(150, "D beside length and breadth", "Name;Qty;Material;L (mm);B (mm);D (mm)\nDeckel;1;S235;1000;500;10\n", [A], kg=39.25),
+    Trap(151, "headings in three lines", "Item;Description;;Quantity;Dimensions;;;Weight\n;;Material;;Length;Width;Thickness;kg\n;;;;mm;mm;mm;\n"
+         "1;Plate;S355;4;1200;600;20;452\n", [W], kg=4 * 1.2 * 0.6 * 20 * 7.85, parts={"heading": 3}),
+    Trap(152, "assemblies and pieces in each", "Assembly;Qty;Section;Material;Length (mm);Qty per assy\nFrame;3;" + BEAM + ";1000;2\nFrame;3;" + BEAM + ";500;4\n",
+         [A, A], quantity=[6, 12], kinds=("quantity-per-and-total",)),
+    Trap(152, "two quantities, neither of them the total", "Mark;Qty;Section;Material;Length (mm);Qty per assy\nA;4;" + BEAM + ";1000;2\nB;3;" + BEAM + ";500;1\n",
+         [N, W], kinds=("quantity-per-and-total",)),
+    Trap(153, "bare inches of a section in a list in feet", "Qty;Section;Grade;Length\n8;ROUND BAR 1 dia;A36;1'-0\"\n1;PL 10 x 200;A36;1'-0\"\n", [A, W],
+         kg=8 * 304.8 * 25.4**2 * 0.7853981633974483 * 7.85e-6 + 304.8 * 2000 * 7.85e-6),
+    Trap(154, "timber by name and size", "Artikel;Dim;Längd;Antal;Material\nStolpe;95x95;2,4 m;6;Furu\n", [W]),
+    Trap(155, "a column of standards is no section", "Pos;Qty;Description;Spec;Length (mm);Material\n1;1;HEA 200;EN 10365;1000;S235\n", [W], kg=42.3),
+    Trap(136, "gross and net", "Drum;Gross (kg);Net (kg);Tare (kg)\nD1;2310;1980;330\n", [A], kg=2310, kinds=("heading-twice",)),
+    Trap(136, "dry and operating", "Tag;Equipment;Qty;Dry weight (kg);Operating weight (kg)\nT1;Tank;1;900;5900\n", [N], kinds=("heading-twice",)),
+]
+
+
+@pytest.mark.parametrize("trap", TRADES, ids=lambda t: f"{t.number:03d} {t.what}")
+def test_trap_of_the_trades(trap: Trap, tmp_path: Path) -> None:
     """As above."""
     test_trap(trap, tmp_path)

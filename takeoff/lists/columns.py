@@ -11,10 +11,12 @@ from collections import Counter
 from collections.abc import Iterable
 from dataclasses import dataclass
 from datetime import date, datetime, time, timedelta
+from functools import partial
 from typing import TYPE_CHECKING
 
 from takeoff.findings import Finding, Level
 from takeoff.job import Job
+from takeoff.lists import ditto, strokes
 from takeoff.lists.counts import ABOUT
 from takeoff.lists.headings import MEASURES, TEXT_FIELDS
 from takeoff.lists.sheets import Cell
@@ -26,7 +28,8 @@ if TYPE_CHECKING:
 
 #: what a length can be before it is refused as a slip of the unit, in mm
 PLAUSIBLE_MM = {
-    "length": (1.0, 100_000.0), "total_length": (1.0, 1e7), "width": (0.5, 30_000.0), "thickness": (0.05, 5_000.0),
+    "length": (1.0, 100_000.0), "inches": (0.0, 100_000.0), "total_length": (1.0, 1e7),
+    "width": (0.5, 30_000.0), "thickness": (0.05, 5_000.0),
     "height": (0.5, 30_000.0), "diameter": (0.5, 10_000.0),
 }
 #: dimension -> the unit of a bare number in a metric list, and in one in inches or feet
@@ -40,8 +43,19 @@ _SMALLEST_USUAL_LENGTH_MM = 20.0
 _USUAL_MM = (20.0, 30_000.0)
 DASHES = ("-", "–", "—", "n/a", "N/A", "NA")
 
+#: fields of text that a disguised number or a date bars, and those where a date is said
+_NEEDED_TEXTS = ("section", "material", "size", "unit", "quantity_and_length")
+_DATES_SAID = ("mark", "name", "assembly", "pick", "bundle", "run", *_NEEDED_TEXTS)
+
+#: fields of text in which a ditto mark repeats the cell above
+_DITTO_FIELDS = ("assembly", "phase", "name", "section", "material", "size", "finish", "schedule")
+
 _ABOUT = re.compile(rf"{ABOUT}\s*(?=[\d.])", re.IGNORECASE)
 _TWO_UNITS = re.compile(r"([^()]{1,40}?)\s*[(\[]\s*([^()\[\]]{1,40})\s*[)\]]")
+#: so many rows tell whether a list is in feet
+_ENOUGH_ROWS = 200
+#: a length cell may say so itself: ``L=1200``
+_NAMED = re.compile(r"(?:l|lg|len|length|länge|lengte|long)\.?\s*[=:]\s*(?=\d)", re.IGNORECASE)
 _STRAY = "`´*★☆▲●•"
 #: two statements of one length may differ by this much and still be one
 _SAME_SHARE = 0.005
@@ -68,6 +82,10 @@ class ColumnReader:
         self._rows: list[list[Cell]] = [rows[n - 1] if n <= len(rows) else [] for n in table.member_rows]
         self.decimal, self.mixed = _decimal_sign(table, job)
         self.inches = _speaks_inches(table) and job.reading.thousands != "apostrophe"
+        self.strokes = strokes.of(table)
+        self._dates_said: set[str] = set()
+        self._dittos_said: set[str] = set()
+        self._faults: dict[str, set[int]] = {}
         self._fill_merged()
 
     # --- cells -------------------------------------------------------------------------------------------------------
@@ -127,7 +145,50 @@ class ColumnReader:
                 self.merged_numbers.setdefault(fields[left], []).extend(place[n] for n in rows)
 
     def faults(self, field: str) -> set[int]:
-        """Members whose cell of this field is an error, an unsaved formula or a merged number: said and barred."""
+        """Members whose cell of this field is an error, an unsaved formula, a merged or disguised number, or struck out: said once."""
+        if field not in self._faults:
+            self._faults[field] = self._find_faults(field) | self._disguised(field) | self._struck(field)
+        return self._faults[field]
+
+    def _disguised(self, field: str) -> set[int]:
+        """Members whose cell shows another number than it holds: said and barred."""
+        column, disguised = self.table.columns.get(field), self.table.sheet.disguised
+        if column is None or not disguised or (field in TEXT_FIELDS and field not in _NEEDED_TEXTS):
+            return set()
+        found: dict[tuple[str, str], list[int]] = {}
+        for i, row in enumerate(self.table.member_rows):
+            seen = disguised.get((row, column.number))
+            if seen is not None:
+                found.setdefault((seen.held, seen.shown), []).append(i)
+        for (held, shown), where in found.items():
+            message = f"the {_words(field)} cell holds {held} and shows {shown or 'nothing'}: which of them is meant is not known"
+            self.refuse("number-format", message, where, field, read=shown or None, right="a number format that shows what the cell holds")
+        return {i for where in found.values() for i in where}
+
+    def _struck(self, field: str) -> set[int]:
+        """Members of which this needed cell alone, or a part of its text, is struck out: said and barred."""
+        if field not in self.strokes.needed:
+            return set()
+        cells, parts = self.strokes.cells.get(field, []), self.strokes.parts.get(field, [])
+        right = "what takes its place"
+        if cells:
+            self.refuse("struck-out", f"the {_words(field)} cell is struck out, and the rest of its row is not", cells, field, right=right)
+        if parts:
+            message = f"a part of the {_words(field)} text is struck out: what of it counts is not known"
+            self.refuse("struck-out", message, parts, field, right=right)
+        return {*cells, *parts}
+
+    def say_strokes(self) -> None:
+        """Say which rows are struck out, and which of their cells that no piece needs."""
+        message = "the row is struck out in the sheet; it was counted"
+        self.say("assumed", "struck-out", message, self.strokes.rows, None,
+                 right="the row deleted, or named in [reading] skip of the job file; if it is built, no longer struck out")
+        for name in sorted({*self.strokes.cells, *self.strokes.parts} - self.strokes.needed):
+            where = sorted({*self.strokes.cells.get(name, []), *self.strokes.parts.get(name, [])})
+            message = f"the {_words(name)} cell is struck out, wholly or in part; it was read all the same"
+            self.say("note", "struck-out", message, where, name)
+
+    def _find_faults(self, field: str) -> set[int]:
         merged = self.merged_numbers.get(field, [])
         if merged:
             message = "one number is merged over several rows: whose is it?"
@@ -154,14 +215,51 @@ class ColumnReader:
     def texts(self, field: str) -> list[str | None]:
         """A text field, blank as None; a second column that claims the field fills blanks, and bars rows where it differs."""
         faults = self.faults(field)
-        found = [None if i in faults or is_blank(cell) else as_text(cell) for i, cell in enumerate(self.cells(field))]
+        cells = self.cells(field)
+        if field in _DATES_SAID and field in self.table.columns:
+            faults = faults | self._dated(field, cells)
+        found = [None if i in faults or is_blank(cell) else as_text(cell) for i, cell in enumerate(cells)]
         for rival in self.table.rivals.get(field, []):
             others = [None if is_blank(cell) else as_text(cell) for cell in self._cells_at(rival.number)]
             if field in ("section", "material"):
                 apart = [i for i, (a, b) in enumerate(zip(found, others, strict=True)) if a and b and a.casefold() != b.casefold()]
                 self.refuse("heading-twice", f"two columns give a {field}, and they differ", apart, field, right="one of them")
             found = [a or b for a, b in zip(found, others, strict=True)]
+        if field in _DITTO_FIELDS and field in self.table.columns:
+            self._fill_dittos(field, found)
         return found
+
+    def texts_at(self, number: int) -> list[str | None]:
+        """The texts of a column by its number on the sheet, as they stand."""
+        return [None if is_blank(cell) else as_text(cell) for cell in self._cells_at(number)]
+
+    def _fill_dittos(self, field: str, found: list[str | None]) -> None:
+        """Put the text above in place of ditto marks; one with nothing above it is refused."""
+        if not any(map(ditto.is_ditto, {text for text in found if text})):
+            return
+        filled, alone = ditto.fill(found)
+        if field not in self._dittos_said:
+            self._dittos_said.add(field)
+            self.say("note", "ditto", f"a ditto mark: the {_words(field)} of the row above", filled, field)
+            if field in _NEEDED_TEXTS:
+                message = f"a ditto mark, and no {_words(field)} in the row above"
+                self.refuse("ditto", message, alone, field, right=f"the {_words(field)} itself")
+        for i in alone:
+            found[i] = None
+
+    def _dated(self, field: str, cells: list[Cell]) -> set[int]:
+        """Members whose cell of this field is a date or a time, which typed text such as 5-5 becomes; those that it bars."""
+        dated = [i for i, cell in enumerate(cells) if isinstance(cell, (date, time, timedelta))]
+        if not dated or field in self._dates_said:
+            return set(dated) if field in _NEEDED_TEXTS else set()
+        self._dates_said.add(field)
+        needed = field in _NEEDED_TEXTS
+        for read in dict.fromkeys(as_text(cells[i]) for i in dated):
+            where = [i for i in dated if as_text(cells[i]) == read]
+            message = f"the {_words(field)} cell holds a date or a time: a spreadsheet program makes one of texts such as 5-5 or MAY5"
+            right = "the text itself, typed into a cell formatted as text"
+            (self.refuse if needed else partial(self.say, "note"))("date-in-cell", message, where, field, read=read, right=right)
+        return set(dated) if needed else set()
 
     # --- numbers -----------------------------------------------------------------------------------------------------
 
@@ -214,11 +312,13 @@ class ColumnReader:
     def _numbers(self, field: str, faults: set[int], dimension: str) -> tuple[list[Number | None], dict[str, list[int]]]:
         """Each member's number, and what could not be read (text -> members)."""
         known: dict[str, Number | None] = {}
+        # A bare fraction (``4 1/2``) is a number only where the column is in inches.
+        in_inches = dimension == "length" and unit_of_column(self.table, field, self.job)[0] == "in"
         numbers: list[Number | None] = []
         bad: dict[str, list[int]] = {}
         for i, cell in enumerate(self.cells(field)):
             if type(cell) is float or type(cell) is int:
-                numbers.append(Number(cell, None) if math.isfinite(cell) else None)
+                numbers.append(Number(cell, None) if math.isfinite(cell) and not (faults and i in faults) else None)
                 continue
             if i in faults or cell is None or is_blank(cell):
                 numbers.append(None)
@@ -226,6 +326,8 @@ class ColumnReader:
             text = as_text(cell)
             if text not in known:
                 known[text] = self.read(cell, dimension)
+                if known[text] is None and in_inches and "/" in text:
+                    known[text] = self.read(f'{text}"', dimension)
             found = known[text]
             numbers.append(found)
             if found is None and text not in DASHES:
@@ -239,6 +341,8 @@ class ColumnReader:
         if not isinstance(cell, str):
             return None
         text = tidy(cell)
+        named = _NAMED.match(text) if dimension == "length" else None
+        text = text[named.end():] if named else text
         plain = self._plain(text, dimension)
         if plain is not None:
             if self.mixed and plain.sign is not None:
@@ -370,9 +474,8 @@ def unit_of_column(table: Table, field: str, job: Job) -> tuple[str, str]:
         if table.unit_note:
             return table.unit_note, "title block"
         return (job.reading.length_unit, "job") if job.reading.length_unit else ("mm", "assumed")
-    imperial = table.unit_note in ("in", "ft") or any(c.heading and c.heading.unit in ("in", "ft") for c in table.all_columns)
     si, us = _BARE_UNITS[dimension]
-    return us if imperial else si, "assumed"
+    return us if in_feet(table) else si, "assumed"
 
 
 def _decimal_sign(table: Table, job: Job) -> tuple[DecimalSign | None, bool]:
@@ -413,6 +516,17 @@ def _speaks_inches(table: Table) -> bool:
         for number in numbers if number <= len(table.sheet.rows[n - 1])
         for cell in (table.sheet.rows[n - 1][number - 1],)
     )
+
+
+def in_feet(table: Table) -> bool:
+    """Whether a list is in feet and inches: by its title, headings or unit row, or by most of the lengths typed in it."""
+    if table.in_feet is None:
+        units = [table.unit_note, *table.units_below.values(), *(c.heading.unit for c in table.all_columns if c.heading)]
+        column = table.columns.get("length")
+        texts = [c for n in table.member_rows[:_ENOUGH_ROWS] if column is not None and not is_blank(c := table.cell(n, "length"))]
+        typed = sum(type(c) is str and any(m.unit in ("in", "ft") for m in measure_readings(c)) for c in texts)
+        table.in_feet = any(unit in ("in", "ft") for unit in units) or (typed > 0 and typed * 2 >= len(texts))
+    return table.in_feet
 
 
 def _agree(one: float, other: float) -> bool:

@@ -13,12 +13,14 @@ from takeoff.quantities import EVERYDAY, Measure, measure_readings, number_readi
 
 MOST_PIECES = 1_000_000
 
-_PIECE_WORDS = (
+PIECE_WORDS = (
     "x|×|off|no|nos|pcs|pc|pce|pces|piece|pieces|ea|each|plate|plates|bar|bars|stk|stck|st|stuck|stueck|szt|sztuk|sztuki|ud|uds|un|unid|"
     "unidades|pz|pza|pzas|pezzi|pezzo|barre|stuks|stuk|pieza|piezas|piece s|p|kus|antal|pecas|peca"
 )
-_COUNT = re.compile(rf"(\d{{1,7}})\s*(?:{_PIECE_WORDS})?\.?", re.IGNORECASE)
-_REMARKED = re.compile(rf"(\d{{1,7}})\s*(?:{_PIECE_WORDS})?\.?\s*\(([^()]{{1,60}})\)", re.IGNORECASE)
+_COUNT = re.compile(rf"(\d{{1,7}})\s*(?:{PIECE_WORDS})?\.?", re.IGNORECASE)
+#: a count in brackets, or behind its sign
+_DRESSED = re.compile(r"\(\s*(\d{1,7})\s*\)|[x×]\s*(\d{1,7})", re.IGNORECASE)
+_REMARKED = re.compile(rf"(\d{{1,7}})\s*(?:{PIECE_WORDS})?\.?\s*\(([^()]{{1,60}})\)", re.IGNORECASE)
 #: words and signs before a figure that is only approximate
 ABOUT = r"(?:~|≈|ca\.?|circa|about|approx\.?|approximately|etwa|rund|ungefähr|env\.?|environ|ok\.?|aprox\.?|cirka)"
 _ABOUT = re.compile(rf"{ABOUT}\s*(\d{{1,7}})", re.IGNORECASE)
@@ -70,6 +72,9 @@ def read_count(cell: Cell) -> Count:
 
 
 def _worded(text: str) -> Count:
+    dressed = _DRESSED.fullmatch(text)
+    if dressed:
+        return read_count(int(dressed.group(1) or dressed.group(2)))
     remarked = _REMARKED.fullmatch(text)
     if remarked:
         pieces = read_count(int(remarked.group(1))).pieces

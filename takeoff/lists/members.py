@@ -8,13 +8,15 @@ from __future__ import annotations
 
 import itertools
 import math
+import re
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
 
 from takeoff import materials, sections
+from takeoff.findings import Level
 from takeoff.job import Job
-from takeoff.lists import counts, positions, rowwords, temperatures
-from takeoff.lists.columns import ColumnReader, as_text
+from takeoff.lists import counts, plainpieces, positions, rowwords, temperatures
+from takeoff.lists.columns import DASHES, ColumnReader, as_text
 from takeoff.lists.log import FindingLog
 from takeoff.lists.tables import SheetReading, Table, is_blank
 from takeoff.names import normal_name
@@ -34,6 +36,8 @@ _TEXT_COLUMNS = ("mark", "assembly", "pick", "phase", "run", "bundle", "finish",
                  "cut_angle_1", "cut_angle_2", "remarks")
 #: the fields that may give a quantity, the surest first
 _QUANTITIES = ("quantity_total", "quantity", "quantity_per")
+#: fields whose blank cell is said where it may be an error
+_NOT_TO_BE_BLANK = ("quantity_total", "quantity", "quantity_per", "section", "material", "length")
 #: words in a unit column, and what they make of the quantity
 _PIECES = frozenset((
     "pcs", "pc", "pce", "pieces", "piece", "ea", "each", "no", "nos", "off", "stk", "stck", "st", "stuck", "pz", "pza", "ud", "uds", "un",
@@ -102,14 +106,18 @@ def _read_table(reader: ColumnReader, job: Job) -> dict[str, list[Any]]:
         part[name] = reader.texts(name)
     for name, column in NUMBER_COLUMNS.items():
         part[column] = reader.measures(name)
+    _take_inches(reader, part)
     _take_sections(reader, part)
     _take_materials(reader, part)
+    plainpieces.settle(reader, part)
     _take_quantities(reader, part)
     _take_assemblies(reader, part, job)
     _take_lengths(reader, part)
     _take_packs(reader, part)
     _refuse_broken_rows(reader)
     _say_row_words(reader)
+    reader.say_strokes()
+    _say_blanks(reader)
     return part
 
 
@@ -119,6 +127,8 @@ def _read_table(reader: ColumnReader, job: Job) -> dict[str, list[Any]]:
 def _take_sections(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
     """Section texts: the section column, with the size column behind it; else the size, the name, or the caption."""
     table = reader.table
+    if table.rivals.get("material") and not {"section", "size"} & set(table.columns):
+        _settle_rival_materials(reader)
     names, sizes = reader.texts("name"), reader.texts("size")
     heading = next((table.columns[f] for f in ("section", "size", "name") if f in table.columns), None)
     part["section_heading"] = [heading.text if heading else None] * reader.count
@@ -144,9 +154,37 @@ def _take_sections(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
         found = names
         named = [i for i, text in enumerate(names) if text]
         reader.say("note", "section-from-name", "read from the description, there being no section column", named, "name")
+    if "schedule" in table.columns:
+        _add_schedules(reader, names, found)
     part["section_text"] = found
     part["mark"] = [mark or (name if "section" in table.columns or "size" in table.columns else None)
                     for mark, name in zip(part["mark"], names, strict=True)]
+
+
+def _add_schedules(reader: ColumnReader, names: list[str | None], found: list[str | None]) -> None:
+    """A pipe's size and its schedule stand in two columns: ``4"`` and ``40`` are one section."""
+    where = []
+    for i, (name, size, schedule) in enumerate(zip(names, found, reader.texts("schedule"), strict=True)):
+        if not size or not schedule or schedule in DASHES:
+            continue
+        word = schedule if re.match(r"sch|std|xs|xxs|xh", schedule, re.IGNORECASE) else f"Sch {schedule}"
+        joined = f"{size} {word}" if name in (None, size) else f"{name} {size} {word}"
+        if sections.read(joined).section is not None:
+            found[i] = joined
+            where.append(i)
+    reader.say("note", "section-note", "size and schedule stand in two columns, and were read together", where, "schedule")
+
+
+def _take_inches(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
+    """Inches in a column of their own are added to the feet beside them."""
+    if "inches" not in reader.table.columns:
+        return
+    lengths, unread = part["length_mm"], reader.members.unread
+    for i, inches in enumerate(reader.measures("inches")):
+        if "inches" in unread.get(reader.start + i, {}):
+            lengths[i] = math.nan
+        elif inches > 0 and "length" not in unread.get(reader.start + i, {}):
+            lengths[i] = inches + (0.0 if math.isnan(lengths[i]) else lengths[i])
 
 
 def _sections_under_material(reader: ColumnReader) -> list[str | None] | None:
@@ -154,13 +192,31 @@ def _sections_under_material(reader: ColumnReader) -> list[str | None] | None:
     if {"section", "size"} & set(reader.table.columns) or "material" not in reader.table.columns:
         return None
     texts = reader.texts("material")
-    distinct = [text for text in dict.fromkeys(texts) if text][:60]
-    plainly = sum(sections.read(text).section is not None and any(ch.isdigit() for ch in text) for text in distinct)
-    named = sum(materials.lookup(text).match in ("exact", "alias") for text in distinct)
-    if plainly * 2 < len(distinct) or plainly <= named:
+    if not _hold_sections(texts):
         return None
     reader.say("note", "heading-misleads", "the material column holds sections, and was read so", range(reader.count), "material")
     return texts
+
+
+def _settle_rival_materials(reader: ColumnReader) -> None:
+    """Of two columns called material, one whose cells are plainly sections is the section column (``Materiaal`` beside ``Kwaliteit``)."""
+    table = reader.table
+    claims = [table.columns["material"], *table.rivals["material"]]
+    holding = [column for column in claims if _hold_sections(reader.texts_at(column.number))]
+    if len(holding) != 1:
+        return
+    left = [column for column in claims if column is not holding[0]]
+    table.columns["section"], table.columns["material"], table.rivals["material"] = holding[0], left[0], left[1:]
+    message = f"the column {holding[0].text!r} holds sections, and was read so"
+    reader.say("note", "heading-misleads", message, range(reader.count), "section")
+
+
+def _hold_sections(texts: list[str | None]) -> bool:
+    """Whether texts are plainly sections, and more of them than are materials."""
+    distinct = [text for text in dict.fromkeys(texts) if text][:60]
+    plainly = sum(sections.read(text).section is not None and any(ch.isdigit() for ch in text) for text in distinct)
+    named = sum(materials.lookup(text).match in ("exact", "alias") for text in distinct)
+    return plainly * 2 >= len(distinct) and plainly > named
 
 
 def _take_materials(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
@@ -215,6 +271,12 @@ def _take_quantities(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
         _take_pairs(reader, part)
         return
     field = next((name for name in _QUANTITIES if name in table.columns), None)
+    if field == "quantity_per" and "quantity_of" in table.columns:
+        _take_products(reader, part)
+        return
+    if field == "quantity" and "quantity_per" in table.columns:
+        _settle_two_counts(reader, part)
+        return
     if field is None:
         _one_each(reader, part)
         return
@@ -259,6 +321,45 @@ def _take_quantities(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
         reader.say("refused", "missing-quantity", message, where, field, read=read or None, right="a whole number such as 4")
         reader.bar(where, "quantity", message)
     part["quantity"] = values
+
+
+def _settle_two_counts(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
+    """A quantity beside one per something, and no word of a total: where it is no multiple of the other, it counts the somethings."""
+    pairs = [(counts.read_count(a).pieces, counts.read_count(b).pieces)
+             for a, b in zip(reader.cells("quantity"), reader.cells("quantity_per"), strict=True)]
+    if any(whole % per for whole, per in pairs if whole > 0 and per > 0):
+        _take_products(reader, part, "quantity", "assumed")
+        return
+    message = "two quantities, and neither says that it is the total: is it the product of both?"
+    unsettled = [i for i, (whole, per) in enumerate(pairs) if not (whole > 0 and per == 1)]
+    reader.refuse("quantity-per-and-total", message, unsettled, "quantity", right="the total, under a heading such as Total qty")
+    part["quantity"] = [math.nan if i in set(unsettled) else whole for i, (whole, _) in enumerate(pairs)]
+
+
+def _take_products(reader: ColumnReader, part: dict[str, list[Any]], of_field: str = "quantity_of", level: Level = "note") -> None:
+    """A quantity for each of several, how many of them in another column, and no total: the product."""
+    faults = reader.faults("quantity_per") | reader.faults(of_field)
+    values, missing = [math.nan] * reader.count, []
+    for i, (per, of) in enumerate(zip(reader.cells("quantity_per"), reader.cells(of_field), strict=True)):
+        product = counts.read_count(per).pieces * counts.read_count(of).pieces
+        if i in faults or not 1 <= product <= counts.MOST_PIECES:
+            missing.append(i)
+        else:
+            values[i] = product
+    message = f"{_heading_text(reader, 'quantity_per')} × {_heading_text(reader, of_field)} is the quantity"
+    reader.say(level, "quantity-per-and-total", message, range(reader.count), "quantity_per")
+    if level == "assumed":
+        for i in range(reader.count):
+            reader.members.assumed.setdefault(reader.start + i, set()).add("quantity")
+    message = "one of the two counts is no whole number of 1 or more"
+    reader.say("refused", "missing-quantity", message, missing, "quantity_per", right="a whole number in both")
+    reader.bar(missing, "quantity", message)
+    part["quantity"] = values
+
+
+def _heading_text(reader: ColumnReader, field: str) -> str:
+    """The heading of a field's column, in quotes."""
+    return repr(reader.table.columns[field].text)
 
 
 def _by_unit(reader: ColumnReader, part: dict[str, list[Any]], i: int, cell: Any, unit_text: str, values: list[float]) -> bool:
@@ -375,6 +476,19 @@ def _refuse_broken_rows(reader: ColumnReader) -> None:
         if kind:
             reader.say("refused", kind, message, [i], None, right="quotes around a cell that holds the separator")
             reader.members.refused.setdefault(reader.start + i, message)
+
+
+def _say_blanks(reader: ColumnReader) -> None:
+    """In a file that cannot show its error cells, a blank that a piece may need can be one."""
+    sheet = reader.table.sheet
+    if not sheet.blind or sheet.name is None:
+        return
+    for field in _NOT_TO_BE_BLANK:
+        blank = [i for i, cell in enumerate(reader.cells(field)) if is_blank(cell)]
+        if field in reader.table.columns and blank and len(blank) < reader.count:
+            words = field.replace("_", " ")
+            message = f"the {words} cell is blank, or holds an error such as #REF!, which an {sheet.blind} file does not show"
+            reader.say("note", "blank-or-error", message, blank, field, right="the list saved as .xlsx or .ods")
 
 
 def _say_row_words(reader: ColumnReader) -> None:

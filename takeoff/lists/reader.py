@@ -35,8 +35,10 @@ def read(data: bytes, cells: int) -> dict[str, Any]:
             continue
         sheet = book.get_sheet_by_name(meta.name)
         hidden = meta.visible != calamine.SheetVisibleEnum.Visible
-        if sheet.total_height * sheet.total_width > cells:
-            sheets.append((meta.name, hidden, (sheet.total_height, sheet.total_width), []))
+        # The last cell's row and column, from 0; None where the sheet is empty. (The reader's own totals are one short.)
+        last_row, last_column = sheet.end or (-1, -1)
+        if (last_row + 1) * (last_column + 1) > cells:
+            sheets.append((meta.name, hidden, (last_row + 1, last_column + 1), []))
             continue
         rows = [[None if cell == "" else cell for cell in row] for row in sheet.to_python(skip_empty_area=False)]
         sheets.append((meta.name, hidden, rows, []))

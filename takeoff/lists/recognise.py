@@ -25,7 +25,15 @@ _LENGTH_BEHIND = re.compile(
     r"(.{2,60}?)\s*(?:[x×*,;-]|\bl\s*=|\blength\b|\blg\b)?\s*(\d{1,6}(?:[.,]\d{1,3})?)\s*(mm|cm|m)(?:\s+long)?", re.IGNORECASE
 )
 _MM = {"mm": 1.0, "cm": 10.0, "m": 1000.0}
+#: how the sections answer a word that is a family of theirs
+_FAMILY = "names a family, not a size"
 _SIZES_ONLY = re.compile(r"[\d.,x×*/'\"½¼¾⅛⅜⅝⅞Øø∅+~-]+(?:mm|cm|m|in|ft)?", re.IGNORECASE)
+
+_WORD = re.compile(r"[^\W_][^\s,;()\[\]]*[^\W_]")
+#: Kinds of material that sections are made of.
+_SECTIONED = frozenset(("metal", "plastic", "composite", "elastomer", "other"))
+#: A metal of the section text is another than the column's where it is heavier by so much.
+_HEAVIER = 1.05
 
 
 @dataclass(slots=True)
@@ -56,6 +64,7 @@ class Recogniser:
         self.job, self.own, self.own_sections, self.strict = job, own, own_sections, strict
         self._materials = {normal_name(k): v for k, v in job.names.materials.items()}
         self._sections = {normal_name(k): v for k, v in job.names.sections.items()}
+        self._metals: dict[str, tuple[str, float, str]] = {}
 
     def all(
         self, section_texts: Sequence[str | None], material_texts: Sequence[str | None], headings: Sequence[str | None]
@@ -79,7 +88,40 @@ class Recogniser:
             section = self._read_section(wanted_section, heading, material.material.kind)
         self._take_section(section, section_text, found)
         self._take_material(material, wanted_material, found)
+        self._compare(wanted_section, section, wanted_material, found)
         return found
+
+    def _compare(self, text: str | None, section: SectionMatch | None, material_text: str | None, found: Recognition) -> None:
+        """Refuse a row whose section text names a heavier metal than its material column (``PL 10 S355``, aluminium), or whose
+        rolled steel section is told in a material that is not rolled, drawn or moulded (``HEA 200``, oak)."""
+        material = found.material
+        if material is None or found.section is None or not text or not material_text or found.section.form == "each":
+            return
+        rolled = found.section.is_steel_standard and found.section.family not in ("L", "T")
+        if rolled and material.kind not in _SECTIONED:
+            message = f"{found.section.designation} is a steel section, and the material is {material.name}"
+        else:
+            metals = [self._metal(w) for w in _WORD.findall(text[:80]) if not _SIZES_ONLY.fullmatch(w)]
+            heaviest = max(metals, default=("", 0.0, ""), key=_by_density)
+            if heaviest[1] <= material.density.high * _HEAVIER or _is_of_section(heaviest[2], section):
+                return
+            message = f"the section text names {heaviest[0]}, and the material is {material.name}"
+        found.material = None
+        right = "one material for the row"
+        found.material_refusal = Finding("refused", "ambiguous-material", message, read=material_text, right=right)
+
+    def _metal(self, word: str) -> tuple[str, float, str]:
+        """The metal that one word of a section text names, with its density (kg/m³) and the word; none is no metal."""
+        known = self._metals.get(word)
+        if known is None:
+            known = ("", 0.0, word)
+            if len(word) > 2:  # shorter words are letters of sections
+                match = materials.lookup(word, own=self.own)
+                exact = match.material is not None and match.match in ("exact", "alias") and match.material.kind == "metal"
+                if exact and match.material is not None and match.material.density.nominal is not None:
+                    known = (match.material.name, match.material.density.nominal, word)
+            self._metals[word] = known
+        return known
 
     def _read_section(self, text: str | None, heading: str | None, kind: str | None) -> SectionMatch | None:
         if text is None:
@@ -103,6 +145,8 @@ class Recogniser:
         words = [w for w in re.split(r"[\s,;()]+", text) if len(w) > 1 and not _SIZES_ONLY.fullmatch(w)]
         for word in (" ".join(words), *(" ".join(pair) for pair in itertools.pairwise(words)), *words):
             match = materials.lookup(word, hint=hint, own=self.own)
+            if match.material is not None and _is_of_section(word, section):
+                continue
             if match.material is not None and match.match in ("exact", "alias") and any(ch.isalpha() for ch in word):
                 named.setdefault(match.material.key, word)
                 if " " in word:
@@ -265,3 +309,15 @@ class Recogniser:
         if match.material.own:
             found.notes.append((Finding("note", "own-material", "the density is from your own table", read=text), "material"))
         found.material = match.material
+
+
+def _by_density(metal: tuple[str, float, str]) -> float:
+    return metal[1]
+
+
+def _is_of_section(word: str, section: SectionMatch | None) -> bool:
+    """Whether a word is the section's own name: IPE is also a wood, and H20 also an aluminium."""
+    if section is None or section.section is None:
+        return False
+    alone = sections.read(word)
+    return alone.section == section.section or alone.reason.endswith(_FAMILY)

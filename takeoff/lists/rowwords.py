@@ -12,6 +12,10 @@ TOTAL = re.compile(
     r"^(?:grand |sub ?|page |overall |running )?(?:total|sum|subtotal|totals)\b|^(?:zwischen|gesamt|end)?summe\b"
     r"|^gesamt(?:gewicht|masse)?\b"
     r"|^(?:sous )?total\b|^somme\b|^suma\b|^(?:sub)?totale?\b|^totaal\b|^subtotaal\b|^razem\b|^lacznie\b|^summa\b|^delsumma\b|^totalt\b"
+    r"|^(?:empty|full|total|overall|gross|net|dry|operating|test|shipping|erection|steel) (?:weight|mass|wt)\b|^(?:weight|mass) total\b"
+    r"|^(?:poids|masse) total|^(?:peso|massa) total|^totaal ?gewicht\b|^(?:masa|waga) (?:calkowita|razem)\b|^totalvikt\b|^vikt total"
+    r"|^(?:leer|betriebs|netto|brutto)(?:gewicht|masse)\b|^(?:poids|masse) a vide\b|^peso a? ?vuoto\b|^peso en vacio\b|^leeggewicht\b"
+    r"|^tomvikt\b"
     r"|^soma\b|^carried forward\b|^brought forward\b|^ubertrag\b|^a reporter\b|^report\b"
 )
 #: rows of money and work, which weigh nothing
@@ -42,6 +46,12 @@ WARNING = re.compile(
 ASSEMBLY_ROW = re.compile(
     r"\b(?:module|assembly|assemblies|assy|sub ?assy|sub ?assembly|kit|baugruppe|modul|ensemble|sous ensemble|conjunto|subconjunto"
     r"|assieme|gruppo|samenstelling|zespol|podzespol|sammansattning|enhet)\b|\bassy$"
+)
+#: things of sheet that are bent or hollow: thickness × width × length would be too light, or far too heavy
+NOT_FLAT = re.compile(
+    r"trapez|\bwell|corrugat|profil|purlin|pfette|panne\b|omega|sigma|hollow|hohl|creux|hueco|\bcav[oa]\b|folded|\bbent\b|kantteil|gekantet"
+    r"|cassette|kassette|\btray\b|\bwanne|gutter|rinne|goulotte|canaleta|\bbox|kasten|cabinet|schrank|\btank|behalter|cuve|drum\b|grecat|greca\b"
+    r"|golfplaat|damwand|nervur|falist|plie\b|pliee|plegad|piegat|gezet|giet|dobrad|bockad|grating|gitterrost|caillebotis|mesh|gitter"
 )
 #: "(5x)" or "5 x " in a part's name, where no column gives quantities
 COUNT_IN_NAME = re.compile(r"\(\s*x?\s*\d+\s*x?\s*\)|\bx\s?\d+\b$|^\d+\s?x\s")

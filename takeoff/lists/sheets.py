@@ -1,8 +1,9 @@
 """Files become grids of cells: the only module that opens a workbook or a text table. Rank 3.
 
 A fast reader gives the cell values. It drops what matters to us (errors, formulas without a stored result, hidden rows,
-merged cells), so an .xlsx is also looked over by `openxml`, which refuses what no reader takes in safely; and some files
-end the reader's whole process, so it runs apart (`apart`).
+merged cells, number formats, struck-out cells, comments), so an .xlsx is also looked over by `openxml`, which refuses what no
+reader takes in safely, and an .ods by `opendoc`; a cell then counts as a person sees it (`cellformats`). Some files end the
+reader's whole process, so it runs apart (`apart`).
 """
 
 from __future__ import annotations
@@ -16,7 +17,7 @@ from pathlib import Path
 from takeoff.errors import InputError
 from takeoff.findings import Finding
 from takeoff.job import GuardsPart
-from takeoff.lists import apart, openxml
+from takeoff.lists import apart, cellformats, cellstyles, opendoc, openxml
 from takeoff.lists.openxml import letters
 from takeoff.lists.ownoutputs import refuse_ours
 from takeoff.lists.textfile import read_text
@@ -38,6 +39,9 @@ class Sheet:
     unsaved : cells with a formula but no stored result.
     broken : row -> (kind of finding, why its fields cannot be told apart), in a text file.
     merges : (first row, first column, last row, last column) of merged ranges, from 1.
+    disguised : cells whose number format shows another number than they hold, or none.
+    struck, partly_struck : cells struck out, and those with a part of their text struck out.
+    hidden_columns : (first, last) of hidden ranges of columns. blind : the kind of file whose looks and errors cannot be seen.
     """
 
     file: str
@@ -50,6 +54,11 @@ class Sheet:
     merges: tuple[tuple[int, int, int, int], ...] = ()
     broken: dict[int, tuple[str, str]] = field(default_factory=dict)
     findings: list[Finding] = field(default_factory=list)
+    disguised: dict[tuple[int, int], cellformats.Disguise] = field(default_factory=dict)
+    struck: frozenset[tuple[int, int]] = frozenset()
+    partly_struck: frozenset[tuple[int, int]] = frozenset()
+    hidden_columns: tuple[tuple[int, int], ...] = ()
+    blind: str = ""
 
 
 @dataclass(slots=True)
@@ -71,10 +80,10 @@ def read_file(path: Path, guards: GuardsPart) -> SourceFile:
     Raises InputError where there is no such file, it is a folder, empty, of another kind, damaged or over the guards.
     """
     name = str(path)
-    if path.is_dir():
-        raise InputError("is a folder, not a member list", file=name, right=f"the name of a file: {KINDS_READ}")
     try:
         status = path.stat()
+        if stat.S_ISDIR(status.st_mode):
+            raise InputError("is a folder, not a file", file=name, right=f"the name of a file: {KINDS_READ}")
         if not stat.S_ISREG(status.st_mode):
             # A pipe or a device may never end.
             raise InputError("is no ordinary file", file=name, right=f"the name of a file: {KINDS_READ}")
@@ -119,7 +128,9 @@ def _read_workbook(name: str, data: bytes, guards: GuardsPart) -> list[Sheet]:
         if not kind:
             raise InputError("is no workbook of the usual kind", file=name, right="a workbook saved as .xlsx")
     with apart.Reading(name, data, guards) as reading:
-        looks = openxml.look_over(name, data, guards) if kind == "xlsx" else {}
+        looks: dict[str, openxml.Look] = {}
+        if kind in ("xlsx", "ods"):
+            looks = (openxml if kind == "xlsx" else opendoc).look_over(name, data, guards)
         sheets = []
         for title, hidden, rows in reading.sheets():
             if looks and title not in looks:
@@ -131,10 +142,51 @@ def _read_workbook(name: str, data: bytes, guards: GuardsPart) -> list[Sheet]:
                     f"the sheet has {len(rows):,} rows, more than is read", file=name, sheet=title,
                     right=f"at most {guards.rows:,} rows, or higher [guards] rows in the job file",
                 )
-            sheets.append(
-                Sheet(
-                    name, title, rows, hidden=hidden, hidden_rows=look.hidden_rows, merges=look.merges, errors=look.errors,
-                    unsaved=look.unsaved,
-                )
+            sheet = Sheet(
+                name, title, rows, hidden=hidden, hidden_rows=look.hidden_rows, merges=look.merges, errors=look.errors,
+                unsaved=look.unsaved, struck=look.struck, partly_struck=look.partly_struck, hidden_columns=look.hidden_columns,
+                blind=f".{kind}" if kind in ("xls", "xlsb") else "",
             )
+            _as_seen(sheet, look)
+            _say_what_stands_beside(sheet, look)
+            sheets.append(sheet)
     return sheets
+
+
+def _as_seen(sheet: Sheet, look: openxml.Look) -> None:
+    """Put into the sheet's cells what they show, where a number format prints letters; note those that show something else."""
+    known: dict[tuple[str, Cell], Cell | cellformats.Disguise] = {}
+    hidden_texts: list[str] = []
+    for (row, column), told in (look.codes or look.shown).items():
+        cells = sheet.rows[row - 1] if row <= len(sheet.rows) else []
+        cell = cells[column - 1] if column <= len(cells) else None
+        if isinstance(cell, bool) or not isinstance(cell, int | float | str):
+            continue
+        if (told, cell) not in known:
+            known[told, cell] = cellformats.as_shown(cell, told) if look.codes else cellformats.as_text_shows(cell, told)
+        seen = known[told, cell]
+        if not isinstance(seen, cellformats.Disguise):
+            cells[column - 1] = seen
+        elif isinstance(cell, str):
+            hidden_texts.append(cell_name(row, column))
+        else:
+            sheet.disguised[row, column] = seen
+            if seen.shown:
+                cells[column - 1] = cellformats.Shown(seen.shown)
+    if hidden_texts:
+        message = "the cell's number format hides its text; it was read all the same"
+        sheet.findings.append(Finding("note", "number-format", message, sheet.file, sheet.name, hidden_texts[0], count=len(hidden_texts),
+                                      cells=tuple(hidden_texts)))
+
+
+def _say_what_stands_beside(sheet: Sheet, look: openxml.Look) -> None:
+    """The sheet's comments, and what of it could not be looked at."""
+    for row, column, text in look.comments[:cellstyles.MOST_COMMENTS]:
+        finding = Finding("note", "cell-comment", "a comment stands at this cell; it is passed on, not read", read=text)
+        sheet.findings.append(finding.at(sheet.file, sheet.name, cell_name(row, column)))
+    more = [cell_name(row, column) for row, column, _ in look.comments[cellstyles.MOST_COMMENTS:]]
+    if more:
+        message = f"{len(more)} more comments stand in the sheet"
+        sheet.findings.append(Finding("note", "cell-comment", message, sheet.file, sheet.name, more[0], count=len(more), cells=tuple(more)))
+    for message in look.unknown:
+        sheet.findings.append(Finding("note", "not-looked-at", message, sheet.file, sheet.name, right="a look at the sheet itself"))

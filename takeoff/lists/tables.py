@@ -13,12 +13,13 @@ from typing import Literal
 from takeoff.errors import JobError
 from takeoff.findings import Finding
 from takeoff.job import Job
-from takeoff.lists import rowwords
+from takeoff.lists import rowwords, settling
 from takeoff.lists.captions import Caption, read_caption, warns
-from takeoff.lists.headings import MEASURES, Heading, read_heading
+from takeoff.lists.cellformats import Shown
+from takeoff.lists.headings import FIELDS, TOLD, Heading, read_heading
 from takeoff.lists.openxml import column_number, letters
 from takeoff.lists.sheets import Cell, Sheet, cell_name
-from takeoff.names import normal_name
+from takeoff.names import NormalName, normal_name, suggest
 from takeoff.quantities import number_readings, unit_of
 
 RowKind = Literal["member", "heading", "total", "blank", "other"]
@@ -36,6 +37,7 @@ _KEY_FIELDS = frozenset(
         "quantity_and_length",
         "size",
         "length",
+        "inches",
         "total_length",
         "width",
         "thickness",
@@ -71,6 +73,13 @@ _WEIGHABLE = frozenset(
         "weighed_mass",
     )
 )
+#: what stands in a row of units over columns that have none
+_NO_UNIT = re.compile(
+    r"[-–—/#.]|[(\[]?\s*(?:pcs?|pce|ea|each|nos?|off|qty|stk|stck?|st|stück|anz|nb|pz|ud|uds|szt|un|szt|text)\.?\s*[)\]]?", re.IGNORECASE)
+#: so many known headings are a row of headings, however many others stand beside them
+_PLENTY = 4
+_GROSS = re.compile(r"\b(?:gross|brutto\w*|brut|bruto|lordo|total)\b")
+_NET = re.compile(r"\b(?:net|nett|netto\w*|neto|liquido)\b")
 _CUT = re.compile(r"\b(?:cut|zuschnitt|debit|coupe|corte|taglio|zaag|ciecia|kap)")
 
 
@@ -94,6 +103,7 @@ class Table:
     rivals : field -> further columns that claim it; their rows are refused where both are filled and differ.
     caption : what the title rows above say of the whole list. `group_of` : member row -> the group title above it.
     row_findings : member row -> what its words say of it (optional, contained in another row ...).
+    in_feet : whether the list is in feet and inches, once that was asked (see `columns`).
     """
 
     sheet: Sheet
@@ -107,6 +117,7 @@ class Table:
     caption: Caption = field(default_factory=Caption)
     group_of: dict[int, str] = field(default_factory=dict)
     row_findings: dict[int, list[Finding]] = field(default_factory=dict)
+    in_feet: bool | None = None
     _key_places: list[tuple[str, int]] = field(default_factory=list, repr=False)
 
     def key_places(self) -> list[tuple[str, int]]:
@@ -222,6 +233,9 @@ class _Walk:
         if number in self.sheet.broken:
             self._is(number, "member" if self.current is not None and self.mode == "list" else "other")
             return 0
+        if self._is_units_of_list(number, cells):
+            self._row_of_list(self.current, number, cells)  # type: ignore[arg-type]
+            return 0
         columns, last = self._headings(number, cells)
         if columns is not None:
             self._heading(number, last, columns)
@@ -229,12 +243,17 @@ class _Walk:
         if self.mode == "list" and self.current is not None:
             self._row_of_list(self.current, number, cells)
         elif self.mode == "sums":
-            self._is(number, "total" if any(isinstance(c, (int, float)) or number_readings(str(c or "")) for c in cells) else "other")
+            sums = any(isinstance(c, (int, float, Shown)) or number_readings(str(c or "")) for c in cells)
+            self._is(number, "total" if sums else "other")
         else:
             self._is(number, "other")
             if self.mode != "example":
                 self._title(number, cells)
         return 0
+
+    def _is_units_of_list(self, number: int, cells: list[Cell]) -> bool:
+        """Whether a row right below headings holds their units; some of those (kg, kg/m) could be headings themselves."""
+        return self.mode == "list" and self.current is not None and number - 1 in self.current.heading_rows and _is_unit_row(cells)
 
     def _is(self, number: int, kind: RowKind) -> None:
         self.kinds[number] = kind
@@ -268,12 +287,20 @@ class _Walk:
             or _is_unit_row(below)
         ):
             return columns, number
-        both = [" ".join(str(c).strip() for c in pair if not is_blank(c)) for pair in _zip(cells, below)]
-        joined = _heading_columns([text or None for text in both], self.job)
+        joined = _heading_columns([self._in_two_lines(*pair) for pair in _zip(cells, below)], self.job)
         known = sum(1 for c in columns or [] if c.heading)
-        if joined is not None and sum(1 for c in joined if c.heading) > known and _heading_columns(below, self.job) is None:
+        alone = sum(1 for c in _heading_columns(below, self.job) or [] if c.heading)
+        if joined is not None and sum(1 for c in joined if c.heading) > max(known, alone):
             return joined, number + 1
         return columns, number
+
+    def _in_two_lines(self, above: Cell, below: Cell) -> str | None:
+        """A heading in two lines: both together where that is known, else the lower where it is, which a wider one may stand above."""
+        texts = [str(c).strip() for c in (above, below) if not is_blank(c)]
+        both = " ".join(texts)
+        if len(texts) < 2 or _told(0, both, self.job) or read_heading(both):
+            return both or None
+        return next((text for text in texts[::-1] if read_heading(text)), both)
 
     def _heading(self, number: int, last: int, columns: list[Column]) -> None:
         self.kinds[number] = "heading"
@@ -328,7 +355,7 @@ class _Walk:
                 and re.fullmatch(r"total( qty| quantity)?", normal_name(column.text))
             ) or (column.heading is None and "quantity_per" in fields and normal_name(column.text) == "total"):
                 column.heading = Heading(column.text, "quantity_total", None, "the total beside a quantity per piece")
-        self._settle_open_headings(columns, heading_rows[-1])
+        settling.settle(columns, {column.number: self._below(column, heading_rows[-1]) for column in columns if column.heading})
         for column in columns:
             if column.heading is None:
                 message = f"the column {column.text!r} is left alone"
@@ -344,6 +371,12 @@ class _Walk:
                 first, column = column, first  # noqa: PLW2901 - the cut length is the piece's length, wherever it stands
                 table.columns[name] = first
                 self._note(heading_rows[0], "heading-twice", f"the cut length {first.text!r} is used, {column.text!r} is left alone")
+            elif name == "mass" and _GROSS.search(normal_name(column.text)) and _NET.search(normal_name(first.text)):
+                first, column = column, first  # noqa: PLW2901 - what hangs on the hook is the gross mass, wherever it stands
+                table.columns[name] = first
+                self._note(heading_rows[0], "heading-twice", f"the gross mass {first.text!r} is used, {column.text!r} is left alone")
+            elif name == "mass" and _GROSS.search(normal_name(first.text)) and _NET.search(normal_name(column.text)):
+                self._note(heading_rows[0], "heading-twice", f"the gross mass {first.text!r} is used, {column.text!r} is left alone")
             elif name == "length" and _CUT.search(normal_name(first.text)):
                 self._note(heading_rows[0], "heading-twice", f"the cut length {first.text!r} is used, {column.text!r} is left alone")
             else:
@@ -364,19 +397,10 @@ class _Walk:
                 )
         return table
 
-    def _settle_open_headings(self, columns: list[Column], heading_row: int) -> None:
-        """Headings that people use for either of two fields take the first that is free and that their cells fit."""
-        taken = {c.heading.field for c in columns if c.heading and not c.heading.otherwise}
-        for column in columns:
-            heading = column.heading
-            if heading is None or not heading.otherwise:
-                continue
-            below = [self.cells(n) for n in range(heading_row + 1, min(heading_row + 41, len(self.sheet.rows) + 1))]
-            cells = [row[column.number - 1] for row in below if column.number <= len(row) and not is_blank(row[column.number - 1])]
-            fitting = [name for name in (heading.field, *heading.otherwise) if name not in taken and _fits(name, cells)]
-            field_name = fitting[0] if fitting else "not_used"
-            column.heading = Heading(heading.text, field_name, heading.unit, "a heading used for several things, told by its cells")
-            taken.add(field_name)
+    def _below(self, column: Column, heading_row: int) -> list[Cell]:
+        """The filled cells of a column in the first rows below its heading."""
+        below = [self.cells(n) for n in range(heading_row + 1, min(heading_row + 41, len(self.sheet.rows) + 1))]
+        return [row[column.number - 1] for row in below if column.number <= len(row) and not is_blank(row[column.number - 1])]
 
     # --- rows --------------------------------------------------------------------------------------------------------
 
@@ -392,7 +416,7 @@ class _Walk:
             table.units_below = {column: unit for column, cell in enumerate(cells, 1) if isinstance(cell, str) and (unit := unit_of(cell))}
             table.heading_rows.append(number)
             return
-        heard = [rowwords.heard(c) for c in cells if type(c) is str]
+        heard = [rowwords.heard(c) for c in cells if type(c) is str or type(c) is Shown]
         # Where no pattern of words fits any text, as in nearly every row, there is nothing to look at.
         labels = [label for label, _ in heard if label is not None] if any(tells for _, tells in heard) else []
         kind = _kind_of(table, cells, number, self.sheet, labels)
@@ -472,8 +496,27 @@ class _Walk:
         if not said:
             del table.row_findings[number]
 
+    def _set_assemblies_apart(self, table: Table) -> None:
+        """An assembly's own row beside those of its parts names no piece: no section, no size, no mass, once."""
+        if not {"mark", "assembly"} <= set(table.columns):
+            return
+        named = {normal_name(str(table.cell(n, "assembly"))) for n in table.member_rows if not is_blank(table.cell(n, "assembly"))}
+        for n in list(table.member_rows):
+            mark = table.cell(n, "mark")
+            if is_blank(mark) or normal_name(str(mark)) not in named or _has(table, n, {"section", "material"} | _SIZES):
+                continue
+            counts = [str(table.cell(n, name)).strip() for name in _COUNTS if not is_blank(table.cell(n, name))]
+            if all(count in ("1", "1.0", "-") for count in counts):
+                table.member_rows.remove(n)
+                table.row_findings.pop(n, None)
+                table.group_of.pop(n, None)
+                self.kinds[n] = "other"
+                self._note(n, "assembly-row", "the row is the assembly of others, and no piece", str(mark))
+
     def _say_what_was_found(self) -> None:
         sheet = self.sheet
+        for table in self.tables:
+            self._set_assemblies_apart(table)
         if not self.tables and not self.refusals:
             self.findings.append(
                 Finding(
@@ -485,8 +528,17 @@ class _Walk:
                     right="a row of headings such as Mark, Quantity, Section, Material, Length (mm)",
                 )
             )
+        if sheet.blind and self.tables:
+            message = (f"in an {sheet.blind} file errors, number formats (such as 0.0 \"m\"), struck-out cells, hidden rows and comments "
+                       "cannot be seen: numbers were read as the file holds them")
+            self.findings.append(Finding("note", "not-looked-at", message, sheet.file, sheet.name, right="the list saved as .xlsx or .ods"))
         if sheet.hidden and self.tables:
             self.findings.append(Finding("note", "hidden-rows", "the sheet is hidden; it was read all the same", sheet.file, sheet.name))
+        for table in self.tables:
+            fields = {column.number: column for column in table.columns.values() if column.heading and column.heading.field != "not_used"}
+            for number in sorted(n for n in fields if any(first <= n <= last for first, last in sheet.hidden_columns)):
+                message = f"the hidden column {fields[number].text!r} was read like the others"
+                self.findings.append(self._at(Finding("note", "hidden-rows", message), table.heading_rows[0], number))
         hidden = tuple(f"A{n}" for n in sorted(sheet.hidden_rows) if self.kinds.get(n) == "member")
         if hidden:
             self.findings.append(
@@ -501,22 +553,6 @@ class _Walk:
                     cells=hidden,
                 )
             )
-
-
-def _fits(field_name: str, cells: list[Cell]) -> bool:
-    """Whether a column's cells can be this field: counts that are no mere numbering, numbers, or sections with digits in them."""
-    texts = [str(cell).strip() for cell in cells]
-    numbers = [r[0].value for text in texts if (r := number_readings(text))]
-    if field_name in _COUNTS:
-        numbered = numbers == [numbers[0] + i for i in range(len(numbers))] and len(numbers) > 2 if numbers else False
-        return bool(numbers) and len(numbers) * 2 >= len(texts) and not numbered
-    if field_name in MEASURES:
-        return not texts or sum(any(ch.isdigit() for ch in text) for text in texts) * 2 >= len(texts)
-    if field_name == "section":
-        return sum(any(ch.isdigit() for ch in text) for text in texts) * 2 > len(texts)
-    if field_name == "name":
-        return len(numbers) * 2 < max(len(texts), 1)
-    return True
 
 
 def _zip(above: list[Cell], below: list[Cell]) -> list[tuple[Cell, Cell]]:
@@ -552,12 +588,18 @@ def _ranges(sheet: Sheet, job: Job) -> list[tuple[int, int, int, int]] | None:
     return found or None
 
 
+#: digits of a row's number
+_MOST_DIGITS = 7
+
+
 def _skipped_rows(sheet: Sheet, job: Job) -> set[int]:
     """Row numbers that `[reading] skip` names for this sheet, as ``Sheet!14`` or plain ``14``."""
     rows = set()
     for entry in job.reading.skip:
         name, _, number = entry.rpartition("!")
-        if number.isdecimal() and (not name or name == (sheet.name or "")):
+        if not (number.isascii() and number.isdecimal() and len(number) <= _MOST_DIGITS):
+            raise JobError("reading.skip: this is no row", file=job.path, read=entry, right="14, or Sheet!14")
+        if not name or name == (sheet.name or ""):
             rows.add(int(number))
     return rows
 
@@ -584,9 +626,23 @@ def _heading_columns(cells: list[Cell], job: Job) -> list[Column] | None:
     known = sum(1 for c in columns if c.heading)
     # A member row may hold a word or two that are also headings (a part called "Plate"); digits tell it apart.
     digits = sum(1 for c in columns if not c.heading and any(ch.isdigit() for ch in c.text))
-    if known < 2 or known * 2 < len(columns) or digits > known / 2:
+    # So does a bare number (``Frame | 2 | Steel``); and a heading repeated in one row (``Material | Steel``) is a statement.
+    if any(number_readings(c.text) for c in columns) or len({c.heading.field for c in columns if c.heading}) < 2:
+        return None
+    if known < 2 or (known * 2 < len(columns) and known < _PLENTY) or digits > known / 2:
         return None
     return columns
+
+
+def check_told(job: Job) -> None:
+    """Raises JobError where `[reading.columns]` names a field that there is not, which would else be passed over in silence."""
+    for key, named in job.reading.columns.items():
+        if named not in FIELDS:
+            near = suggest(NormalName(named[:80]), [NormalName(name) for name in sorted(FIELDS)], floor=60, limit=1)
+            raise JobError(
+                f"reading.columns: {key[:80]!r} is given a field that there is not", file=job.path, read=named,
+                right=near[0].name if near else "one of " + ", ".join(sorted(FIELDS)),
+            )
 
 
 def _told(number: int, text: str, job: Job) -> Heading | None:
@@ -596,13 +652,17 @@ def _told(number: int, text: str, job: Job) -> Heading | None:
         if by_letter or normal_name(key) == normal_name(text):
             found = read_heading(text)
             unit = found.unit if found else None
-            return Heading(text, named, unit, "told by the job file")
+            return Heading(text, named, unit, TOLD)
     return None
 
 
 def _is_unit_row(cells: list[Cell]) -> bool:
+    """Whether a row holds units, and besides them only dashes and words for pieces (``-``, ``Stk.``, ``mm``, ``kg``)."""
     texts = [cell for cell in cells if not is_blank(cell)]
-    return len(texts) > 0 and all(isinstance(c, str) and unit_of(c) is not None for c in texts)
+    if not texts or not all(type(c) is str and len(c) <= 16 for c in texts):
+        return False
+    units = [unit_of(str(c)) is not None for c in texts]
+    return any(units) and all(known or _NO_UNIT.fullmatch(str(c).strip()) for known, c in zip(units, texts, strict=True))
 
 
 def _kind_of(table: Table, cells: list[Cell], number: int, sheet: Sheet, labels: list[str]) -> RowKind:
@@ -623,7 +683,7 @@ def _kind_of(table: Table, cells: list[Cell], number: int, sheet: Sheet, labels:
         numbers = [c for c in cells if not is_blank(c)]
         if (
             filled
-            and all(not isinstance(c, str) or number_readings(c) for c in numbers)
+            and all(not isinstance(c, str) or type(c) is Shown or number_readings(c) for c in numbers)
             and not (filled & {"quantity_and_length"} or ({"length"} <= filled and filled & _COUNTS))
         ):
             return "total"

@@ -22,6 +22,8 @@ _MARKS = ((b"\xff\xfe\0\0", "utf-32"), (b"\0\0\xfe\xff", "utf-32"), (b"\xef\xbb\
 #: what UTF-8 letters look like once they were read as Windows-1252 and saved again
 _MISREAD = re.compile(r"Ã[\u0080-\u00bf¤¶¼Ÿ–œ©¨±³¢ª§¡\u00ad²‰]|Â[°²³½¼¾\u00a0]|â€")
 _LONGEST_COMMENT = 5_000
+#: letters beyond ASCII for each damaged byte, from which on a file is taken for damaged UTF-8 and not for another encoding
+_MOSTLY_RIGHT = 4
 #: from inside a quoted field to behind the quote that closes it; two quotes are one sign of the text
 _CLOSING = re.compile(r'[^"]*+(?:""[^"]*+)*+"')
 _BREAK = re.compile(r"<br\s*/?>", re.IGNORECASE)
@@ -80,18 +82,25 @@ def _decode(name: str, data: bytes, findings: list[Finding]) -> str:
             except UnicodeDecodeError as error:
                 raise InputError(f"is no proper {encoding} text", file=name) from error
     sample = data[:4000]
-    if b"\x00" in sample:
+    if b"\x00" in sample.rstrip(b"\x00"):
         # UTF-16 without a mark has a zero in every second byte of plain text.
         for encoding, zeros in (("utf-16-le", sample[1::2]), ("utf-16-be", sample[0::2])):
             if zeros.count(0) > 0.4 * len(zeros):
                 findings.append(Finding("note", "text-repaired", f"the file was read as {encoding}: it bears no mark", file=name))
                 return data.decode(encoding, errors="replace")
-        raise InputError("is no text file", file=name, right="a CSV file of text")
+        raise InputError("is no text file: it holds zero bytes", file=name, right="a CSV file of text")
     if b"\x00" in data:
         raise InputError("holds zero bytes, so it is no text file", file=name, right="a CSV file of text")
     try:
         return _repaired(name, data.decode("utf-8"), findings)
     except UnicodeDecodeError:
+        mended = data.decode("utf-8", errors="replace")
+        bad = mended.count("\ufffd")
+        if sum(sign > "\x7f" for sign in mended) > _MOSTLY_RIGHT * bad:
+            # Letters of two and more bytes that are right so often are no accident: a few bytes are damaged, the rest is UTF-8.
+            said = f"bytes of the file that are no UTF-8 ({bad}) stand as \ufffd"
+            findings.append(Finding("note", "text-repaired", said, file=name, right="UTF-8"))
+            return mended
         findings.append(Finding("note", "text-repaired", "the file is not UTF-8; it was read as Windows-1252", file=name, right="UTF-8"))
         return data.decode("cp1252", errors="replace")
 
