@@ -62,25 +62,6 @@ def tape_reading(length_mm: float | None, temperature_C: float, tape: Material |
     return None if length_mm is None or longer is None else length_mm / longer
 
 
-def true_length(reading_mm: float, temperature_C: float, tape: Material | None = None) -> float | None:
-    """The true length of what a tape at this temperature reads."""
-    longer = tape_factor(temperature_C, tape)
-    return None if longer is None else reading_mm * longer
-
-
-def from_tape(
-    reading_mm: float, material: Material, tape_C: float, member_C: float | None = None, *, reference_C: float = REFERENCE_C,
-    tape: Material | None = None, law: str | None = None,
-) -> float | None:
-    """Length at reference of a piece measured with a tape: reading x (1 + e_tape) / (1 + e_member), each at its temperature.
-
-    The piece has the tape's temperature unless `member_C` says otherwise. None where its expansion is not known.
-    """
-    true = true_length(reading_mm, tape_C, tape)
-    back = ratio(material, tape_C if member_C is None else member_C, reference_C, law)
-    return None if true is None or back is None else true * back
-
-
 def length_at(
     material: Material, length_mm: float, temperature_C: float, *, length_at_C: float = REFERENCE_C, law: str | None = None,
     tape: Material | None = None,

@@ -14,6 +14,7 @@ from takeoff.findings import Finding
 from takeoff.materials import DensityAt, Elongation, Law, Material, density_at, law_of
 from takeoff.thermal import notes
 from takeoff.thermal.lengths import REFERENCE_C, grown, ratio, tape_factor
+from takeoff.thermal.movement import steps
 from takeoff.thermal.runs import RunMovement, RunPart, RunRule, RunTemperatures, run_movement
 from takeoff.thermal.spread import AlphaSpread, alpha_spread
 from takeoff.weighing.measured import measuring_temperatures, tape_of
@@ -37,12 +38,17 @@ Say = Callable[[Finding, Iterable[int], str | None], None]
 
 @dataclass(frozen=True, slots=True)
 class MaterialAt:
-    """One material of the list at each named temperature: name -> (elongation from 20 °C, density)."""
+    """One material of the list at each named temperature: name -> (elongation from 20 °C, density).
+
+    line : (°C, growth from the reference temperature, per unit of length at reference) in steps over the whole range, for a chart;
+        empty where a temperature of it gives no answer, or where the job names one temperature only.
+    """
 
     material: Material
     law: Law
     spread: AlphaSpread
     at: dict[str, tuple[Elongation, DensityAt]]
+    line: tuple[tuple[float, float], ...] = ()
 
 
 @dataclass(slots=True)
@@ -152,8 +158,22 @@ def at_temperatures(
             part = rows[measured_C[rows] == t]
             _fill(out[MEASURED], readings[MEASURED], part, sizes_mm, material, (named[REFERENCE], t), tape)
         at = {name: (grown(material, t), density_at(material, t)) for name, t in named.items()}
-        found.append(MaterialAt(material, law_of(material), alpha_spread(material), at))
+        found.append(MaterialAt(material, law_of(material), alpha_spread(material), at, _line(material, named)))
     return Temperatures(named, measured_C, out, readings, found, material_of, tape)
+
+
+def _line(material: Material, named: Mapping[str, float]) -> tuple[tuple[float, float], ...]:
+    """Growth from the reference temperature over the range of the named ones, in steps of 5 °C."""
+    low, high, reference_C = min(named.values()), max(named.values()), named[REFERENCE]
+    if low == high:
+        return ()
+    line = []
+    for t in sorted({*steps(low, high), reference_C}):
+        times = ratio(material, reference_C, t)
+        if times is None:
+            return ()
+        line.append((t, times - 1.0))
+    return tuple(line)
 
 
 def _fill(

@@ -32,6 +32,20 @@ class Step:
 
 
 @dataclass(frozen=True, slots=True)
+class Change:
+    """How much longer than at `Movement.changes_from_C` the piece is at a temperature, mm; below zero where it is shorter.
+
+    low_mm, high_mm : with the row's low and high coefficient. other_mm : the other material's change, where there is one.
+    """
+
+    temperature_C: float
+    change_mm: float
+    low_mm: float
+    high_mm: float
+    other_mm: float | None
+
+
+@dataclass(frozen=True, slots=True)
 class Against:
     """The same length of another material beside it: its movement, and ours less its."""
 
@@ -53,6 +67,8 @@ class Movement:
     closing_mm, opening_mm : how far a gap set at `set_at_C` closes to the longest and opens to the shortest state between
         the temperatures; never below zero. `gap_to_set_mm` is the gap at setting.
     by_direction_mm : movement of the same size across, where the material grows differently across.
+    changes : length over the whole range in the steps of `table`, the setting with them, coldest first, against the length at
+        setting, or at `from_C` where nothing is set; empty where the material gives no answer.
     """
 
     material: Material
@@ -77,6 +93,12 @@ class Movement:
     table: tuple[Step, ...]
     against: Against | None
     findings: tuple[Finding, ...]
+    changes: tuple[Change, ...] = ()
+
+    @property
+    def changes_from_C(self) -> float:
+        """The temperature at which `changes` are zero."""
+        return self.from_C if self.set_at_C is None else self.set_at_C
 
     @property
     def closing_high_mm(self) -> float | None:
@@ -141,7 +163,34 @@ def movement(
         alone.closing, alone.opening, gap_min_mm, gap_max_mm, alone.to_set,
         tuple(Step(t, g, h) for t, g, h in zip(plan.temperatures, alone.gaps, gaps, strict=True)), beside,
         tuple(dict.fromkeys(findings)),
+        () if moved is None else _changes(at, _of(against, length_mm, length_at_C), spread, plan),
     )
+
+
+def _of(material: Material | None, length_mm: float, length_at_C: float) -> Callable[[float], float | None]:
+    """Length of the other piece by temperature, by its own law; None everywhere where there is no other."""
+
+    def size(t: float) -> float | None:
+        times = None if material is None else ratio(material, length_at_C, t)
+        return None if times is None else length_mm * times
+
+    return size
+
+
+def _changes(
+    at: Callable[[float], float | None], other: Callable[[float], float | None], spread: AlphaSpread, plan: _Gaps
+) -> tuple[Change, ...]:
+    zero_C = plan.from_C if plan.set_at_C is None else plan.set_at_C
+    zero, beside = at(zero_C), other(zero_C)
+    found = []
+    for t in sorted({*plan.temperatures, zero_C}):
+        here, there = at(t), other(t)
+        if zero is None or here is None:
+            return ()
+        change = here - zero
+        found.append(Change(t, change, change * spread.low, change * spread.high,
+                            None if there is None or beside is None else there - beside))
+    return tuple(found)
 
 
 def _check(length_mm: float, gap_min_mm: float | None, gap_max_mm: float | None) -> None:
@@ -179,9 +228,11 @@ def _against(
     theirs = None if nominal is None or change is None else length_mm / nominal * change
     difference = None if moved is None or theirs is None else moved - theirs
 
+    theirs_at = _of(other, length_mm, length_at_C)
+
     def apart(t: float) -> float | None:
-        ours, times = at(t), ratio(other, length_at_C, t)
-        return None if ours is None or times is None else ours - length_mm * times
+        ours, beside = at(t), theirs_at(t)
+        return None if ours is None or beside is None else ours - beside
 
     gaps = plan.of(apart if difference is not None else None)
     if material.key == other.key:

@@ -7,19 +7,22 @@ said, and its row is marked as one whose finish or contents are open; it is neve
 from __future__ import annotations
 
 import math
+from collections.abc import Iterator, Sequence
 from typing import TYPE_CHECKING
 
 from takeoff.bounds import Bounds
 from takeoff.errors import JobError
 from takeoff.findings import Finding
 from takeoff.provenance import EVIDENCE, Source
-from takeoff.weighing import contents, finishes, insulation
+from takeoff.weighing import contents, filled, finishes, insulation
 from takeoff.weighing.basis import Basis
 from takeoff.weighing.shape import Shape, thickness_mm
 from takeoff.weighing.soaking import says_soaked, soaking
 from takeoff.weighing.work import Work
 
 if TYPE_CHECKING:
+    from takeoff.materials import Material
+    from takeoff.weighing.filled import Filled
     from takeoff.weighing.finishes import Coat, Finish
     from takeoff.weighing.work import Floats, Ints
 
@@ -209,11 +212,49 @@ def _contents(work: Work, shape: Shape) -> None:
         density = found.density
         rule = f"{where} × {density.nominal:.5g} kg/m³ ({found.name}; {density.light:.5g} to {density.heavy:.5g})"
         bounds_rule = "density's spread" + (", bore ±4 %" if share.light < share.nominal else "")
-        _add_times(work, "contents", rows, volume, density.times(share), Basis(rule, found.source, bounds_rule, found.source))
+        range_C = filled.range_of(work.job.temperatures)
+        for part, at in _by_temperature(work, rows[~np.isnan(volume)], found.liquids, text, range_C):
+            wider, also = density, ""
+            if at is not None and at.light is not None and at.heavy is not None:
+                wider = Bounds(min(density.light, at.light), density.nominal, max(density.heavy, at.heavy))
+                also = f", {_degrees(at.heaviest_C)} to {_degrees(at.lightest_C)}"
+            chosen = volume[np.isin(rows, part)]
+            _add_times(work, "contents", part, chosen, wider.times(share), Basis(rule, found.source, bounds_rule + also, found.source))
         blind = rows[np.isnan(volume)]
         if len(blind):
             _leave_open(work, blind, text, "the contents are not added: the inside volume is not known",
                         "a volume, in its own column or as 500 l water")
+
+
+def _by_temperature(
+    work: Work, rows: Ints, liquids: Sequence[Material], text: str, range_C: tuple[float, float] | None
+) -> Iterator[tuple[Ints, Filled | None]]:
+    """Rows vessel material by vessel material, with their liquid's bounds over the job's temperatures, and say so of them."""
+    import numpy as np
+
+    if range_C is None or not liquids or not len(rows):
+        yield rows, None
+        return
+    names = " or ".join(m.name for m in liquids)
+    for number in np.unique(work.material_of[rows]).tolist():
+        part = rows[work.material_of[rows] == number]
+        found = filled.over(work.materials[number] if number >= 0 else None, liquids, range_C)
+        right = None
+        if found.light is None:
+            message = f"the contents are weighed by the table's figure, of about 20 °C only, and are heavier when colder: {found.reason}"
+            right = "their density in the cell, such as 500 l at 1250 kg/m3, or a weighed mass"
+        else:
+            known = f", as far as their density is known ({found.reason})" if found.reason else ""
+            heavy, light = _degrees(found.heaviest_C), _degrees(found.lightest_C)
+            message = (
+                f"{names}: nominal is the table's; heavy is at {heavy}, light at {light}, to cover the job's temperatures{known}"
+            )
+        work.say(Finding("note", "contents-at-temperature", message, read=text, right=right), part, "contents")
+        yield part, found
+
+
+def _degrees(celsius: float) -> str:
+    return f"{celsius:.4g} °C".replace("-", "−")
 
 
 def _leave_open(work: Work, rows: Ints, text: str, problem: str, right: str | None) -> None:

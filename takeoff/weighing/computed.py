@@ -7,7 +7,7 @@ dimension tolerance together with the material's density spread.
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 from takeoff.findings import Finding
 from takeoff.lists.recognise import Recognition
@@ -66,6 +66,7 @@ def _compute_group(work: Work, rows: Ints, found: Recognition, soaked: set[int])
         return
     sizes = {f"{name}_mm": work.sizes[name][rows] for name in SIZES}
     piece = pieces.columns(section, len(rows), **sizes, material_kind=material.kind if material else None)
+    _take_areas(work, rows, section, piece)
     work.measured.bring_back(rows, section, material, work.sizes, piece)
     volume = piece["volume_mm3"]
     work.volume_mm3[rows] = volume
@@ -89,6 +90,28 @@ def _compute_group(work: Work, rows: Ints, found: Recognition, soaked: set[int])
         if wood is not None and wood.moisture_open:
             work.say(Finding("note", "moisture-unknown", wood.why, right="[masses] moisture_percent in the job file"),
                      chosen[~np.isnan(mass)], "material")
+
+
+def _take_areas(work: Work, rows: Ints, section: Section, piece: dict[str, Any]) -> None:
+    """A sheet, or what has a mass per m², whose row gives its area in place of a width and a length."""
+    import numpy as np
+
+    if section.form not in ("sheet", "area mass"):
+        return
+    area_mm2 = work.frame["stated_area_m2"].to_numpy(dtype=float)[rows] * 1e6
+    blank = np.isnan(work.sizes["width"][rows]) & np.isnan(work.sizes["length"][rows])
+    use = blank & (area_mm2 > 0) & np.isin(piece["missing"].astype(str), ("width", "length"))
+    if not use.any():
+        return
+    if section.form == "sheet":
+        thickness = np.full(len(rows), section.dimensions_mm.get("thickness") or np.nan)
+        for name in ("thickness", "height"):
+            thickness = np.where(np.isnan(thickness), work.sizes[name][rows], thickness)
+        piece["volume_mm3"][use], piece["surface_mm2"][use] = (area_mm2 * thickness)[use], 2 * area_mm2[use]
+    else:
+        piece["mass_kg"][use] = (area_mm2 * 1e-6 * (section.kg_per_m2 or np.nan))[use]
+    piece["missing"][use] = ""
+    work.say(Finding("note", "section-note", "the row's area takes the place of width × length"), rows[use], "area")
 
 
 def _by_wetness(

@@ -33,6 +33,7 @@ class Contents:
     """A contents cell read: kg/m³ of what it names, the part that is filled, or the volume or mass it states.
 
     `problem` says why it cannot be added, `right` what would be right; `assumed` names the readings of an open name.
+    `liquids` are the rows of the table it may be, where they are liquids: their density moves with temperature.
     """
 
     density: Bounds | None = None
@@ -44,6 +45,7 @@ class Contents:
     problem: str | None = None
     right: str | None = None
     assumed: str | None = None
+    liquids: tuple[Material, ...] = ()
 
     @property
     def empty(self) -> bool:
@@ -87,12 +89,14 @@ def _named(name: str, share: float, volume: float | None) -> Contents:
         first = known[0]
         names = ", ".join(m.name for m in known)
         return Contents(Bounds(low, first.density.nominal or low, high), first.name, first.density_source, share, volume,
-                        assumed=f"the contents may be any of: {names}; nominal is the first, heavy covers all")
+                        assumed=f"the contents may be any of: {names}; nominal is the first, heavy covers all",
+                        liquids=tuple(m for m in known if m.kind == "liquid"))
     material = match.material
     if match.match not in ("exact", "alias") or material is None or material.density.nominal is None:
         near = ", ".join(c.name for c in match.candidates[:3])
         return Contents(problem="the contents are not known", right=f"one of {near}" if near else _RIGHT)
-    return Contents(_spread(material), material.name, material.density_source, share, volume)
+    liquids = (material,) if material.kind == "liquid" else ()
+    return Contents(_spread(material), material.name, material.density_source, share, volume, liquids=liquids)
 
 
 def _spread(material: Material) -> Bounds:

@@ -12,10 +12,10 @@ from typing import TYPE_CHECKING
 
 from takeoff.findings import Finding
 from takeoff.quantities import choose, number_readings, tidy
+from takeoff.sections.pieces import cut_depths_mm
 from takeoff.weighing.work import Work
 
 if TYPE_CHECKING:
-    from takeoff.sections import Section
     from takeoff.weighing.work import Floats
 
 FIELDS = ("cut_angle_1", "cut_angle_2")
@@ -77,19 +77,8 @@ def _depths(work: Work) -> tuple[Floats, Floats]:
     """Half the depth the cut runs across, and the lesser distance from an edge to the centroid, mm; NaN where not known."""
     import numpy as np
 
-    pairs = [_depth(s) for s in work.sections]
+    pairs = [cut_depths_mm(s) for s in work.sections]
     half, near = (work.of_section([p[k] for p in pairs]) for k in (0, 1))
     sheet = np.array([*(s.form == "sheet" or s.shape in ("flat", "board") for s in work.sections), False], dtype=bool)[work.section_of]
     by_row = np.where(sheet, work.sizes["width"] / 2, np.nan)
     return np.where(np.isnan(half), by_row, half), np.where(np.isnan(near), by_row, near)
-
-
-def _depth(section: Section) -> tuple[float, float]:
-    sizes = section.dimensions_mm
-    if section.form not in ("prismatic", "sheet"):
-        return math.nan, math.nan
-    depth = sizes.get("h") or sizes.get("diameter") or sizes.get("width")
-    if not depth:
-        return math.nan, math.nan
-    centre = section.centroid_mm[1] if section.centroid_mm and len(section.centroid_mm) > 1 and sizes.get("h") else depth / 2
-    return depth / 2, max(0.0, min(centre, depth - centre))

@@ -57,7 +57,7 @@ def measuring_temperatures(frame: pd.DataFrame, job: Job) -> Floats:
 
 
 @dataclass(slots=True)
-class _Back:
+class Back:
     """Reference size over listed size, by size; None where the material gives no answer."""
 
     factors: dict[str, float]
@@ -98,7 +98,7 @@ class Measured:
         for temperature in np.unique(at[~np.isnan(at)]).tolist():
             part = at == temperature
             chosen = rows[part]
-            back = self._back(material, temperature)
+            back = self.back(material, temperature)
             if back.finding is not None:
                 self.log.add(back.finding, chosen.tolist(), "measured_at")
             if not back.known:
@@ -111,7 +111,8 @@ class Measured:
             piece["surface_mm2"][part] *= along * across if made else along
             piece["mass_kg"][part] *= along * across if section.form == "area mass" else along
 
-    def _back(self, material: Material, temperature_C: float) -> _Back:
+    def back(self, material: Material, temperature_C: float) -> Back:
+        """Reference size over listed size of a piece of this material measured at a temperature, the tape's own growth in it."""
         reference = self.job.temperatures.get("reference", REFERENCE_C)
         there, home = (materials.elongation(material, t) for t in (temperature_C, reference))
         factors: dict[str, float] = {}
@@ -119,13 +120,13 @@ class Measured:
             now, then = stretch(there, name), stretch(home, name)
             if now is None or then is None:
                 reason = there.reason or home.reason
-                return _Back({}, Finding(
+                return Back({}, Finding(
                     "note", "above-melting" if material.alpha_per_K is not None else "no-coefficient",
                     f"sizes measured at {temperature_C:g} °C are taken as they stand: {reason}", read=f"{temperature_C:g} °C",
                 ), known=False)
             factors[name] = self.tape_factor * then / now
         if temperature_C == reference and self.tape_factor == 1.0:
-            return _Back(factors, None)
+            return Back(factors, None)
         with_what = "with a tape " if self.job.reading.tape else ""
         said = f"sizes measured {with_what}at {temperature_C:g} °C are brought back to {reference:g} °C"
-        return _Back(factors, Finding("note", "brought-back", said + (f" ({there.reason})" if there.reason else "")))
+        return Back(factors, Finding("note", "brought-back", said + (f" ({there.reason})" if there.reason else "")))
