@@ -65,6 +65,20 @@ def test_the_lift_agrees_with_the_hand_calculation_to_the_last_digit(run: Run, f
     assert chosen["wire rope", "trigonometric"] == "13 mm"
 
 
+def test_one_job_goes_from_the_list_to_the_vehicle(run: Run, folder: Path) -> None:
+    """What hangs on the hook rides on the trailer: one unit of the pick's heavy mass, nothing left behind, its overhang marked."""
+    done = run("schedule", "span_lift.csv", "--job", "span_lift.toml", "--json", "out.json", cwd=folder)
+    assert done.returncode == 0, done.stderr
+    record = json.loads((folder / "out.json").read_text(encoding="utf-8"))
+    [pick], [vehicle] = record["picks"], record["vehicles"]
+    assert record["account"]["weighed"] == pick["members"] == 7
+    [piece] = vehicle["pieces"]
+    assert (piece["name"], piece["kg"]) == (pick["name"], pytest.approx(pick["mass_kg"]["heavy"]))
+    assert record["not_loaded"] == []
+    assert all(axle["kg"] < axle["limit_kg"] for axle in vehicle["axles"])
+    assert any("600 mm beyond" in f["message"] for f in vehicle["findings"])
+
+
 def test_the_sheet_prints_it(run: Run, folder: Path) -> None:
     """`takeoff lift` prints the figures rounded toward safety."""
     done = run("lift", "span_lift.csv", "--job", "span_lift.toml", cwd=folder, env={"COLUMNS": "100"})

@@ -72,6 +72,15 @@ def tension(weight: float, legs_: int, from_horizontal: float) -> float:
     return weight * max(found.tensions)
 
 
+def three_slings(g: dict[str, Any]) -> list[float]:
+    """The weight, then tensions AC and AD: legs of these directions from one hook, scaled to the tension given for AB."""
+    slings = [g[name] for name in ("AB_m", "AC_m", "AD_m")]
+    found = statics.hang_level(points_of(*((x, z) for x, _, z in slings)), (0.0, 0.0, -1.0), slings[0][1] * 1000)
+    assert found is not None
+    weight = g["T_AB_kN"] / found.tensions[0]
+    return [weight, weight * found.tensions[1], weight * found.tensions[2]]
+
+
 def weld(g: dict[str, float]) -> float:
     return g["leg_in"] ** 2 / 2 / 144 * g["factor"] * g["density_lb_ft3"]
 
@@ -97,6 +106,8 @@ EXAMPLE: dict[str, Callable[[dict[str, Any]], float]] = {
     **dict.fromkeys(("H01", "H02", "H06", "H07", "H08", "H10", "H14", "H18"), chain_rating),
     **dict.fromkeys(("K01", "K05", "K06"), lambda g: 1e6 - capacity(1e6, sum(g.values()))),
     "K07": lambda g: capacity(g["gross_lb"], g["deductions_lb"]),
+    **dict.fromkeys(("E01", "E02", "E03"), lambda g: three_slings(g)[int(g["asked"])]),
+    "E04": lambda g: g["load_kg"] * shares(points_of((-g["from_a_m"], 0), (g["from_b_m"], 0)), (0, 0))[0],
     "M01": lambda g: math.degrees(math.asin(g["hook_difference_m"] / g["L_m"])),
     "M04": lambda g: 1200 + 1.1167 * (g["Wg_t"] - 1000),
     "M07": sea,
@@ -225,7 +236,7 @@ VECTOR: dict[str, Callable[[dict[str, Any]], Any]] = {
         math.prod(g["slab_m"]) * g["gamma_kN_m3"] * g["psi_dyn"],
     ],
     "X17": lambda g: ground.wind_force_kN(g["v_m_s"], g["A_m2"], g["cw"]),
-    "X19": lambda g: g["share_t"] * factor("crane share", str(g["cranes"])).value,
+    "X19": lambda g: g["share_t"] * factor("crane share", f"{g['cranes']} cranes").value,
     "X20": _pad,
     "X22": lambda g: [g["leg_WLL_t"] * factor("leg factor", "two_leg_0_45").value, g["leg_WLL_t"] / tension(1.0, 2, 90 - g["beta_deg"])],
 }

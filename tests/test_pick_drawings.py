@@ -41,13 +41,14 @@ def result_of(folder: Path) -> pipeline.Result:
 
 
 def charts_of(path: Path) -> list[ElementTree.Element]:
-    """The scatter charts of the workbook, in order."""
+    """The scatter charts over the sheet of drawings, in order; the loads have theirs."""
     with zipfile.ZipFile(path) as archive:
         names = sorted(
             (n for n in archive.namelist() if re.fullmatch(r"xl/charts/chart\d+\.xml", n)), key=lambda n: int(re.sub(r"\D", "", n))
         )
         found = [ElementTree.fromstring(archive.read(n)) for n in names]
-    return [chart for chart in found if chart.find(f".//{C}scatterChart") is not None]
+    scattered = [chart for chart in found if chart.find(f".//{C}scatterChart") is not None]
+    return [chart for chart in scattered if any((r.text or "").startswith("Drawings!") for r in chart.iter(f"{C}f"))]
 
 
 def referred(sheet: Worksheet, reference: str) -> list[Any]:

@@ -16,6 +16,7 @@ from takeoff.job import CranePart
 from takeoff.lifting import ground
 from takeoff.lifting.chart import Chart
 from takeoff.lifting.factors import Factor, factor
+from takeoff.lifting.figures import down_to, up_to
 
 CraneVerdict = Literal["within", "over planning limit", "over rating", "unknown"]
 #: utilisations this close to a limit are at it, not over it
@@ -54,6 +55,15 @@ class Stand:
 
 
 @dataclass(frozen=True, slots=True)
+class Wind:
+    """The greatest wind the lift may see, m/s, and how hard it then pushes on the piece, kN; `at_least`: its size is not fully known."""
+
+    speed_m_s: float
+    force_kN: float
+    at_least: bool
+
+
+@dataclass(frozen=True, slots=True)
 class CraneCheck:
     """One crane against one pick. Masses kg, radii m, utilisations and limit shares; None where the chart gives nothing.
 
@@ -81,6 +91,7 @@ class CraneCheck:
     share: float | None = None
     share_factor: Factor | None = None
     points: tuple[str, ...] = ()
+    wind: Wind | None = None
 
     def as_record(self) -> dict[str, Any]:
         return {
@@ -100,6 +111,8 @@ class CraneCheck:
             "largest_radius_m": self.largest_radius_m,
             "head_room_m": self.head_room_m,
             "sail_m2_per_t": self.sail_m2_per_t,
+            "wind_m_s": self.wind.speed_m_s if self.wind else None,
+            "wind_force_kN": self.wind.force_kN if self.wind else None,
             "outriggers": [s.as_record() for s in self.stands],
             "share": self.share,
             "share_factor": self.share_factor.value if self.share_factor else None,
@@ -171,7 +184,7 @@ def check(crane: CranePart, chart: Chart | None, asked: Asked) -> tuple[CraneChe
     elif crane.deductions_kg:
         say("block-counted-twice", "the hook block is in the load and there are deductions: see that the block is not among them")
     head_room = _head_room(crane, asked, radius, say)
-    sail = _sail(crane, asked.piece, say)
+    sail, wind = _sail(crane, asked.piece, say)
     largest = _largest_radius(chart, crane, asked) if known else None
     stands = _stands(crane, asked, radius) if asked.load_kg is not None and asked.complete else ()
     return CraneCheck(
@@ -195,6 +208,7 @@ def check(crane: CranePart, chart: Chart | None, asked: Asked) -> tuple[CraneChe
         asked.share,
         asked.share_factor,
         asked.points,
+        wind,
     ), findings
 
 
@@ -241,8 +255,8 @@ def _head_room(crane: CranePart, asked: Asked, radius: float | None, say: Any) -
     if room < 0:
         say(
             "no-head-room",
-            f"the piece does not go under the boom tip: {-room:.2f} m short",
-            read=f"tip at {tip:.2f} m",
+            f"the piece does not go under the boom tip: {up_to(-room, 2)} m short",
+            read=f"tip at {down_to(tip, 2)} m",
             right="a longer boom",
         )
     elif piece.at_least:
@@ -250,24 +264,28 @@ def _head_room(crane: CranePart, asked: Asked, radius: float | None, say: Any) -
     return room
 
 
-def _sail(crane: CranePart, piece: Piece, say: Any) -> float | None:
-    """m² of sail a tonne: the larger upright face of the enclosing box, times the wind area factor, over the light mass."""
+def _sail(crane: CranePart, piece: Piece, say: Any) -> tuple[float | None, Wind | None]:
+    """m² of sail a tonne: the larger upright face of the enclosing box, times the wind area factor, over the light mass; and the wind
+    that is left of the chart's, where the job file gives that."""
     if piece.size_mm is None or piece.light_kg <= 0:
-        return None
+        return None, None
     x, y, z = piece.size_mm
     area = max(x, y) * z * 1e-6
     c = crane.wind_area_factor or factor("wind area factor").value
     sail = c * area / (piece.light_kg / 1000.0)
     allowed = factor("sail area", "per tonne")
+    share = ground.wind_speed_share(piece.light_kg, area, c) if area > 0 else 1.0
     if sail > allowed.value:
-        share = ground.wind_speed_share(piece.light_kg, area, c)
         say(
             "sail-area",
-            f"a large sail: at most {share:.2f} of the chart's wind speed",
-            read=f"{sail:.1f} m² per tonne",
+            f"a large sail: at most {down_to(share, 2)} of the chart's wind speed",
+            read=f"{up_to(sail, 1)} m² per tonne",
             right=f"{allowed.value:g} m² per tonne ({allowed.source})",
         )
-    return sail
+    if crane.wind_m_s is None:
+        return sail, None
+    speed = crane.wind_m_s * share
+    return sail, Wind(speed, ground.wind_force_kN(speed, area, c), piece.at_least)
 
 
 def _stands(crane: CranePart, asked: Asked, radius: float | None) -> tuple[Stand, ...]:

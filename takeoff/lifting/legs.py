@@ -15,6 +15,7 @@ from dataclasses import dataclass, field
 
 from takeoff.findings import Finding
 from takeoff.lifting import statics
+from takeoff.lifting.figures import up_to
 from takeoff.lifting.gravity import Centre
 from takeoff.lifting.statics import Hang, Vector
 
@@ -22,11 +23,16 @@ STEEPEST_DEG, NOTED_DEG = 60.0, 45.0
 TILT_DEG, TILT_NOTED_DEG = 5.0, 2.0
 #: tan 60: points a height h below the centre must stand so many h outside it (cone of 120 degrees)
 CONE = math.sqrt(3.0)
+#: points this near to the height of the centre are level with it, mm
+LEVEL_MM = 1e-3
 
 
 @dataclass(frozen=True, slots=True)
 class Rig:
-    """How a pick is held. `points` by name; `hook` in plan where it is not over the centre; lengths in mm."""
+    """How a pick is held. `points` by name; `hook` in plan where it is not over the centre; lengths in mm.
+
+    `upright`: on falls that hang plumb, from a bar or from two cranes; `upended`: from level to upright by two hooks.
+    """
 
     points: tuple[tuple[str, Vector], ...]
     hook_height_mm: float | None = None
@@ -34,6 +40,7 @@ class Rig:
     slings_mm: tuple[float, ...] = ()
     upright: bool = False
     skew: float = 1.0
+    upended: bool = False
 
 
 @dataclass(frozen=True, slots=True)
@@ -66,7 +73,7 @@ def hold(rig: Rig, centre: Centre, rest_kN: float, heavy_kN: float) -> Legs:
     """Share, tension and case of every point. `rest_kN` is the nominal mass at rest, `heavy_kN` design mass × dynamic factor."""
     legs = Legs()
     names, points = [n for n, _ in rig.points], [p for _, p in rig.points]
-    inside = _say_inside(legs, points, centre)
+    inside = say_inside(legs, points, centre)
     hang = _hang(rig, points, centre.centre)
     if hang is None:
         if inside and rig.slings_mm:
@@ -144,7 +151,7 @@ def _governing(
         if share > best[i][0] * (1 + 1e-9) + 1e-12:
             best[i] = leg(share, tension, case)
 
-    for corner in _corners(centre):
+    for corner in corners(centre):
         moved = _moved(rig, points, corner, hang)
         if moved is not None:
             for i in range(n):
@@ -160,7 +167,7 @@ def _governing(
     return best
 
 
-def _corners(centre: Centre) -> list[Vector]:
+def corners(centre: Centre) -> list[Vector]:
     low, high = centre.box
     if math.dist(low, high) < 1e-9:
         return []
@@ -250,10 +257,10 @@ def _turn(a: tuple[float, float], b: tuple[float, float], c: tuple[float, float]
 # --- what is wrong with it -------------------------------------------------------------------------------------------
 
 
-def _say_inside(legs: Legs, points: Sequence[Vector], centre: Centre) -> bool:
+def say_inside(legs: Legs, points: Sequence[Vector], centre: Centre) -> bool:
     """Whether the points hold the centre between them; a box that reaches outside leaves it open."""
     if _between(points, centre.centre):
-        if not all(_between(points, corner) for corner in _corners(centre)):
+        if not all(_between(points, corner) for corner in corners(centre)):
             legs.open = True
             legs.findings.append(
                 Finding(
@@ -327,12 +334,22 @@ def _say_hang(legs: Legs, rig: Rig, points: Sequence[Vector], centre: Centre, ha
         names = ", ".join(rig.points[i][0] for i in hang.slack)
         say(Finding("note", "legs-slack", f"slack: {names}; the other legs carry all", right="sling lengths that hang it level"))
     _say_angles(legs, rig, points, centre, hang)
+    say_tilt(legs, hang)
+    say_stability(legs, rig, points, centre.centre, hang)
+
+
+def say_tilt(legs: Legs, hang: Hang) -> None:
+    """A tilt that slingers note, or re-rig for."""
     if hang.tilt_deg > TILT_NOTED_DEG:
         word = "re-rig it" if hang.tilt_deg > TILT_DEG else "noted"
-        say(
-            Finding("note", "tilt", f"the piece hangs {hang.tilt_deg:.1f}° out of level: {word}", right=f"no more than {TILT_NOTED_DEG:g}°")
+        legs.findings.append(
+            Finding(
+                "note",
+                "tilt",
+                f"the piece hangs {up_to(hang.tilt_deg, 1)}° out of level: {word}",
+                right=f"no more than {TILT_NOTED_DEG:g}°",
+            )
         )
-    _say_stability(legs, points, centre.centre, hang)
 
 
 def _say_angles(legs: Legs, rig: Rig, points: Sequence[Vector], centre: Centre, hang: Hang) -> None:
@@ -348,7 +365,7 @@ def _say_angles(legs: Legs, rig: Rig, points: Sequence[Vector], centre: Centre, 
                 "note",
                 "leg-angle-over-60",
                 f"{short}leg {', '.join(steep)} leans more than 60° from the vertical",
-                read=f"{max(angles)[0]:.1f}°",
+                read=f"{up_to(max(angles)[0], 1)}°",
                 right=f"the hook at least {math.ceil(need)} mm above the highest point",
             )
         )
@@ -357,12 +374,31 @@ def _say_angles(legs: Legs, rig: Rig, points: Sequence[Vector], centre: Centre, 
         legs.findings.append(Finding("note", "leg-angle-over-45", f"leg {', '.join(noted)} leans more than 45° from the vertical"))
 
 
-def _say_stability(legs: Legs, points: Sequence[Vector], centre: Vector, hang: Hang) -> None:
+def _level_with(points: Sequence[Vector], centre: Vector) -> bool:
+    """Whether one point, or the line of two, passes through the centre itself: it neither rights itself nor turns over."""
+    foot = points[0] if len(points) == 1 else _foot(points, centre)
+    return math.dist(foot, centre) <= LEVEL_MM
+
+
+def say_stability(legs: Legs, rig: Rig, points: Sequence[Vector], centre: Vector, hang: Hang) -> None:
+    """What is to say where points lie level with the centre or below it; while a piece is upended, lugs on its axis are usual."""
     def above(p: Vector) -> float:
         return math.fsum((p[k] - centre[k]) * hang.up[k] for k in range(3))
 
     below = [p for p in points if above(p) < -1e-6]
-    if hang.stable and not below:
+    # One point or two: what counts is where the point, or the line of the two over the centre, stands.
+    if hang.stable and (not below or len(points) <= 2):
+        return
+    if len(points) <= 2 and _level_with(points, centre):
+        legs.open |= not rig.upended
+        legs.findings.append(
+            Finding(
+                "note",
+                "points-below-centre",
+                "the lifting points are level with the centre of gravity: nothing keeps the piece from rolling",
+                right="points above the centre",
+            )
+        )
         return
     hull = _hull([(p[0], p[1]) for p in points])
     if len(hull) <= 2 or not hang.stable:

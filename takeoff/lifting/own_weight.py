@@ -7,6 +7,7 @@ be less than reckoned), which errs on the heavy side. Section moduli: the sectio
 
 from __future__ import annotations
 
+import itertools
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
@@ -45,36 +46,67 @@ class Bending:
 
 
 def moduli(section: Section, face: Face) -> dict[str, float] | None:
-    """Elastic section moduli in mm³ about the strong and the weak axis, each the lesser of its two fibres; None where not known."""
+    """Elastic section moduli in mm³ about the strong and the weak axis, each the lesser of its two fibres; None where not known.
+
+    Axes are those of the drawn section. One whose principal axes lie askew (an angle) is bent askew by a load along them: the
+    modulus is then the moment over the stress that this gives, and the weak one no more than about either principal axis.
+    """
     d = dict(section.dimensions_mm)
     if section.shape in ("plate", "block", "flat", "board", "square bar"):
         rings = [[(0.0, 0.0), (face.width, 0.0), (face.width, face.height), (0.0, face.height)]]
     elif section.shape in ("round bar", "hexagon"):
         rings = shapes.rings(section.shape, {**d, "b": face.height})
     elif section.shape in shapes.SHAPES:
-        if "flange_slope_percent" in d:
-            # The mean flange thickness stands in the row: as a parallel flange it gives the modulus within a few per cent.
-            d.pop("flange_slope_percent")
-        rings = shapes.rings(section.shape, d)
+        rings = _tapered(section, d) if "flange_slope_percent" in d else shapes.rings(section.shape, d)
     else:
         return None
     if not rings:
         return None
-    area = sx = sy = ixx = iyy = 0.0
+    area, cx, cy, about_x, about_y, product = _second_moments(rings)
+    if not area > 0:
+        return None
+    outline = [(x - cx, y - cy) for x, y in rings[0]]
+    under = about_x * about_y - product**2
+    # Stress of a unit moment about x, then about y, at each corner of the outline: unsymmetrical bending.
+    z_x = under / max(abs(about_y * y - product * x) for x, y in outline)
+    z_y = under / max(abs(about_x * x - product * y) for x, y in outline)
+    weak = min(z_x, z_y)
+    if abs(product) > 1e-6 * max(about_x, about_y):
+        turn = math.atan2(-2 * product, about_x - about_y) / 2
+        for angle in (turn, turn + math.pi / 2):
+            cos, sin = math.cos(angle), math.sin(angle)
+            second = about_x * cos**2 + about_y * sin**2 - 2 * product * sin * cos
+            weak = min(weak, second / max(abs(y * cos - x * sin) for x, y in outline))
+    return {"strong": max(z_x, z_y), "weak": weak}
+
+
+def _tapered(section: Section, d: dict[str, float]) -> list[list[tuple[float, float]]]:
+    """The outline with its flanges (and a tee's web) tapered. Where the flange thickness is measured, and whether the web tapers
+    too, does not stand in the section: it is what gives the section's own area."""
+    slope = d.pop("flange_slope_percent") / 100
+    found: list[tuple[float, list[list[tuple[float, float]]]]] = []
+    for place, web in itertools.product(shapes.PLACES, (0.0, slope) if section.shape == "tee" else (0.0,)):
+        rings = shapes.rings(section.shape, {**d, "slope": slope, "web_slope": web, "from_toe": shapes.from_toe(place, d["b"], d["tw"])})
+        if rings:
+            found.append((abs(_second_moments(rings)[0] - (section.area_mm2 or 0.0)), rings))
+    return min(found, key=lambda pair: pair[0])[1] if found else []
+
+
+def _second_moments(rings: Sequence[Sequence[tuple[float, float]]]) -> tuple[float, float, float, float, float, float]:
+    """Area, centroid, and second moments about it: about x, about y, and their product; mm. The first ring is the outline."""
+    area = sx = sy = ixx = iyy = ixy = 0.0
     for number, ring in enumerate(rings):
         sign = 1.0 if number == 0 else -1.0
-        for (x0, y0), (x1, y1) in zip(ring, ring[1:] + ring[:1], strict=True):
+        for (x0, y0), (x1, y1) in zip(ring, [*ring[1:], ring[0]], strict=True):
             cross = sign * (x0 * y1 - x1 * y0)
             area += cross / 2
             sx += cross * (x0 + x1) / 6
             sy += cross * (y0 + y1) / 6
             ixx += cross * (y0 * y0 + y0 * y1 + y1 * y1) / 12
             iyy += cross * (x0 * x0 + x0 * x1 + x1 * x1) / 12
+            ixy += cross * (x0 * y1 + 2 * x0 * y0 + 2 * x1 * y1 + x1 * y0) / 24
     cx, cy = sx / area, sy / area
-    xs, ys = [x for x, _ in rings[0]], [y for _, y in rings[0]]
-    about_x = (ixx - area * cy * cy) / max(max(ys) - cy, cy - min(ys))
-    about_y = (iyy - area * cx * cx) / max(max(xs) - cx, cx - min(xs))
-    return {"strong": max(about_x, about_y), "weak": min(about_x, about_y)}
+    return area, cx, cy, ixx - area * cy * cy, iyy - area * cx * cx, ixy - area * cx * cy
 
 
 def moments(length_mm: float, weight_kN: float, at_mm: Sequence[float]) -> tuple[float, float]:

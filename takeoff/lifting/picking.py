@@ -4,17 +4,18 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from typing import TYPE_CHECKING, Any
 
 from takeoff.bounds import Bounds
 from takeoff.findings import Finding
 from takeoff.job import CranePart, Job, LiftKeys, PickCranePart, PickPart
 from takeoff.lifting import crane as cranes
-from takeoff.lifting import gravity, hook, legs, own_weight, sharing, spreader, tackle, upend
+from takeoff.lifting import falls, gravity, hook, legs, own_weight, sharing, spreader, tackle, upend
 from takeoff.lifting.chart import Chart, read_chart
 from takeoff.lifting.crane import CraneCheck
 from takeoff.lifting.factors import Factor, chosen
+from takeoff.lifting.figures import down_to, up_to
 from takeoff.lifting.gravity import Centre, Place, Vector
 from takeoff.lifting.hook import STANDARD_GRAVITY, BuildUp
 from takeoff.lifting.pick import Line, Pick, Point, Verdict
@@ -117,9 +118,9 @@ class _Pick:
             rows = f"{self.lacking} row{'s' if self.lacking > 1 else ''}"
             self._say("pick-incomplete", f"{rows} of this pick could not be weighed: it is heavier than shown", right="every row weighed")
         centre, unknown = self._centre(mass)
-        held = self._held(centre, mass, built)
-        bending = self._bending(held, built)
         steps = self._upended(centre, built)
+        held = self._held(centre, mass, built, steps)
+        bending = self._bending(held, built)
         checks = self._cranes(centre, mass, built, held, steps, estimated=estimated)
         return Pick(
             name=self.plan.name,
@@ -185,7 +186,7 @@ class _Pick:
         if not mass.light * (1 - 1e-9) <= weighing <= mass.heavy * (1 + 1e-9):
             self._say(
                 "weighed-outside-bounds",
-                f"weighed at {weighing:g} kg, the members come to {mass.light:.1f} to {mass.heavy:.1f} kg",
+                f"weighed at {weighing:g} kg, the members come to {down_to(mass.light, 1)} to {up_to(mass.heavy, 1)} kg",
                 read=f"{weighing:g} kg",
                 right="the same: is a member missing, or something else on the scale?",
             )
@@ -228,7 +229,7 @@ class _Pick:
         self.open |= wanted
         return None, text
 
-    def _held(self, centre: Centre | None, mass: Bounds, built: BuildUp) -> _Held:
+    def _held(self, centre: Centre | None, mass: Bounds, built: BuildUp, steps: Sequence[upend.Step]) -> _Held:
         points = tuple((p.name, p.position) for p in self.asked.points)
         if not points or centre is None:
             return _Held()
@@ -240,26 +241,43 @@ class _Pick:
             self.asked.hook_height_mm,
             self.asked.hook,
             self.asked.slings_mm,
-            upright=self.asked.spreader is not None,
+            upright=self._upright(),
             skew=skew.value if skew else 1.0,
+            upended=self.asked.upend is not None,
         )
         rest = mass.nominal * STANDARD_GRAVITY / 1000.0
         heavy = built.design_kg * built.dynamic.value * STANDARD_GRAVITY / 1000.0
+        if self.asked.hook is not None and self.asked.slings_mm and self.asked.spreader is None:
+            self._say("hook-not-used", "sling lengths and a place of the hook are both given: the hook is where the slings put it")
         several = [c for c in self.asked.cranes if c.points]
-        if len(several) > 1 and rig.upright:
+        bar = self.asked.spreader
+        if len(several) > 1 and bar is not None:
             self._say("crane-share-unknown", "a spreader under several cranes is not worked out")
             self.open = True
-        found = sharing.hold_on_several(rig, centre, rest, heavy, several) if len(several) > 1 else legs.hold(rig, centre, rest, heavy)
+        ends = None
+        if len(several) > 1:
+            found = sharing.hold_on_several(rig, centre, rest, heavy, several)
+        elif bar is not None and len(points) in (3, 4):
+            found, ends = falls.hold(rig, centre, bar.length_mm, rest, heavy)
+        else:
+            found = legs.hold(rig, centre, rest, heavy)
+        if steps:
+            _raise_for_upending(found.points, steps, self.asked)
         self.findings += found.findings
         self.over |= found.over
         self.open |= found.open
-        held = _Held(skew=skew, legs=found)
+        held = _Held(skew=skew, legs=found, ends=ends)
         if found.hang is not None:
             held.tilt_deg, held.hook = found.hang.tilt_deg, found.hang.hook
         self._choose(held, found, built, rig, several=len(several) > 1)
-        if self.asked.spreader is not None:
+        if bar is not None:
             self._bar(held, centre, built)
         return held
+
+    def _upright(self) -> bool:
+        """On falls that hang plumb: from a bar, or from two hooks where nothing says how one hook would hold the piece."""
+        one_hook = self.asked.hook_height_mm is not None or bool(self.asked.slings_mm)
+        return self.asked.spreader is not None or (self.asked.upend is not None and not one_hook and len(self.asked.points) <= 2)
 
     def _choose(self, held: _Held, found: legs.Legs, built: BuildUp, rig: legs.Rig, *, several: bool) -> None:
         """Tackle that is enough for each leg, and for the whole sling."""
@@ -268,7 +286,9 @@ class _Pick:
             needed = None if p.tension_kN is None else p.tension_kN / STANDARD_GRAVITY
             choices: list[tackle.Choice] = []
             if needed is not None:
-                angle = p.angle_deg if p.angle_deg is not None else 0.0
+                # A lug that is upended is pulled along the piece at one end of the way, square to it at the other.
+                turned = self.asked.upend is not None and p.name in (self.asked.upend.head, self.asked.upend.tail)
+                angle = 90.0 if turned else p.angle_deg if p.angle_deg is not None else 0.0
                 choices, said = tackle.for_leg(needed, angle, self.lift.sling, self.asked.hitch, self.asked.bend_ratio)
                 self.findings += said
             out.append(
@@ -293,48 +313,68 @@ class _Pick:
             held.uniform = tuple(tackle.uniform(load, angles, self.lift.sling, self.asked.hitch))
 
     def _bar(self, held: _Held, centre: Centre, built: BuildUp) -> None:
-        """The spreader or beam: end loads from the centre's place along it, its own mass counted."""
+        """The spreader or beam: end loads from the centre's place along it, wherever in its box; its own mass counted."""
         part = self.asked.spreader
         assert part is not None
         positions = [p.position for p in self.asked.points]
         if len(positions) < 2:
-            self._say("spreader-not-worked-out", "a spreader needs two points or more below it")
-            self.open = True
+            self._not_worked_out("a spreader needs two points or more below it")
             return
+        if self.asked.hook is not None:
+            self._not_worked_out("a bar whose hook is not over the centre of gravity is not worked out", right="no hook of the pick")
         k = built.dynamic.value * STANDARD_GRAVITY / 1000.0
         weight, bar = built.design_kg * k, part.mass_kg * k
-        first, span = spreader.along_points(positions, centre.centre, part.length_mm)
+        if held.ends is not None:
+            aside, span = (part.length_mm - held.ends.span_mm) / 2, held.ends.span_mm
+            places = [falls.along(held.ends, at) + aside for at in (centre.centre, *legs.corners(centre))]
+            tops = held.ends.tops
+            held.drop_mm = None if tops is None else max(t[2] for t in tops) - max(p[2] for p in positions)
+        else:
+            if len(positions) > 2:
+                why = "the centre is not between pairs of points" if len(positions) < 5 else "more than four points under one bar"
+                self._not_worked_out(f"{why}: what each leg below the bar carries is not worked out")
+            found = [spreader.along_points(positions, at, part.length_mm) for at in (centre.centre, *legs.corners(centre))]
+            places, span = [along for along, _ in found], found[0][1]
+            tops = self._plumb_tops(positions)
+            held.drop_mm = None if tops is None else max(t[2] for t in tops) - max(p[2] for p in positions)
         if abs(span - part.length_mm) > 0.01 * part.length_mm:
-            self._say(
-                "spreader-not-worked-out",
+            self._not_worked_out(
                 "the points are not as far apart as the bar is long: its falls lean, which is not worked out",
                 read=f"{span:.0f} mm",
                 right=f"{part.length_mm:.0f} mm",
             )
-            self.open = True
-        if len(positions) > 2:
-            self._say("spreader-not-worked-out", "more than two points under one bar: the lean of the falls to each pair is not worked out")
-            self.open = True
-        if not 0 < first < part.length_mm:
+        if not all(0 < first < part.length_mm for first in places):
             self._say("centre-outside-points", "the centre of gravity is not under the bar")
             self.over = True
             return
-        if part.kind == "beam":
-            held.bar = spreader.beam(weight, bar, part.length_mm, first)
-            return
+        names = [p.name for p in self.asked.points]
+        over: Any = ((), ())
+        if held.ends is not None:
+            over = tuple(tuple(names[i] for i in group) for group in held.ends.groups)
+        elif len(names) == 2:
+            over = ((names[0],), (names[1],))
         height = self.asked.hook_height_mm
+        if part.kind == "beam":
+            bars = [spreader.beam(weight, bar, part.length_mm, first) for first in places]
+            hook_at = None if tops is None or height is None else spreader.hook_over(tops, places[0] / part.length_mm, height)
+            held.bar = replace(spreader.worst(bars), over=over, ends_mm=tops, hook_mm=hook_at)
+            return
         if height is None:
             self.open = True
             self._say("hook-height-missing", "the height of the hook above the spreader is not given", right="hook_height_mm of the pick")
             return
-        held.bar = spreader.spreader(weight, bar, part.length_mm, first, height)
+        # The hook stands over piece and bar together.
+        at = (weight * places[0] + bar * part.length_mm / 2) / (weight + bar) / part.length_mm
+        hook_at = None if tops is None else spreader.hook_over(tops, at, height)
+        bars = [spreader.spreader(weight, bar, part.length_mm, first, height) for first in places]
+        held.bar = replace(spreader.worst(bars), over=over, ends_mm=tops, hook_mm=hook_at)
         tensions, angles = held.bar.top_tensions_kN or (0.0, 0.0), held.bar.top_angles_deg or (0.0, 0.0)
         if max(angles) > legs.STEEPEST_DEG:
             self.over = True
             self._say(
                 "leg-angle-over-60",
                 "a leg above the spreader leans more than 60° from the vertical",
-                read=f"{max(angles):.1f}°",
+                read=f"{up_to(max(angles), 1)}°",
                 right="a higher hook or a shorter spreader",
             )
         elif max(angles) > legs.NOTED_DEG:
@@ -342,6 +382,22 @@ class _Pick:
         choices, said = tackle.for_leg(max(tensions) / STANDARD_GRAVITY, max(angles), self.lift.sling, "direct", self.asked.bend_ratio)
         self.findings += said
         held.bar_tackle = tuple(c for c in choices if c.tackle != "eyebolt")
+
+    def _plumb_tops(self, positions: Sequence[Vector]) -> tuple[Vector, Vector] | None:
+        """Where the bar's ends are over two points on plumb falls; None where their slings are not given."""
+        slings = self.asked.slings_mm
+        if not slings or len(positions) != 2:
+            return None
+        first, second = ((p[0], p[1], p[2] + slings[k % len(slings)]) for k, p in enumerate(positions))
+        if abs(first[2] - second[2]) > falls.SAME_HEIGHT * math.dist(positions[0][:2], positions[1][:2]):
+            self._not_worked_out(
+                "on falls of these lengths the piece does not hang level under the bar: not worked out", right="both ends at one height"
+            )
+        return first, second
+
+    def _not_worked_out(self, message: str, *, read: str | None = None, right: str | None = None) -> None:
+        self.open = True
+        self._say("spreader-not-worked-out", message, read=read, right=right)
 
     # --- upending and bending ----------------------------------------------------------------------------------------
 
@@ -359,12 +415,20 @@ class _Pick:
             self._say("upend-swings", "head and tail stand over each other: the piece cannot be upended so")
             return []
         steps = upend.table(head, tail, centre.centre, built.design_kg * built.dynamic.value * STANDARD_GRAVITY / 1000.0, part.step_deg)
-        bad = [s.angle_deg for s in steps if s.tail_kN < -1e-9 or s.head_kN < -1e-9]
-        if bad:
+        bad = [s for s in steps if s.tail_kN < -1e-9 or s.head_kN < -1e-9]
+        slack = upend.slack_from_deg(head, tail, centre.centre)
+        if bad and all(s.head_kN >= 0 for s in bad) and slack is not None:
+            self.open = True
+            self._say(
+                "upend-swings",
+                f"at {down_to(slack, 1)}° the tail's hook goes slack: the piece hangs from the head alone and turns no further by itself",
+                right="a tail point on the other side of the piece, or a lift to upright by other means",
+            )
+        elif bad:
             self.over = True
             self._say(
                 "upend-swings",
-                f"from {bad[0]:g}° a hook would have to push: the piece swings over",
+                f"from {bad[0].angle_deg:g}° a hook would have to push: the piece swings over",
                 right="head and tail on either side of the centre",
             )
         return steps
@@ -385,6 +449,8 @@ class _Pick:
         place = self.data.places.get(i)
         section = self.data.sections[row["section_id"]] if row["section_id"] >= 0 else None
         length = place.length_mm if isinstance(place, Place) and place.length_mm else row["length_mm"]
+        if section is not None and not length > 0:
+            length = section.dimensions_mm.get("length", math.nan)
         if section is None or not length > 0:
             if part is not None:
                 self._say("own-weight-not-checked", "the piece's section or length is not known")
@@ -425,7 +491,7 @@ class _Pick:
             self._say(
                 "own-weight-over",
                 "the tension under its own weight exceeds the strength given",
-                read=f"{bending.stress_mpa:.2f} MPa",
+                read=f"{up_to(bending.stress_mpa, 2)} MPa",
                 right=f"{strength:g} MPa",
             )
 
@@ -481,7 +547,7 @@ class _Pick:
     def _share_factor(self, crane: CranePart, number: int) -> Factor | None:
         if number < 2:
             return None
-        return chosen("crane share", "2" if number == 2 else "3" if number == 3 else "4 or more", crane.share_factor)
+        return chosen("crane share", f"{number} cranes" if number < 4 else "4 cranes or more", crane.share_factor)
 
     def _crane_shares(
         self, centre: Centre | None, built: BuildUp, steps: Sequence[upend.Step], parts: Sequence[PickCranePart]
@@ -505,8 +571,8 @@ class _Pick:
             whole = built.design_kg * built.dynamic.value * STANDARD_GRAVITY / 1000.0
             for at, part in enumerate(parts):
                 for name, most in (
-                    (self.asked.upend.head, max(s.head_kN for s in steps)),
-                    (self.asked.upend.tail, max(s.tail_kN for s in steps)),
+                    (self.asked.upend.head, upend.greatest(steps, 0)[0]),
+                    (self.asked.upend.tail, upend.greatest(steps, 1)[0]),
                 ):
                     if name in part.points:
                         shares[at] = max(shares[at], most / whole)
@@ -517,9 +583,11 @@ class _Pick:
         if centre is not None and held.hook is not None:
             above = held.hook[2] - centre.low[2]
         elif centre is not None and self.asked.points and self.asked.hook_height_mm is not None:
-            above = max(p.position[2] for p in self.asked.points) + self.asked.hook_height_mm - centre.low[2]
+            # Under a bar the hook's height is above the bar; where its legs are not known, the room is less than reckoned.
+            above = max(p.position[2] for p in self.asked.points) + (held.drop_mm or 0.0) + self.asked.hook_height_mm - centre.low[2]
+        at_least = centre is None or centre.at_least or (self.asked.spreader is not None and held.drop_mm is None)
         light = min(mass.light, self.asked.weighed_kg or math.inf)
-        return cranes.Piece(light, centre.size if centre else None, above, centre.at_least if centre else True, self.asked.set_down_mm)
+        return cranes.Piece(light, centre.size if centre else None, above, at_least, self.asked.set_down_mm)
 
     def _verdict(self, checks: Sequence[CraneCheck], *, estimated: bool) -> Verdict:
         """Within only where all of it is known and nothing exceeds; what is not fully weighed is never more than unknown."""
@@ -543,6 +611,8 @@ class _Held:
     tilt_deg: float | None = None
     skew: Factor | None = None
     uniform: tuple[tackle.Choice, ...] = ()
+    ends: falls.Ends | None = None
+    drop_mm: float | None = None
     bar: spreader.Bar | None = None
     bar_tackle: tuple[tackle.Choice, ...] = ()
 
@@ -553,6 +623,21 @@ def _resolved(general: LiftKeys, own: PickPart) -> LiftKeys:
     if own.weighed_kg is not None and own.weight_known_by is None:
         values["weight_known_by"] = "weighed"
     return LiftKeys(**values)
+
+
+def _raise_for_upending(points: list[legs.PointLoad], steps: Sequence[upend.Step], asked: PickPart) -> None:
+    """Head and tail must carry the most that comes on them on the way from level to upright, on falls that hang plumb."""
+    assert asked.upend is not None
+    for at, p in enumerate(points):
+        if p.name == asked.upend.head:
+            most, angle = upend.greatest(steps, 0)
+        elif p.name == asked.upend.tail:
+            most, angle = upend.greatest(steps, 1)
+        else:
+            continue
+        tension = None if p.tension_kN is None else max(p.tension_kN, most)
+        if most > p.share_heavy_kN * (1 + 1e-9):
+            points[at] = replace(p, share_heavy_kN=most, case=f"upending, at {angle:g}°", tension_kN=tension)
 
 
 def _on_axis(point: Vector, place: Place, length: float) -> tuple[float, float]:

@@ -12,6 +12,7 @@ from typing import TYPE_CHECKING
 from takeoff import bundles
 from takeoff.errors import JobError
 from takeoff.job import Job, PickPart
+from takeoff.names import first_twice
 
 if TYPE_CHECKING:
     import pandas as pd
@@ -93,9 +94,9 @@ def _bundles(members: pd.DataFrame, job: Job, taken: set[int]) -> list[Plan]:
 def check_names(job: Job) -> None:
     """Names in the job file that must be each once, and names that must be there. Raises JobError."""
     for key, names in (("lift.picks", [p.name for p in job.lift.picks]), ("crane", [c.name for c in job.crane])):
-        for number, name in enumerate(names):
-            if name in names[:number]:
-                raise JobError(f"{key}: two have one name", file=job.path, read=name, right="each name once")
+        twice = first_twice(names)
+        if twice is not None:
+            raise JobError(f"{key}: two have one name", file=job.path, read=names[twice], right="each name once")
     known = [c.name for c in job.crane]
     for part in job.lift.picks:
         points = [p.name for p in part.points]

@@ -67,7 +67,11 @@ def hold_on_several(rig: legs.Rig, centre: Centre, rest: float, heavy: float, se
         under = (hook_at[0], hook_at[1], centre.centre[2])
         own = Centre(under, (under, under), centre.low, centre.high, centre.at_least)
         names = tuple((n, at[n]) for n in part.points)
-        found = legs.hold(legs.Rig(names, rig.hook_height_mm, skew=rig.skew if len(names) >= 4 else 1.0), own, rest * share, heavy * worst)
+        # One point under its own hook hangs plumb, however high the hook.
+        plumb = len(names) == 1 and rig.hook_height_mm is None
+        skew = rig.skew if len(names) >= 4 else 1.0
+        under_hook = legs.Rig(names, rig.hook_height_mm, upright=plumb, skew=skew, upended=rig.upended)
+        found = legs.hold(under_hook, own, rest * share, heavy * worst)
         whole.findings += found.findings
         whole.over |= found.over
         whole.open |= found.open

@@ -18,7 +18,8 @@ from takeoff.lifting.statics import Vector, upright_shares
 class Bar:
     """End loads of the bar below it (kN); for a spreader its compression and the legs above; for a beam its greatest moment.
 
-    All for the heavy load: design mass and the bar's own, times the dynamic factor.
+    All for the heavy load: design mass and the bar's own, times the dynamic factor. `over` names the points under either end,
+    `ends_mm` says where the ends are with the piece level, where the slings below settle that; `hook_mm` the hook above them.
     """
 
     kind: str
@@ -29,10 +30,15 @@ class Bar:
     top_tensions_kN: tuple[float, float] | None = None
     top_angles_deg: tuple[float, float] | None = None
     top_lengths_mm: tuple[float, float] | None = None
+    over: tuple[tuple[str, ...], tuple[str, ...]] = ((), ())
+    ends_mm: tuple[Vector, Vector] | None = None
+    hook_mm: Vector | None = None
 
     def as_record(self) -> dict[str, Any]:
         return {
             "kind": self.kind,
+            "over": [list(names) for names in self.over],
+            "ends_mm": None if self.ends_mm is None else [list(end) for end in self.ends_mm],
             "end_loads_kN": list(self.end_loads_kN),
             "compression_kN": self.compression_kN,
             "moment_kNm": self.moment_kNm,
@@ -72,10 +78,39 @@ def beam(weight_kN: float, bar_kN: float, length_mm: float, from_first_mm: float
     return Bar("beam", ends, moment_kNm=ends[0] * a / 1e3, self_moment_kNm=bar_kN / length_mm * longer**2 / 2e3)
 
 
-def along_points(points: Sequence[Vector], centre: Vector, length_mm: float) -> tuple[float, float]:
-    """Where the centre stands along a bar laid over the points' longer direction: mm from its first end, and the points' own span.
+def worst(bars: Sequence[Bar]) -> Bar:
+    """Of the same bar with the centre in several places, the greatest of each figure; legs' lengths are those of the first."""
+    first = bars[0]
 
-    The bar's middle stands over the middle of the points.
+    def pair(values: Sequence[tuple[float, float] | None]) -> tuple[float, float] | None:
+        known = [v for v in values if v is not None]
+        return (max(v[0] for v in known), max(v[1] for v in known)) if known else None
+
+    def one(values: Sequence[float | None]) -> float | None:
+        return max((v for v in values if v is not None), default=None)
+
+    return Bar(
+        first.kind,
+        pair([b.end_loads_kN for b in bars]) or first.end_loads_kN,
+        one([b.compression_kN for b in bars]),
+        one([b.moment_kNm for b in bars]),
+        max(b.self_moment_kNm for b in bars),
+        pair([b.top_tensions_kN for b in bars]),
+        pair([b.top_angles_deg for b in bars]),
+        first.top_lengths_mm,
+    )
+
+
+def hook_over(ends: tuple[Vector, Vector], share: float, height_mm: float) -> Vector:
+    """Where the hook is: so far along the bar (a share of it, from the first end), so high above it."""
+    first, second = ends
+    x, y, z = (first[k] + share * (second[k] - first[k]) for k in range(3))
+    return x, y, z + height_mm
+
+
+def along_points(points: Sequence[Vector], centre: Vector, length_mm: float) -> tuple[float, float]:
+    """Where the centre stands along a bar over two points: mm from its first end, and the points' own span. Over more points, which
+    `takeoff.lifting.falls` did not settle, the bar is taken along their longer direction. Its middle stands over theirs.
     """
     spans = [max(p[k] for p in points) - min(p[k] for p in points) for k in range(2)]
     if len(points) == 2:

@@ -16,6 +16,7 @@ from typing import Any, Literal
 from takeoff.datafiles import data_folder, read_table
 from takeoff.findings import Finding
 from takeoff.lifting.factors import factor
+from takeoff.lifting.figures import up_to
 from takeoff.provenance import Source
 
 Sling = Literal["chain", "wire rope", "round sling", "webbing"]
@@ -120,7 +121,9 @@ def for_leg(
     mode = "axial" if angle_deg <= _STRAIGHT_DEG else "to 45" if angle_deg <= 45 + 1e-9 else "to 90"
     choices.append(enough("eyebolt", mode, tension_t, f"one upright eyebolt, pulled {'straight' if mode == 'axial' else mode + '°'}"))
     findings += [
-        Finding("note", "no-standard-size", f"no {c.tackle} of the tables carries {c.needed_t:.2f} t") for c in choices if c.size is None
+        Finding("note", "no-standard-size", f"no {c.tackle} of the tables carries {up_to(c.needed_t, 2)} t")
+        for c in choices
+        if c.size is None
     ]
     return choices, findings
 

@@ -7,6 +7,7 @@ R_tail = W (u_G cos t + v_G sin t) / (L cos t + v_B sin t), R_head = W − R_tai
 from __future__ import annotations
 
 import math
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 from takeoff.lifting.statics import Vector
@@ -14,11 +15,17 @@ from takeoff.lifting.statics import Vector
 
 @dataclass(frozen=True, slots=True)
 class Step:
-    """At `angle_deg` from level: kN on the head's hook and on the tail's."""
+    """At `angle_deg` from level: kN on the head's hook and on the tail's, as moments have it; below 0 a hook would have to push."""
 
     angle_deg: float
     head_kN: float
     tail_kN: float
+
+    @property
+    def carried_kN(self) -> tuple[float, float]:
+        """What head and tail carry in truth: a hook that would have to push is slack, and the other carries all."""
+        whole = self.head_kN + self.tail_kN
+        return min(max(self.head_kN, 0.0), whole), min(max(self.tail_kN, 0.0), whole)
 
 
 def tail_share(span: float, u_g: float, v_g: float, v_b: float, angle_deg: float) -> float:
@@ -42,6 +49,20 @@ def table(head: Vector, tail: Vector, centre: Vector, weight_kN: float, step_deg
         tail_part = tail_share(span, u_g, centre[2] - head[2], tail[2] - head[2], angle)
         found.append(Step(angle, weight_kN * (1 - tail_part), weight_kN * tail_part))
     return found
+
+
+def greatest(steps: Sequence[Step], which: int) -> tuple[float, float]:
+    """The most that the head (0) or the tail (1) carries on the way, kN, and the first angle at which it does."""
+    most = max(s.carried_kN[which] for s in steps)
+    return most, next(s.angle_deg for s in steps if s.carried_kN[which] >= most * (1 - 1e-9))
+
+
+def slack_from_deg(head: Vector, tail: Vector, centre: Vector) -> float | None:
+    """The angle from level at which the tail's hook goes slack short of upright, the centre then under the head; None where it does not."""
+    span = math.hypot(tail[0] - head[0], tail[1] - head[1])
+    u_g = ((centre[0] - head[0]) * (tail[0] - head[0]) + (centre[1] - head[1]) * (tail[1] - head[1])) / span
+    v_g = centre[2] - head[2]
+    return math.degrees(math.atan2(u_g, -v_g)) if u_g > 0 and v_g < 0 else None
 
 
 def two_hook_shares(
