@@ -11,10 +11,12 @@ import pytest
 import whole_job
 
 from takeoff import pipeline
+from takeoff.bounds import Bounds
 from takeoff.pipeline import Result
 from takeoff.reports import drawings
 from takeoff.reports.page import to_page
-from takeoff.reports.workbook import write_workbook
+from takeoff.reports.workbook import loaddrawings, write_workbook
+from takeoff.transport.load import LoadUnit, Placed
 
 RECT = re.compile(r'<rect x="([\d.]+)" y="([\d.]+)" width="([\d.]+)" height="([\d.]+)" class="piece')
 
@@ -108,6 +110,18 @@ def _corner_columns(text: str) -> list[tuple[int, int]]:
             found.append((column_index_from_string(a), column_index_from_string(b)))
     assert found
     return found
+
+
+def test_two_numbers_never_read_as_one() -> None:
+    """Pieces 4 and 5, one behind the other and 100 mm apart: one number is written and not "45"; 400 mm apart both are."""
+    per = 0.065
+    for apart, wanted in ((100, 1), (400, 2)):
+        pieces = [
+            (n, Placed(LoadUnit(f"P{n}", "piece", Bounds.exact(1.0), (800.0, 800.0, 900.0)), 5000.0 + apart * k, 900.0 * k, 0.0, 1, False))
+            for k, n in enumerate((4, 5))
+        ]
+        labels = loaddrawings._numbers(pieces, 2, per, True)
+        assert len([x for x in labels if "value" in x]) == wanted
 
 
 def test_vehicles_beyond_the_first_twelve_are_said_to_be_left_out(result: Result, tmp_path: Path) -> None:

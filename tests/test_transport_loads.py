@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
+import csv
 import json
 import random
+import re
 import time
 from collections.abc import Callable
 from dataclasses import replace
@@ -19,6 +21,7 @@ from hypothesis import strategies as st
 from takeoff.bounds import Bounds
 from takeoff.errors import JobError
 from takeoff.job import Job, job_from
+from takeoff.reports.loadsheet import vehicles_words
 from takeoff.transport import plan_units, room_record
 from takeoff.transport.axles import Support, extreme_share, most_payload_kg, permissible_kg, rigid, semitrailer
 from takeoff.transport.checking import faults
@@ -118,6 +121,33 @@ def mixed_job(seed: int, count: int = 120) -> list[LoadUnit]:
     return units
 
 
+def bulky_job(seed: int, count: int = 120) -> list[LoadUnit]:
+    """Crates that hardly fit beside each other, beams and pallets of a made-up job in three phases."""
+    shake = random.Random(seed)
+    units: list[LoadUnit] = []
+    number = 0
+    while len(units) < count:
+        number += 1
+        times, phase = shake.choice([1, 2, 3, 4, 6]), shake.randrange(3)
+        if shake.random() < 0.5:
+            size = (
+                shake.choice([2500.0, 4000.0, 5500.0, 7000.0]),
+                shake.choice([1400.0, 1800.0, 2200.0, 2400.0]),
+                shake.choice([700.0, 1100.0, 1500.0, 2200.0]),
+            )
+            kg = size[0] * size[1] * size[2] * 1e-9 * shake.uniform(60, 220)
+        elif shake.random() < 0.6:
+            sides = [float(shake.choice(c)) for c in ([3000, 4500, 6000, 7500, 9000, 12000], [100, 150, 200, 300], [100, 190, 300, 450])]
+            size = (sides[0], sides[1], sides[2])
+            kg = size[0] / 1000 * shake.choice([14.7, 42.3, 67.1, 117.0])
+        else:
+            size = (1200.0, 800.0, shake.choice([600.0, 1000.0]))
+            kg = shake.uniform(200, 900)
+        for copy in range(min(times, count - len(units))):
+            units.append(unit(f"B{number}" + (f" #{copy + 1}" if copy else ""), kg, size, phase=str(phase), drop=phase))
+    return units
+
+
 # --- plans -----------------------------------------------------------------------------------------------------------
 
 
@@ -132,6 +162,20 @@ def test_a_mixed_job_of_120_units(seed: int) -> None:
     assert not plan.not_loaded
     assert plan.gap <= 1
     assert plan.as_record() == planned(list(units), job).as_record()
+
+
+@pytest.mark.long
+def test_twenty_jobs_are_within_one_vehicle_of_the_bound() -> None:
+    """Twelve mixed jobs and eight bulky ones of three phases, four of these with the phases apart: at most one vehicle more each."""
+    plans = [planned(mixed_job(seed), job_of(ARTIC, LORRY, dunnage_mm=75, dunnage_kg=250)) for seed in range(1, 13)]
+    for seed in range(1, 9):
+        apart = "phase" if seed > 4 else "none"
+        plans.append(planned(bulky_job(seed), job_of(ARTIC, LORRY, dunnage_mm=75, dunnage_kg=250, separate=apart)))
+    assert not any(plan.not_loaded for plan in plans)
+    assert max(plan.gap for plan in plans) <= 1
+    with (Path(__file__).parent / "published" / "packing_results.csv").open(encoding="utf-8", newline="") as handle:
+        written = {r["set"]: r for r in csv.DictReader(handle)}
+    assert sum(plan.proven for plan in plans) >= int(written["mixed_and_bulky_jobs"]["proven"])
 
 
 sizes = st.tuples(st.integers(200, 7000), st.integers(100, 2600), st.integers(20, 2200))
@@ -238,6 +282,13 @@ def test_a_limited_fleet_names_what_is_left() -> None:
     plan = planned([unit(f"A{k}", 9000, (3000.0, 2000.0, 500.0)) for k in range(3)], job_of(FLAT | {"count": 2}))
     assert len(plan.loads) == 2
     assert [n.reason for n in plan.not_loaded] == ["every vehicle of the job is full"]
+    assert vehicles_words(plan) == "2 vehicles, full, and not everything is on them; at least 3 would be needed"
+
+
+def test_units_that_carry_nothing_are_counted_in_full_columns() -> None:
+    """Thirty crates that bear nothing, six to a deck: five vehicles, and that is the bound."""
+    plan = planned([unit(f"C{k}", 100, (2000.0, 1000.0, 500.0), carries=False) for k in range(30)], job_of(FLAT))
+    assert (len(plan.loads), plan.bound) == (5, 5)
 
 
 def test_the_checker_finds_what_is_wrong() -> None:
@@ -379,6 +430,24 @@ def test_over_size_is_named_with_its_rule() -> None:
     assert {o.kind for o in load.over_size} == {"length"}
 
 
+def test_the_overall_length_is_known_where_the_front_overhang_is() -> None:
+    """Front 1.4 m ahead of the first axle, kingpin 3.2 m behind it, deck from 1.6 m ahead of that, 13.6 m long: 16.6 m, over 16.5 m.
+
+    Without the overhang only 15.2 m are sure, which is within; a load beyond the tail counts.
+    """
+    piece = [unit("A", 9000, (6000.0, 2000.0, 500.0))]
+    (load,) = planned(piece, job_of(ARTIC | {"front_overhang_mm": 1400})).loads
+    assert [(o.kind, o.value) for o in load.over_size] == [("length", 16_600)]
+    assert "at least" not in load.over_size[0].rule
+    (load,) = planned(piece, job_of(ARTIC)).loads
+    assert load.over_size == ()
+    beam = [unit("B", 3000, (15_000.0, 300.0, 300.0))]
+    (load,) = planned(beam, job_of(ARTIC | {"rear_overhang_mm": 1500})).loads
+    assert [(o.name, o.value, "at least" in o.rule) for o in load.over_size] == [("artic", 16_600, True)]
+    (load,) = planned(beam, job_of(LORRY | {"rear_overhang_mm": 9000, "deck_length_mm": 12_000, "front_overhang_mm": 1300})).loads
+    assert [(o.name, o.value) for o in load.over_size] == [("B", 15_000), ("lorry", 1300 + 900 + 15_000)]
+
+
 def test_small_helpers() -> None:
     """Phases in natural order, and the size of strapped pieces."""
     assert sorted(["10", "2", "phase 10", "phase 9"], key=natural) == ["2", "10", "phase 9", "phase 10"]
@@ -429,3 +498,81 @@ def test_the_command_without_vehicles(run: Run, write_list: WriteList) -> None:
     assert done.returncode == 2
     assert "names no vehicle" in done.stderr
     assert "Traceback" not in done.stderr
+
+
+def test_us_print_has_us_figures_throughout(run: Run, write_list: WriteList, tmp_path: Path) -> None:
+    """Reasons and findings in feet, pounds and pounds-force on the terminal, the page and in the workbook; the JSON stays SI."""
+    import openpyxl
+
+    text = JOB.replace("max_bundle_kg = 1500\n", "").replace(
+        "[[vehicles]]", 'lashing = {method = "direct", lc_dan = 300, stf_dan = 100}\n[[vehicles]]'
+    )
+    (tmp_path / "job.toml").write_text(text.replace("load_height_mm = 2000", "load_height_mm = 2000\nanchor_dan = 250"), encoding="utf-8")
+    path = write_list(
+        [
+            ["B1", None, 1, "HEA200", "S355", 4200],
+            ["L1", None, 1, "HEA200", "S355", 9000],
+            ["H1", None, 1, "Block 3000x2000x300", "S355", None],
+        ]
+    )
+    shown = run("loads", path, "--units", "us", "--page", tmp_path / "p.html")
+    assert shown.returncode == 3, shown.stderr
+    assert run("schedule", path, "--units", "us", "--out", tmp_path / "o.xlsx").returncode == 3
+    record = json.loads(run("loads", path, "--units", "us", "--json").stdout)
+    assert all(" mm" in n["reason"] or " kg" in n["reason"] for n in record["not_loaded"])
+    assert len(record["not_loaded"]) == 2
+    cells = [str(c.value) for row in openpyxl.load_workbook(tmp_path / "o.xlsx")["Loads"].iter_rows() for c in row if c.value]
+    page = (tmp_path / "p.html").read_text(encoding="utf-8").replace("&#39;", "'").replace("&#34;", '"')
+    body = page[page.index("<body") :]
+    for text in (" ".join(shown.stdout.split()), " ".join(cells), body):
+        printed = text.replace("\u00a0", " ")
+        assert "29'-6 5/16\" x 0'-7 7/8\" x 0'-7 1/2\" against 19'-8 1/4\"" in printed
+        assert "against 22,046 lb on flat" in printed.replace("22 046", "22,046")
+        assert "lbf" in printed
+        assert not re.search(r"\d (mm|daN|kg|kN)\b", printed)
+
+
+def test_round_pieces_and_arch_stones(run: Run, write_list: WriteList, tmp_path: Path) -> None:
+    """A pipe is said to roll, once for all of its row; an arch stone has the size of its box, so the axles are not lost for it."""
+    (tmp_path / "job.toml").write_text(JOB.replace("max_bundle_kg = 1500", "max_bundle_kg = 0"), encoding="utf-8")
+    rows = [["P1", None, 3, "CHS 219.1x8", "S355", 3000], ["A1", None, 2, "Arch stone R3500 D450 A6 W600", "Granite", None]]
+    record = json.loads(run("loads", write_list(rows), "--json").stdout)
+    (load,) = record["vehicles"]
+    assert [f["message"].split(":")[0] for f in load["findings"] if f["kind"] == "may-roll"] == ["P1 is round"]
+    stones = [p for p in load["pieces"] if p["name"].startswith("A1")]
+    # Width of the outer arc's chord 2 x 3,950 x sin 3°, height 3,950 - 3,500 x cos 3°, length the stone's width of 600.
+    assert sorted((stones[0]["length_mm"], stones[0]["width_mm"])) == pytest.approx([413.45, 600.0], abs=0.01)
+    assert stones[0]["height_mm"] == pytest.approx(454.80, abs=0.01)
+
+
+def test_a_shift_that_holds_is_found_though_the_nearest_does_not() -> None:
+    """Two stacks of 12 t on 13.6 m: from about 0.5 m behind the front every axle holds, by trying every 50 mm; so one vehicle does."""
+    units = [unit(f"plate {k}", 600, (6000.0, 2000.0, 6.0)) for k in range(40)]
+    (load,) = planned(units, job_of(ARTIC)).loads
+    statics = load.vehicle.statics
+    assert statics is not None
+
+    def holds(shift: float) -> bool:
+        worst = [
+            s.empty_kg + sum(max(s.share_of(x + shift) * m for m in (11_400, 12_000)) for x in (3000.0, 9000.0)) for s in statics.supports
+        ]
+        return all(s.limit_kg is None or kg <= s.limit_kg for s, kg in zip(statics.supports, worst, strict=True))
+
+    least = next(shift for shift in range(0, 1600, 50) if holds(shift))
+    front = min(p.x for p in load.pieces if p.x is not None)
+    assert least - 50 <= front <= least
+
+
+def test_a_bag_of_bolts_does_not_lift_the_axle_limits() -> None:
+    """Twelve stones of 2 t and bolts without a size: the stones still stand where the axles bear them, as without the bolts."""
+    stones = [unit(f"S{k}", 2000, (600.0, 1200.0, 1200.0)) for k in range(12)]
+    (alone,) = planned(stones, job_of(ARTIC)).loads
+    (load,) = planned([*stones, unit("bolts", 2, None)], job_of(ARTIC)).loads
+    assert load.axles == ()
+    assert "in the middle of the deck every axle holds" in "; ".join(f.message for f in load.findings if f.kind == "axles-unknown")
+    statics = load.vehicle.statics
+    assert statics is not None
+    placed = [(p.unit.mass.heavy, p.centre[0]) for p in load.pieces if p.centre is not None] + [(2.0, 6800.0)]
+    loads = statics.loads_kg(placed)
+    assert all(s.limit_kg is None or loads[s.name] <= s.limit_kg for s in statics.supports)
+    assert min(p.x for p in load.pieces if p.x is not None) == pytest.approx(min(p.x or 0.0 for p in alone.pieces), abs=60)

@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import csv
+import math
+import random
 import time
 from itertools import product
 from pathlib import Path
@@ -13,6 +15,7 @@ from hypothesis import strategies as st
 
 from takeoff.transport import exact, lower_bounds
 from takeoff.transport.binpack import Packing, pack
+from takeoff.transport.box_bound import boxes_need
 
 PUBLISHED = Path(__file__).parent / "published"
 Instance = tuple[str, tuple[int, ...], int, list[tuple[int, ...]]]
@@ -120,9 +123,41 @@ def test_an_item_larger_than_a_bin_is_refused() -> None:
 def test_boxes_that_stand_in_one_bin_need_one(boxes: list[tuple[int, int, int]]) -> None:
     """Boxes laid end to end in a room made for them never need more than one by any way of counting."""
     room = (sum(b[0] for b in boxes), 24, 26)
-    assert lower_bounds.boxes_needed([([(a, b), (b, a)] if a <= 24 else [(a, b)], c) for a, b, c in boxes], room) == 1
+    assert boxes_need([([(a, b), (b, a)] if a <= 24 else [(a, b)], c) for a, b, c in boxes], room) == 1
+
+
+@settings(deadline=None, max_examples=40)
+@given(st.integers(0, 10**9), st.integers(1, 4))
+def test_rooms_sawn_into_boxes_never_need_more_rooms(seed: int, rooms: int) -> None:
+    """Boxes sawn from so many rooms, some turned, fit in so many: no bound says more."""
+    shake = random.Random(seed)
+    room = (136, 24, 26)
+    boxes = []
+    for _ in range(rooms):
+        whole = [room]
+        for _ in range(shake.randrange(1, 14)):
+            sides = list(whole.pop(shake.randrange(len(whole))))
+            k = shake.randrange(3)
+            if sides[k] < 2:
+                whole.append((sides[0], sides[1], sides[2]))
+                continue
+            at = shake.randrange(1, sides[k])
+            for part in (at, sides[k] - at):
+                sides[k] = part
+                whole.append((sides[0], sides[1], sides[2]))
+        for a, b, c in whole:
+            if shake.random() < 0.9:
+                boxes.append(([(a, b), (b, a)] if a <= room[1] and b != a else [(a, b)], c))
+    assert boxes_need(boxes, room) <= rooms
+
+
+def test_the_bound_sees_what_the_usual_families_do_not() -> None:
+    """Sixteen boxes of 23 on decks of 136, as wide and high as they: five a deck, so four decks; the usual families say three."""
+    boxes = [([(23, 24)], 26)] * 16
+    assert math.ceil(max(map(sum, lower_bounds.box_shares(boxes, (136, 24, 26)))) - 1e-6) == 3
+    assert boxes_need(boxes, (136, 24, 26)) == 4
 
 
 def test_tall_and_wide_boxes_are_counted_one_a_bin() -> None:
     """Boxes over half of every side need a bin each, though their volume would fit in fewer."""
-    assert lower_bounds.boxes_needed([([(60, 60)], 60)] * 4, (100, 100, 100)) == 4
+    assert boxes_need([([(60, 60)], 60)] * 4, (100, 100, 100)) == 4

@@ -9,9 +9,10 @@ from collections.abc import Callable
 from pathlib import Path
 from typing import Any
 
+import other_codes
 import pytest
 
-from takeoff.transport import bridge, handbook, lower_bounds, securing
+from takeoff.transport import bridge, lower_bounds, securing
 from takeoff.transport.axles import Tractor, permissible_kg, rigid, semitrailer
 from takeoff.transport.rules import rule
 
@@ -32,7 +33,7 @@ EXAMPLES = {r["id"]: r for r in rows("transport_examples.csv")}
 
 def sums(g: dict[str, Any]) -> tuple[list[float], list[float], list[float]]:
     lengths, masses = ([p[k] for p in g["pieces"]] for k in ("length_m", "mass_t"))
-    return lengths, masses, handbook.moments(masses, handbook.end_to_end(lengths))
+    return lengths, masses, other_codes.moments(masses, other_codes.end_to_end(lengths))
 
 
 def density(g: dict[str, Any]) -> list[float]:
@@ -59,12 +60,15 @@ def over(g: dict[str, Any]) -> float:
 
 def holds_directly(g: dict[str, Any]) -> str:
     # The best angle that there is for the friction that counts: no arrangement of the lashings does better.
-    mu = g["mu"] * g["mu_factor"]
-    best = math.atan(mu)
-    leg = (g["LC_daN"] / 100, math.cos(best), math.sin(best))
-    return (
-        "yes" if securing.direct_sliding_holds(g["m_kg"], g["c"], g["mu"], [leg] * g["lashings_acting_forward"], g["mu_factor"]) else "no"
-    )
+    best = math.atan(g["mu"] * g["mu_factor"])
+    legs = [(1.0, math.cos(best), math.sin(best))] * g["lashings_acting_forward"]
+    return "yes" if securing.direct_sliding_kN(g["m_kg"], g["c"], g["mu"], legs, g["mu_factor"]) <= g["LC_daN"] / 100 else "no"
+
+
+def leg(angle_deg: float, aside_deg: float) -> tuple[float, float, float]:
+    """A direct lashing at an angle to the deck and in plan to the direction, counted in full."""
+    a, b = math.radians(angle_deg), math.radians(aside_deg)
+    return 1.0, math.cos(a) * math.cos(b), math.sin(a)
 
 
 def bar_thrust_kN(g: dict[str, Any]) -> float:
@@ -75,15 +79,15 @@ OURS: dict[str, Callable[[dict[str, Any]], Any]] = {
     "T002": lambda g: sums(g)[2],
     "T003": lambda g: [sum(sums(g)[1]), sum(sums(g)[0]), sum(sums(g)[2])],
     "T005": density,
-    "T006": lambda g: handbook.end_to_end(sums(g)[0]),
+    "T006": lambda g: other_codes.end_to_end(sums(g)[0]),
     "T010": lambda g: g["stated_distance_cm"] / 100 / rule("lateral eccentricity", "", "any").value,
-    "T011": lambda g: handbook.rough_axle_loads(g["gross_lb"]),
-    "T013": lambda g: handbook.moments([g["left"]["lb"], g["right"]["lb"]], [g["left"]["arm_in"], g["right"]["arm_in"]]),
-    "T014": lambda g: handbook.kingpin_left(g["trailer_gross_kg"], g["axle_kg"], g["axles"]),
+    "T011": lambda g: other_codes.rough_axle_loads(g["gross_lb"]),
+    "T013": lambda g: other_codes.moments([g["left"]["lb"], g["right"]["lb"]], [g["left"]["arm_in"], g["right"]["arm_in"]]),
+    "T014": lambda g: other_codes.kingpin_left(g["trailer_gross_kg"], g["axle_kg"], g["axles"]),
     "T015": lambda g: [
         g["payload_kg"] + g["tare_kg"],
-        handbook.MOST_IN_ONE_HALF * g["payload_kg"],
-        (1 - handbook.MOST_IN_ONE_HALF) * g["payload_kg"],
+        other_codes.MOST_IN_ONE_HALF * g["payload_kg"],
+        (1 - other_codes.MOST_IN_ONE_HALF) * g["payload_kg"],
     ],
     **{f"T{n:03d}": lambda g: bridge.formula_lb(g["L_ft"], g["N"]) for n in (16, 17, 18, 22, 25)},
     "T026": lambda g: bridge.group_lb([0, 4, g["L_ft"] - 4, g["L_ft"]]),
@@ -94,31 +98,31 @@ OURS: dict[str, Callable[[dict[str, Any]], Any]] = {
     "T032": lambda g: g["cargo_lb"] * rule("strength share", "49 CFR 393", "any").value,
     "T035": lambda g: securing.tiedowns_by_length(g["length_ft"] * 304.8, 9000, blocked=True),
     "T036": lambda g: securing.tiedowns_by_length(g["length_ft"] * 304.8, 9000, blocked=g["blocked_forward"]),
-    "T037": lambda g: handbook.lashing_strength_each(g["load_t"], g["chains"], g["case"]),
-    "T038": lambda g: handbook.lashing_strength_each(g["load_t"], g["chains"], g["case"]),
+    "T037": lambda g: other_codes.lashing_strength_each(g["load_t"], g["chains"], g["case"]),
+    "T038": lambda g: other_codes.lashing_strength_each(g["load_t"], g["chains"], g["case"]),
     "T040": lambda g: 100 * securing.top_over_effect_kN(g["mu"], g["STF_daN"] / 100, g["alpha_deg"]),
     "T041": lambda g: g["legs"] / rule("safety factor", "EN 12195-1", "sideways").value,
-    "T043": lambda g: handbook.share_past_edge(g["mu_strap"], g["alpha_deg"]),
-    "T045": lambda g: [mu * handbook.DYNAMIC_SHARE for mu in g["mu_static"]],
+    "T043": lambda g: other_codes.share_past_edge(g["mu_strap"], g["alpha_deg"]),
+    "T045": lambda g: [mu * other_codes.DYNAMIC_SHARE for mu in g["mu_static"]],
     "T046": lambda g: 1000 * bar_thrust_kN(g) / g["bars"] / g["ends_per_bar"],
     "T047": lambda g: 1000 * bar_thrust_kN(g) / g["bars"] * g["span_m"] / 8,
     "T051": lambda g: g["loading_area_plus_gap_m"] - g["loading_area_m"],
-    "T054": lambda g: [handbook.special_types_kg(g["category"], d) for d in g["D_m"]],
+    "T054": lambda g: [other_codes.special_types_kg(g["category"], d) for d in g["D_m"]],
     "T055": lambda g: [lower_bounds.l1(g["items"], g["capacity"]), lower_bounds.l2(g["items"], g["capacity"])],
     "T062": lambda g: securing.least_distance_mm(rule("tilting coefficient", "EN 12195-1", "sideways").value, g["d_mm"]),
     "T063": holds_directly,
     **{f"T{n:03d}": over for n in (64, 65, 66, 67)},
     "T068": lambda g: math.ceil(over(g)),
     "T069": lambda g: 200 * 5.0 * securing.top_over(g["m_kg"], 0.8, g["mu_about"], 5.0, g["alpha_deg_about"], 1.25) / 2,
-    "T070": lambda g: handbook.sea_transverse_kN(g["m_t"], g["a_y"], g["correction"], g["wind_kN"], g["sea_kN"]),
-    "T071": lambda g: math.floor(handbook.sea_sliding_kN(g["m_t"], g["mu"], [g["CS_kN"]] * g["lashings"], [g["f"]] * g["lashings"])),
+    "T070": lambda g: other_codes.sea_transverse_kN(g["m_t"], g["a_y"], g["correction"], g["wind_kN"], g["sea_kN"]),
+    "T071": lambda g: math.floor(other_codes.sea_sliding_kN(g["m_t"], g["mu"], [g["CS_kN"]] * g["lashings"], [g["f"]] * g["lashings"])),
     "T072": lambda g: (
         100
         * g["g"]
         / securing.GRAVITY
-        * securing.direct_kN(g["m_kg"], g["c"], g["mu"], g["alpha_deg"], 0.0, g["lashings_acting"], g["mu_discount"])
+        * securing.direct_sliding_kN(g["m_kg"], g["c"], g["mu"], [leg(g["alpha_deg"], 0.0)] * g["lashings_acting"], g["mu_discount"])
     ),
-    "T073": lambda g: handbook.usable_daN(g["loop_strength_daN"], g["points"], g["point_LC_daN"]),
+    "T073": lambda g: other_codes.usable_daN(g["loop_strength_daN"], g["points"], g["point_LC_daN"]),
     "T074": lambda g: g["daN_per_kg"] / securing.GRAVITY * 1000 * securing.blocking_kN(g["m_kg"], g["c"], g["mu"]),
 }
 #: where the source rounds coarsely, how coarsely; else to half of the last figure printed
@@ -201,6 +205,7 @@ def test_numbers_of_lashings_worked_by_hand() -> None:
     """Sliding at two angles, tilting of one row at both pairings, and a direct pair."""
     assert math.ceil(securing.top_over(10_000, 0.8, 0.3, 5, 90, 1.25)) == 21
     assert math.ceil(securing.top_over(10_000, 0.5, 0.3, 5, 60, 1.1)) == 9
-    assert securing.top_over_tilting(2000, 0.5, 500, 1200, 1000, 5, 90, 1.1) == pytest.approx(0.432, abs=0.001)
-    assert securing.top_over_tilting(2000, 0.6, 500, 1200, 1000, 10, 90, 1.1) == pytest.approx(0.475, abs=0.001)
-    assert securing.direct_kN(10_000, 0.8, 0.3, 35, 30, 2) == pytest.approx(33.6, abs=0.05)
+    row = [securing.Row(2000, 500, 1200, 1000)]
+    assert securing.top_over_rows(row, 2400, 0.5, 5, 90, 1.1) == pytest.approx(0.432, abs=0.001)
+    assert securing.top_over_rows(row, 2400, 0.6, 10, 90, 1.1) == pytest.approx(0.475, abs=0.001)
+    assert securing.direct_sliding_kN(10_000, 0.8, 0.3, [leg(35, 30)] * 2) == pytest.approx(33.6, abs=0.05)

@@ -15,11 +15,13 @@ from takeoff.job import Job
 from takeoff.lifting.gravity import Place
 from takeoff.transport import planning
 from takeoff.transport.checking import faults
-from takeoff.transport.finishing import load_of, tension_dan
+from takeoff.transport.finishing import load_of
+from takeoff.transport.holding import tension_dan
 from takeoff.transport.load import Load, LoadUnit, NotLoaded, Plan
 from takeoff.transport.rules import friction_of, rule
 from takeoff.transport.units import units_of
 from takeoff.transport.vehicles import Vehicle, vehicles_of
+from takeoff.transport.words import Said, down, up
 
 if TYPE_CHECKING:
     import pandas as pd
@@ -54,10 +56,15 @@ def plan_units(units: Sequence[LoadUnit], lost: Sequence[NotLoaded], vehicles: S
             Finding(
                 "note",
                 "lashing-tension",
-                f"the lashings' tension of {transport.lashing.stf_dan:g} daN is more than half of their strength: "
-                f"{tension_dan(job):g} daN are reckoned with",
+                Said(
+                    "the lashings' tension of ",
+                    up(transport.lashing.stf_dan, "daN"),
+                    " is more than half of their strength: ",
+                    down(tension_dan(job), "daN"),
+                    " are reckoned with",
+                ),
                 read=f"{transport.lashing.stf_dan:g}",
-                right=f"at most {transport.lashing.lc_dan / 2:g}",
+                right=Said("at most ", down(transport.lashing.lc_dan / 2, "daN")),
             )
         )
     if transport.lashing.angle_deg < rule("useful angle", "EN 12195-1", "any").value:

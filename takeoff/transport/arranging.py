@@ -2,7 +2,7 @@
 
 A placed load falls into segments between cuts across the whole deck. Segments keep their inside and are put in another order,
 turned end for end, and the whole is shifted towards the tail. Every axle load is a straight line in the shift, so for one
-order the shifts that hold all axles at all stages form an interval, found exactly; the smallest is taken.
+order the shifts that hold all axles at all stages form an interval; the smallest is taken.
 """
 
 from __future__ import annotations
@@ -13,13 +13,15 @@ from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, replace
 from itertools import permutations
 
-from takeoff.transport.axles import Statics, Support, extreme_load_kg, extreme_share
+from takeoff.transport.axles import Statics, Support, extreme_load_kg
 from takeoff.transport.load import Placed
 from takeoff.transport.placing import BEARER, HAIR, Deck
 from takeoff.transport.vehicles import Vehicle
 
 #: an order of unloading that is not from the rear, and shares below the least, are put up with only where nothing else holds
 _ORDERS = 240
+#: times an interval of shifts is cut down
+_CUTS = 12
 _LINE_STEP = 1e-3
 
 
@@ -255,32 +257,54 @@ def _interval(
     *,
     shares: bool,
 ) -> tuple[float, float] | None:
-    """Shifts in [0, free] where every support holds, each condition being a line in the shift; `fixed_kg` does not move.
+    """Shifts in [0, free] where every support holds, whatever the masses within their bounds; `fixed_kg`, the last mass, stays.
 
-    Where pieces stand beyond a support the worst choice of their masses changes with the shift, so the result is checked again.
+    For one choice of masses each condition is a line in the shift; the worst choice changes with the shift, which makes the
+    shifts that hold an interval still. Lines taken at its ends cut it down until it no longer changes.
     """
     low, high = 0.0, free
-    for masses in states:
-        heavy = sum(m for _, m, _ in masses)
-        for s in statics.supports:
-            slope = s.per_mm * (heavy - fixed_kg)
-            conditions: list[tuple[float, float]] = []
-            if s.limit_kg is not None:
-                conditions.append((s.limit_kg - worst_kg(s, masses), slope))
-            conditions.append((extreme_load_kg(s, masses, most=False), -slope))
-            if shares and s.least_share:
-                whole = statics.empty_kg + heavy
-                conditions.append(((extreme_share(s, statics.empty_kg, masses) - s.least_share) * whole, -slope))
-            for room, per_mm in conditions:
-                # room - per_mm*shift >= 0
+    tried: set[float] = set()
+    for _ in range(_CUTS):
+        fresh = [at for at in dict.fromkeys((low, high)) if at not in tried]
+        if not fresh:
+            break
+        for at in fresh:
+            tried.add(at)
+            for room, per_mm in _lines(statics, states, bool(fixed_kg), at, shares=shares):
+                # room + per_mm*shift >= 0
                 if abs(per_mm) < 1e-15:
                     if room < -1e-6:
                         return None
-                elif per_mm > 0:
-                    high = min(high, room / per_mm)
+                elif per_mm < 0:
+                    high = min(high, room / -per_mm)
                 else:
-                    low = max(low, room / per_mm)
-    return (low, high) if low <= high + 1e-9 else None
+                    low = max(low, room / -per_mm)
+        if low > high + 1e-9:
+            return None
+    return low, high
+
+
+def _lines(
+    statics: Statics, states: Sequence[Sequence[tuple[float, float, float]]], last_stays: bool, at: float, *, shares: bool
+) -> Iterator[tuple[float, float]]:
+    """Each condition's worst choice of masses at one shift, as (what is left at no shift, what a mm more adds to it)."""
+    for masses in states:
+        for s in statics.supports:
+            conditions = [(s.empty_kg, 1.0, 0.0)]
+            if s.limit_kg is not None:
+                conditions.append((s.limit_kg - s.empty_kg, -1.0, 0.0))
+            if shares and s.least_share:
+                conditions.append((s.empty_kg - s.least_share * statics.empty_kg, 1.0, s.least_share))
+            for start, sign, least in conditions:
+                room, per_mm = start, 0.0
+                for k, (light, heavy, x) in enumerate(masses):
+                    stays = last_stays and k == len(masses) - 1
+                    part = sign * s.share_of(x) - least
+                    worst = heavy if part + (0.0 if stays else sign * s.per_mm * at) < 0 else light
+                    room += worst * part
+                    if not stays:
+                        per_mm += worst * sign * s.per_mm
+                yield room, per_mm
 
 
 def holds(pieces: Sequence[Placed], vehicle: Vehicle, dunnage_kg: float) -> bool:

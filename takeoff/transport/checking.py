@@ -49,7 +49,7 @@ def _load_faults(load: dict[str, Any], room: dict[str, Any]) -> list[str]:
             found.append(f"{one['name']} and {two['name']} overlap")
     if room["line_kg_per_m"] is not None and sized:
         found += _line_faults(pieces, room)
-    if len(sized) == len(pieces) and sized:
+    if sized:
         found += _axle_faults(load, room)
     return found
 
@@ -123,8 +123,9 @@ def _line_faults(pieces: Sequence[dict[str, Any]], room: dict[str, Any]) -> list
 
 
 def _axle_faults(load: dict[str, Any], room: dict[str, Any]) -> list[str]:
-    """Axles full and after each delivery, from the record's own places."""
+    """Axles full and after each delivery, from the record's own places; what has none counts in the middle, and stays aboard."""
     found = []
+    bare = sum(p["kg"] for p in load["pieces"] if p["centre_mm"] is None)
     phases = []
     for p in load["pieces"]:
         if p["phase"] not in phases:
@@ -132,8 +133,8 @@ def _axle_faults(load: dict[str, Any], room: dict[str, Any]) -> list[str]:
     for k in range(len(phases)):
         aboard = [p for p in load["pieces"] if p["phase"] in phases[: len(phases) - k]]
         for name, (empty, at_front, per_mm, limit) in room["axles"].items():
-            kg = empty + load["dunnage_kg"] * (at_front + per_mm * room["length"] / 2)
-            kg += sum(p["kg"] * (at_front + per_mm * p["centre_mm"][0]) for p in aboard)
+            kg = empty + (load["dunnage_kg"] + bare) * (at_front + per_mm * room["length"] / 2)
+            kg += sum(p["kg"] * (at_front + per_mm * p["centre_mm"][0]) for p in aboard if p["centre_mm"] is not None)
             if limit is not None and kg > limit * (1 + _SHARE):
                 found.append(f"{name} carries {kg:.0f} kg, over its limit" + (f", after {k} deliveries" if k else ""))
             if kg < -_MM:

@@ -11,6 +11,7 @@ from takeoff.transport.bridge import group_lb
 from takeoff.transport.load import AxleLoad, OverSize, Placed
 from takeoff.transport.rules import Rule, has_rule, rule
 from takeoff.transport.vehicles import Vehicle
+from takeoff.transport.words import Said, down, up
 
 _KG_PER_LB, _MM_PER_FT = 0.45359237, 304.8
 _CONFIRM = "confirm locally"
@@ -38,9 +39,11 @@ def over_size(
         for p in pieces:
             if p.unit.size is not None and p.unit.on_deck(p.turned)[0] > length[0] + 1e-6:
                 found.append(OverSize(p.unit.name, "length", p.unit.on_deck(p.turned)[0], *length))
-        whole = least_length_mm(vehicle, pieces)
+        whole = overall_length_mm(vehicle, pieces)
         if whole is not None and whole > length[0] + 1e-6:
-            found.append(OverSize(name, "length", whole, length[0], f"{length[1]}; the vehicle is at least so long"))
+            known = vehicle.part.front_overhang_mm is not None
+            how = "from the vehicle's front to the end of deck or load" if known else "the vehicle is at least so long"
+            found.append(OverSize(name, "length", whole, length[0], f"{length[1]}; {how}"))
     gross = _gross(vehicle, envelope, limits)
     if gross is not None and vehicle.empty_kg is not None and vehicle.empty_kg + payload_kg > gross[0] * (1 + 1e-9):
         found.append(OverSize(name, "gross", vehicle.empty_kg + payload_kg, *gross))
@@ -73,17 +76,21 @@ def _gross(vehicle: Vehicle, envelope: str, limits: LimitsPart) -> tuple[float, 
     return _said(rule("gross", envelope, "semitrailer 4" if number == 4 else "semitrailer 5"))
 
 
-def least_length_mm(vehicle: Vehicle, pieces: Sequence[Placed]) -> float | None:
-    """From the first axle to the end of deck or load: the vehicle is at least so long; None where the figures are missing."""
+def overall_length_mm(vehicle: Vehicle, pieces: Sequence[Placed]) -> float | None:
+    """From the vehicle's front to the end of deck or load, whichever reaches further; None where the figures are missing.
+
+    Where the job file does not say how far the vehicle reaches ahead of its first axle, from that axle: it is then at least so long.
+    """
     part = vehicle.part
     if vehicle.deck is None:
         return None
+    ahead = part.front_overhang_mm or 0.0
     end = max([vehicle.deck[0], *(p.x + p.unit.on_deck(p.turned)[0] for p in pieces if p.x is not None and p.unit.size is not None)])
     if vehicle.kind == "rigid":
-        return None if part.deck_front_mm is None else part.deck_front_mm + end
+        return None if part.deck_front_mm is None else ahead + part.deck_front_mm + end
     if part.tractor is None or part.deck_ahead_of_kingpin_mm is None:
         return None
-    return part.tractor.wheelbase_mm - part.tractor.fifth_wheel_ahead_mm - part.deck_ahead_of_kingpin_mm + end
+    return ahead + part.tractor.wheelbase_mm - part.tractor.fifth_wheel_ahead_mm - part.deck_ahead_of_kingpin_mm + end
 
 
 def axle_findings(name: str, vehicle: Vehicle, axles: Sequence[AxleLoad], envelope: str) -> list[Finding]:
@@ -103,10 +110,15 @@ def axle_findings(name: str, vehicle: Vehicle, axles: Sequence[AxleLoad], envelo
                 Finding(
                     "note",
                     "envelope-axle",
-                    f"{name}: {group} carries {load[group]:.0f} kg, over the planning limit of {limit.value:g} kg "
-                    f"({limit.source}); {_CONFIRM}",
-                    read=f"{load[group]:.0f} kg",
-                    right=f"at most {limit.value:g} kg",
+                    Said(
+                        f"{name}: {group} carries ",
+                        up(load[group]),
+                        ", over the planning limit of ",
+                        down(limit.value),
+                        f" ({limit.source}); {_CONFIRM}",
+                    ),
+                    read=Said(up(load[group])),
+                    right=Said("at most ", down(limit.value)),
                 )
             )
     return found

@@ -126,7 +126,10 @@ class AxleLoad:
 
 @dataclass(frozen=True, slots=True)
 class Lashing:
-    """What holds a piece in one direction: the method, how many, at which places along the deck (mm), and with what figures."""
+    """What holds a piece in one direction: the method, how many, at which places along the deck (mm), and with what figures.
+
+    Direct lashings name each anchor as (from the deck's front, from its left) in mm, and the force that each must hold, daN.
+    """
 
     piece: str
     method: str
@@ -136,6 +139,8 @@ class Lashing:
     angle_deg: float | None
     positions_mm: tuple[float, ...] = ()
     rule: str = ""
+    anchors_mm: tuple[tuple[float, float], ...] = ()
+    needed_dan: float | None = None
 
     def as_record(self) -> dict[str, Any]:
         return {
@@ -147,6 +152,8 @@ class Lashing:
             "angle_deg": self.angle_deg,
             "positions_mm": list(self.positions_mm),
             "rule": self.rule,
+            "anchors_mm": [list(place) for place in self.anchors_mm],
+            "needed_dan": self.needed_dan,
         }
 
 

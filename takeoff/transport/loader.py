@@ -15,6 +15,8 @@ from takeoff.transport.vehicles import Vehicle
 
 #: orders tried for one set of units on one deck: while units are dealt out, and for a single unit or a last try
 TRIES, MANY_TRIES = 6, 30
+#: orders tried where one vehicle is to take everything that is left
+ALL_TRIES = 300
 #: ways of counting boxes that are asked before a placement is tried
 _WAYS = 24
 
@@ -26,7 +28,7 @@ class Loader:
         self.dunnage_mm, self.dunnage_kg, self.clock = dunnage_mm, dunnage_kg, clock
         self.work = 0
         self._shares: dict[str, dict[int, tuple[float, ...]]] = {}
-        self._known: dict[tuple[str, tuple[int, ...]], bool] = {}
+        self._known: dict[tuple[str, tuple[int, ...]], tuple[bool, int]] = {}
         self._kinds: dict[object, int] = {}
         self._kind_of: dict[int, int] = {}
         self._asked = 0
@@ -42,7 +44,8 @@ class Loader:
                 if u.size is not None and v.deck is not None and any(self.deck(v).takes(u, turned) for turned in (False, True))
             ]
             room = (math.ceil(v.deck[0] + v.rear_overhang_mm - HAIR), math.ceil(v.deck[1] - HAIR), math.ceil(v.deck[2] - HAIR))
-            ways = box_shares(boxes_of(sized, room, self.dunnage_mm, flat=room[2] >= 10**6 or not v.layers), room) if sized else []
+            flat = room[2] >= 10**6 or not v.layers or not any(u.carries for u in sized)
+            ways = box_shares(boxes_of(sized, room, self.dunnage_mm, flat=flat), room) if sized else []
             ways.sort(key=lambda values: -sum(values))
             self._shares[v.name] = (
                 {id(u): tuple(values) for u, values in zip(sized, zip(*ways[:_WAYS], strict=True), strict=True)} if ways else {}
@@ -63,9 +66,11 @@ class Loader:
         self._asked += 1
         self.work += self._asked % 16 == 0
         key = (vehicle.name, tuple(sorted(self._kind(u) for u in units)))
-        if key not in self._known or (tries > TRIES and not self._known[key]):
-            self._known[key] = self.arranged(units, vehicle, tries, quick=True) is not None
-        return self._known[key]
+        known, tried = self._known.get(key, (False, 0))
+        if not known and tries > tried:
+            known = self.arranged(units, vehicle, tries, quick=True) is not None
+            self._known[key] = known, tries
+        return known
 
     def _kind(self, unit: LoadUnit) -> int:
         """A number that like units share; they live as long as the plan is made."""
@@ -89,7 +94,7 @@ class Loader:
     def arranged(self, units: Sequence[LoadUnit], vehicle: Vehicle, tries: int = TRIES, *, quick: bool = False) -> Arranged | None:
         """The best arrangement found, None where none is; the first that holds where it must be `quick`.
 
-        Units without size are loaded by mass only: the axles are then unknown.
+        Units without size are loaded by mass only: the axles are then unknown, but hold with those units in the middle of the deck.
         """
         if not self._may(units, vehicle):
             return None
@@ -99,13 +104,14 @@ class Loader:
         if vehicle.deck is None or not sized:
             return Arranged([Placed(u, None, None, 0.0, 1, False) for u in sized] + without, False, False, 0.0)
         deck = self.deck(vehicle)
-        judged = replace(vehicle, statics=None) if bare else vehicle
+        # What has no place counts in the middle of the deck, as dunnage does: a bag of bolts must not lift the axles' limits.
+        fixed_kg = self.dunnage_kg + math.fsum(u.mass.heavy for u in bare)
         best: Arranged | None = None
         ways, attempts = place(sized, deck, tries)
         # One for every ten pieces handled, so that the limits mean much the same work for few pieces and for many.
         self.work += 1 + attempts * len(sized) // 10
         for placed in ways:
-            found = arrange(placed, judged, deck, self.dunnage_kg, quick=quick)
+            found = arrange(placed, vehicle, deck, fixed_kg, quick=quick)
             if found is not None and (best is None or found.rank < best.rank):
                 best = found
             if best is not None and (quick or best.rank[0] == 0):

@@ -10,6 +10,9 @@ from __future__ import annotations
 from collections.abc import Iterable, Sequence
 from itertools import product
 
+#: a box: its possible (length, width) on the deck, and its height
+Box = tuple[Sequence[tuple[int, int]], int]
+
 
 def l1(sizes: Iterable[int], capacity: int) -> int:
     """The sum of the sizes over the capacity, rounded up."""
@@ -38,29 +41,22 @@ def bins_needed(sizes: Sequence[Sequence[int]], capacity: Sequence[int]) -> int:
     return max(1, *(l2([item[d] for item in sizes], capacity[d]) for d in range(len(capacity))))
 
 
-def boxes_needed(boxes: Sequence[tuple[Sequence[tuple[int, int]], int]], room: tuple[int, int, int]) -> int:
-    """Bins that boxes need by their size alone: each box is its possible (length, width) on the deck, and its height.
+def box_shares(boxes: Sequence[Box], room: tuple[int, int, int]) -> list[list[float]]:
+    """For each choice of dual feasible functions, the share of one bin that each box takes up at the least.
 
-    For every choice of dual feasible functions the transformed volumes may not exceed one a bin; a box that may be turned
-    counts at the smaller of its volumes, so the bound holds for every way to turn.
+    What stands in one bin sums to at most one; a box that may be turned counts at the smaller of its volumes, so that holds for
+    every way to turn.
     """
-    if not boxes:
-        return 0
-    # A hair off, so that the noise of a sum of floats never adds a bin.
-    return max(1, *(_ceil(sum(values) - 1e-6) for values in box_shares(boxes, room)))
-
-
-def box_shares(boxes: Sequence[tuple[Sequence[tuple[int, int]], int]], room: tuple[int, int, int]) -> list[list[float]]:
-    """For each choice of dual feasible functions, the share of one bin that each box takes up at the least."""
-    functions = [_functions(side) for side in room]
+    of_sides = [functions(side) for side in room]
     tables: list[list[dict[int, float]]] = []
     for axis in range(3):
         values = {ways[axis] for faces, _ in boxes for ways in faces} if axis < 2 else {height for _, height in boxes}
-        tables.append([{value: f(value) for value in values} for f in functions[axis]])
+        tables.append([{value: f(value) for value in values} for f in of_sides[axis]])
     return [[min(along[a] * across[b] for a, b in faces) * up[height] for faces, height in boxes] for along, across, up in product(*tables)]
 
 
-def _functions(side: int) -> list[_Dual]:
+def functions(side: int) -> list[_Dual]:
+    """The usual dual feasible functions of one side: plain shares, large sizes counted whole, steps."""
     return [_Dual(side, "share", 0), *(_Dual(side, "large", k) for k in range(4)), *(_Dual(side, "step", k) for k in (1, 2, 3))]
 
 
@@ -80,8 +76,3 @@ class _Dual:
             scaled = (k + 1) * value
             return value / side if scaled % side == 0 else (scaled // side) / k
         return value / side
-
-
-def _ceil(value: float) -> int:
-    whole = int(value)
-    return whole if whole >= value else whole + 1

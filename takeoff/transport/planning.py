@@ -1,7 +1,7 @@
 """Which vehicle carries what: fewest vehicles, then least payload capacity, then even loads, with a proven least number.
 
 No single model does it. The least number comes from bounds that hold whatever the plan (masses by exact packing, boxes by
-dual feasible functions, payload as the axles leave it). For a fleet of so many vehicles, units go one by one to the vehicle
+the best scales for them, payload as the axles leave it). For a fleet of so many vehicles, units go one by one to the vehicle
 that suits, each time with a real placement and its axles; while something is left over, two vehicles are dealt out anew.
 Where mass alone, or mass and the length of one lane, decide, the exact packing is the plan itself. Work is counted, the seed
 fixed, ties go by name; the clock is only a safety stop, and the plan says when it rang.
@@ -21,11 +21,12 @@ from takeoff.transport import blocks
 from takeoff.transport.arranging import Arranged
 from takeoff.transport.binpack import Clock, pack
 from takeoff.transport.blocks import gathered
+from takeoff.transport.box_bound import boxes_need
 from takeoff.transport.load import LoadUnit, NotLoaded
-from takeoff.transport.loader import MANY_TRIES, TRIES, Loader, boxes_of
-from takeoff.transport.lower_bounds import boxes_needed
+from takeoff.transport.loader import ALL_TRIES, MANY_TRIES, TRIES, Loader, boxes_of
 from takeoff.transport.placing import HAIR
 from takeoff.transport.vehicles import Vehicle
+from takeoff.transport.words import Said, down, up
 
 #: work (tens of pieces handled) for one fleet, and for levelling the loads
 _FLEET_WORK, _LEVEL_WORK = 25_000, 3_000
@@ -33,6 +34,10 @@ _FLEET_WORK, _LEVEL_WORK = 25_000, 3_000
 _MOST_MIXES = 24
 #: above this many units each goes to the first vehicle that takes it, without dealing out anew
 _MANY_UNITS = 600
+#: with so few left over, each vehicle is asked with care
+_FEW_LEFT = 2
+#: why a unit that would fit stands on no vehicle
+FULL = "every vehicle of the job is full"
 _GRAM = 1000.0
 
 
@@ -85,7 +90,7 @@ def plan(
         filled += made
         used.update(f.vehicle.name for f in made)
         loaded = {id(u) for f in made for u in f.units}
-        left += [NotLoaded(u.name, u.mass.heavy, "every vehicle of the job is full") for u in group if id(u) not in loaded]
+        left += [NotLoaded(u.name, u.mass.heavy, FULL) for u in group if id(u) not in loaded]
     return Outcome(filled, left, bound, clock.rang or loader.clock.rang)
 
 
@@ -110,16 +115,16 @@ def why_not(unit: LoadUnit, vehicles: Sequence[Vehicle], loader: Loader) -> str:
     able = [v for v in vehicles if unit.mass.heavy <= loader.room_kg(v)]
     if not able:
         most = max(vehicles, key=lambda v: (loader.room_kg(v), v.name))
-        carried = math.floor(max(0.0, loader.room_kg(most)))
-        return f"heavier than any vehicle may carry: {math.ceil(unit.mass.heavy - 1e-9):g} kg against {carried:g} kg on {most.name}"
+        carried = down(max(0.0, loader.room_kg(most)))
+        return Said("heavier than any vehicle may carry: ", up(unit.mass.heavy), " against ", carried, f" on {most.name}")
     sized = [v for v in able if v.deck is not None and unit.size is not None]
     if sized and not any(loader.deck(v).takes(unit, turned) for v in sized for turned in (False, True)):
         most = max(sized, key=lambda v: (v.deck or (0.0, 0.0, 0.0), v.name))
         assert most.deck is not None
         assert unit.size is not None
-        room = " x ".join(f"{side:g}" for side in most.deck if side < 1e6)
-        size = " x ".join(f"{math.ceil(side - 1e-6):g}" for side in unit.size)
-        return f"larger than any deck that may carry it: {size} mm against {room} mm on {most.name}"
+        size = [part for side in unit.size for part in (up(side, "mm"), " x ")][:-1]
+        room = [part for side in most.deck if side < 1e6 for part in (down(side, "mm"), " x ")][:-1]
+        return Said("larger than any deck that may carry it: ", *size, " against ", *room, f" on {most.name}")
     return f"an axle, or the deck's line load, of {able[0].name} would be over its limit wherever it stands"
 
 
@@ -211,7 +216,9 @@ def _by_sum(total: int, rooms: Sequence[int]) -> int:
 
 
 def _by_boxes(units: Sequence[LoadUnit], fleet: Sequence[Vehicle], room: tuple[int, int, int], loader: Loader) -> int:
-    return boxes_needed(boxes_of(units, room, loader.dunnage_mm, flat=room[2] >= 10**6 or not any(v.layers for v in fleet)), room)
+    # Where no unit carries another, or no vehicle takes layers, each counts in its full column.
+    flat = room[2] >= 10**6 or not any(v.layers for v in fleet) or not any(u.carries for u in units)
+    return boxes_need(boxes_of(units, room, loader.dunnage_mm, flat=flat), room)
 
 
 def _one_lane(units: Sequence[LoadUnit], fleet: Sequence[Vehicle], loader: Loader) -> tuple[list[int], int] | None:
@@ -348,6 +355,8 @@ def _deal(units: Sequence[LoadUnit], mix: Sequence[Vehicle], loader: Loader, clo
         if clock.over() or len(units) > _MANY_UNITS:
             return None
     if len(mix) == 1:
+        if len(units) <= _MANY_UNITS and loader.fits(units, mix[0], ALL_TRIES):
+            return [Filled(mix[0], list(units), loader.arranged(units, mix[0], ALL_TRIES))]
         return None
     while waiting and loader.work < limit and not clock.over():
         one, two = shake.sample(range(len(mix)), 2)
@@ -362,6 +371,8 @@ def _deal(units: Sequence[LoadUnit], mix: Sequence[Vehicle], loader: Loader, clo
         weight = {id(u): hard[measure][id(u)] * (0.75 + 0.5 * shake.random()) for u in out}
         out = _ordered(out, weight, several and shake.random() < 0.3)
         left = _insert(out, tried, mix, loader, even=shake.random() < 0.5, first=(one, two))
+        if 0 < len(left) <= _FEW_LEFT:
+            left = _insert(left, tried, mix, loader, even=False, tries=MANY_TRIES)
         if _leftover(left, hard) <= _leftover(waiting, hard) * 1.02 + 1e-9:
             loads, waiting = tried, left
     if waiting:
@@ -405,6 +416,7 @@ def _insert(
     *,
     even: bool,
     first: Sequence[int] = (),
+    tries: int = 4,
 ) -> list[LoadUnit]:
     """Put units on vehicles one by one, in place; returns those that found no place. Like units fail only once."""
     left: list[LoadUnit] = []
@@ -416,7 +428,7 @@ def _insert(
         if kind not in failed:
             fill = [m / v.payload_kg for m, v in zip(mass, mix, strict=True)]
             places = sorted(range(len(mix)), key=lambda k: (k not in first, fill[k] if even else -fill[k], k))
-            home = next((k for k in places if loader.fits([*loads[k], unit], mix[k], 4)), None)
+            home = next((k for k in places if loader.fits([*loads[k], unit], mix[k], tries)), None)
         if home is None:
             failed.add(kind)
             left.append(unit)

@@ -1,26 +1,36 @@
 """Load securing: top-over and direct lashings, tilting, blocking by EN 12195-1; the US rule of 49 CFR 393 as alternative.
 
 Masses kg, forces kN, angles in degrees to the deck, lengths mm. Formulae (m mass, g 9.81 m/s², c coefficient of the direction,
-mu friction, F tension of a lashing, a its angle, f safety factor):
+mu friction, F tension of a lashing, a its angle, f safety factor, d height of the centre of gravity above the tilting edge and b
+its distance from it, w from the edge to the lashing's far corner):
 
-    top-over, sliding   n >= (c - mu) m g f / (2 mu F sin a)                 5.4.2
-    top-over, tilting   n >= f m g (c d - b) / (w F sin a)                   5.4.3.1, one row
-    direct, sliding     F >= m g (c - 0.75 mu) / (legs (cos a cos b + 0.75 mu sin a))      5.5
+    top-over, sliding   n >= (c - mu) m g f / (2 mu F sin a)                                 5.4.2
+    top-over, tilting   n >= f m g (c d - b) / (w F sin a)                                   5.4.3.1, one row
+    rows, tilting       n >= f sum(m g (c d - b)) / (w F sin a)   all rows lean              statics, see `top_over_rows`
+    direct, sliding     sum F (along + 0.75 mu down) >= m g (c - 0.75 mu)                    5.5.2, 5.5.3.1
+    direct, tilting     sum F (down x + along h) >= m g (c d - b)                            5.5.3.2
     blocking            B >= (c - mu) m g
     stands by itself    b/d >= c
 
-The clauses are those of the German edition of 2011, as quoted; the tilting form and the pairing of coefficients with tensions
-are recalled. Earlier editions took a factor k in place of 2 and no f.
+The clauses are those of the German edition of 2011, as quoted by the German insurers' load-securing handbook, which gives the
+forms for sliding and for direct lashings (read). The top-over form against tilting is recalled and follows from moments. The
+standard's own formula for rows, 5.4.3.2, was not at hand: rows are reckoned by moments without friction between them, which errs
+on the safe side (computed). Earlier editions took a factor k in place of 2 and no f.
 """
 
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 
 GRAVITY = 9.81
 DIRECTIONS = ("forward", "sideways", "rearward")
+
+
+def weight_kN(mass_kg: float) -> float:
+    """The weight of a mass."""
+    return mass_kg * GRAVITY / 1000.0
 
 
 def top_over(mass_kg: float, c: float, mu: float, tension_kN: float, angle_deg: float, factor: float, legs: float = 2.0) -> float:
@@ -31,26 +41,54 @@ def top_over(mass_kg: float, c: float, mu: float, tension_kN: float, angle_deg: 
     """
     if not (mu > 0 and tension_kN > 0 and 0 < angle_deg <= 90):
         raise ValueError("friction, tension and angle must be above zero")
-    weight = mass_kg * GRAVITY / 1000.0
-    return max(0.0, (c - mu) * weight * factor / (legs * mu * tension_kN * math.sin(math.radians(angle_deg))))
+    return max(0.0, (c - mu) * weight_kN(mass_kg) * factor / top_over_effect_kN(mu, tension_kN, angle_deg, legs))
 
 
-def top_over_effect_kN(mu: float, tension_kN: float, angle_deg: float) -> float:
+def top_over_effect_kN(mu: float, tension_kN: float, angle_deg: float, legs: float = 2.0) -> float:
     """What one top-over lashing holds back at the most, its two legs pressing: 2 mu F sin a."""
-    return 2 * mu * tension_kN * math.sin(math.radians(angle_deg))
+    return legs * mu * tension_kN * math.sin(math.radians(angle_deg))
 
 
-def top_over_tilting(
-    mass_kg: float, c: float, across_mm: float, up_mm: float, width_mm: float, tension_kN: float, angle_deg: float, factor: float
-) -> float:
-    """Lashings over the top against tilting of one row: `across_mm` from the centre of gravity to the edge, `up_mm` its height."""
-    weight = mass_kg * GRAVITY / 1000.0
-    return max(0.0, factor * weight * (c * up_mm - across_mm) / (width_mm * tension_kN * math.sin(math.radians(angle_deg))))
+@dataclass(frozen=True, slots=True)
+class Row:
+    """One row as it would tilt over one edge: mass, its centre's distance from the edge (`across_mm`) and height above it
+    (`up_mm`), and how far the corners that a lashing over the top bends round lie from the edge: the far and the near one
+    (negative beyond the edge).
+    """
+
+    mass_kg: float
+    across_mm: float
+    up_mm: float
+    far_mm: float
+    near_mm: float = 0.0
+
+    def moment_kNmm(self, c: float) -> float:
+        """What turns it over, less what its weight holds: m g (c d - b)."""
+        return weight_kN(self.mass_kg) * (c * self.up_mm - self.across_mm)
+
+
+def top_over_rows(rows: Sequence[Row], height_mm: float, c: float, tension_kN: float, angle_deg: float, factor: float) -> float:
+    """Lashings over the tops of rows side by side against tilting, before rounding up; infinite where none would hold.
+
+    `rows` go from the side that lifts to the side they tilt to; `height_mm` is that of the outer rows' tops. Statics: rows lean
+    like books, each over its own edge. Where all lean, the first leg draws the first row down. Where only the last rows lean,
+    the lashing's flat part holds them back by what its leg on that side does not pull outward. Both are looked at, for every
+    number of leaning rows, with no friction between rows. One row is the form of 5.4.3.1.
+    """
+    down, back = math.sin(math.radians(angle_deg)), 1 - math.cos(math.radians(angle_deg))
+    worst = 0.0
+    for leaning in range(1, len(rows) + 1):
+        moment = factor * math.fsum(row.moment_kNmm(c) for row in rows[len(rows) - leaning :])
+        if moment <= 0:
+            continue
+        lever = down * rows[-1].near_mm + (down * rows[0].far_mm if leaning == len(rows) else back * height_mm)
+        worst = max(worst, moment / (lever * tension_kN) if lever > 0 else math.inf)
+    return worst
 
 
 def stands(c: float, across_mm: float, up_mm: float) -> bool:
     """Whether a piece does not tilt by itself: b/d >= c."""
-    return across_mm >= c * up_mm * (1 - 1e-12)
+    return across_mm >= least_distance_mm(c, up_mm) * (1 - 1e-12)
 
 
 def least_distance_mm(c: float, up_mm: float) -> float:
@@ -58,80 +96,33 @@ def least_distance_mm(c: float, up_mm: float) -> float:
     return c * up_mm
 
 
-def direct_kN(mass_kg: float, c: float, mu: float, angle_deg: float, aside_deg: float, legs: int = 2, share: float = 0.75) -> float:
-    """Force in each of the legs of direct lashings that act in a direction; `aside_deg` is the angle in plan to it.
+def direct_sliding_kN(mass_kg: float, c: float, mu: float, legs: Iterable[tuple[float, float, float]], share: float = 0.75) -> float:
+    """Force in the hardest pulled of direct lashings that keeps a piece from sliding; infinite where none can. Hold it to LC.
 
-    Compare it with LC. `share` of the friction counts: such lashings work only once the load has moved.
+    Each leg is (its force as a part of the largest, its part opposed to motion, its part downward), parts of 1. `share` of
+    the friction counts: such lashings work only once the load has moved.
     """
-    weight = mass_kg * GRAVITY / 1000.0
-    a, b = math.radians(angle_deg), math.radians(aside_deg)
-    return max(0.0, weight * (c - share * mu) / (legs * (math.cos(a) * math.cos(b) + share * mu * math.sin(a))))
+    demand = weight_kN(mass_kg) * (c - share * mu)
+    return _shared(demand, math.fsum(part * (along + share * mu * down) for part, along, down in legs))
 
 
-def direct_sliding_holds(
-    mass_kg: float,
-    c: float,
-    mu: float,
-    lashings: Sequence[tuple[float, float, float]],
-    share: float = 0.75,
-) -> bool:
-    """Vector form: each lashing as (force kN, its part in the direction opposed to motion, its part downward), parts of 1."""
-    weight = mass_kg * GRAVITY / 1000.0
-    held = sum(force * (along + share * mu * down) for force, along, down in lashings)
-    return held >= weight * (c - share * mu) * (1 - 1e-12)
+def direct_tilting_kN(moment_kNmm: float, levers: Iterable[tuple[float, float]]) -> float:
+    """Force in the hardest pulled of direct lashings against a tilting moment; each is (part of the largest force, lever in mm)."""
+    return _shared(moment_kNmm, math.fsum(part * lever for part, lever in levers))
+
+
+def _shared(demand: float, held: float) -> float:
+    if demand <= 0:
+        return 0.0
+    return demand / held if held > 0 else math.inf
 
 
 def blocking_kN(mass_kg: float, c: float, mu: float, factor: float = 1.0) -> float:
     """What a headboard, bar or chock must hold; `factor` is an extra margin some documents ask for."""
-    return max(0.0, (c - mu) * mass_kg * GRAVITY / 1000.0 * factor)
+    return max(0.0, (c - mu) * weight_kN(mass_kg) * factor)
 
 
-@dataclass(frozen=True, slots=True)
-class Held:
-    """What a stack needs: the direction that governs, and the number of lashings over the top, rounded up."""
-
-    direction: str
-    number: int
-    exact: float
-    tilts: bool
-
-
-def lashings_over(
-    mass_kg: float,
-    mu: float,
-    stf_kN: float,
-    lc_kN: float,
-    angle_deg: float,
-    directions: Sequence[tuple[str, float, float]],
-    tilting: Sequence[tuple[str, float, float, float, float, float]] = (),
-    least: int = 2,
-) -> Held:
-    """The most lashings over the top that any direction asks for, and at least `least` (2 a piece that stands alone).
-
-    `directions` are (name, c, f); `tilting` are (name, c to stand by itself, c with STF, edge distance, height of the centre,
-    width of the row), tried with STF and, at the first c, with half of LC; the worse counts.
-    """
-    best = Held("all", least, 0.0, False)
-    for name, c, factor in directions:
-        exact = top_over(mass_kg, c, mu, stf_kN, angle_deg, factor)
-        if max(least, _up(exact)) > best.number or (best.exact < exact and _up(exact) == best.number):
-            best = Held(name, max(least, _up(exact)), exact, best.tilts)
-    factor = next((f for _, _, f in directions if f), 1.1)
-    factors = {name: f for name, _, f in directions}
-    for name, alone, with_stf, across, up, width in tilting:
-        if stands(alone, across, up):
-            continue
-        f = factors.get(name, factor)
-        exact = max(
-            top_over_tilting(mass_kg, with_stf, across, up, width, stf_kN, angle_deg, f),
-            top_over_tilting(mass_kg, alone, across, up, width, lc_kN / 2, angle_deg, f),
-        )
-        number = max(best.number, _up(exact))
-        best = Held(f"{name}, tilting" if number > best.number else best.direction, number, max(best.exact, exact), True)
-    return best
-
-
-def _up(value: float) -> int:
+def whole(value: float) -> int:
     """To the next whole number, blind to the noise of the last digits."""
     return math.ceil(value - 1e-9)
 
@@ -143,12 +134,12 @@ def tiedowns_by_length(length_mm: float, mass_kg: float, *, blocked: bool, foot_
     """49 CFR 393.110. Blocked forward: one for each 10 ft or part; else by length and, up to 5 ft, by weight (1,100 lb)."""
     feet = length_mm / foot_mm
     if blocked:
-        return max(1, _up(feet / 10))
+        return max(1, whole(feet / 10))
     if feet <= 5 + 1e-9:
         return 1 if mass_kg <= 1100 * 0.45359237 + 1e-9 else 2
-    return 2 + max(0, _up((feet - 10) / 10))
+    return 2 + max(0, whole((feet - 10) / 10))
 
 
 def tiedowns_by_strength(mass_kg: float, limit_kg: float) -> int:
     """49 CFR 393.106(d): working load limits of lashings that pass over to the other side add up to half the weight."""
-    return max(1, _up(mass_kg / 2 / limit_kg))
+    return max(1, whole(mass_kg / 2 / limit_kg))

@@ -30,6 +30,7 @@ Size = tuple[float, float, float]
 MOST_UNITS = 20_000
 _SIZES = ("length_mm", "width_mm", "thickness_mm", "height_mm", "diameter_mm")
 #: pieces whose top is no flat place
+_ROUND = frozenset(("round bar", "round hollow", "sphere", "cone"))
 _NOT_FLAT = frozenset(("ring sector", "wedge", "round bar", "round hollow", "sphere", "cone"))
 
 
@@ -62,7 +63,9 @@ class _List:
         section = self.section(i)
         length = row["length_mm"]
         if not length > 0 and section is not None:
-            length = section.dimensions_mm.get("length", math.nan)
+            # A stone of an arch lies with its width along the barrel as its length.
+            name = "width" if section.shape == "ring sector" else "length"
+            length = section.dimensions_mm.get(name, math.nan)
         face = face_of(section, row) if section is not None else None
         if face is not None:
             sides: tuple[float, float] = (face.width, face.height)
@@ -73,6 +76,10 @@ class _List:
         if not (length > 0 and sides[0] > 0 and sides[1] > 0):
             return None
         return max(length, sides[0]), min(length, sides[0]), sides[1]
+
+    def rolls(self, i: int) -> bool:
+        section = self.section(i)
+        return section is not None and section.shape in _ROUND
 
     def flat(self, i: int) -> bool:
         section = self.section(i)
@@ -174,6 +181,15 @@ def _singles(i: int, data: _List, drops: dict[str | None, int], seen: Counter[st
     mass, size, name = data.mass[i], data.box(i), data.name(i)
     assert mass is not None
     findings: list[Finding] = [] if size is not None else [_sizeless(name)]
+    if data.rolls(i):
+        findings.append(
+            Finding(
+                "note",
+                "may-roll",
+                f"{name} is round: keep it from rolling; the lashings are reckoned against sliding and tilting only",
+                right="wedges, a cradle, or a bundle",
+            )
+        )
     phase, drop = _phase([i], data, drops, findings)
     quantity = int(data.columns["quantity"][i])
     made = []

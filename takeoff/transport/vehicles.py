@@ -11,8 +11,10 @@ from pathlib import Path
 from takeoff.errors import JobError
 from takeoff.findings import Finding
 from takeoff.job import Job, VehiclePart
+from takeoff.names import first_twice
 from takeoff.transport.axles import Statics, Support, Tractor, most_payload_kg, rigid, semitrailer
 from takeoff.transport.rules import rule
+from takeoff.transport.words import Said, down
 
 _RIGID = ("wheelbase_mm", "deck_front_mm", "front_empty_kg", "rear_empty_kg")
 _SEMITRAILER = ("kingpin_to_axles_mm", "deck_ahead_of_kingpin_mm", "kingpin_empty_kg", "axles_empty_kg")
@@ -55,12 +57,12 @@ def vehicles_of(job: Job) -> list[Vehicle]:
         raise JobError(
             "the job file names no vehicle to load", file=job.path, right="[[vehicles]] with a name and payload_kg, and their count"
         )
-    names = [part.name for part in job.vehicles]
-    for number, name in enumerate(names):
-        if name in names[:number]:
-            raise JobError(
-                f"vehicles.{number}.name: two vehicles have one name", file=job.path, read=name, right="each kind once, with its count"
-            )
+    twice = first_twice([part.name for part in job.vehicles])
+    if twice is not None:
+        raise JobError(
+            f"vehicles.{twice}.name: two vehicles have one name", file=job.path, read=job.vehicles[twice].name,
+            right="each kind once, with its count",
+        )
     return [_vehicle(part, number, job) for number, part in enumerate(job.vehicles) if part.count != 0]
 
 
@@ -80,9 +82,9 @@ def _vehicle(part: VehiclePart, number: int, job: Job) -> Vehicle:
                 Finding(
                     "note",
                     "vehicle-limits",
-                    f"{part.name}: its payload of {payload:g} kg would exceed its gross limit: {room:g} kg are used",
+                    Said(f"{part.name}: its payload of ", down(payload), " would exceed its gross limit: ", down(room), " are used"),
                     read=f"{payload:g}",
-                    right=f"at most {room:g}",
+                    right=Said("at most ", down(room)),
                 )
             )
         payload = room if payload is None else min(payload, room)
@@ -143,7 +145,15 @@ def _deck(part: VehiclePart, job: Job, findings: list[Finding]) -> tuple[float, 
             height = limit - part.deck_height_mm
             findings.append(
                 Finding(
-                    "note", "vehicle-limits", f"{part.name}: load height taken as {height:g} mm, to {limit:g} mm above the road ({source})"
+                    "note",
+                    "vehicle-limits",
+                    Said(
+                        f"{part.name}: load height taken as ",
+                        down(height, "mm"),
+                        ", to ",
+                        down(limit, "mm"),
+                        f" above the road ({source})",
+                    ),
                 )
             )
         else:
@@ -162,6 +172,14 @@ def _deck(part: VehiclePart, job: Job, findings: list[Finding]) -> tuple[float, 
             file=job.path,
             read=f"{part.deck_ahead_of_kingpin_mm:g}",
             right="deck_ahead_of_kingpin_mm below deck_length_mm",
+        )
+    beyond = [at for at in part.anchors_mm if at > part.deck_length_mm]
+    if beyond:
+        raise JobError(
+            f"vehicle {part.name}: an anchor lies beyond its deck",
+            file=job.path,
+            read=f"{beyond[0]:g}",
+            right=f"anchors_mm up to the deck's length of {part.deck_length_mm:g}",
         )
     return part.deck_length_mm, part.deck_width_mm, height
 

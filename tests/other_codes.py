@@ -1,7 +1,6 @@
-"""Other codes and rules of thumb that a checker of a loading plan meets, each with its source; the plan itself does not use them.
+"""Other codes and rules of thumb that the published examples are worked by, each with its source; the program uses none of them.
 
-Forces daN or kN as named, masses kg or t, lengths m or mm. They are here so that a figure from such a code can be held against
-ours.
+Forces daN or kN as named, masses kg or t, lengths m or mm.
 """
 
 from __future__ import annotations
