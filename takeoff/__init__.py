@@ -15,12 +15,15 @@ What comes out is an estimate for planning, not a lift plan: `result.cautions` g
 
 from __future__ import annotations
 
-from collections.abc import Sequence
 from functools import partial
-from pathlib import Path
-from typing import TYPE_CHECKING, Any
 
+# A command cannot answer Ctrl-C before this module is loaded, so even paths are loaded by the function that needs them.
+TYPE_CHECKING = False
 if TYPE_CHECKING:
+    from collections.abc import Sequence
+    from pathlib import Path
+    from typing import Any
+
     import pandas as pd
 
     from takeoff.materials import MaterialMatch
@@ -40,6 +43,8 @@ def read(*lists: str | Path, job: str | Path | None = None, strict: bool = False
 
     Raises takeoff.errors.InputError where a list cannot be read or holds no member list, JobError on the job file.
     """
+    from pathlib import Path
+
     from takeoff import pipeline
 
     return pipeline.read(lists, job_path=None if job is None else Path(job), strict=strict)
@@ -54,6 +59,8 @@ def weigh(reading: Reading | str | Path) -> Result:
 
     Raises as `read` does, and takeoff.errors.AccountError where rows would be lost.
     """
+    from pathlib import Path
+
     from takeoff import pipeline
 
     return pipeline.weigh_reading(read(reading) if isinstance(reading, str | Path) else reading)
@@ -85,6 +92,8 @@ def write(result: Result, *paths: str | Path, replace: bool = False) -> list[Pat
 
     Raises takeoff.errors.OutputError on a path of another kind, one that exists (unless `replace`), or one that is an input.
     """
+    from pathlib import Path
+
     from takeoff.errors import OutputError
     from takeoff.reports import files
 
@@ -103,6 +112,8 @@ def compare(result: Result, earlier: str | Path) -> pd.DataFrame:
 
     Raises takeoff.errors.InputError where `earlier` is no such record.
     """
+    from pathlib import Path
+
     import pandas as pd
 
     from takeoff.reports import compare as comparing

@@ -7,6 +7,9 @@ from __future__ import annotations
 
 from pathlib import Path
 
+#: characters of what was read, and of what we say of it, that a message shows: a cell or a key may hold millions
+_MOST_READ, _MOST_SAID = 160, 600
+
 
 class TakeoffError(Exception):
     """Base of every error this package raises on purpose.
@@ -41,11 +44,12 @@ class TakeoffError(Exception):
 
     def __str__(self) -> str:
         where = place(self.file, self.sheet, self.cell)
-        text = f"{where}: {self.what}" if where else self.what
+        what = shortened(self.what, _MOST_SAID)
+        text = f"{where}: {what}" if where else what
         if self.read is not None:
-            text += f" (read: {self.read!r})"
+            text += f" (read: {shortened(self.read, _MOST_READ)!r})"
         if self.right:
-            text += f". Right would be: {self.right}"
+            text += f". Right would be: {shortened(self.right, _MOST_SAID)}"
         return text + "."
 
 
@@ -73,6 +77,11 @@ class AccountError(TakeoffError):
     """Rows read are not rows accounted for: a fault of this program. Nothing is written."""
 
     status = 4
+
+
+def shortened(text: str, most: int) -> str:
+    """A text of at most so many characters, or its beginning and how long it is."""
+    return text if len(text) <= most else f"{text[:most]}… ({len(text):,} characters)"
 
 
 def place(file: str | None, sheet: str | None, cell: str | None) -> str:

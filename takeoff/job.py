@@ -6,6 +6,7 @@ silently ignored is a setting the user believes in. A key of a later version is 
 
 from __future__ import annotations
 
+import re
 import tomllib
 from pathlib import Path
 from typing import Annotated, Any, Literal, get_args, get_origin
@@ -13,8 +14,22 @@ from typing import Annotated, Any, Literal, get_args, get_origin
 from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, StrictBool, ValidationError, field_validator
 from pydantic_core import PydanticCustomError
 
-from takeoff.errors import JobError, UnitError
+from takeoff.datafiles import refuse_odd_file
+from takeoff.errors import JobError, UnitError, shortened
+from takeoff.names import first_twice
 from takeoff.quantities import ABSOLUTE_ZERO_C, temperature_C
+
+#: characters of a key that a message shows; parts that a dotted key may have
+_MOST_KEY, _MOST_PARTS = 80, 50
+#: kinds of vehicle; the search for a plan tries each against each
+_MOST_VEHICLES = 1_000
+#: what a TOML text is made of, as far as its keys go: longer texts, parts of a key with the dot behind them, what ends a key
+_QUOTED = r"""(?:"(?:[^"\\\n]|\\.)*+"|'[^'\n]*+')"""
+_TOKEN = re.compile(
+    r"""(?P<text>"{3}(?:[^"\\]|\\.|"(?!""))*+"{3}|'{3}(?:[^']|'(?!''))*+'{3}|\#[^\n]*+)"""
+    rf"""|(?P<part>(?:[\w-]++|{_QUOTED})[ \t]*+\.)|(?P<other>[\w-]++|{_QUOTED})|(?P<open>["'])|(?P<sign>[^\w\s])|\s++""",
+    re.DOTALL,
+)
 
 Factor = Annotated[float, Field(gt=0, le=10, allow_inf_nan=False, strict=True)]
 Share = Annotated[float, Field(gt=0, le=1, allow_inf_nan=False, strict=True)]
@@ -236,13 +251,18 @@ class CranePart(_Part):
     boom_foot_m: Annotated[float, Field(ge=0, le=100, allow_inf_nan=False, strict=True)] | None = None
     block_m: Annotated[float, Field(ge=0, le=50, allow_inf_nan=False, strict=True)] | None = None
     wind_area_factor: Factor | None = None
+    wind_m_s: Annotated[float, Field(gt=0, le=50, allow_inf_nan=False, strict=True)] | None = None
     outriggers: OutriggersPart | None = None
     share_factor: Annotated[float, Field(ge=1, le=10, allow_inf_nan=False, strict=True)] | None = None
 
 
 class LashingPart(_Part):
-    """The lashings at hand: what one holds in the straight pull, its tension when tightened, its angle to the deck."""
+    """The lashings at hand: what one holds in the straight pull, its tension when tightened, its angle to the deck.
 
+    `direct` lays four from each piece's upper corners to the deck's sides; the angle is then the layout's own.
+    """
+
+    method: Literal["top-over", "direct"] = "top-over"
     lc_dan: Force = 2500.0
     stf_dan: Force = 300.0
     angle_deg: Annotated[float, Field(gt=0, le=90, allow_inf_nan=False, strict=True)] = 60.0
@@ -296,6 +316,9 @@ class VehiclePart(_Part):
     deck_height_mm: Size | None = None
     rear_overhang_mm: Millimetres = 0.0
     deck_line_load_kg_per_m: Annotated[float, Field(gt=0, le=1e6, allow_inf_nan=False, strict=True)] | None = None
+    anchors_mm: tuple[Millimetres, ...] = ()
+    anchor_dan: Force | None = None
+    front_overhang_mm: Millimetres | None = None
     axles: tuple[AxlePart, ...] = ()
     wheelbase_mm: Size | None = None
     deck_front_mm: Coordinate | None = None
@@ -327,7 +350,7 @@ class GuardsPart(_Part):
     rows: Annotated[int, Field(gt=0, le=1_048_576, strict=True)] = 300_000
     cells: Annotated[int, Field(gt=0, le=100_000_000, strict=True)] = 20_000_000
     megabytes: Annotated[float, Field(gt=0, le=4096, strict=True)] = 200.0
-    seconds: Annotated[float, Field(gt=0, le=86_400, strict=True)] = 900.0
+    seconds: Annotated[float, Field(ge=0.001, le=86_400, strict=True)] = 900.0
 
 
 #: name -> °C: reference (20 unless named), measured, cut, erect, coldest, warmest, and any other name
@@ -365,15 +388,39 @@ class Job(_Part):
 
 def read_job(path: Path) -> Job:
     """The job file at `path`. Raises JobError with the key at fault, or where the file cannot be read."""
+    refuse_odd_file(path, "the job file", "job", JobError)
     try:
-        raw = tomllib.loads(path.read_bytes().decode("utf-8-sig"))
+        text = path.read_bytes().decode("utf-8-sig")
+        if _has_endless_key(text):
+            raise JobError(f"a key of the job file has more than {_MOST_PARTS} parts", file=path, right="keys of two or three parts")
+        raw = tomllib.loads(text)
     except OSError as error:
         raise JobError(f"the job file cannot be read ({error.strerror})", file=path) from error
     except UnicodeDecodeError as error:
         raise JobError("the job file is not UTF-8 text", file=path, right="save it as UTF-8") from error
-    except (tomllib.TOMLDecodeError, RecursionError) as error:
+    except RecursionError as error:
+        raise JobError("the job file nests lists or tables without end", file=path, right="a list in a table at most") from error
+    except tomllib.TOMLDecodeError as error:
         raise JobError(f"the job file is not proper TOML: {error}", file=path) from error
+    except ValueError as error:  # none of the TOML reader's own: the interpreter refuses to convert it
+        raise JobError("the job file holds a number of thousands of digits", file=path) from error
     return job_from(raw, path)
+
+
+def _has_endless_key(text: str) -> bool:
+    """Whether a dotted key has so many parts that the TOML reader, which takes their number squared, would not end."""
+    parts = 0
+    for found in _TOKEN.finditer(text):
+        kind = found.lastgroup
+        if kind == "part":
+            parts += 1
+            if parts > _MOST_PARTS:
+                return True
+        elif kind == "open":
+            break  # a quote that never closes: the TOML reader stops there too
+        elif kind is not None:
+            parts = 0
+    return False
 
 
 def job_from(raw: dict[str, Any], path: Path | None = None) -> Job:
@@ -381,13 +428,14 @@ def job_from(raw: dict[str, Any], path: Path | None = None) -> Job:
     if "path" in raw:
         raise JobError("unknown key 'path'", file=path)
     _refuse_unknown(raw, Job, "", path)
+    _refuse_long_numbers(raw, path)
     try:
         return _consistent(Job(**raw, path=path))
     except ValidationError as error:
         first = error.errors()[0]
         # A choice of types adds the name of the type tried to the key.
         key = ".".join(str(part) for part in first["loc"] if part not in ("constrained-float", "constrained-str"))
-        raise JobError(f"{key}: {_plain(first['msg'])}", file=path, read=str(first.get("input"))[:80]) from None
+        raise JobError(f"{shortened(key, _MOST_KEY)}: {_plain(first['msg'])}", file=path, read=str(first.get("input"))[:80]) from None
 
 
 def _consistent(job: Job) -> Job:
@@ -399,9 +447,26 @@ def _consistent(job: Job) -> Job:
         if run.joint_min_mm is not None and run.joint_max_mm is not None and run.joint_min_mm > run.joint_max_mm:
             gaps = f"{run.joint_min_mm:g} and {run.joint_max_mm:g}"
             raise JobError(f"runs.{number}.joint_min_mm is above joint_max_mm", file=job.path, read=gaps)
-        if run.name in [other.name for other in job.runs[:number]]:
-            raise JobError(f"runs.{number}.name: two runs have one name", file=job.path, read=run.name, right="each run once")
+    if len(job.vehicles) > _MOST_VEHICLES:
+        raise JobError(f"vehicles: {len(job.vehicles):,} kinds of vehicle, more than are compared", file=job.path,
+                       right=f"at most {_MOST_VEHICLES:,}; count says how many there are of a kind")
+    twice = first_twice([run.name for run in job.runs])
+    if twice is not None:
+        raise JobError(f"runs.{twice}.name: two runs have one name", file=job.path, read=job.runs[twice].name, right="each run once")
     return job
+
+
+def _refuse_long_numbers(raw: dict[str, Any], path: Path | None) -> None:
+    """Raises JobError on a whole number that TOML's 64 bits do not hold: nothing of a job is, and it cannot even be shown."""
+    waiting: list[tuple[str, Any]] = list(raw.items())
+    while waiting:
+        key, value = waiting.pop()
+        if isinstance(value, dict):
+            waiting += [(f"{key}.{inner}" if len(key) < _MOST_KEY else key, entry) for inner, entry in value.items()]
+        elif isinstance(value, list):
+            waiting += [(key, entry) for entry in value]
+        elif isinstance(value, int) and value.bit_length() > 63:
+            raise JobError(f"{shortened(key, _MOST_KEY)}: a number of {value.bit_length()} bits", file=path, right="a number of a job")
 
 
 def _refuse_unknown(raw: dict[str, Any], model: type[BaseModel], prefix: str, path: Path | None) -> None:
@@ -409,7 +474,7 @@ def _refuse_unknown(raw: dict[str, Any], model: type[BaseModel], prefix: str, pa
     for key, value in raw.items():
         full = prefix + key
         if key not in known:
-            raise JobError(f"unknown key {full!r}", file=path, right=_nearest(full, prefix, known))
+            raise JobError(f"unknown key {shortened(full, _MOST_KEY)!r}", file=path, right=_nearest(full[:_MOST_KEY], prefix, known))
         part, several = _part_of(model.model_fields[key].annotation)
         if part is None:
             continue
@@ -449,8 +514,9 @@ def find_job(lists: list[Path], named: Path | None) -> Job:
         return read_job(named)
     beside = [p.parent / "job.toml" for p in lists]
     for other in beside[1:]:
-        if other.is_file() and not (beside[0].is_file() and other.samefile(beside[0])):
+        if other.exists() and not (beside[0].exists() and other.samefile(beside[0])):
             raise JobError("another job.toml lies beside a later list", file=other, right="name the one to use with --job")
-    return read_job(beside[0]) if beside and beside[0].is_file() else Job()
+    # Whatever bears the name is meant as the job file: a link that leads nowhere is said, not passed over.
+    return read_job(beside[0]) if beside and (beside[0].exists() or beside[0].is_symlink()) else Job()
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import struct
 import zipfile
 from pathlib import Path
 
@@ -101,3 +102,59 @@ def open_document(path: Path, rows: str) -> Path:
         archive.writestr("content.xml", content)
         archive.writestr("META-INF/manifest.xml", f'<?xml version="1.0"?><manifest:manifest xmlns:manifest="{names}manifest:1.0"/>')
     return path
+
+
+def open_table() -> str:
+    """Table rows of an OpenDocument spreadsheet: headings, and a member row of two beams of 6 m."""
+    def text(value: str) -> str:
+        return f'<table:table-cell office:value-type="string"><text:p>{value}</text:p></table:table-cell>'
+
+    def number(value: int) -> str:
+        return f'<table:table-cell office:value-type="float" office:value="{value}"><text:p>{value}</text:p></table:table-cell>'
+
+    cells = (text("M2"), number(2), text("UB 203x133x25"), text("S355"), number(6000))
+    return f"<table:table-row>{''.join(map(text, HEADINGS))}</table:table-row><table:table-row>{''.join(cells)}</table:table-row>"
+
+
+def _record(kind: int, data: bytes = b"") -> bytes:
+    """One record of a binary workbook: its kind and length, seven bits a byte."""
+    out = b""
+    for number in (kind, len(data)):
+        left = number
+        while left > 0x7F:
+            out += bytes([left & 0x7F | 0x80])
+            left >>= 7
+        out += bytes([left])
+    return out + data
+
+
+def _wide(text: str) -> bytes:
+    return struct.pack("<I", len(text)) + text.encode("utf-16-le")
+
+
+def binary_sheet() -> bytes:
+    """The sheet of an .xlsb: headings, and a member row of two beams of 6 m."""
+    out = _record(129) + _record(148, struct.pack("<IIII", 0, 1, 0, 4)) + _record(145)
+    for number, values in enumerate((HEADINGS, ("M2", 2.0, "UB 203x133x25", "S355", 6000.0))):
+        out += _record(0, struct.pack("<IIHBBB", number, 0, 300, 0, 0, 0) + struct.pack("<I", 0))
+        for column, value in enumerate(values):
+            place = struct.pack("<II", column, 0)
+            out += _record(6, place + _wide(value)) if isinstance(value, str) else _record(5, place + struct.pack("<d", value))
+    return out + _record(146) + _record(130)
+
+
+def binary_workbook(path: Path, sheet_data: bytes) -> Path:
+    """An .xlsb with these records as its one sheet."""
+    entry = _record(156, struct.pack("<II", 0, 1) + _wide("rId1") + _wide("List"))
+    book = _record(131) + _record(143) + entry + _record(144) + _record(132)
+    with zipfile.ZipFile(path, "w", zipfile.ZIP_DEFLATED) as archive:
+        archive.writestr("[Content_Types].xml", TYPES)
+        archive.writestr("_rels/.rels", ROOT.replace("workbook.xml", "workbook.bin"))
+        archive.writestr("xl/workbook.bin", book)
+        archive.writestr("xl/_rels/workbook.bin.rels", RELATIONS.replace("sheet1.xml", "sheet1.bin"))
+        archive.writestr("xl/worksheets/sheet1.bin", sheet_data)
+    return path
+
+
+#: an .xls that a spreadsheet program saved, with the same row
+OLD_WORKBOOK = Path(__file__).parent / "fuzz_cases" / "an_older_workbook.xls"

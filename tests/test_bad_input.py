@@ -106,6 +106,7 @@ def test_outputs_are_kept_and_inputs_untouched(run: Run, write_list: WriteList) 
     assert target.read_bytes() == first
     assert run("schedule", path, "--replace").returncode == 0
     refused(run("schedule", path, "--out", path, "--replace"), "is an input")
+    refused(run("schedule", path, "--out", path.with_name("list.txt")), "list.txt", ".xlsx")
     refused(run("schedule", path, "--replace", "--json", path.parent / "no" / "where.json"), "where.json")
     assert path.read_bytes() == before
     assert openpyxl.load_workbook(target).sheetnames[0] == "Summary"

@@ -12,6 +12,7 @@ import io
 import json
 import math
 import os
+import zipfile
 from collections.abc import Callable
 from pathlib import Path
 from typing import Any
@@ -27,7 +28,7 @@ from takeoff.job import Job, job_from, read_job
 from takeoff.lists import columns, counts
 from takeoff.lists.headings import read_heading
 from takeoff.quantities import length_mm, mass_kg, measure_readings, number_readings, temperature_C
-from takeoff.reports import records, terminal, workbook
+from takeoff.reports import compare, plainpage, records, terminal, workbook
 from takeoff.weighing import contents, cuts, finishes, holes, insulation
 
 CASES = Path(__file__).parent / "fuzz_cases"
@@ -292,6 +293,225 @@ def test_job_files_of_any_bytes(tmp_path_factory: pytest.TempPathFactory, data: 
     path.write_bytes(data)
     with contextlib.suppress(TakeoffError):
         read_job(path)
+
+
+# --- the user's own tables, charts and earlier records -----------------------------------------------------------------
+
+OWN_LIST = "Mark,Assembly,Quantity,Section,Material,Length (mm),Contents\nM1,A1,2,X 1,mix 7,6000,\nM2,A1,1,PL10x200,mix 7,900,\nM3,A2,1,X 1,S355,1000,mix 7\n"
+OWN_MATERIALS = {
+    "key": ("mix-7", "mix-7b"), "name": ("Mix 7", "steel"), "family": ("concrete", "carbon steel", "wood", "liquid", "stone"), "aliases": ("mix; x", "", "S355"),
+    "designations": ("mix 7", ""), "density_low_kg_m3": ("", "2400"), "density_kg_m3": ("2450", "7850", "1"), "density_high_kg_m3": ("", "2600"),
+    "density_condition": ("20 °C", ""), "density_source": ("mill sheet",), "density_clause": ("",), "density_evidence": ("read", "recalled"), "alpha_1e-6_per_K": ("", "12"),
+    "alpha_low_C": ("", "-50"), "alpha_high_C": ("", "100"), "alpha_direction": ("", "isotropic"), "alpha_source": ("", "a book"), "alpha_clause": ("",),
+    "alpha_evidence": ("", "read"), "law": ("", "constant"), "melting_C": ("", "1500"), "note": ("",),
+}
+OWN_SECTIONS = {
+    "designation": ("X 1", "X 2"), "family": ("X", "UB"), "shape": ("I parallel", "box hollow", "solid rectangle", "round hollow"), "standard": ("", "own"),
+    "h_mm": ("100", "50"), "b_mm": ("50", "100"), "tw_mm": ("5", ""), "tf_mm": ("8", "5"), "r1_mm": ("", "3"), "published_kg_per_m": ("", "10"),
+    "source": ("Drawing 7",), "clause": ("",), "evidence": ("read",), "note": ("",),
+}
+OWN_CELL = st.one_of(TEXT, NUMBER.map(str), st.sampled_from(("", "nan", "inf", "-1", "1e308", "0", "mix-7", "read")))
+
+
+@st.composite
+def own_tables(draw: st.DrawFn, fitting: dict[str, tuple[str, ...]]) -> bytes:
+    """A table of the user's own that is right but for a cell, a heading or a byte."""
+    headings = list(fitting)
+    rows = [[draw(st.sampled_from(fitting[heading])) for heading in headings] for _ in range(draw(st.integers(1, 3)))]
+    if draw(st.booleans()):
+        draw(st.sampled_from(rows))[draw(st.integers(0, len(headings) - 1))] = draw(OWN_CELL)
+    kept = [i for i, heading in enumerate(headings) if not heading.endswith("note") or draw(st.booleans())]
+    out = io.StringIO()
+    csv.writer(out, lineterminator="\n").writerows([[line[i] for i in kept] for line in [headings, *rows]])
+    data = bytearray(out.getvalue().encode("utf-8", "replace"))
+    for where, byte in draw(st.lists(st.tuples(st.floats(0, 1), st.integers(0, 255)), max_size=1)) if draw(st.integers(0, 4)) == 0 else []:
+        data[min(int(where * len(data)), len(data) - 1)] = byte
+    return bytes(data)
+
+
+@examples(60)
+@given(table=own_tables(OWN_MATERIALS))
+def test_own_materials(tmp_path_factory: pytest.TempPathFactory, table: bytes) -> None:
+    """Own materials: weighed with, or refused with the line."""
+    _with_own(tmp_path_factory.mktemp("fuzz"), "materials", table)
+
+
+@examples(60)
+@given(table=own_tables(OWN_SECTIONS))
+def test_own_sections(tmp_path_factory: pytest.TempPathFactory, table: bytes) -> None:
+    """Own sections: weighed with, or refused with the line."""
+    _with_own(tmp_path_factory.mktemp("fuzz"), "sections", table)
+
+
+def _with_own(folder: Path, kind: str, table: bytes) -> None:
+    (folder / "own.csv").write_bytes(table)
+    (folder / "list.csv").write_text(OWN_LIST)
+    weigh_everything(folder / "list.csv", job_from({"own": {kind: "own.csv"}}, folder / "job.toml"))
+    assert (folder / "own.csv").read_bytes() == table
+
+
+PLACED = (
+    "Mark,Assembly,Phase,Quantity,Section,Material,Length (mm),X1 (mm),Y1 (mm),Z1 (mm),X2 (mm),Y2 (mm),Z2 (mm)\nM1,A1,1,1,UB 203x133x25,S355,6000,0,0,0,6000,0,0\n"
+    "M2,A1,1,1,UB 203x133x25,S355,6000,0,1500,0,6000,1500,0\nM3,A2,2,3,PL10x200,oak,900,,,,,,\n"
+)
+CHART_CELL = st.one_of(st.sampled_from(("", "-", "20 m", "30.5", "radius (ft)", "12 000", "9.5", "1,200", "x")), st.integers(-1, 90_000).map(str), TEXT)
+
+
+@examples(80)
+@given(
+    grid=st.lists(st.lists(CHART_CELL, min_size=1, max_size=4), max_size=5), wrong=st.lists(st.tuples(st.integers(0, 3), st.integers(0, 3), CHART_CELL), max_size=2),
+    right=st.integers(0, 4), crane=st.fixed_dictionaries({}, optional={
+        "rating_unit": st.sampled_from(("kg", "t", "lb")), "radius_unit": st.sampled_from(("m", "ft")), "deductions_kg": st.floats(0, 1e6),
+        "hook_rating_kg": st.floats(1, 1e6), "boom_foot_m": st.floats(0, 50), "block_m": st.floats(0, 20),
+        "outriggers": st.just({"spread_x_mm": 6000.0, "spread_y_mm": 6000.0, "crane_kg": 36000.0, "allowable_kpa": 100.0})}),
+    radius=st.floats(0.1, 100), boom=st.one_of(st.none(), st.floats(1, 60)),
+)
+def test_crane_charts(
+    tmp_path_factory: pytest.TempPathFactory, grid: list[list[str]], wrong: list[tuple[int, int, str]], right: int, crane: dict[str, Any], radius: float, boom: float | None,
+) -> None:
+    """Charts of any cells, and nearly right ones: a verdict, or none; never one from a cell that is no number."""
+    folder = tmp_path_factory.mktemp("fuzz")
+    if right:
+        grid = [["Radius (m)", "20", "30"], ["3", "20000", "18000"], ["6", "12000", "11000"], ["9", "8000", ""]]
+        for row, column, cell in wrong:
+            grid[row][column:column + 1] = [cell]
+    with (folder / "chart.csv").open("w", encoding="utf-8", newline="", errors="replace") as handle:
+        csv.writer(handle, lineterminator="\n").writerows(grid)
+    (folder / "list.csv").write_text(PLACED)
+    pick = {"name": "P", "assemblies": ["A1"], "radius_m": radius, **({} if boom is None else {"boom_m": boom})}
+    result = weigh_everything(folder / "list.csv", job_from({"crane": {"name": "C", "chart": "chart.csv", **crane}, "lift": {"picks": [pick]}}, folder / "job.toml"))
+    for part in (p.as_record() for p in result.picks) if result else []:
+        assert part["verdict"] in ("within", "over", "unknown")
+        if part["crane"] and part["crane"]["verdict"] == "within":
+            assert 0 < part["crane"]["capacity_kg"] < math.inf
+            assert part["hook_load_kg"] <= part["crane"]["capacity_kg"]
+
+
+COORDINATE = st.one_of(st.sampled_from((0.0, 750.0, 1500.0, 3000.0, 6000.0)), st.floats(-1e7, 1e7))
+
+
+@examples(60)
+@given(
+    points=st.lists(st.tuples(COORDINATE, COORDINATE, COORDINATE), max_size=6), keys=st.fixed_dictionaries({}, optional={
+        "hook": st.tuples(COORDINATE, COORDINATE), "hook_height_mm": st.floats(1e-3, 1e6), "hitch": st.sampled_from(("direct", "choke", "basket")),
+        "slings_mm": st.floats(1e-3, 1e6), "bend_ratio": st.floats(0.01, 100), "sling": st.sampled_from(("chain", "wire rope", "round sling", "webbing")),
+        "weighed_kg": st.floats(1e-3, 1e7), "skew_factor": st.floats(0.01, 10), "spreader": st.just({"kind": "spreader", "length_mm": 3000.0, "mass_kg": 50.0}),
+        "own_weight": st.just({"axis": "weak"}), "upend": st.just({"head": "p0", "tail": "p1"})}),
+    deck=st.floats(1, 20_000), payload=st.floats(0, 1e5), count=st.one_of(st.none(), st.integers(0, 1000)),
+)
+def test_lifts_and_loads(
+    tmp_path_factory: pytest.TempPathFactory, points: list[tuple[float, float, float]], keys: dict[str, Any], deck: float, payload: float, count: int | None,
+) -> None:
+    """Points, slings and vehicles of any figures: shares that are numbers, every piece on one vehicle or named."""
+    folder = tmp_path_factory.mktemp("fuzz")
+    (folder / "list.csv").write_text(PLACED)
+    pick = {"name": "P", "assemblies": ["A1"], "points": [{"name": f"p{i}", "position": list(p)} for i, p in enumerate(points)], **keys}
+    vehicle = {"name": "v", "payload_kg": payload, "deck_length_mm": deck, "deck_width_mm": 2400.0, **({} if count is None else {"count": count})}
+    job = None
+    with contextlib.suppress(TakeoffError):
+        job = job_from({"lift": {"picks": [pick]}, "vehicles": [vehicle], "transport": {"time_limit_s": 2.0}})
+    result = weigh_everything(folder / "list.csv", job) if job else None
+    if result is not None and result.loads is not None:
+        record = json.loads(records.to_json(result))
+        carried = [piece["name"] for load in record["vehicles"] for piece in load["pieces"]] + [left["name"] for left in record["not_loaded"]]
+        assert len(carried) == len(set(carried))
+
+
+@examples(80)
+@given(edits=st.lists(st.tuples(st.lists(st.integers(0, 40), min_size=1, max_size=6), st.recursive(
+    st.one_of(st.none(), st.booleans(), st.integers(), st.floats(), TEXT), lambda inner: st.lists(inner, max_size=2), max_leaves=3)), min_size=1, max_size=3),
+    cut=st.one_of(st.none(), st.none(), st.floats(0, 1)))
+def test_earlier_records(tmp_path_factory: pytest.TempPathFactory, edits: list[tuple[list[int], Any]], cut: float | None) -> None:
+    """An earlier run's record with values of any kind in it: compared, or refused."""
+    folder = tmp_path_factory.mktemp("fuzz")
+    path = folder / "list.csv"
+    path.write_text(SMALL_LIST)
+    result = pipeline.schedule([path], Job())
+    record = json.loads(records.to_json(result))
+    for way, value in edits:
+        place: Any = record
+        for number, step in enumerate(way):
+            keys = list(place) if isinstance(place, dict) else list(range(len(place))) if isinstance(place, list) else []
+            if not keys:
+                break
+            key = keys[step % len(keys)]
+            if number == len(way) - 1 or not isinstance(place[key], dict | list):
+                place[key] = value
+                break
+            place = place[key]
+    old = folder / "old.json"
+    text = json.dumps(record)
+    old.write_text(text if cut is None else text[: int(cut * len(text))])
+    with contextlib.suppress(TakeoffError):
+        changes = compare.compare(result, compare.read_earlier(old))
+        page = plainpage.Page(60)
+        changes.say(page, "si")
+        assert page.text()
+        json.loads(records.to_json(result, changes))
+
+
+# --- workbooks of every kind, damaged inside ---------------------------------------------------------------------------
+
+
+def _full_workbook(path: Path) -> dict[str, bytes]:
+    """The parts of a workbook as a spreadsheet program writes it: shared texts, styles, merged cells, a remark, formulas, a hidden row."""
+    import xlsxwriter
+
+    with xlsxwriter.Workbook(str(path)) as book:
+        sheet = book.add_worksheet("List")
+        struck, dated = book.add_format({"font_strikeout": True, "num_format": '0.00 "kg"'}), book.add_format({"num_format": "yyyy-mm-dd"})
+        sheet.write_row(0, 0, h.HEADINGS)
+        for number in range(1, 6):
+            sheet.write_row(number, 0, [f"M{number}", 2, "UB 203x133x25", "S355", 6000])
+        sheet.write_formula(3, 4, "=E3*2", None, 12000)
+        sheet.write_number(4, 1, 3, struck)
+        sheet.write_number(5, 5, 45000, dated)
+        sheet.write_comment(2, 0, "revised")
+        sheet.merge_range(7, 0, 8, 1, "end of list")
+        sheet.set_row(4, None, None, {"hidden": True})
+    with zipfile.ZipFile(path) as archive:
+        return {name: archive.read(name) for name in archive.namelist()}
+
+
+@examples(60)
+@given(part=st.integers(0, 30), edits=st.lists(st.tuples(st.floats(0, 1), st.one_of(
+    st.binary(min_size=1, max_size=3), st.sampled_from((b"", b"<", b">", b"/>", b'"', b"99999999", b"-1", b"A1", b"&#0;", b"&amp;", b"1e999", b"<c/>", b"</row>", b"t=\"s\"", b"xmlns=''")))),
+    min_size=1, max_size=3), drop=st.integers(0, 12))
+def test_workbooks_with_a_changed_part(tmp_path_factory: pytest.TempPathFactory, part: int, edits: list[tuple[float, bytes]], drop: int) -> None:
+    """Any part of a whole workbook with its XML changed, the packing sound; or a part left out."""
+    path = tmp_path_factory.mktemp("fuzz") / "list.xlsx"
+    parts = _full_workbook(path)
+    name = sorted(parts)[part % len(parts)]
+    for where, text in edits:
+        at = int(where * len(parts[name]))
+        parts[name] = parts[name][:at] + text + parts[name][at + len(text):]
+    with zipfile.ZipFile(path, "w", zipfile.ZIP_DEFLATED) as archive:
+        for other, data in parts.items():
+            if drop or other != name:
+                archive.writestr(other, data)
+    weigh_everything(path)
+
+
+@examples(40)
+@given(kind=st.sampled_from(("xls", "xlsb", "ods")), flips=st.lists(st.tuples(st.floats(0, 1), st.integers(0, 255)), max_size=4), cut=st.one_of(st.none(), st.none(), st.floats(0, 1)))
+def test_damaged_workbooks_of_other_kinds(tmp_path_factory: pytest.TempPathFactory, kind: str, flips: list[tuple[float, int]], cut: float | None) -> None:
+    """Bytes of an .xls, of the binary sheet of an .xlsb, of the XML of an .ods changed or cut off; unchanged, they are read right."""
+    path = tmp_path_factory.mktemp("fuzz") / f"list.{kind}"
+    data = bytearray(h.OLD_WORKBOOK.read_bytes() if kind == "xls" else h.binary_sheet() if kind == "xlsb" else h.open_table().encode())
+    for where, byte in flips:
+        data[min(int(where * len(data)), len(data) - 1)] = byte
+    data = data if cut is None else data[: int(cut * len(data))]
+    if kind == "xls":
+        path.write_bytes(data)
+    elif kind == "xlsb":
+        h.binary_workbook(path, bytes(data))
+    else:
+        h.open_document(path, data.decode("utf-8", "replace"))
+    result = weigh_everything(path)
+    if not flips and cut is None:
+        assert result is not None
+        assert result.account.weighed == 1
+        assert result.totals.mass_kg.nominal == pytest.approx(2 * 6 * 25.1)
 
 
 # --- what once failed ------------------------------------------------------------------------------------------------

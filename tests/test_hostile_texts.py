@@ -17,8 +17,8 @@ import pytest
 from takeoff import materials, pipeline, sections
 from takeoff.errors import InputError, TakeoffError
 from takeoff.job import job_from
-from takeoff.lists import captions, counts, rowwords
-from takeoff.lists.headings import read_heading
+from takeoff.lists import captions, cellformats, cellstyles, counts, ditto, plainpieces, rowwords
+from takeoff.lists.headings import read_heading, size_order
 from takeoff.quantities import length_mm, measure_readings, number_readings, temperature_C
 from takeoff.reports import records, terminal, workbook
 from takeoff.reports.page import to_page
@@ -45,7 +45,7 @@ def written(path: Path, text: str | bytes) -> Path:
     ((HEAD + BEAM + '"' + "A" * 20_000_000).encode(), r"a line of 20,000,001 characters"),
     ((HEAD + BEAM + "<!--" * 2_000_000).encode(), "a line of 8,000,000 characters"),
     ((HEAD + BEAM).encode("utf-16")[:-1], "no proper utf-16"), ((HEAD + BEAM).encode("cp037"), "no member list"),
-    (b"PK\x03\x04" + bytes(range(256)) * 4, "is no text file"),
+    (b"PK\x03\x04" + bytes(range(256)) * 4, "is no text file"), ((HEAD + BEAM).encode() + bytes(4096), "holds zero bytes"),
 ])
 def test_files_that_are_no_list(tmp_path: Path, data: bytes, says: str) -> None:
     """Zero bytes, absurd lines, half a character, another alphabet's bytes, another kind of file."""
@@ -59,6 +59,18 @@ def test_encodings(tmp_path: Path, encoding: str) -> None:
     result = pipeline.schedule([written(tmp_path / "list.csv", (HEAD + BEAM.replace("M1", "Mä1")).encode(encoding))])
     assert result.members["mark"].tolist() == ["Mä1"]
     assert result.totals.mass_kg.nominal == pytest.approx(BEAM_KG)
+
+
+def test_a_damaged_byte_does_not_spoil_the_letters_of_the_others(tmp_path: Path) -> None:
+    """A file of UTF-8 with one byte that is none: the rest reads as it was written, and the byte is said; another alphabet's is not UTF-8."""
+    german = "Pos.;Menge;Profil;Werkstoff;Länge (mm)\nTräger;2;UB 203x133x25;S355;6000\nBühne ½ ⌀;2;UB 203x133x25;S355;6000\n"
+    result = pipeline.schedule([written(tmp_path / "list.csv", german.encode() + b"M\xff2;2;UB 203x133x25;S355;6000\n")])
+    assert result.members["mark"].tolist() == ["Träger", "Bühne ½ ⌀", "M\ufffd2"]
+    assert result.account.weighed == 3
+    assert [f.message for f in result.findings if f.kind == "text-repaired"] == ["bytes of the file that are no UTF-8 (1) stand as \ufffd"]
+    other = pipeline.schedule([written(tmp_path / "list.csv", (HEAD + BEAM.replace("M1", "柱鉄骨")).encode("shift-jis"))])
+    assert [f.message for f in other.findings if f.kind == "text-repaired"] == ["the file is not UTF-8; it was read as Windows-1252"]
+    assert other.totals.mass_kg.nominal == pytest.approx(BEAM_KG)
 
 
 @pytest.mark.parametrize("odd", [
@@ -88,6 +100,9 @@ READERS: dict[str, Callable[[str], object]] = {
     "length": length_mm, "temperature": temperature_C, "contents": contents.read, "finish": lambda text: finishes.read(text, (5.0, 10.0)),
     "insulation": lambda text: insulation.read(text, (5.0, 10.0)), "holes": holes.read, "cut": cuts.read, "row words": rowwords.heard,
     "caption": lambda text: captions.read_caption(captions.Caption(), [text]), "warning": lambda text: captions.warns([text]),
+    "number format": lambda text: (cellformats.is_plain(text), cellformats.as_shown(5.5, text), cellformats.as_shown("a", text)),
+    "ditto": ditto.is_ditto, "order of sizes": size_order, "plain piece": lambda text: plainpieces.looks(text, text),
+    "shown text": lambda text: cellformats.as_text_shows(5.5, text), "comment": cellstyles.plain_text,
 }
 REPEATED = (
     "a", "1", " ", "-", ".", ",", "x", "1x", "1 ", "a ", "1,", "1.", "(", '"', "'", "<", "1/", "+", "1-", "a-", "ab ", "m ", "10 x ", "(a", "a)",

@@ -13,7 +13,8 @@ RANKS = {
     "errors": 0, "findings": 0, "progress": 0,
     "quantities": 1, "bounds": 1, "names": 1, "provenance": 1, "datafiles": 1,
     "job": 2, "jobwriter": 2, "materials": 2, "sections": 2,
-    "lists": 3, "weighing": 4, "bundles": 5, "thermal": 5, "lifting": 6, "transport": 7, "pipeline": 8, "reports": 9, "cli": 10,
+    "lists": 3, "weighing": 4, "bundles": 5, "thermal": 5, "lifting": 6, "transport": 7, "pipeline": 8, "reports": 9,
+    "cli": 10, "__main__": 11,
 }
 #: heavy packages -> the rooms that may use them (design: numpy from rank 2 up; pandas where members are columns)
 HEAVY = {

@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Annotated
 
 import typer
 
-from takeoff.cli import console, progress
+from takeoff.cli import console, interrupts, progress
 from takeoff.cli.options import JobOption, JsonOption, Lists, QuietOption, StrictOption, UnitsOption, with_units
 
 if TYPE_CHECKING:
@@ -50,7 +50,7 @@ def _write(target: Path, lines: list[JobLine], quiet: bool) -> None:
 
     existing = target.read_text(encoding="utf-8-sig") if target.is_file() else ""
     text, kept = with_lines(existing, lines)
-    write_all([(target, lambda path: _save(path, text))], replace=True)
+    write_all([(target, lambda path: _save(path, text))], replace=True, settled=interrupts.settled)
     if not quiet:
         already = f" ({', '.join(kept)} stood there and were kept)" if kept else ""
         console.out(f"Written: {target}, {len(lines) - len(kept)} lines added{already}. Look them over before relying on them.")

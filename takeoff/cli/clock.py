@@ -35,12 +35,17 @@ def within(seconds: float) -> Iterator[None]:
     def stop(_number: int, _frame: FrameType | None) -> None:
         raise TimeUp
 
-    before = signal.signal(signal.SIGALRM, stop)
-    signal.setitimer(signal.ITIMER_REAL, seconds)
+    before = signal.getsignal(signal.SIGALRM)
     try:
-        yield
+        try:
+            signal.signal(signal.SIGALRM, stop)
+            # Again every second: an exception that comes up in a clean-up of the interpreter is lost.
+            signal.setitimer(signal.ITIMER_REAL, seconds, 1.0)
+            yield
+        finally:
+            signal.setitimer(signal.ITIMER_REAL, 0)
     except TimeUp:
+        signal.setitimer(signal.ITIMER_REAL, 0)
         raise message(seconds) from None
     finally:
-        signal.setitimer(signal.ITIMER_REAL, 0)
         signal.signal(signal.SIGALRM, before)

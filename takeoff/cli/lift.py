@@ -4,19 +4,9 @@ from __future__ import annotations
 
 import typer
 
-from takeoff.cli import console, progress
-from takeoff.cli.options import (
-    JobOption,
-    JsonOption,
-    OneList,
-    PageOption,
-    QuietOption,
-    ReplaceOption,
-    StrictOption,
-    UnitsOption,
-    with_units,
-)
-from takeoff.cli.pages import check_page, write_page
+from takeoff.cli import console
+from takeoff.cli.options import JobOption, JsonOption, OneList, PageOption, QuietOption, ReplaceOption, StrictOption, UnitsOption
+from takeoff.cli.pages import weighed_for_page, write_page
 from takeoff.errors import InputError
 
 
@@ -35,15 +25,11 @@ def lift(
 
     Example: takeoff lift cutting_list.xlsx --pick MS1
     """
-    from takeoff import pipeline
-    from takeoff.job import find_job
     from takeoff.lifting.hook import CAUTIONS
     from takeoff.reports import terminal
 
-    the_job = with_units(find_job([member_list], job), units)
-    check_page(page, [member_list], the_job, replace=replace)
-    with progress.shown(quiet, the_job):
-        result = pipeline.schedule([member_list], the_job, strict=strict)
+    result = weighed_for_page(member_list, job, page, units=units, replace=replace, strict=strict, quiet=quiet)
+    asked = result.job.job
     picks = [p for p in result.picks if pick is None or p.name == pick]
     if not picks:
         names = ", ".join(p.name for p in result.picks)
@@ -55,6 +41,6 @@ def lift(
     if json:
         console.out_json({"picks": [p.as_record() for p in picks], "cautions": list(CAUTIONS)})
     elif not quiet:
-        console.out(terminal.pick_sheet(picks, console.width(), units=the_job.job.units, cautions=CAUTIONS, title=the_job.job.title))
+        console.out(terminal.pick_sheet(picks, console.width(), units=asked.units, cautions=CAUTIONS, title=asked.title))
     if any(p.not_weighed for p in picks) or (strict and any(p.verdict != "within" for p in picks)):
         raise typer.Exit(3)

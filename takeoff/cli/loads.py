@@ -4,19 +4,9 @@ from __future__ import annotations
 
 import typer
 
-from takeoff.cli import console, progress
-from takeoff.cli.options import (
-    JobOption,
-    JsonOption,
-    OneList,
-    PageOption,
-    QuietOption,
-    ReplaceOption,
-    StrictOption,
-    UnitsOption,
-    with_units,
-)
-from takeoff.cli.pages import check_page, write_page
+from takeoff.cli import console
+from takeoff.cli.options import JobOption, JsonOption, OneList, PageOption, QuietOption, ReplaceOption, StrictOption, UnitsOption
+from takeoff.cli.pages import weighed_for_page, write_page
 
 
 def loads(
@@ -31,25 +21,23 @@ def loads(
 ) -> None:
     """Print the vehicle loads: fewest vehicles, places on the deck, axle loads, lashings, over-size.
 
-    The vehicles stand in the job file, one [[vehicles]] a kind. Example: takeoff loads cutting_list.xlsx --json
+    The vehicles stand in the job file, one [[vehicles]] a kind.
+
+    Example: takeoff loads cutting_list.xlsx --page loads.html
     """
-    from takeoff import pipeline
-    from takeoff.job import find_job
     from takeoff.reports import loadsheet
     from takeoff.transport import CAUTIONS
     from takeoff.transport.vehicles import vehicles_of
 
-    the_job = with_units(find_job([member_list], job), units)
-    vehicles_of(the_job)
-    check_page(page, [member_list], the_job, replace=replace)
-    with progress.shown(quiet, the_job):
-        result = pipeline.schedule([member_list], the_job, strict=strict)
-    plan = result.loads
+    result = weighed_for_page(
+        member_list, job, page, units=units, replace=replace, strict=strict, quiet=quiet, needs=vehicles_of
+    )
+    plan, asked = result.loads, result.job.job
     assert plan is not None
     write_page(page, result, [member_list], ("loads",), replace=replace, quiet=quiet)
     if json:
         console.out_json(plan.as_record(CAUTIONS))
     elif not quiet:
-        console.out(loadsheet.load_sheet(plan, console.width(), units=the_job.job.units, cautions=CAUTIONS, title=the_job.job.title))
+        console.out(loadsheet.load_sheet(plan, console.width(), units=asked.units, cautions=CAUTIONS, title=asked.title))
     if plan.not_loaded:
         raise typer.Exit(3)

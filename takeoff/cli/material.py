@@ -47,25 +47,27 @@ class Answer:
 def material(
     names: Annotated[
         list[str] | None,
-        typer.Argument(metavar="[NAME]...", help="Materials: designations, trade words, in several languages."),
+        typer.Argument(metavar="NAME", help="Materials: designations, trade words, in several languages."),
     ] = None,
     at: Annotated[
         list[str] | None, typer.Option(metavar="TEMP", help="A temperature: 60, 60C, 140F or 77K. May be repeated.")
     ] = None,
     law: Annotated[
-        str | None, typer.Option(help="One published curve alone, by name, in place of the material's own law.")
+        str | None, typer.Option(metavar="CURVE", help="One published curve alone, by name, in place of the material's own law.")
     ] = None,
     moisture: Annotated[
         float | None, typer.Option(metavar="PCT", help="Wood's moisture, percent of the oven-dry mass, 0 to 200.")
     ] = None,
-    family: Annotated[str | None, typer.Option(help="List the materials of a family.")] = None,
+    family: Annotated[str | None, typer.Option(metavar="NAME", help="List the materials of a family.")] = None,
     json: JsonOption = False,
     units: UnitsOption = None,
     quiet: QuietOption = False,
 ) -> None:
     """Look up materials: density with its spread, expansion, both at a temperature, and where the figures come from.
 
-    Examples: takeoff material 1.4301 --at -196C --at 400C; takeoff material oak Eiche "chêne" --moisture 25
+    Example: takeoff material 1.4301 --at -196C --at 400C
+
+    Example: takeoff material oak Eiche "chêne" --moisture 25
     """
     temperatures = _temperatures(at or [])
     us = units == "us"

@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Annotated, Any
 import typer
 
 from takeoff.cli import console
-from takeoff.cli.options import JsonOption, QuietOption, UnitsOption
+from takeoff.cli.options import JsonOption, PageOption, QuietOption, ReplaceOption, UnitsOption
 from takeoff.quantities import length_mm, temperature_C
 
 if TYPE_CHECKING:
@@ -16,8 +16,8 @@ if TYPE_CHECKING:
 
 
 def movement(
-    material: Annotated[str, typer.Argument(help="A material: a designation or a trade word.")],
-    length: Annotated[str, typer.Argument(help="A length: 6000, '60 m', \"40 ft\". Bare numbers are mm.")],
+    material: Annotated[str, typer.Argument(metavar="MATERIAL", help="A material: a designation or a trade word.")],
+    length: Annotated[str, typer.Argument(metavar="LENGTH", help="A length: 6000, '60 m', \"40 ft\". Bare numbers are mm.")],
     from_: Annotated[str, typer.Option("--from", metavar="TEMP", help="The metal's first temperature: -20, -20C, 5F.")],
     to: Annotated[str, typer.Option(metavar="TEMP", help="Its second temperature. Growth counts positive.")],
     length_at: Annotated[str, typer.Option(metavar="TEMP", help="The temperature at which LENGTH is true.")] = "20C",
@@ -25,17 +25,23 @@ def movement(
     gap_min: Annotated[str | None, typer.Option(metavar="MM", help="The least the gap may close to; else it just closes.")] = None,
     gap_max: Annotated[str | None, typer.Option(metavar="MM", help="The most the gap may open to.")] = None,
     against: Annotated[str | None, typer.Option(metavar="MATERIAL", help="The same length of another material beside it.")] = None,
-    law: Annotated[str | None, typer.Option(help="One published curve alone, by name, in place of the material's own law.")] = None,
+    law: Annotated[
+        str | None, typer.Option(metavar="CURVE", help="One published curve alone, by name, in place of the material's own law.")
+    ] = None,
+    page: PageOption = None,
+    replace: ReplaceOption = False,
     units: UnitsOption = None,
     json: JsonOption = False,
     quiet: QuietOption = False,
 ) -> None:
     """Movement of a length between two temperatures of the metal, alone or against another, and the gap to set.
 
-    Example: takeoff movement S355 "60 m" --from -20 --to 45 --set-at 5 --gap-min 5
+    Example: takeoff movement S355 "60 m" --from -20 --to 45 --set-at 5
     """
+    from takeoff.cli.pages import check_output, write_text
     from takeoff.thermal import movement as thermal
 
+    check_output(page, [], replace=replace)
     size = length_mm(length)
     range_C = [temperature_C(text) for text in (from_, to, length_at)]
     setting = None if set_at is None else temperature_C(set_at)
@@ -45,6 +51,10 @@ def movement(
         ours, size, range_C[0], range_C[1], length_at_C=range_C[2], set_at_C=setting, gap_min_mm=gaps[0], gap_max_mm=gaps[1],
         against=theirs, law=law,
     )
+    if page is not None:
+        from takeoff.reports.page.single import movement_page
+
+        write_text(page, movement_page(found, units or "si"), [], replace=replace, quiet=quiet)
     if json:
         console.out_json(_record(found))
     elif not quiet:

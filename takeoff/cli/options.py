@@ -12,16 +12,27 @@ if TYPE_CHECKING:
 
 Units = Literal["si", "us"]
 
-Lists = Annotated[list[Path], typer.Argument(metavar="LIST...", help="Member lists: .xlsx or .csv files.")]
-OneList = Annotated[Path, typer.Argument(metavar="LIST", help="A member list: an .xlsx or .csv file.")]
-JobOption = Annotated[Path | None, typer.Option(help="The job file; else the job.toml beside the list, if there is one.")]
-UnitsOption = Annotated[Units | None, typer.Option(help="Units for print: si or us. JSON is always SI.")]
-QuietOption = Annotated[bool, typer.Option("--quiet", help="Print nothing that was not asked for.")]
+# readable=False: that a file cannot be read is said by who reads it, in the same words as every other fault of a file.
+Lists = Annotated[
+    list[Path], typer.Argument(metavar="LIST", readable=False, help="Member lists: workbooks (.xlsx, .ods ...) or text tables (.csv ...).")
+]
+OneList = Annotated[
+    Path, typer.Argument(metavar="LIST", readable=False, help="A member list: a workbook (.xlsx, .ods ...) or a text table (.csv ...).")
+]
+JobOption = Annotated[
+    Path | None, typer.Option(metavar="FILE", readable=False, help="The job file; else the job.toml beside the list, if there is one.")
+]
+UnitsOption = Annotated[
+    Units | None, typer.Option(metavar="si|us", help="Units for print: kg and mm, or lb, inches and feet. JSON is always SI.")
+]
+QuietOption = Annotated[bool, typer.Option("--quiet", help="Print no report and no progress; errors still.")]
 StrictOption = Annotated[bool, typer.Option("--strict", help="Refuse similar names instead of assuming them.")]
 JsonOption = Annotated[bool, typer.Option("--json", help="Print JSON alone, SI units.")]
-PageOption = Annotated[Path | None, typer.Option(help="Write the page to this file: one .html that opens in any browser.")]
+PageOption = Annotated[Path | None, typer.Option(metavar="FILE", help="Write the page to this file: one .html that opens in any browser.")]
 ReplaceOption = Annotated[bool, typer.Option("--replace", help="Replace outputs that exist already.")]
-MaterialOption = Annotated[str | None, typer.Option(help="The material; else carbon steel, where the section is of a steel standard.")]
+MaterialOption = Annotated[
+    str | None, typer.Option(metavar="MATERIAL", help="The material; else carbon steel, where the section is of a steel standard.")
+]
 
 
 def with_units(job: Job, units: Units | None) -> Job:

@@ -7,18 +7,19 @@ from typing import Annotated
 
 import typer
 
-from takeoff.cli import console, progress
+from takeoff.cli import console, interrupts, progress
 from takeoff.cli.options import JobOption, Lists, PageOption, QuietOption, ReplaceOption, StrictOption, UnitsOption, with_units
 from takeoff.cli.pages import inputs_of, save_text
+from takeoff.errors import OutputError
 
 
 def schedule(
     lists: Lists,
     job: JobOption = None,
-    out: Annotated[Path | None, typer.Option(help="The workbook to write; else NAME.schedule.xlsx beside the list.")] = None,
+    out: Annotated[Path | None, typer.Option(metavar="FILE", help="The workbook to write; else LIST.schedule.xlsx beside it.")] = None,
     page: PageOption = None,
-    json: Annotated[str | None, typer.Option(help="Write the machine-readable record to this file, or - for standard output.")] = None,
-    csv: Annotated[Path | None, typer.Option(help="Write one line a member to this file.")] = None,
+    json: Annotated[str | None, typer.Option(metavar="FILE", help="Write every figure to this file, for programs (- prints it).")] = None,
+    csv: Annotated[Path | None, typer.Option(metavar="FILE", help="Write a text table, one line a member.")] = None,
     units: UnitsOption = None,
     against: Annotated[
         Path | None, typer.Option(metavar="OLD.json", help="An earlier run's --json: say what changed, and by how much.")
@@ -29,7 +30,7 @@ def schedule(
 ) -> None:
     """Weigh member lists and write the weight schedule.
 
-    Example: takeoff schedule cutting_list.xlsx --page cutting_list.html --json cutting_list.json
+    Example: takeoff schedule list.xlsx --page list.html
     """
     from takeoff import pipeline
     from takeoff.job import find_job
@@ -44,6 +45,8 @@ def schedule(
     readable = [path for path in lists if path.is_file()]
     if len(readable) == len(lists):
         files.check_outputs(named, inputs=inputs, replace=replace)
+        if target.suffix.lower() != ".xlsx":
+            raise OutputError("is no name for a workbook: no program would open it", file=target, right="a name that ends in .xlsx")
     earlier = compare.read_earlier(against) if against else None
     with progress.shown(quiet, the_job):
         result = pipeline.schedule(lists, with_units(the_job, units), strict=strict)
@@ -58,7 +61,7 @@ def schedule(
             outputs.append((Path(json), lambda path: records.write_json(path, result, changes)))
         if csv:
             outputs.append((csv, lambda path: save_text(path, records.to_csv(result))))
-        files.write_all(outputs, inputs=inputs, replace=replace)
+        files.write_all(outputs, inputs=inputs, replace=replace, settled=interrupts.settled)
     if to_stream:
         console.out(record)
     say = console.err if to_stream else console.out

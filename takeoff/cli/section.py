@@ -14,7 +14,7 @@ if TYPE_CHECKING:
     from takeoff.bounds import Bounds
     from takeoff.sections import Section, SectionMatch
 
-Names = Annotated[list[str] | None, typer.Argument(metavar="[NAME]...", help="Sections, such as 'UB 457x191x67', or a family, such as UB.")]
+Names = Annotated[list[str] | None, typer.Argument(metavar="NAME", help="Sections, such as 'UB 457x191x67', or a family, such as UB.")]
 #: What a section of a steel standard is made of where nobody says: the name the materials table gives to it. Kept here so
 #: that a plain look-up need not load that table; a test holds the two together.
 USUAL_STEEL = "Structural carbon steel (design value)"
@@ -50,7 +50,11 @@ def section(
 ) -> None:
     """Look up sections: sizes, area, surface, kg/m with its bounds, and where the figures come from.
 
-    Examples: takeoff section "UB 457x191x67"; takeoff section "SHS 100x5" "RHS 100x50x5" --material 1.4401; takeoff section HEB
+    Example: takeoff section "UB 457x191x67"
+
+    Example: takeoff section "SHS 100x5" "RHS 100x50x5" --material 1.4401
+
+    Example: takeoff section HEB
     """
     from takeoff import sections
 
@@ -191,8 +195,9 @@ def _record(match: SectionMatch, material: Stuff | None) -> dict[str, Any]:
 def _families() -> str:
     from takeoff import sections
 
-    lines = ["Section families (takeoff section CODE lists the sizes)", ""]
-    lines += [f"  {code:<6} {what}" for code, what in sections.all_families().items()]
+    lines = [*textwrap.wrap("Section families (takeoff section CODE lists the sizes)", console.width()), ""]
+    for code, what in sections.all_families().items():
+        lines += textwrap.wrap(what, console.width(), initial_indent=f"  {code:<6} ", subsequent_indent=" " * 9)
     return "\n".join(lines)
 
 
@@ -228,7 +233,8 @@ def _sizes(found: Section, us: bool) -> str:
 
 
 def _refusal(match: SectionMatch) -> str:
-    lines = [f"{match.query}: {match.match}. {match.reason}."] if match.reason else [f"{match.query}: {match.match}."]
+    said = f"{match.query}: {match.match}. {match.reason}." if match.reason else f"{match.query}: {match.match}."
+    lines = textwrap.wrap(said, min(console.width(), 100))
     if match.candidates:
         lines += ["Perhaps:", *(f"  {c.designation}" for c in match.candidates)]
     return "\n".join(lines)
@@ -385,7 +391,8 @@ def _comparison(answers: list[tuple[SectionMatch, Stuff | None]], us: bool) -> s
             continue
         masses = _masses(found, material)
         if narrow:
-            lines += [found.designation, f"  {_figures(masses, us)}" if masses is not None else "  no kg/m without a material"]
+            said = _figures(masses, us) if masses is not None else "no kg/m without a material"
+            lines += [found.designation, *textwrap.wrap(said, console.width(), initial_indent="  ", subsequent_indent="  ")]
             continue
         if masses is None:
             three = [f"{rounding.NO_FIGURE:>9}"] * 3
@@ -399,5 +406,5 @@ def _comparison(answers: list[tuple[SectionMatch, Stuff | None]], us: bool) -> s
         lines.append(f"{found.designation:<24}{''.join(three)} {'':<6}{area:>11}{surface:>9}")
     named = {material.name for match, material in answers if material is not None and match.section is not None}
     if named:
-        lines += ["", "in " + ", ".join(sorted(named))]
+        lines += ["", *textwrap.wrap("in " + ", ".join(sorted(named)), console.width())]
     return "\n".join([*lines, "", *textwrap.wrap(CAUTION, min(console.width(), 100))])

@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
+import contextlib
 from pathlib import Path
 from typing import Annotated
 
 import typer
 
-from takeoff.cli import console
+from takeoff.cli import console, interrupts
 from takeoff.cli.options import QuietOption, UnitsOption
 from takeoff.errors import OutputError
 
@@ -17,7 +18,7 @@ def start(
     units: UnitsOption = None,
     quiet: QuietOption = False,
 ) -> None:
-    """Write an empty member list with drop-downs, a commented job.toml and a how-to. Nothing that exists is replaced.
+    """Write an empty member list with drop-downs, a commented job.toml and instructions. Nothing that exists is replaced.
 
     Example: takeoff start footbridge
     """
@@ -31,15 +32,16 @@ def start(
             raise OutputError(f"cannot be made ({error.strerror or error})", file=folder, right="a folder in one that exists") from error
     elif not folder.is_dir():
         raise OutputError("is a file", file=folder, right="the name of a folder")
-    outputs = starter.outputs(folder, units or "si")
-    for path, _ in outputs:
-        if Path(path).exists():
-            raise OutputError("exists already and is kept; nothing was written", file=path, right="a new folder, or one without it")
     try:
-        written = files.write_all(outputs)
+        outputs = starter.outputs(folder, units or "si")
+        for path, _ in outputs:
+            if Path(path).exists():
+                raise OutputError("exists already and is kept; nothing was written", file=path, right="a new folder, or one without it")
+        written = files.write_all(outputs, settled=interrupts.settled)
     except BaseException:
         if made:
-            folder.rmdir()
+            with contextlib.suppress(OSError):
+                folder.rmdir()
         raise
     if not quiet:
         console.out("\n".join(f"Written: {folder / path.name}" for path in written))
