@@ -65,7 +65,7 @@ def test_what_changed_is_named(tmp_path: Path) -> None:
     found = against(old, new, tmp_path)
     assert kinds(found) == [
         ("changed", "A", "section UB 1 → UB 2"),
-        ("changed", "B", "length 6000 → 6100"),
+        ("changed", "B", "length 6000 → 6100 mm"),
         ("changed", "C", "assembly A1 → A9"),
         ("changed", "D", "state weighed → not weighed"),
         ("changed", "E", "mass alone (another basis or setting)"),
@@ -73,6 +73,47 @@ def test_what_changed_is_named(tmp_path: Path) -> None:
     assert [c.unknown for c in found.changes] == [False, False, False, True, False]
     assert found.changes[3].kg[2] == pytest.approx(-104)
     assert "count as nothing" in found.sentence("si")
+
+
+def test_a_new_mark_on_the_same_piece_is_a_change_of_mark(tmp_path: Path) -> None:
+    """B2 gone and BX2 come, alike in all but the mark: one row changed, by nothing; a piece that differs stays added and removed."""
+    old = [row("B1"), row("B2", quantity=3, row=6), row("B3", length_mm=900.0, row=7)]
+    new = [row("B1"), row("BX2", quantity=3, row=6), row("B4", length_mm=901.0, row=7)]
+    found = against(old, new, tmp_path)
+    assert kinds(found) == [("added", "B4", "1 x UB 1, 901 mm"), ("removed", "B3", "1 x UB 1, 900 mm"), ("changed", "BX2", "mark B2 → BX2")]
+    assert found.changes[2].kg == (0.0, 0.0, 0.0)
+
+
+def test_what_is_said_is_in_the_units_of_print(tmp_path: Path) -> None:
+    """A length that changed is told with its unit: mm, or feet and inches; the JSON keeps mm. A material is told as it was typed."""
+    old, new = [row("B1", length_mm=3048.0)], [row("B1", length_mm=6096.0, material_text="S275", material_id=-1)]
+    [change] = against(old, new, tmp_path).changes
+    assert change.said("si") == "material steel → S275; length 3048 → 6096 mm"
+    assert change.said("us") == "material steel → S275; length 10'-0\" → 20'-0\""
+    assert change.as_record()["what"] == change.said("si")
+
+
+def test_picks_and_vehicles_that_changed_are_told(tmp_path: Path) -> None:
+    """Hook loads, verdicts, payloads, vehicles come and gone, and pieces left behind, on terminal, sheet and page alike."""
+    path = tmp_path / "old.json"
+    record = json.loads(to_json(make([row("B1")], {})))
+    pick = record["picks"][0]
+    record["picks"] = [pick | {"hook_load_kg": 1.0, "verdict": "within"}, pick | {"name": "Z9"}]
+    record["vehicles"] = [{"name": "Lorry 1", "payload_kg": 500.0}]
+    path.write_text(json.dumps(record), encoding="utf-8")
+    found = compare(make([row("B1")], {}), read_earlier(path))
+    notes = " ".join(found.notes("si"))
+    name = pick["name"]
+    for part in (f"Pick {name}: hook load", "Pick Z9 is gone", f"Pick {name}: verdict within before, unknown now.",
+                 "Vehicle Lorry 1 is gone: it carried 500"):
+        assert part in notes.replace("\u00a0", " "), notes
+    assert found.as_record()["vehicles"] == [{"name": "Lorry 1", "payload_before_kg": 500.0, "payload_kg": None}]
+    page = to_page(make([row("B1")], {}), changes=found)
+    write_workbook(make([row("B1")], {}), tmp_path / "w.xlsx", found)
+    cells = [str(c.value) for r in openpyxl.load_workbook(tmp_path / "w.xlsx")["Changes"].iter_rows() for c in r if c.value]
+    for note in found.notes("si"):
+        assert note in page
+        assert note in cells
 
 
 def test_rows_of_one_mark_are_matched_by_what_they_hold_first(tmp_path: Path) -> None:

@@ -10,10 +10,16 @@ from subprocess import CompletedProcess
 
 import pytest
 from conftest import ROOT, SAMPLES
+from typer.testing import CliRunner
 
+from takeoff import cli
+from takeoff.cli import app
 from takeoff.findings import KINDS
 from takeoff.lists.headings import FIELDS
+from takeoff.reports.workbook import sheet
+from takeoff.reports.workbook.temperatures import TEMPERATURES
 
+COMMANDS = ("schedule", "check", "material", "section", "weigh", "movement", "fit", "lift", "loads", "start")
 Run = Callable[..., "CompletedProcess[str]"]
 README = (ROOT / "README.md").read_text(encoding="utf-8")
 DEVELOPERS = (ROOT / "DEVELOPERS.md").read_text(encoding="utf-8")
@@ -34,20 +40,55 @@ def test_the_excerpt_is_what_the_command_prints(run: Run, tmp_path: Path) -> Non
     assert done.stdout.startswith(excerpt), done.stdout
 
 
-@pytest.mark.parametrize("command", ["schedule", "check", "material", "section", "weigh", "movement", "fit", "lift", "loads", "start"])
-def test_every_command_is_documented_and_has_help(run: Run, command: str) -> None:
-    """Each command stands in the README, and its help gives an example."""
+@pytest.mark.parametrize("command", COMMANDS)
+def test_every_command_is_documented_and_has_help(command: str) -> None:
+    """Each command stands in the README; its help gives a whole example of a line, and names no type of the program's own."""
     assert f"takeoff {command}" in README
-    done = run(command, "--help")
-    assert done.returncode == 0
-    assert "Example" in done.stdout
+    text = help_of(command)
+    assert re.search(rf"^  Example: takeoff {command} \S", text, re.MULTILINE)
+    assert not re.search(r"<\w", text)
+    assert not re.search(r"\w-\n", text)
+    assert max(map(len, text.splitlines())) <= 80
 
 
-def test_the_help_names_every_command(run: Run) -> None:
-    """`takeoff --help` lists the commands, and no argument at all shows the same."""
-    help_text = run("--help").stdout
-    for command in ("schedule", "check", "material", "section", "weigh", "movement", "fit", "lift", "loads", "start"):
-        assert re.search(rf"^\s*{command}\b", help_text, re.MULTILINE)
+def help_of(*command: str) -> str:
+    done = CliRunner().invoke(app, [*command, "--help"], env={"COLUMNS": "80"})
+    assert done.exit_code == 0, done.output
+    return done.stdout
+
+
+def test_the_help_names_every_command() -> None:
+    """`takeoff --help` lists the commands, each in one whole line, and shows where to begin."""
+    text = help_of()
+    for command in COMMANDS:
+        assert re.search(rf"^  {command} .*\.$", text, re.MULTILINE)
+    assert "..." not in text.split("Commands:")[1]
+    assert "Example: takeoff schedule" in text
+
+
+def test_every_option_the_readme_names_is_real() -> None:
+    """An option in a command line is one of that command; one in the running text is one of some command."""
+    known = {command: set(re.findall(r"--[a-z][a-z-]+", help_of(command))) for command in COMMANDS}
+    for command, rest in re.findall(r"takeoff (\w+)([^\n`|]*)", README):
+        if command in known:
+            assert set(re.findall(r"(?<!\w)--[a-z][a-z-]+", rest.split(" # ")[0])) <= known[command], (command, rest)
+    named = set(re.findall(r"(?<![\w-])--[a-z][a-z-]+", README))
+    assert named <= {"--version"}.union(*known.values())
+    left_out = known["schedule"] - named - {"--help"}
+    assert not left_out, f"options of schedule that the README does not name: {left_out}"
+
+
+def test_every_exit_status_is_documented() -> None:
+    """The README's table of statuses is the one of the command line's own account."""
+    said = set(re.findall(r"^\| (\d+) \|", README, re.MULTILINE))
+    meant = set(re.findall(r"(?:Exit status: |; )(\d+) ", (cli.__doc__ or "").replace("\n", " ")))
+    assert said == meant == {"0", "1", "2", "3", "4", "130"}
+
+
+def test_every_sheet_of_the_workbook_is_named() -> None:
+    """Each sheet that a workbook may have stands in the README."""
+    for name in (*sheet.SHEETS, sheet.LOADS, sheet.CHANGES, sheet.DRAWINGS, TEMPERATURES):
+        assert f"**{name}**" in README, name
 
 
 def test_the_guide_names_only_files_that_exist() -> None:

@@ -138,7 +138,7 @@ def test_csv_has_a_line_a_member_with_units_in_the_headings() -> None:
     ("=1+1", "'=1+1"), ("@x", "'@x"), ("-2+3", "'-2+3"), ("+1", "+1"), ("-2", "-2"), ("-2,5", '"-2,5"'),
     ("+cmd|' /C calc'!A0", "'+cmd|' /C calc'!A0"),
     ("\tx", "'\tx"), ("\rx", '"\'\rx"'), ("\nx", '"\'\nx"'), ("＝1", "'＝1"), ("B1", "B1"), ('12" pipe', '"12"" pipe"'), ("a,b", '"a,b"'),
-    ("-", "'-"), ("--", "'--"), ("a=b", "a=b"), ("", ""),
+    ("-", "'-"), ("--", "'--"), ("a=b", "a=b"), ("", ""), ("\0=1+1", "'=1+1"), ("\0\0-1+1", "'-1+1"),
 ])
 def test_csv_cells_are_defused(text: str, cell: str) -> None:
     """What a spreadsheet program could act on gets an apostrophe, plain numbers do not."""

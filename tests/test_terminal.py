@@ -2,19 +2,27 @@
 
 from __future__ import annotations
 
+import json
 import unicodedata
 
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 from made_result import SOME_ROWS, make, row
+from typer.testing import CliRunner
 
+from takeoff.cli import app
 from takeoff.findings import Finding
 from takeoff.pipeline import Result
 from takeoff.reports.terminal import pick_sheet, summary
 from takeoff.reports.wording import shown
 
 JOB = {"job": {"title": "Weir", "reference": "R-1", "revision": "B", "date": "2026-02-03"}}
+
+
+def printed(*words: str, width: str = "80") -> str:
+    """What a command prints on a terminal of this width."""
+    return CliRunner().invoke(app, list(words), env={"COLUMNS": width}).stdout
 
 
 def everything(width: int, result: Result | None = None) -> str:
@@ -105,3 +113,26 @@ def test_shown_text_is_one_printable_line(text: str) -> None:
     """Whatever a cell holds, what is shown is one line without control or format signs."""
     line = shown(text)
     assert not [c for c in line if not (c.isprintable() or unicodedata.category(c) == "Zs")]
+
+
+@pytest.mark.parametrize("width", ["40", "80"])
+def test_a_weighed_piece_says_what_is_not_in_its_mass(width: str) -> None:
+    """A look-up weighs the bare piece: the table says so, and what is left out is named, in any width and in the JSON."""
+    words = ("weigh", "PL 10x200", "1.2 m", "--material", "S355")
+    text = " ".join(printed(*words, width=width).split())
+    assert "Bare mass, kg" in text
+    assert "Not counted: welds, bolts, finish, insulation, contents, water soaked up, temporary steel and rigging." in text
+    record = json.loads(printed(*words, "--json"))
+    assert record["not_counted"][:4] == ["welds", "bolts", "finish", "insulation"]
+
+
+@pytest.mark.parametrize("words", [
+    ("section",), ("section", "HEB"), ("section", "UB 1x2x3"), ("section", "SHS 100x5", "RHS 100x50x5", "PL 10"), ("material",),
+    ("material", "oak", "steel"), ("weigh", "UB 203x133x25", "3 m"), ("fit", "S355", "99.9", "S355", "100", "--clearance", "0.1"),
+    ("movement", "oak", "6 m", "--from", "-20", "--to", "45", "--against", "S355"),
+])
+def test_look_ups_fit_a_narrow_terminal(words: tuple[str, ...]) -> None:
+    """No line of a look-up is wider than a terminal of 40 columns."""
+    lines = printed(*words, width="40").splitlines()
+    assert lines
+    assert [line for line in lines if len(line) > 40] == []

@@ -9,7 +9,9 @@ from pathlib import Path
 import openpyxl
 import pytest
 import whole_job
+from conftest import ROOT
 from made_result import SOME_ROWS, make, row
+from openpyxl.worksheet.worksheet import Worksheet
 from test_workbook import assert_recalculates, cells, sheet_of
 
 from takeoff import pipeline
@@ -116,3 +118,38 @@ def test_links_to_the_list_go_from_where_the_schedule_lies(tmp_path: Path) -> No
     with Book(tmp_path / "out" / "x.xlsx", make(), many=False) as book:
         assert input_link(book, tmp_path / "in" / "a#b.xlsx", "Bob's list", 14) == "../in/a%23b.xlsx#'Bob''s list'!A14"
         assert input_link(book, tmp_path / "out" / "l.csv", None, 3) == "l.csv"
+
+
+#: what a printed point of type is of 10 on screen at the least, and the printable width of the page in inches
+LEGIBLE, PRINTABLE_IN = 0.64, 11.69 - 1.0
+
+
+@pytest.mark.parametrize("sample", ["weir_footbridge/cutting_list.xlsx", "plant_skid/stueckliste.csv", "stage_set/cut_list.csv", None])
+def test_every_sheet_prints_legibly(sample: str | None, tmp_path: Path) -> None:
+    """Fitted to the page's width, the columns that print keep type of 6.4 points or more; on screen no column is lost."""
+    result = pipeline.schedule([ROOT / "sample_projects" / sample if sample else whole_job.write(tmp_path)])
+    path = tmp_path / "w.xlsx"
+    write_workbook(result, path)
+    for sheet in openpyxl.load_workbook(path):
+        area = str(sheet.print_area).rsplit("!", 1)[-1].replace("$", "") if sheet.print_area else sheet.dimensions
+        last = openpyxl.utils.cell.range_boundaries(area)[2]
+        # The file counts a column's margin in its width.
+        inches = sum(7 * width for column, width in widths_of(sheet).items() if column <= last) / 96
+        assert PRINTABLE_IN / inches >= LEGIBLE, (sheet.title, inches)
+    headings = [c.value for c in sheet_of(path, "Weight schedule")[6]]
+    assert {"Handling", "What to know", "Place in the list", "State"} <= set(headings)
+    assert headings.index("What to know") < headings.index("Handling")
+
+
+def test_wide_figures_have_room(tmp_path: Path) -> None:
+    """A mass of millions of kg is never shown as a row of hashes: its column is as wide as its figures."""
+    result = make([row("B1", each=(123_456_789.0, 123_456_789.0, 123_456_789.0))])
+    write_workbook(result, tmp_path / "w.xlsx")
+    sheet = sheet_of(tmp_path / "w.xlsx", "Weight schedule")
+    at = next(c.column for c in sheet[6] if str(c.value).startswith("All pieces, heavy"))
+    assert widths_of(sheet)[at] >= len("123,456,789.0") + 2
+
+
+def widths_of(sheet: Worksheet) -> dict[int, float]:
+    """The width of every column: neighbours of one width stand in the file as one entry."""
+    return {number: d.width for d in sheet.column_dimensions.values() for number in range(d.min, d.max + 1)}

@@ -2,7 +2,8 @@
 
 A row of the new list is the same as one of the old where mark and assembly agree; a row without a mark where what it
 describes agrees. Several rows of one mark are matched by what they hold first, then in order. A mark that stands once in
-each run is followed to another assembly. What is matched so is compared field by field.
+each run is followed to another assembly; what is left and alike in all but the mark has a new mark. What is matched so is
+compared field by field. Picks and vehicles are compared by their names.
 """
 
 from __future__ import annotations
@@ -17,6 +18,7 @@ from functools import lru_cache
 from pathlib import Path
 from typing import TYPE_CHECKING, Any, Literal
 
+from takeoff.datafiles import refuse_odd_file
 from takeoff.errors import InputError
 from takeoff.reports import rounding
 from takeoff.reports.page.parts import Cell, Column, Row, Table
@@ -28,6 +30,7 @@ if TYPE_CHECKING:
     from takeoff.reports.plainpage import Page
 
 WORDS = ("light", "nominal", "heavy")
+UNITS: tuple[Units, Units] = ("si", "us")
 Kind = Literal["added", "removed", "changed"]
 #: what is compared, and what it is called: field of a line -> word
 _FIELDS = {
@@ -43,18 +46,24 @@ _FIELDS = {
     "contents": "contents",
     "status": "state",
 }
+#: of these, what is a size in mm
+_LENGTHS = ("length_mm", "width_mm", "thickness_mm")
 _FIRST_SHOWN = 20
 
 
 @dataclass(frozen=True, slots=True)
 class Line:
-    """One member of a run, as far as it is compared. Masses are of all pieces, kg; None where it was not weighed."""
+    """One member of a run, as far as it is compared. Masses are of all pieces, kg; None where it was not weighed.
+
+    `typed` is the material as the list has it: what is compared is the row of the table it stands for.
+    """
 
     mark: str | None
     fields: dict[str, Any]
     total_kg: tuple[float, float, float] | None
     place: str
     number: int
+    typed: str | None
 
     @property
     def signature(self) -> Hashable:
@@ -65,17 +74,23 @@ class Line:
 class Change:
     """One member that was added, removed or changed; `kg` is new minus old, a row not weighed counting as nothing.
 
-    `number` is the member's in the new run, None where it was removed. `unknown` where one side was not weighed.
+    `number` is the member's in the new run, None where it was removed. `unknown` where one side was not weighed. `what` is
+    in mm, `what_us` in feet and inches.
     """
 
     kind: Kind
     mark: str | None
     assembly: str | None
     what: str
+    what_us: str
     kg: tuple[float, float, float]
     unknown: bool
     place: str
     number: int | None
+
+    def said(self, units: Units) -> str:
+        """What changed, in the units of print."""
+        return self.what if units == "si" else self.what_us
 
     def as_record(self) -> dict[str, Any]:
         return {
@@ -91,7 +106,11 @@ class Change:
 
 @dataclass(frozen=True, slots=True)
 class Comparison:
-    """New against old. `total_kg` is the new total minus the old, light / nominal / heavy; `picks` are hook loads that changed."""
+    """New against old. `total_kg` is the new total minus the old, light / nominal / heavy.
+
+    picks : hook loads that changed, kg, and verdicts: name, then, now; vehicles : payloads that changed, kg; None where it was not
+    there. unloaded : rows on no vehicle, then and now.
+    """
 
     file: str
     sha256: str
@@ -99,6 +118,9 @@ class Comparison:
     same: int
     total_kg: tuple[float, float, float]
     picks: tuple[tuple[str, float | None, float | None], ...]
+    verdicts: tuple[tuple[str, str, str], ...]
+    vehicles: tuple[tuple[str, float | None, float | None], ...]
+    unloaded: tuple[int, int]
 
     def of(self, kind: Kind) -> list[Change]:
         return [c for c in self.changes if c.kind == kind]
@@ -112,6 +134,9 @@ class Comparison:
             "mass_kg": dict(zip(WORDS, self.total_kg, strict=True)),
             "changes": [c.as_record() for c in self.changes],
             "picks": [{"name": name, "hook_load_before_kg": old, "hook_load_kg": new} for name, old, new in self.picks],
+            "verdicts": [{"name": name, "before": old, "now": new} for name, old, new in self.verdicts],
+            "vehicles": [{"name": name, "payload_before_kg": old, "payload_kg": new} for name, old, new in self.vehicles],
+            "not_loaded": {"before": self.unloaded[0], "now": self.unloaded[1]},
         }
 
     def sentence(self, units: Units) -> str:
@@ -128,6 +153,15 @@ class Comparison:
             text += " Rows not weighed in either run count as nothing in these differences."
         return text
 
+    def notes(self, units: Units) -> list[str]:
+        """What became of picks and vehicles, a sentence each."""
+        found = [_became("Pick", name, ("hook load", "its hook load was"), old, new, units) for name, old, new in self.picks]
+        found += [f"Pick {shown(name)}: verdict {shown(old)} before, {shown(new)} now." for name, old, new in self.verdicts]
+        found += [_became("Vehicle", name, ("payload", "it carried"), old, new, units) for name, old, new in self.vehicles]
+        if self.unloaded[0] != self.unloaded[1]:
+            found.append(f"On no vehicle: {self.unloaded[0]} before, {self.unloaded[1]} now.")
+        return found
+
     def table(self, units: Units) -> Table:
         """Every change as a line."""
         unit = rounding.mass_unit(units)
@@ -143,7 +177,7 @@ class Comparison:
             "changes", "Rows added, removed and changed; masses are new minus old", columns, states=("added", "removed", "changed")
         )
         for c in self.changes:
-            what = c.what + ("; not weighed in one of the runs" if c.unknown else "")
+            what = c.said(units) + ("; not weighed in one of the runs" if c.unknown else "")
             table.rows.append(
                 Row(
                     [
@@ -166,26 +200,29 @@ class Comparison:
         ordered = sorted(self.changes, key=lambda c: -abs(c.kg[2]))
         for c in ordered[:_FIRST_SHOWN]:
             unknown = ", not weighed in one of the runs" if c.unknown else ""
-            page.say(f"{c.kind} {shown(c.mark or '(no mark)')}: {c.what}; {signed(c.kg[2], units)} heavy{unknown}; {c.place}", 2, 4)
+            page.say(f"{c.kind} {shown(c.mark or '(no mark)')}: {c.said(units)}; {signed(c.kg[2], units)} heavy{unknown}; {c.place}", 2, 4)
         if len(ordered) > _FIRST_SHOWN:
             page.say(f"and {len(ordered) - _FIRST_SHOWN} more; the schedule lists every one", 2)
-        for name, old, new in self.picks[:_FIRST_SHOWN]:
-            page.say(hook_text(name, old, new, units), 2, 4)
+        notes = self.notes(units)
+        for note in notes[:_FIRST_SHOWN]:
+            page.say(note, 2, 4)
+        if len(notes) > _FIRST_SHOWN:
+            page.say(f"and {len(notes) - _FIRST_SHOWN} more; the schedule lists every one", 2)
 
 
-def hook_text(name: str, old: float | None, new: float | None, units: Units) -> str:
-    """What became of a pick's hook load, as a sentence."""
+def _became(kind: str, name: str, words: tuple[str, str], old: float | None, new: float | None, units: Units) -> str:
+    """What became of the mass of a pick or vehicle, as a sentence; `words` are what the mass is called, and was."""
 
     def mass(kg: float) -> str:
         return rounding.mass_with_unit(kg, "up", units, gap=NO_BREAK)
 
     if old is None and new is not None:
-        return f"Pick {shown(name)} is new: hook load {mass(new)}."
+        return f"{kind} {shown(name)} is new: {words[0]} {mass(new)}."
     if new is None and old is not None:
-        return f"Pick {shown(name)} is gone: its hook load was {mass(old)}."
+        return f"{kind} {shown(name)} is gone: {words[1]} {mass(old)}."
     assert old is not None
     assert new is not None
-    return f"Pick {shown(name)}: hook load {mass(old)} before, {mass(new)} now."
+    return f"{kind} {shown(name)}: {words[0]} {mass(old)} before, {mass(new)} now."
 
 
 def signed(kg: float, units: Units, *, unit: bool = True) -> str:
@@ -208,16 +245,18 @@ class Earlier:
     lines: tuple[Line, ...]
     total_kg: tuple[float, float, float]
     hook_loads: dict[str, float]
+    verdicts: dict[str, str]
+    payloads: dict[str, float]
+    unloaded: int
 
 
 def read_earlier(path: Path) -> Earlier:
     """The record that an earlier `takeoff schedule --json` wrote. Raises InputError where it is none."""
     right = "a file that an earlier run wrote with --json"
+    refuse_odd_file(path, "the earlier record", "record")
     try:
         data = path.read_bytes()
         record = json.loads(data)
-    except FileNotFoundError as error:
-        raise InputError("there is no such file", file=path, right=right) from error
     except OSError as error:
         raise InputError(f"cannot be read ({error.strerror or error})", file=path, right=right) from error
     except (ValueError, RecursionError) as error:
@@ -225,14 +264,30 @@ def read_earlier(path: Path) -> Earlier:
     try:
         if record["tool"]["name"] != "takeoff":
             raise KeyError("tool")
-        lines = tuple(_line(member, number) for number, member in enumerate(record["members"]))
-        total = _three(record["totals"]["mass_kg"])
-        hooks = {str(p["name"]): float(p["hook_load_kg"]) for p in record["picks"]}
-    except (KeyError, TypeError, ValueError, AttributeError) as error:
+        found = _of_record(record, str(path), hashlib.sha256(data).hexdigest())
+    except (KeyError, IndexError, TypeError, ValueError, AttributeError, OverflowError) as error:
         raise InputError("is no weight schedule's record", file=path, right=right) from error
-    if total is None:
+    if found is None:
         raise InputError("its total is no mass", file=path, right=right)
-    return Earlier(str(path), hashlib.sha256(data).hexdigest(), lines, total, hooks)
+    return found
+
+
+def _of_record(record: dict[str, Any], file: str, sha256: str) -> Earlier | None:
+    """What is compared of a run's record; None where its total is no mass."""
+    total = _three(record["totals"]["mass_kg"])
+    if total is None:
+        return None
+    picks = {str(p["name"]): p for p in record["picks"]}
+    return Earlier(
+        file,
+        sha256,
+        tuple(_line(member, number) for number, member in enumerate(record["members"])),
+        total,
+        {name: float(p["hook_load_kg"]) for name, p in picks.items()},
+        {name: str(p["verdict"]) for name, p in picks.items()},
+        {str(v["name"]): float(v["payload_kg"]) for v in record["vehicles"]},
+        len(record["not_loaded"]),
+    )
 
 
 @lru_cache(maxsize=1000)
@@ -263,7 +318,8 @@ def _line(member: dict[str, Any], number: int) -> Line:
         raise TypeError("a field is no plain value")
     place = _sheet_place(member["file"], member["sheet"])
     mark = None if member["mark"] is None else str(member["mark"])
-    return Line(mark, fields, _three(member["mass_total_kg"]), f"{place} row {int(member['row'])}", number)
+    typed = None if member["material"]["text"] is None else str(member["material"]["text"])
+    return Line(mark, fields, _three(member["mass_total_kg"]), f"{place} row {int(member['row'])}", number, typed)
 
 
 # --- matching --------------------------------------------------------------------------------------------------------
@@ -271,10 +327,14 @@ def _line(member: dict[str, Any], number: int) -> Line:
 
 def compare(result: Result, earlier: Earlier) -> Comparison:
     """The result against an earlier run."""
-    new = _lines(result)
+    from takeoff.reports.records import to_json
+
+    # The new run as its own record would hold it, so that the two are of one kind.
+    now = _of_record(json.loads(to_json(result)), "", "")
+    assert now is not None
     pairs: list[tuple[Line, Line]] = []
-    old_left, new_left = list(earlier.lines), new
-    for key in (lambda x: x.signature, _same_row, _same_mark):
+    old_left, new_left = list(earlier.lines), list(now.lines)
+    for key in (lambda x: x.signature, _same_row, _same_mark, _same_piece):
         old_left, new_left, found = _matched(old_left, new_left, key, only_single=key is _same_mark)
         pairs += found
     changes = [_change(old, line) for old, line in pairs]
@@ -285,28 +345,24 @@ def compare(result: Result, earlier: Earlier) -> Comparison:
     ]
     order = {"added": 0, "removed": 1, "changed": 2}
     found_changes.sort(key=lambda c: (order[c.kind], -1 if c.number is None else c.number))
-    total = result.totals.mass_kg
-    hooks = {p.name: p.hook_load_kg for p in result.picks}
-    names = dict.fromkeys([*hooks, *earlier.hook_loads])
-    picks = tuple(
-        (name, earlier.hook_loads.get(name), hooks.get(name)) for name in names if not _close(earlier.hook_loads.get(name), hooks.get(name))
-    )
-    differences = tuple(now - before for now, before in zip((total.light, total.nominal, total.heavy), earlier.total_kg, strict=True))
+    differences = tuple(b - a for a, b in zip(earlier.total_kg, now.total_kg, strict=True))
     return Comparison(
         earlier.file,
         earlier.sha256,
         tuple(found_changes),
         sum(1 for c in changes if c is None),
         (differences[0], differences[1], differences[2]),
-        picks,
+        _by_name(earlier.hook_loads, now.hook_loads),
+        tuple((name, was, now.verdicts[name]) for name, was in earlier.verdicts.items() if now.verdicts.get(name, was) != was),
+        _by_name(earlier.payloads, now.payloads),
+        (earlier.unloaded, now.unloaded),
     )
 
 
-def _lines(result: Result) -> list[Line]:
-    """The new run as the record would hold it."""
-    from takeoff.reports.records import to_json
-
-    return [_line(member, number) for number, member in enumerate(json.loads(to_json(result))["members"])]
+def _by_name(old: dict[str, float], new: dict[str, float]) -> tuple[tuple[str, float | None, float | None], ...]:
+    """What differs, under the names of the new run first."""
+    names = dict.fromkeys([*new, *old])
+    return tuple((name, old.get(name), new.get(name)) for name in names if not _close(old.get(name), new.get(name)))
 
 
 def _same_row(line: Line) -> Hashable:
@@ -317,6 +373,11 @@ def _same_row(line: Line) -> Hashable:
 
 def _same_mark(line: Line) -> Hashable:
     return line.mark
+
+
+def _same_piece(line: Line) -> Hashable:
+    """All but the mark: a piece of the same kind that was given another."""
+    return (*line.fields.values(), line.total_kg) if line.mark else None
 
 
 def _matched(
@@ -349,19 +410,14 @@ def _alone(kind: Kind, line: Line) -> Change:
     sign = 1.0 if kind == "added" else -1.0
     light, nominal, heavy = (sign * v for v in _kg(line))
     pieces, section, length = (line.fields[key] for key in ("quantity", "section", "length_mm"))
-    what = ", ".join(
-        p
-        for p in (
-            f"{pieces} x {shown(section or 'piece')}" if pieces is not None else shown(section or "piece"),
-            f"{length:g} mm" if isinstance(length, int | float) else "",
-        )
-        if p
-    )
+    named = f"{pieces} x {shown(section or 'piece')}" if pieces is not None else shown(section or "piece")
+    what, what_us = (", ".join([named, _length(length, units)]) if isinstance(length, int | float) else named for units in UNITS)
     return Change(
         kind,
         line.mark,
         line.fields["assembly"],
         what,
+        what_us,
         (light, nominal, heavy),
         line.total_kg is None,
         line.place,
@@ -371,26 +427,44 @@ def _alone(kind: Kind, line: Line) -> Change:
 
 def _change(old: Line, new: Line) -> Change | None:
     """What differs between a row then and now; None where nothing does."""
-    said = [
-        f"{word} {_shown(old.fields[key])} → {_shown(new.fields[key])}"
-        for key, word in _FIELDS.items()
-        if not _close(old.fields[key], new.fields[key])
-    ]
+    differing = [key for key in _FIELDS if not _close(old.fields[key], new.fields[key])]
+    said = [[f"mark {shown(old.mark)} → {shown(new.mark)}"] if old.mark and new.mark and old.mark != new.mark else [] for _ in UNITS]
+    for units, parts in zip(UNITS, said, strict=True):
+        parts += [_differs(key, old, new, units) for key in differing]
     before, now = _kg(old), _kg(new)
     light, nominal, heavy = (b - a for a, b in zip(before, now, strict=True))
     moved = any(not _close(a, b) for a, b in zip(before, now, strict=True))
-    if not said and not moved:
+    if not said[0] and not moved:
         return None
+    what, what_us = ("; ".join(parts) or "mass alone (another basis or setting)" for parts in said)
     return Change(
         "changed",
         new.mark,
         new.fields["assembly"],
-        "; ".join(said) or "mass alone (another basis or setting)",
+        what,
+        what_us,
         (light, nominal, heavy),
         old.total_kg is None or new.total_kg is None,
         new.place,
         new.number,
     )
+
+
+def _differs(key: str, old: Line, new: Line, units: Units) -> str:
+    """``length 6000 → 6100 mm``: one field then and now."""
+    before, now = old.fields[key], new.fields[key]
+    if key in _LENGTHS and isinstance(before, int | float) and isinstance(now, int | float):
+        first = f"{before:g}" if units == "si" else _length(before, units)
+        return f"{_FIELDS[key]} {first} → {_length(now, units)}"
+    if key in _LENGTHS:
+        return f"{_FIELDS[key]} " + " → ".join(_length(v, units) if isinstance(v, int | float) else "(none)" for v in (before, now))
+    if key == "material" and old.typed and new.typed and old.typed != new.typed:
+        before, now = old.typed, new.typed
+    return f"{_FIELDS[key]} {_shown(before)} → {_shown(now)}"
+
+
+def _length(mm: float, units: Units) -> str:
+    return f"{mm:g} mm" if units == "si" else rounding.feet_inches(mm)
 
 
 def _close(a: Any, b: Any) -> bool:

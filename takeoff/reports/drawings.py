@@ -139,6 +139,7 @@ class View:
     """A pick as one sees it from above or from the side: flat places in mm, `up` of the page positive.
 
     pieces : outlines of its pieces, where their positions are known; box : the least and greatest place of the centre.
+    slings : each from its foot to its top, where they do not all run from a point to the hook; bar : a spreader's or beam's ends.
     """
 
     low: Flat
@@ -149,6 +150,8 @@ class View:
     points: tuple[tuple[str, Flat], ...] = ()
     hook: Flat | None = None
     at_least: bool = False
+    slings: tuple[tuple[Flat, Flat], ...] = ()
+    bar: tuple[Flat, Flat] | None = None
 
 
 def hull(points: Iterable[Flat]) -> tuple[Flat, ...]:
@@ -177,7 +180,8 @@ def pick_view(view: View, axes: tuple[str, str], sizes: tuple[str, str], title: 
 
     axes : what lies across and up the page, such as x and y; sizes : the overall sizes as text.
     """
-    places = [view.low, view.high, view.centre, *view.box, *(p for _, p in view.points), *([view.hook] if view.hook else [])]
+    places = [view.low, view.high, view.centre, *view.box, *(p for _, p in view.points), *(view.bar or ())]
+    places += [view.hook] if view.hook else []
     least = tuple(min(p[k] for p in places) for k in range(2))
     most = tuple(max(p[k] for p in places) for k in range(2))
     margin_x, margin_top, margin_low = 56.0, 24.0, 46.0
@@ -201,8 +205,10 @@ def pick_view(view: View, axes: tuple[str, str], sizes: tuple[str, str], title: 
     drawing.rect(left, top, right - left, bottom - top, "outline")
     if view.hook is not None:
         hook = at(view.hook)
-        for _, p in view.points:
-            drawing.line([at(p), hook], "sling")
+        for foot, head in view.slings or [(p, view.hook) for _, p in view.points]:
+            drawing.line([at(foot), at(head)], "sling")
+        if view.bar is not None:
+            drawing.line([at(end) for end in view.bar], "pieceline")
         drawing.dot(*hook, 6, "hook")
         drawing.text(hook[0] + 12, hook[1] - 8, "hook")
     (box_left, box_low), (box_right, box_high) = at(view.box[0]), at(view.box[1])
@@ -350,10 +356,10 @@ class Series:
     points: tuple[Flat, ...]
 
 
-def chart(series: Sequence[Series], axes: tuple[str, str], title: str, *, upright: Mark | None = None) -> str:
-    """Lines over a plain grid, each with its own dash and a letter that ties it to its label below; `upright` marks an x."""
+def chart(series: Sequence[Series], axes: tuple[str, str], title: str, *, uprights: Sequence[Mark] = ()) -> str:
+    """Lines over a plain grid, each with its own dash and a letter that ties it to its label below; `uprights` mark places on x."""
     series = _together(series)
-    xs = [x for s in series for x, _ in s.points] + ([upright.value] if upright else [])
+    xs = [x for s in series for x, _ in s.points] + ([mark.value for mark in uprights])
     ys = [y for s in series for _, y in s.points]
     if not xs or not ys:
         return ""
@@ -377,29 +383,43 @@ def chart(series: Sequence[Series], axes: tuple[str, str], title: str, *, uprigh
         drawing.text(left - 5, y + 4, _plain(tick), "end")
     drawing.text(right, bottom + 32, axes[0], "end")
     drawing.text(4, 12, axes[1])
-    if upright is not None:
-        x, _ = at((upright.value, 0))
+    for mark in uprights:
+        x, _ = at((mark.value, 0))
         drawing.line([(x, top), (x, bottom)], "limit")
-        near_edge = x + _LETTER * len(upright.label) > right
-        drawing.text(x - 5 if near_edge else x + 5, top + 10, upright.label, "end" if near_edge else "start")
-    taken: dict[tuple[float, float], int] = {}
+    places: list[Flat] = []
     for number, line in enumerate(series):
         kind = f"series s{number % 6}"
         drawing.line([at(p) for p in line.points], kind)
         for p in line.points:
             drawing.dot(*at(p), 2.5 if len(line.points) > 1 else 5, "full")
-        letter = chr(ord("A") + number % 26)
         x, y = at(line.points[-1])
-        place = (round(x / 12), round(y / 12))
-        taken[place] = taken.get(place, 0) + 1
-        drawing.text(x - 5 + 11 * taken[place], y - 4, letter, "start", "t strong")
+        # Beside the end of its line, past the letters of lines that end there too.
+        x, y = x + 6, y - 4
+        while any(abs(x - a) < 11 and abs(y - b) < 12 for a, b in places):
+            x += 11
+        places.append((x, y))
         base = bottom + 54 + 17 * number
         if len(line.points) > 1:
             drawing.line([(left, base - 4), (left + 30, base - 4)], kind)
         else:
             drawing.dot(left + 15, base - 4, 5, "full")
-        drawing.text(left + 36, base, f"{letter}  {line.label}"[:62])
+        drawing.text(left + 36, base, f"{_letter(number)}  {line.label}"[:62])
+    for number, place in enumerate(places):
+        drawing.text(*place, _letter(number), "start", "t strong over")
+    ends: list[float] = []  # where the last label of each line of labels ends: one that would run into it goes a line lower
+    for mark in sorted(uprights, key=lambda m: m.value):
+        x, _ = at((mark.value, 0))
+        wide = _LETTER * len(mark.label) + 5
+        near_edge = x + wide > right
+        start = x - wide if near_edge else x
+        level = next((n for n, end in enumerate(ends) if start >= end), len(ends))
+        ends[level : level + 1] = [start + wide + 4]
+        drawing.text(x - 5 if near_edge else x + 5, top + 10 + 13 * level, mark.label, "end" if near_edge else "start", "t over")
     return drawing.svg()
+
+
+def _letter(number: int) -> str:
+    return chr(ord("A") + number % 26)
 
 
 def _together(series: Sequence[Series]) -> list[Series]:

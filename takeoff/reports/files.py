@@ -20,8 +20,12 @@ from takeoff.errors import OutputError
 Output = tuple[str | Path, Callable[[Path], None]]
 
 
-def write_all(outputs: Sequence[Output], *, inputs: Iterable[str | Path] = (), replace: bool = False) -> list[Path]:
+def write_all(
+    outputs: Sequence[Output], *, inputs: Iterable[str | Path] = (), replace: bool = False, settled: Callable[[], None] | None = None
+) -> list[Path]:
     """Write every output, or none; returns where they are, links followed.
+
+    settled : called once all are written, before the first takes its place: from then on nobody should give the run up.
 
     Raises OutputError, with the path, on a folder that is missing or cannot be written, an output that is an input (by
     any spelling or link), two outputs in one place, an existing file (unless `replace`), or a write that fails.
@@ -38,6 +42,8 @@ def write_all(outputs: Sequence[Output], *, inputs: Iterable[str | Path] = (), r
                 _to_disk(temporary)
             except OSError as error:
                 raise OutputError(f"cannot be written ({_why(error)})", file=place) from error
+        if settled is not None:
+            settled()
         _put_in_place(places, waiting, replace)
     finally:
         for temporary in waiting:
@@ -76,7 +82,7 @@ def check_outputs(
             raise OutputError("its folder does not exist", file=path, right=f"make the folder {folder.name or folder} first")
         if not os.access(folder, os.W_OK | os.X_OK):
             raise OutputError("its folder may not be written to", file=path, right="a folder you may write to")
-        if there is not None and not os.access(place, os.W_OK):
+        if there is not None and not (os.access(place, os.W_OK) and _may_be_replaced(there, folder)):
             raise OutputError("is protected against writing", file=path, right="another name")
         places.append(place)
     return places
@@ -92,6 +98,14 @@ def _status(path: Path) -> os.stat_result | None:
         return None
     except (OSError, ValueError) as error:
         raise OutputError(f"cannot be written ({_why(error)})", file=str(path)[:200]) from error
+
+
+def _may_be_replaced(there: os.stat_result, folder: Path) -> bool:
+    """Whether a file may be renamed over: in a folder that many may write to, often only by who owns one of the two."""
+    if not hasattr(os, "geteuid"):
+        return True
+    shared = folder.stat()
+    return not shared.st_mode & stat.S_ISVTX or os.geteuid() in (0, there.st_uid, shared.st_uid)
 
 
 def _same(one: Path, other: Path) -> bool:

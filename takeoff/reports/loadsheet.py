@@ -12,9 +12,12 @@ from takeoff.reports import rounding
 from takeoff.reports.plainpage import Page
 from takeoff.reports.rounding import NO_BREAK, NO_FIGURE, Units
 from takeoff.reports.wording import counted, shown
+from takeoff.transport.planning import FULL
+from takeoff.transport.words import Figure, Said
 
 if TYPE_CHECKING:
-    from takeoff.transport.load import Load, Plan
+    from takeoff.findings import Finding
+    from takeoff.transport.load import Lashing, Load, Plan
 
 _MOST_PIECES = 60
 _SKETCH = 60
@@ -38,14 +41,63 @@ def say_short(page: Page, plan: Plan, units: Units) -> None:
     """How many vehicles, whether that is proven, and what is on none."""
     page.heading(f"Loads: {vehicles_words(plan)}.")
     for finding in plan.findings:
-        page.say(f"{finding.level.capitalize()}: {shown(finding.message)}", indent=2, hang=4)
+        page.say(f"{finding.level.capitalize()}: {spoken(finding.message, units)}", indent=2, hang=4)
     if plan.not_loaded:
         page.heading(f"On no vehicle ({counted(len(plan.not_loaded), 'entry', 'entries')})")
         for n in plan.not_loaded[:_MOST_PIECES]:
             mass = "" if n.kg is None else f" ({rounding.mass_with_unit(n.kg, 'up', units, gap=NO_BREAK)})"
-            page.say(f"{shown(n.name)}{mass}: {shown(n.reason)}", indent=2, hang=4)
+            page.say(f"{shown(n.name)}{mass}: {spoken(n.reason, units)}", indent=2, hang=4)
         if len(plan.not_loaded) > _MOST_PIECES:
             page.say(f"and {len(plan.not_loaded) - _MOST_PIECES} more", indent=2)
+
+
+def spoken(text: str | None, units: Units) -> str:
+    """A sentence about loads with its figures in the units asked for; forces in pounds-force where they are US."""
+    if units == "si" or not isinstance(text, Said):
+        return shown(text)
+    return shown("".join(_figure(part) if isinstance(part, Figure) else part for part in text.parts))
+
+
+def _figure(part: Figure) -> str:
+    if part.unit == "kg":
+        return rounding.mass_with_unit(part.value, part.way, "us", gap=NO_BREAK)
+    if part.unit == "mm":
+        return rounding.feet_inches(part.value).replace(" ", NO_BREAK)
+    if part.unit == "kN":
+        return rounding.force_with_unit(part.value, part.way, "us", NO_BREAK)
+    return force_of(part.value, "us", part.way)
+
+
+def force_of(dan: float, units: Units, way: rounding.Way = "up") -> str:
+    """A lashing's force, whole: daN, or pounds-force in US print."""
+    if units == "si":
+        return f"{rounding.number(dan, 0, way, NO_BREAK)}{NO_BREAK}daN"
+    return f"{rounding.number(dan / 100 / rounding.KN_PER_KIP * 1000, 0, way, NO_BREAK)}{NO_BREAK}lbf"
+
+
+def finding_words(finding: Finding, units: Units, before: str = ". ", *, read: bool = False) -> str:
+    """What a finding of a load says, what was read where that is wanted, and what would be right."""
+    right = f"{before}{'Right' if before == '. ' else 'right'} would be: {spoken(finding.right, units)}" if finding.right else ""
+    was = f" (read: {spoken(finding.read, units)})" if read and finding.read else ""
+    return spoken(finding.message, units) + was + right
+
+
+def anchor_words(x: Lashing, units: Units) -> str:
+    """What each direct lashing must hold and where its anchors are, two for each end of the piece; nothing for others."""
+    if x.needed_dan is None:
+        return ""
+    front, rear = (rounding.length_with_unit(round(x.anchors_mm[k][0]), units, NO_BREAK).replace(" ", NO_BREAK) for k in (0, 2))
+    crossed = [word for word, k in (("front", 0), ("rear", 2)) if x.anchors_mm[k][1] > x.anchors_mm[k + 1][1]]
+    across = f", the {' and the '.join(crossed)} pair crossed" if crossed else ""
+    return (
+        f"; each must hold {force_of(x.needed_dan, units)}; anchors on both sides, {front} from the deck's front for the front corners "
+        f"and {rear} for the rear ones{across}"
+    )
+
+
+def more_needed(plan: Plan) -> str:
+    """How many vehicles everything would need at the least, where there are fewer."""
+    return f"; at least {plan.bound} would be needed" if plan.bound > len(plan.loads) else ""
 
 
 def vehicles_words(plan: Plan) -> str:
@@ -53,6 +105,8 @@ def vehicles_words(plan: Plan) -> str:
     number = counted(len(plan.loads), "vehicle")
     if not plan.loads:
         return "nothing is on a vehicle"
+    if any(n.reason == FULL for n in plan.not_loaded):
+        return f"{number}, full, and not everything is on them{more_needed(plan)}"
     if plan.proven:
         return f"{number}, and no plan does with fewer" if plan.bound else number
     return f"{number}; at least {plan.bound} are needed, whether so few would do is not known"
@@ -104,11 +158,12 @@ def _load(page: Page, load: Load, units: Units) -> None:
         page.say("Worst: over the masses' bounds and every stage of unloading.", indent=2)
     for x in load.lashings:
         angle = "" if x.angle_deg is None else f" at {x.angle_deg:g}°"
+        governs = "in all directions" if x.direction == "all" else f"{shown(x.direction)} governs"
         friction = "" if x.friction is None else f", friction {x.friction:g}"
         page.say(
-            f"Hold {shown(x.piece)}: {x.number} {shown(x.method)}{angle} ({shown(x.direction)} governs{friction})"
+            f"Hold {shown(x.piece)}: {x.number} {shown(x.method)}{angle} ({governs}{friction})" + anchor_words(x, units)
             if x.method != "blocking"
-            else f"Hold {shown(x.piece)}: {shown(x.rule)}",
+            else f"Hold {shown(x.piece)}: {spoken(x.rule, units)}",
             indent=2,
             hang=4,
         )
@@ -120,8 +175,7 @@ def _load(page: Page, load: Load, units: Units) -> None:
         )
         page.say(f"OVER-SIZE, {over.kind}: {shown(over.name)} {value}, over {most} ({shown(over.rule)})", indent=2, hang=4)
     for finding in load.findings:
-        right = f" Right would be: {shown(finding.right)}." if finding.right else ""
-        page.say(f"{finding.level.capitalize()}: {shown(finding.message)}.{right}", indent=2, hang=4)
+        page.say(f"{finding.level.capitalize()}: {finding_words(finding, units)}.", indent=2, hang=4)
 
 
 def _mm(value: float | None, units: Units) -> str:

@@ -1,6 +1,7 @@
 """The part of the pick sheet that needs positions, points or a crane: centre, legs, tackle, crane, and a coarse sketch. Rank 9.
 
-Rounding: tensions, utilisations and what is needed go up; ratings, capacities and head room go down.
+Rounding: tensions, utilisations and what is needed go up; ratings, capacities, head room and the largest radius go down; a box goes
+outward.
 """
 
 from __future__ import annotations
@@ -14,8 +15,10 @@ from takeoff.reports.wording import listed, shown
 
 if TYPE_CHECKING:
     from takeoff.lifting.crane import CraneCheck
+    from takeoff.lifting.gravity import Centre, Vector
     from takeoff.lifting.pick import Pick, Point
     from takeoff.lifting.tackle import Choice
+    from takeoff.lifting.upend import Step
     from takeoff.reports.plainpage import Page
 
 _SKETCH = (46, 13)
@@ -51,8 +54,8 @@ def facts(pick: Pick, units: Units) -> list[tuple[str, str]]:
     else:
         found += [
             ("Centre of gravity x, y, z", _three(centre.centre, units)),
-            ("It may lie between", f"{_three(centre.box[0], units)} and {_three(centre.box[1], units)}"),
-            ("Size, at least" if centre.at_least else "Size", _three(centre.size, units)),
+            ("It may lie between", f"{_three(centre.box[0], units, 'down')} and {_three(centre.box[1], units, 'up')}"),
+            ("Size, at least" if centre.at_least else "Size", _three(centre.size, units, _way_of_size(pick))),
         ]
     for p in pick.points:
         angle = (
@@ -82,23 +85,47 @@ def facts(pick: Pick, units: Units) -> list[tuple[str, str]]:
             )
         )
     if pick.upend:
-        steps = "; ".join(f"{s.angle_deg:g}° {_force(s.head_kN, units)} / {_force(s.tail_kN, units)}" for s in pick.upend)
+        steps = "; ".join(f"{s.angle_deg:g}° {' / '.join(_carried(s, units))}" for s in pick.upend)
         found.append(("Upending, head / tail", steps))
     return found + [(text.partition(": ")[0], text.partition(": ")[2]) for text in _bending_texts(pick, units)]
 
 
-def _three(values: Iterable[float], units: Units) -> str:
-    return ", ".join(_length(v, units) for v in values)
+def slings(pick: Pick) -> list[tuple[str, Vector, Vector]]:
+    """Each sling as it is drawn: its name, its foot and its top. Under a bar from the points to its ends, and from there to the hook."""
+    bar, at = pick.spreader, {p.name: p.position_mm for p in pick.points}
+    if bar is None:
+        return [] if pick.hook_mm is None else [(f"sling from {shown(n)}", p, pick.hook_mm) for n, p in at.items()]
+    if bar.ends_mm is None or bar.hook_mm is None:
+        return []
+    below = [(f"sling from {shown(n)}", at[n], end) for names, end in zip(bar.over, bar.ends_mm, strict=True) for n in names]
+    if bar.kind == "spreader":
+        return below + [("leg above the spreader", end, bar.hook_mm) for end in bar.ends_mm]
+    x, y, _ = bar.hook_mm
+    return [*below, ("from the eye", (x, y, bar.ends_mm[0][2]), bar.hook_mm)]
 
 
-def _length(mm: float | None, units: Units) -> str:
-    return rounding.length_with_unit(None if mm is None else round(mm, 1), units, NO_BREAK)
+def hook_of(pick: Pick) -> Vector | None:
+    """Where the hook is drawn."""
+    return pick.spreader.hook_mm if pick.spreader else pick.hook_mm
 
 
-def _metres(m: float | None, units: Units) -> str:
-    if m is None:
-        return NO_FIGURE
-    return rounding.length_with_unit(m * 1000, units, NO_BREAK) if units == "us" else f"{rounding.number(m, 2)}{NO_BREAK}m"
+def _three(values: Iterable[float], units: Units, way: rounding.Way = "nearest") -> str:
+    return ", ".join(_length(v, units, way) for v in values)
+
+
+def _length(mm: float | None, units: Units, way: rounding.Way = "nearest") -> str:
+    if mm is not None and units == "si":
+        mm = float(rounding.rounded(mm, 1, way))
+    return rounding.length_with_unit(mm, units, NO_BREAK, way)
+
+
+def _way_of_size(pick: Pick) -> rounding.Way:
+    """A size goes up; one that is only surely reached goes down."""
+    return "down" if pick.centre is not None and pick.centre.at_least else "up"
+
+
+def _metres(m: float | None, units: Units, way: rounding.Way) -> str:
+    return rounding.metres_with_unit(m, way, units, NO_BREAK)
 
 
 def _force(kN: float | None, units: Units) -> str:
@@ -122,15 +149,19 @@ def _centre(page: Page, pick: Pick, units: Units) -> None:
         page.say(f"Centre of gravity: unknown ({shown(pick.centre_unknown)}).", indent=2, hang=4)
         return
     rows = [
-        [name, *(_length(v, units) for v in values)]
-        for name, values in (
-            ("centre of gravity", centre.centre),
-            ("at the least", centre.box[0]),
-            ("at the most", centre.box[1]),
-            ("size, at least" if centre.at_least else "size", centre.size),
-        )
+        [name, *(_length(v, units, way) for v in values)]
+        for name, values, way in _where(pick, centre)
     ]
     page.table(["Where", "x", "y", "z"], rows)
+
+
+def _where(pick: Pick, centre: Centre) -> tuple[tuple[str, Vector, rounding.Way], ...]:
+    return (
+        ("centre of gravity", centre.centre, "nearest"),
+        ("at the least", centre.box[0], "down"),
+        ("at the most", centre.box[1], "up"),
+        ("size, at least" if centre.at_least else "size", centre.size, _way_of_size(pick)),
+    )
 
 
 def _points(page: Page, pick: Pick, units: Units) -> None:
@@ -230,15 +261,22 @@ def _bar_texts(pick: Pick, units: Units) -> list[str]:
     bar = pick.spreader
     if bar is None:
         return []
+    ends = [f" over {listed(shown(n) for n in names)}" if names else "" for names in bar.over]
+    below = " and ".join(f"{_force(load, units)}{end}" for load, end in zip(bar.end_loads_kN, ends, strict=True))
     if bar.kind == "spreader":
-        tensions = " and ".join(_force(t, units) for t in bar.top_tensions_kN or ())
+        tensions = " and ".join(f"{_force(t, units)}{end}" for t, end in zip(bar.top_tensions_kN or (), ends, strict=False))
+        leans = " and ".join(f"{rounding.number(a, 1, 'up')}°" for a in bar.top_angles_deg or ())
+        lengths = " and ".join(_length(v, units) for v in bar.top_lengths_mm or ())
         sizes = "; ".join(f"{shown(c.tackle)} {shown(c.size or 'none')} ({shown(c.method)})" for c in pick.bar_tackle)
+        own = rounding.moment_with_unit(bar.self_moment_kNm, "up", units, NO_BREAK)
         return [
-            f"Spreader: compression {_force(bar.compression_kN, units)}; legs above it {tensions}, its own mass counted; enough: {sizes}"
+            f"Spreader: compression {_force(bar.compression_kN, units)}, moment {own} from its own mass; it carries {below}",
+            f"Legs above the spreader: {tensions}, its own mass counted; {leans} from the vertical, lengths {lengths}; enough: {sizes}. "
+            "The tag on the gear decides",
         ]
-    moment = rounding.number(bar.moment_kNm, 2, "up")
-    own = rounding.number(bar.self_moment_kNm, 2, "up")
-    return [f"Lifting beam: moment {moment}{NO_BREAK}kNm from the load and {own}{NO_BREAK}kNm from its own mass"]
+    moment = rounding.moment_with_unit(bar.moment_kNm, "up", units, NO_BREAK)
+    own = rounding.moment_with_unit(bar.self_moment_kNm, "up", units, NO_BREAK)
+    return [f"Lifting beam: moment {moment} from the load and {own} from its own mass; it carries {below}"]
 
 
 def _crane(page: Page, check: CraneCheck, units: Units) -> None:
@@ -250,34 +288,51 @@ def _crane(page: Page, check: CraneCheck, units: Units) -> None:
 def _crane_rows(check: CraneCheck, units: Units) -> list[tuple[str, str]]:
     rows = [
         ("configuration of the chart", shown(check.configuration or "not named")),
-        ("radius (the larger)", _metres(check.radius_m, units)),
-        ("read at the chart's radius", _metres(check.chart_radius_m, units)),
+        ("radius (the larger)", _metres(check.radius_m, units, "up")),
+        ("read at the chart's radius", _metres(check.chart_radius_m, units, "down")),
         ("rating (chart or hook)", rounding.mass_with_unit(check.rating_kg, "down", units, gap=NO_BREAK)),
         ("capacity, deductions off", rounding.mass_with_unit(check.capacity_kg, "down", units, gap=NO_BREAK)),
         ("load at rest", rounding.mass_with_unit(check.static_kg, "up", units, gap=NO_BREAK)),
         ("utilisation at rest", percent(check.utilisation_static)),
         ("utilisation moving", percent(check.utilisation)),
         (f"planning limit ({shown(check.limit.source.title)})", percent(check.limit.value, "down")),
-        ("largest radius that serves", _metres(check.largest_radius_m, units)),
-        ("head room", NO_FIGURE if check.head_room_m is None else rounding.number(check.head_room_m, 2, "down") + f"{NO_BREAK}m"),
+        ("largest radius that serves", _metres(check.largest_radius_m, units, "down")),
+        ("head room", _metres(check.head_room_m, units, "down")),
     ]
+    if check.wind is not None:
+        least = " or more" if check.wind.at_least else ""
+        speed = rounding.speed_with_unit(check.wind.speed_m_s, "down", units, NO_BREAK)
+        rows.append(("wind, at most", f"{speed}; it then pushes on the piece with {_force(check.wind.force_kN, units)}{least}"))
     if check.share is not None:
         factor = f" × {check.share_factor.value:g}" if check.share_factor else ""
         rows.insert(1, (f"share of the load{factor}", percent(check.share)))
     for stand in check.stands:
-        side = rounding.number(stand.side_m, 2, "up")
+        side = _metres(stand.side_m, units, "up")
         load = rounding.mass_with_unit(stand.load_kg, "up", units, gap=NO_BREAK)
-        rows.append((f"outrigger: {shown(stand.method)}", f"{load}, pad {side}{NO_BREAK}×{NO_BREAK}{side}{NO_BREAK}m"))
+        rows.append((f"outrigger: {shown(stand.method)}", f"{load}, pad {side}{NO_BREAK}×{NO_BREAK}{side}"))
     return rows
 
 
 def _upending(page: Page, pick: Pick, units: Units) -> None:
     if not pick.upend:
         return
-    rows = [[f"{s.angle_deg:g}°", _force(s.head_kN, units), _force(s.tail_kN, units)] for s in pick.upend]
-    page.table(["Upending, from level", "head", "tail"], rows)
-    worst = max(pick.upend, key=lambda s: s.tail_kN)
-    page.say(f"Tail greatest at {worst.angle_deg:g}°. The head takes all once the piece is upright.", indent=2, hang=4)
+    page.table(["Upending, from level", "head", "tail"], [[f"{s.angle_deg:g}°", *_carried(s, units)] for s in pick.upend])
+    page.say(" ".join(upending_words(pick)), indent=2, hang=4)
+
+
+def _carried(step: Step, units: Units) -> list[str]:
+    """What head and tail carry; a hook that carries nothing is slack."""
+    return [_force(kN, units) if kN > 0 else "slack" for kN in step.carried_kN]
+
+
+def upending_words(pick: Pick) -> list[str]:
+    """Where head and tail carry most."""
+    found = []
+    for which, name in enumerate(("Head", "Tail")):
+        most = max(s.carried_kN[which] for s in pick.upend)
+        angle = next(s.angle_deg for s in pick.upend if s.carried_kN[which] >= most * (1 - 1e-9))
+        found.append(f"{name} greatest at {angle:g}°.")
+    return [*found, "The head takes all once the piece is upright."]
 
 
 def _bending(page: Page, pick: Pick, units: Units) -> None:
@@ -290,6 +345,7 @@ def _bending_texts(pick: Pick, units: Units) -> list[str]:
     if b is None:
         return []
     best = " and ".join(_length(v, units) for v in b.best_points_mm)
-    stress = f", tension {rounding.number(b.stress_mpa, 2, 'up')}{NO_BREAK}MPa about its {b.axis} axis" if b.stress_mpa is not None else ""
-    moment = rounding.number(b.moment_kNm, 3, "up")
-    return [f"Under its own weight: best points {best} from its start; moment {moment}{NO_BREAK}kNm{stress}"]
+    tension = rounding.stress_with_unit(b.stress_mpa, "up", units, NO_BREAK)
+    stress = f", tension {tension} about its {b.axis} axis" if b.stress_mpa is not None else ""
+    moment = rounding.moment_with_unit(b.moment_kNm, "up", units, NO_BREAK)
+    return [f"Under its own weight: best points {best} from its start; moment {moment}{stress}"]

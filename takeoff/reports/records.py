@@ -330,9 +330,10 @@ def to_csv(result: Result) -> str:
 
 def csv_cell(text: str) -> str:
     """One text as a CSV cell: defused where a spreadsheet program could act on it, quoted where it must be."""
+    # First what no file holds, or a formula behind it would come to stand in front.
+    text = _NOT_IN_FILES.sub(lambda found: "" if found.group() == "\0" else "\ufffd", text)
     if text.startswith(_ACTIVE) and not _PLAIN_NUMBER.fullmatch(text):
         text = "'" + text
-    text = _NOT_IN_FILES.sub(lambda found: "" if found.group() == "\0" else "\ufffd", text)
     return '"' + text.replace('"', '""') + '"' if _NEEDS_QUOTES.search(text) else text
 
 

@@ -110,11 +110,12 @@ def force_with_unit(kN: float | None, way: Way, units: Units = "si", gap: str = 
     return f"{number(value, 3 if size < 1 else 2 if size < 10 else 1, way, gap)}{gap}{unit}"
 
 
-def feet_inches(mm: float | None, denominator: int = 16) -> str:
-    """A length the way a US tape shows it, to the nearest sixteenth: ``12'-6 1/2"``, ``0'-0 3/8"``."""
+def feet_inches(mm: float | None, denominator: int = 16, way: Way = "nearest") -> str:
+    """A length the way a US tape shows it, to a sixteenth: ``12'-6 1/2"``, ``0'-0 3/8"``."""
     if mm is None or math.isnan(mm):
         return NO_FIGURE
-    parts = round(Fraction(mm) / Fraction(254, 10) * denominator)
+    exact = Fraction(mm) / Fraction(254, 10) * denominator
+    parts = round(exact) if way == "nearest" else int(rounded(float(exact), 0, way))
     sign, parts = ("−", -parts) if parts < 0 else ("", parts)
     feet, rest = divmod(parts, 12 * denominator)
     inches, over = divmod(rest, denominator)
@@ -122,13 +123,43 @@ def feet_inches(mm: float | None, denominator: int = 16) -> str:
     return f"{sign}{feet}'-{inches}{fraction}\""
 
 
-def length_with_unit(mm: float | None, units: Units = "si", gap: str = " ") -> str:
+def length_with_unit(mm: float | None, units: Units = "si", gap: str = " ", way: Way = "nearest") -> str:
     """A length: whole mm where it is whole, else to a tenth; feet-inches for US print."""
     if units == "us":
-        return feet_inches(mm)
+        return feet_inches(mm, way=way)
     if mm is None or math.isnan(mm):
         return NO_FIGURE
-    return f"{number(mm, 0 if float(mm).is_integer() else 1, 'nearest', gap)}{gap}mm"
+    return f"{number(mm, 0 if float(mm).is_integer() else 1, way, gap)}{gap}mm"
+
+
+def metres_with_unit(m: float | None, way: Way, units: Units = "si", gap: str = " ") -> str:
+    """A long length: m to a hundredth; feet-inches for US print."""
+    if m is None or math.isnan(m):
+        return NO_FIGURE
+    return feet_inches(m * 1000.0, way=way) if units == "us" else f"{number(m, 2, way, gap)}{gap}m"
+
+
+def moment_with_unit(kNm: float | None, way: Way, units: Units = "si", gap: str = " ") -> str:
+    """A moment: kNm, or kip-ft."""
+    if kNm is None or math.isnan(kNm):
+        return NO_FIGURE
+    value, unit = (kNm, "kNm") if units == "si" else (kNm / KN_PER_KIP / (MM_PER_FT / 1000.0), "kip-ft")
+    return f"{number(value, 3 if abs(value) < 1 else 2, way, gap)}{gap}{unit}"
+
+
+def speed_with_unit(m_s: float, way: Way, units: Units = "si", gap: str = " ") -> str:
+    """A wind speed: m/s, or mph."""
+    value, unit = (m_s, "m/s") if units == "si" else (m_s * 3.6 / (MM_PER_FT * 5280 / 1e6), "mph")
+    return f"{number(value, 1, way, gap)}{gap}{unit}"
+
+
+def stress_with_unit(mpa: float | None, way: Way, units: Units = "si", gap: str = " ") -> str:
+    """A stress: MPa, or psi."""
+    if mpa is None or math.isnan(mpa):
+        return NO_FIGURE
+    if units == "si":
+        return f"{number(mpa, 2, way, gap)}{gap}MPa"
+    return f"{number(mpa * MM_PER_IN**2 / KN_PER_KIP, 0, way, gap)}{gap}psi"
 
 
 def plain_blanks(text: str) -> str:

@@ -17,6 +17,7 @@ if TYPE_CHECKING:
     from takeoff.reports.rounding import Units
     from takeoff.thermal.fits import Fit
     from takeoff.thermal.movement import Movement
+    from takeoff.thermal.spread import AlphaSpread
 
 _MOST_LINES, _MOST_RUNS = 27, 10
 _NO = rounding.NO_FIGURE
@@ -68,24 +69,51 @@ def coefficient_text(material: Material, units: Units = "si") -> str:
     return f"{text}: {material.alpha_source}"
 
 
-def movement_card(found: Movement, units: Units, width: int) -> str:
-    """Lengths and tape readings, movement between bounds, against the other material, gaps, sources, cautions."""
-    page = Page(min(width, 100))
+def movement_title(found: Movement, units: Units) -> str:
+    """``structural steel, 60 000.00 mm: −20 °C to 45 °C``"""
     at = "" if found.length_at_C == 20.0 else f" at {degrees(found.length_at_C, units)}"
-    page.say(
+    return (
         f"{shown(found.material.name)}, {with_unit(found.length_mm, units)}{at}: {degrees(found.from_C, units)} to "
         f"{degrees(found.to_C, units)}"
     )
-    page.blank()
+
+
+def movement_text(found: Movement, units: Units) -> str:
+    """The movement between its bounds."""
+    if found.movement_mm is None:
+        return "none can be given"
     low, high = (size(mm, units, signed=True) for mm in (found.movement_low_mm, found.movement_high_mm))
-    text = f"{with_unit(found.movement_mm, units, signed=True)} (low {low}, high {high})"
-    page.labelled("Movement", text if found.movement_mm is not None else "none can be given")
+    return f"{with_unit(found.movement_mm, units, signed=True)} (low {low}, high {high})"
+
+
+def mean_text(found: Movement, units: Units) -> str:
+    """The mean coefficient over the range."""
+    mean = (found.mean_alpha_per_K or 0.0) * 1e6 / (1.8 if units == "us" else 1.0)
+    return f"{mean:.4g} x 10^-6 per {'°F' if units == 'us' else 'K'} of the length at {degrees(20.0, units)}"
+
+
+def direction_texts(found: Movement, units: Units) -> list[tuple[str, str]]:
+    """What the same size moves across the grain or through the plies; none where a material grows alike every way."""
+    return [
+        (way.capitalize(), f"{with_unit(moved, units, signed=True)} for the same size {way} the grain or plies")
+        for way, moved in found.by_direction_mm.items() if way not in ("along", "in plane")
+    ]
+
+
+def bounds_text(spread: AlphaSpread) -> str:
+    return f"coefficient x {spread.low:.3f} to x {spread.high:.3f}: {spread.source}"
+
+
+def movement_card(found: Movement, units: Units, width: int) -> str:
+    """Lengths and tape readings, movement between bounds, against the other material, gaps, sources, cautions."""
+    page = Page(min(width, 100))
+    page.say(movement_title(found, units))
+    page.blank()
+    page.labelled("Movement", movement_text(found, units))
     if found.mean_alpha_per_K is not None:
-        mean = found.mean_alpha_per_K * 1e6 / (1.8 if units == "us" else 1.0)
-        page.labelled("Mean", f"{mean:.4g} x 10^-6 per {'°F' if units == 'us' else 'K'} of the length at {degrees(20.0, units)}")
-    for way, moved in found.by_direction_mm.items():
-        if way not in ("along", "in plane"):
-            page.labelled(way.capitalize(), f"{with_unit(moved, units, signed=True)} for the same size {way} the grain or plies")
+        page.labelled("Mean", mean_text(found, units))
+    for label, text in direction_texts(found, units):
+        page.labelled(label, text)
     _beside(page, found, units)
     page.blank()
     page.table(
@@ -97,7 +125,7 @@ def movement_card(found: Movement, units: Units, width: int) -> str:
     page.blank()
     page.labelled("Expansion", coefficient_text(found.material, units))
     page.labelled("Law", law_text(found.law, units))
-    page.labelled("Bounds", f"coefficient x {found.spread.low:.3f} to x {found.spread.high:.3f}: {found.spread.source}")
+    page.labelled("Bounds", bounds_text(found.spread))
     if found.against is not None:
         page.labelled("Against", coefficient_text(found.against.material, units))
         page.labelled("Its law", law_text(found.against.law, units))
@@ -122,26 +150,9 @@ def _gap_table(page: Page, found: Movement, units: Units) -> None:
         return
     against = found.against is not None and found.against.difference_mm is not None
     page.blank()
-    if found.set_at_C is not None:
-        closing, opening, to_set = found.closing_mm, found.opening_mm, found.gap_to_set_mm
-        if against and found.against is not None:
-            closing, opening, to_set = found.against.closing_mm, found.against.opening_mm, found.against.gap_to_set_mm
-        page.say(
-            f"Set at {degrees(found.set_at_C, units)}: gap {with_unit(to_set, units)}; it closes by {with_unit(closing, units)} and opens "
-            f"by {with_unit(opening, units)}" + (" against the other material." if against else "."),
-            hang=2,
-        )
-        if found.spread.high > 1 and not against:
-            page.say(
-                f"With the high coefficient it closes by {with_unit(found.closing_high_mm, units)} and opens by "
-                f"{with_unit(found.opening_high_mm, units)}: allow for that.",
-                hang=2,
-            )
-    limits = []
-    if found.gap_min_mm is not None or found.gap_max_mm is None:
-        limits.append(f"never under {with_unit(found.gap_min_mm or 0.0, units)}")
-    limits += [f"never over {with_unit(found.gap_max_mm, units)}"] if found.gap_max_mm is not None else []
-    page.say(f"Gap to set by the metal's temperature that day, {' and '.join(limits)}:", hang=2)
+    for text in setting_texts(found, units):
+        page.say(text, hang=2)
+    page.say(f"Gap to set by the metal's temperature that day, {gap_limits(found, units)}:", hang=2)
     every = -(-len(found.table) // _MOST_LINES)
     steps = [s for i, s in enumerate(found.table) if i % every == 0 or i == len(found.table) - 1]
     headings = [f"Gap, {unit(units)}", *(["against the other"] if against else []), "other side still" if against else "to set"]
@@ -152,6 +163,33 @@ def _gap_table(page: Page, found: Movement, units: Units) -> None:
     )
     if every > 1:
         page.say(f"Every {every}th step; all in the JSON.")
+
+
+def setting_texts(found: Movement, units: Units) -> list[str]:
+    """What the gap does after setting: one sentence, and one more with the high coefficient; none where nothing is set."""
+    if found.set_at_C is None or found.movement_mm is None:
+        return []
+    gaps = found if found.against is None or found.against.difference_mm is None else found.against
+    texts = [
+        f"Set at {degrees(found.set_at_C, units)}: gap {with_unit(gaps.gap_to_set_mm, units)}; it closes by "
+        f"{with_unit(gaps.closing_mm, units)} and opens by {with_unit(gaps.opening_mm, units)}"
+        + ("." if gaps is found else " against the other material.")
+    ]
+    if found.spread.high > 1 and gaps is found:
+        texts.append(
+            f"With the high coefficient it closes by {with_unit(found.closing_high_mm, units)} and opens by "
+            f"{with_unit(found.opening_high_mm, units)}: allow for that."
+        )
+    return texts
+
+
+def gap_limits(found: Movement, units: Units) -> str:
+    """``never under 5.00 mm and never over 80.00 mm``"""
+    limits = []
+    if found.gap_min_mm is not None or found.gap_max_mm is None:
+        limits.append(f"never under {with_unit(found.gap_min_mm or 0.0, units)}")
+    limits += [f"never over {with_unit(found.gap_max_mm, units)}"] if found.gap_max_mm is not None else []
+    return " and ".join(limits)
 
 
 def fit_card(found: Fit, units: Units, width: int) -> str:

@@ -1,27 +1,21 @@
 """The page: the same schedule as one file that opens in any browser, loads nothing, and prints. Rank 9.
 
-The markup stands in `page.html`, its looks in `page.css`, its sorting, filtering and jumping in `page.js`; the three are put
-into one file here. Text of a list reaches the page only through the template's escaping, never through ids, styles or
-script; and a policy in the page's head lets nothing run or load but what was put in.
+What it says is gathered here and in the modules of its parts; `render` makes it markup, and says what keeps it safe. `single` is
+the page of one `takeoff movement`, without a list.
 """
 
 from __future__ import annotations
 
-import base64
-import hashlib
 from collections.abc import Collection
-from functools import cache
-from importlib.resources import files
 from typing import TYPE_CHECKING, Any
 
 from takeoff.reports import added, rounding
 from takeoff.reports.page import lifts, loads, masses, movements, sources
+from takeoff.reports.page.render import render
 from takeoff.reports.rounding import NO_BREAK, Units
 from takeoff.reports.wording import LIKELY_IS_FOR, counted, shown
 
 if TYPE_CHECKING:
-    from jinja2 import Template
-
     from takeoff.pipeline import Result
     from takeoff.reports.compare import Comparison
 
@@ -38,10 +32,10 @@ def to_page(result: Result, *, parts: Collection[str] = PARTS, pick: str | None 
     job, units = result.job.job, result.job.job.units
     rows = masses.shown_rows(result)
     picks = [p for p in result.picks if pick is None or p.name == pick]
-    style, script = _text("page.css"), _text("page.js")
     whole = "masses" in parts
     view: dict[str, Any] = {
         "title": shown(job.title) if job.title else "Weight schedule",
+        "kind": "weight schedule",
         "about": [
             (label, shown(value))
             for label, value in (
@@ -70,25 +64,22 @@ def to_page(result: Result, *, parts: Collection[str] = PARTS, pick: str | None 
         "cautions": [shown(c) for c in _cautions(result, parts)],
         "groups": [t for key in _group_keys(result) if (t := masses.groups_table(result, key, units)) is not None] if whole else [],
         "changes": changes.table(units) if changes is not None else None,
-        "changes_said": changes.sentence(units) if changes is not None else "",
+        "changes_said": [changes.sentence(units), *changes.notes(units)] if changes is not None else [],
         "findings": masses.findings(result, rows) if whole else [],
         "picks": lifts.picks_table(result, units, picks) if "picks" in parts and picks else None,
         "pick_blocks": lifts.blocks(result, units, picks) if "picks" in parts else [],
         "load_blocks": loads.blocks(result, units) if "loads" in parts else [],
-        "load_words": loads.words(result) if "loads" in parts else [],
+        "load_words": loads.words(result, units) if "loads" in parts else [],
         "not_loaded": loads.not_loaded_table(result, units) if "loads" in parts else None,
         "run_blocks": movements.blocks(result, units) if "temperatures" in parts else [],
         "growth": movements.materials_table(result, units) if "temperatures" in parts else None,
+        "growth_chart": movements.growth_chart(result, units) if "temperatures" in parts else None,
         "lengths": movements.lengths_table(result, units, rows) if "temperatures" in parts else None,
         "schedule": masses.schedule_table(result, units, rows) if whole else None,
         "missing": masses.not_weighed_table(result, rows) if whole and not result.complete else None,
         "sources": sources.tables(result) if whole else [sources.inputs(result)],
-        "style": style,
-        "script": script,
-        "style_hash": _hash(style),
-        "script_hash": _hash(script),
     }
-    return _template().render(view)
+    return render("page.html", view)
 
 
 def _group_keys(result: Result) -> list[str]:
@@ -119,21 +110,3 @@ def _cautions(result: Result, parts: Collection[str]) -> list[str]:
     from takeoff.lifting.hook import CAUTIONS
 
     return list(dict.fromkeys([*result.cautions, *(CAUTIONS[1:] if "picks" in parts and result.picks else ())]))
-
-
-def _text(name: str) -> str:
-    return (files(__package__) / name).read_text(encoding="utf-8")
-
-
-def _hash(content: str) -> str:
-    """What the page's policy knows this text by."""
-    return "sha256-" + base64.b64encode(hashlib.sha256(content.encode("utf-8")).digest()).decode("ascii")
-
-
-@cache
-def _template() -> Template:
-    from jinja2 import Environment, StrictUndefined
-
-    # No file name decides here: escaping is on for everything, and a name that is not given is an error.
-    environment = Environment(autoescape=True, undefined=StrictUndefined, trim_blocks=True, lstrip_blocks=True)
-    return environment.from_string(_text("page.html"))

@@ -187,6 +187,7 @@ def _views(result: Result, pick: Pick, units: Units) -> list[Figure]:
     outlines = _outlines(result, pick)
     size = [_length(v, units) for v in centre.size]
     figures: list[Figure] = []
+    hook, ends = picksheet.hook_of(pick), pick.spreader.ends_mm if pick.spreader else None
     for name, first, second in (("Plan, from above", 0, 1), ("Elevation along y", 0, 2), ("Elevation along x", 1, 2)):
 
         def flat(p: tuple[float, float, float], a: int = first, b: int = second) -> Flat:
@@ -199,8 +200,10 @@ def _views(result: Result, pick: Pick, units: Units) -> list[Figure]:
             (flat(centre.box[0]), flat(centre.box[1])),
             tuple(drawings.hull([flat(c) for c in corners]) for corners in outlines),
             tuple((shown(p.name), flat(p.position_mm)) for p in pick.points),
-            flat(pick.hook_mm) if pick.hook_mm else None,
+            flat(hook) if hook else None,
             centre.at_least,
+            tuple((flat(foot), flat(top)) for _, foot, top in picksheet.slings(pick)),
+            (flat(ends[0]), flat(ends[1])) if ends and hook else None,
         )
         axes = ("xyz"[first], "xyz"[second])
         said = f"{name} of {shown(pick.name)}: {axes[0]} {size[first]}, {axes[1]} {size[second]}, with centre of gravity, points"
@@ -209,7 +212,8 @@ def _views(result: Result, pick: Pick, units: Units) -> list[Figure]:
             if figures
             else (
                 " Cross: centre of gravity, in the box where it may lie within the bounds"
-                + ("; diamonds: lifting points; dashes: slings." if pick.points else ".")
+                + (("; diamonds: lifting points; dashes: slings" if pick.points else "")
+                + (f"; full line: the {shown(pick.spreader.kind)}." if pick.spreader and ends and hook else "."))
             )
         )
         caption = f"{name}, to scale: {axes[0]} to the right, {axes[1]} up.{legend}"
@@ -242,8 +246,9 @@ def _crane(check: CraneCheck) -> Figure | None:
 def _upending(pick: Pick, units: Units) -> Figure:
     factor, unit = (1.0, "kN") if units == "si" else (1 / rounding.KN_PER_KIP, "kip")
     series = [
-        drawings.Series("head", tuple((s.angle_deg, s.head_kN * factor) for s in pick.upend)),
-        drawings.Series("tail", tuple((s.angle_deg, s.tail_kN * factor) for s in pick.upend)),
+        drawings.Series("head", tuple((s.angle_deg, s.carried_kN[0] * factor) for s in pick.upend)),
+        drawings.Series("tail", tuple((s.angle_deg, s.carried_kN[1] * factor) for s in pick.upend)),
     ]
     title = f"Upending {shown(pick.name)}: load at head and tail from level to upright"
-    return Figure(drawings.chart(series, ("degrees from level", unit), title), title + ".")
+    words = " ".join(picksheet.upending_words(pick))
+    return Figure(drawings.chart(series, ("degrees from level", unit), title), f"{title}. {words}")

@@ -5,9 +5,11 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from takeoff.reports import drawings, rounding
+from takeoff.reports.loadsheet import anchor_words, finding_words, more_needed, spoken
 from takeoff.reports.page.parts import Block, Cell, Column, Figure, Row, Table, text
 from takeoff.reports.rounding import NO_BREAK, NO_FIGURE, Units
 from takeoff.reports.wording import counted, shown
+from takeoff.transport.planning import FULL
 
 if TYPE_CHECKING:
     from takeoff.pipeline import Result
@@ -17,7 +19,7 @@ if TYPE_CHECKING:
 _OPEN = "unknown: no limit is given"
 
 
-def words(result: Result) -> list[str]:
+def words(result: Result, units: Units) -> list[str]:
     """How many vehicles, how many at least, and whether that is proven."""
     plan = result.loads
     if plan is None:
@@ -25,12 +27,12 @@ def words(result: Result) -> list[str]:
     several = counted(len(plan.loads), "vehicle")
     open_question = f"whether fewer would do is not proven; none can do with fewer than {plan.bound}"
     proven = "no plan can do with fewer" if plan.proven else open_question
+    if any(n.reason == FULL for n in plan.not_loaded):
+        proven = f"full, and not everything is on them{more_needed(plan)}"
     said = [f"{several}: {proven}." if plan.loads else "Nothing is on a vehicle."]
     if plan.not_loaded:
         said.append(f"NOT LOADED: {counted(len(plan.not_loaded), 'piece')}, on no vehicle and in no figure below.")
-    said += [
-        f"{f.level.capitalize()}: {shown(f.message)}" + (f". Right would be: {shown(f.right)}" if f.right else "") for f in plan.findings
-    ]
+    said += [f"{f.level.capitalize()}: {finding_words(f, units)}" for f in plan.findings]
     return said
 
 
@@ -42,7 +44,13 @@ def not_loaded_table(result: Result, units: Units) -> Table | None:
     table = Table("not-loaded", "On no vehicle", [Column("Piece"), Column(f"Heavy ({rounding.mass_unit(units)})", True), Column("Why")])
     for piece in plan.not_loaded:
         table.rows.append(
-            Row([Cell(shown(piece.name)), Cell(rounding.mass(piece.kg, "up", units, gap=NO_BREAK), piece.kg), Cell(shown(piece.reason))])
+            Row(
+                [
+                    Cell(shown(piece.name)),
+                    Cell(rounding.mass(piece.kg, "up", units, gap=NO_BREAK), piece.kg),
+                    Cell(spoken(piece.reason, units)),
+                ]
+            )
         )
     return table
 
@@ -108,13 +116,12 @@ def _block(number: int, load: Load, units: Units) -> Block:
         )
     block.tables.append(pieces)
     if load.lashings:
-        block.tables.append(_lashings(number, load))
+        block.tables.append(_lashings(number, load, units))
     for over in load.over_size:
         value, most = _over(over.value, over.kind, "up", units), _over(over.limit, over.kind, "down", units)
         block.facts.append((f"OVER-SIZE, {over.kind}", f"{shown(over.name)}: {value}, over {most} ({shown(over.rule)})"))
     for f in load.findings:
-        read = f" (read: {shown(f.read)})" if f.read else ""
-        block.facts.append((f.level.capitalize(), shown(f.message) + read + (f". Right would be: {shown(f.right)}" if f.right else "")))
+        block.facts.append((f.level.capitalize(), finding_words(f, units, read=True)))
     return block
 
 
@@ -234,7 +241,10 @@ def _axle_word(used: float | None) -> str:
     return _OPEN if used is None else "OVER" if used > 1 + 1e-9 else "within"
 
 
-def _lashings(number: int, load: Load) -> Table:
+def _lashings(number: int, load: Load, units: Units) -> Table:
+    rules = [spoken(x.rule, units) + anchor_words(x, units) for x in load.lashings]
+    alike = len(rules) > 1 and len(set(rules)) == 1
+    note = "Numbers are a planning figure, not a securing plan: the gear's tag, the deck's fittings and local rules decide."
     table = Table(
         f"lashings-{number}",
         f"Securing of {shown(load.name)}",
@@ -245,11 +255,11 @@ def _lashings(number: int, load: Load) -> Table:
             Column("Number", True),
             Column("Friction", True),
             Column("Angle", True),
-            Column("Rule"),
+            *([] if alike else [Column("Rule")]),
         ],
-        note="Numbers are a planning figure, not a securing plan: the gear's tag, the deck's fittings and local rules decide.",
+        note=f"Rule of every row: {rules[0]}. {note}" if alike else note,
     )
-    for x in load.lashings:
+    for x, rule in zip(load.lashings, rules, strict=True):
         table.rows.append(
             Row(
                 [
@@ -259,7 +269,7 @@ def _lashings(number: int, load: Load) -> Table:
                     Cell(str(x.number), x.number, strong=True),
                     Cell(NO_FIGURE if x.friction is None else f"{x.friction:g}", x.friction),
                     Cell(NO_FIGURE if x.angle_deg is None else f"{x.angle_deg:g}°", x.angle_deg),
-                    Cell(shown(x.rule)),
+                    *([] if alike else [Cell(rule)]),
                 ]
             )
         )

@@ -1,4 +1,4 @@
-"""The page's temperatures: what each run moves, with a chart of its gaps or its movement, and lengths row by row. Rank 9."""
+"""The page's temperatures: how each material grows, what each run moves, with charts, and lengths row by row. Rank 9."""
 
 from __future__ import annotations
 
@@ -17,12 +17,45 @@ if TYPE_CHECKING:
     from takeoff.pipeline import Result
     from takeoff.thermal.runs import RunMovement
 
-MOST_JOINTS = 6
+MOST_JOINTS, MOST_LINES = 6, 6
 
 
 def blocks(result: Result, units: Units) -> list[Block]:
     """Each run in full."""
     return [_run(number, run, result, units) for number, run in enumerate(result.movements)]
+
+
+def growth_chart(result: Result, units: Units) -> Figure | None:
+    """How much 10 m of each material grow over the temperature of the metal; None where no material has an answer."""
+    at = result.temperatures
+    if at is None:
+        return None
+    per, of = (10_000.0, "mm in 10 m") if units == "si" else (1200.0, "in in 100 ft")
+    series = [
+        Series(shown(found.material.name), tuple((warmth(t, units), growth * per) for t, growth in found.line))
+        for found in at.materials if found.line
+    ]
+    if not series:
+        return None
+    left = len(series) - MOST_LINES
+    if left > 0:  # those that grow most tell most; the table below holds every one
+        series = sorted(series, key=lambda s: max(abs(y) for _, y in s.points), reverse=True)[:MOST_LINES]
+    length = "10 m" if units == "si" else "100 ft"
+    title = f"Growth of {length} of each material over the temperature of the metal"
+    marks = [Mark(warmth(t, units), f"{shown(name)} {degrees(t, units)}") for name, t in at.named.items()]
+    svg = drawings.chart(series, (degree_axis(units), of), title, uprights=marks)
+    more = f" The {MOST_LINES} that grow most; {left} more in the table." if left > 0 else ""
+    reference = degrees(at.named.get("reference", 20.0), units)
+    return Figure(svg, f"{title}, zero at {reference}; dashed uprights: the temperatures of the job.{more}")
+
+
+def warmth(celsius: float, units: Units) -> float:
+    """A temperature as a place on a chart: °C, or °F."""
+    return celsius if units == "si" else celsius * 1.8 + 32
+
+
+def degree_axis(units: Units) -> str:
+    return f"{'°C' if units == 'si' else '°F'} of the metal"
 
 
 def _run(number: int, run: RunMovement, result: Result, units: Units) -> Block:
@@ -56,14 +89,11 @@ def _chart(run: RunMovement, named: dict[str, float], units: Units) -> Figure | 
     order = sorted(named, key=lambda name: named[name])
     factor = 1.0 if units == "si" else 1 / rounding.MM_PER_IN
 
-    def warm(name: str) -> float:
-        return named[name] if units == "si" else named[name] * 1.8 + 32
-
     series = []
     gaps = any(g is not None for joint in run.joints for g in joint.gap_mm.values())
     for joint in run.joints:
         found = joint.gap_mm if gaps else joint.position_mm
-        known = [(warm(n), v) for n in order if (v := found.get(n)) is not None]
+        known = [(warmth(named[n], units), v) for n in order if (v := found.get(n)) is not None]
         if len(known) < 2:
             continue
         start = 0.0 if gaps else known[0][1]
@@ -74,9 +104,8 @@ def _chart(run: RunMovement, named: dict[str, float], units: Units) -> Figure | 
     left = len(series) - MOST_JOINTS
     if left > 0:  # the joints that move most tell the story; the table below holds every one
         series = sorted(series, key=lambda s: abs(s.points[-1][1] - s.points[0][1]), reverse=True)[:MOST_JOINTS]
-    setting = run.set_at_C if units == "si" else run.set_at_C * 1.8 + 32
     title = f"Run {shown(run.run)}: {what[0].lower()}{what[1:]} over the temperature of the metal"
-    svg = drawings.chart(series, (f"{'°C' if units == 'si' else '°F'} of the metal", unit(units)), title, upright=Mark(setting, "set"))
+    svg = drawings.chart(series, (degree_axis(units), unit(units)), title, uprights=[Mark(warmth(run.set_at_C, units), "set")])
     more = f" The {MOST_JOINTS} that change most; {left} more in the table." if left > 0 else ""
     return Figure(svg, f"{what} over the temperature of the metal; dashed upright: setting at {degrees(run.set_at_C, units)}.{more}")
 

@@ -5,7 +5,6 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from takeoff.reports import rounding
-from takeoff.reports.wording import shown
 from takeoff.reports.workbook.sheet import CHANGES, Book
 
 if TYPE_CHECKING:
@@ -15,8 +14,8 @@ _COLUMNS = 8
 
 
 def write(book: Book, changes: Comparison) -> None:
-    """One line a row added, removed or changed, and the hook loads that changed."""
-    from takeoff.reports.compare import WORDS, hook_text
+    """One line a row added, removed or changed; picks and vehicles that changed below."""
+    from takeoff.reports.compare import WORDS
 
     sheet, units, unit = book.sheets[CHANGES], book.units, book.mass_unit
     sheet.widths([11, 14, 18, 58, 13, 13, 13, 36])
@@ -33,7 +32,7 @@ def write(book: Book, changes: Comparison) -> None:
     for change in changes.changes:
         row += 1
         sheet.text(row, 0, change.kind, "cell bold")
-        what = change.what + ("; not weighed in one of the runs" if change.unknown else "")
+        what = change.said(units) + ("; not weighed in one of the runs" if change.unknown else "")
         sheet.texts(row, 1, (change.mark, change.assembly, what), "cell wrap")
         for offset, kg in enumerate(change.kg):
             sheet.number(row, 4 + offset, rounding.in_mass_unit(kg, units), "signed")
@@ -44,6 +43,6 @@ def write(book: Book, changes: Comparison) -> None:
     sheet.raw.freeze_panes(first + 1, 2)
     sheet.raw.repeat_rows(first)
     sheet.raw.autofilter(first, 0, row, _COLUMNS - 1)
-    for name, old, new in changes.picks:
+    for note in changes.notes(units):
         row += 1
-        sheet.long_text(row + 1, (0, _COLUMNS - 1), shown(hook_text(name, old, new, units)))
+        sheet.long_text(row + 1, (0, _COLUMNS - 1), note)

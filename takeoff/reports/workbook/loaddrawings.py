@@ -183,7 +183,8 @@ def _numbers(pieces: list[tuple[int, Placed]], axis: int, per: float, layers: bo
         for text in (f"{numbers} (layer {several[0][1].layer})", numbers) if layers else (numbers,):
             half = _LETTER * len(text) / 2
             room = 2 * half < max((x2 - x1) * per, 22) and (v2 - v1) * per > 5
-            if room and all(abs(x - a) > half + b or abs(v - c) > 12 for a, b, c in taken):
+            # A blank between neighbours: two numbers must not read as one.
+            if room and all(abs(x - a) > half + b + _LETTER or abs(v - c) > 12 for a, b, c in taken):
                 labels[several[0][0] - 1] = {"value": text}
                 taken.append((x, half, v))
                 break

@@ -8,7 +8,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from takeoff.reports import rounding
-from takeoff.reports.loadsheet import vehicles_words
+from takeoff.reports.loadsheet import anchor_words, finding_words, spoken, vehicles_words
 from takeoff.reports.wording import counted, shown
 from takeoff.reports.workbook import loaddrawings
 from takeoff.reports.workbook.sheet import LOADS, Book, Sheet, letters
@@ -34,7 +34,7 @@ def write(book: Book, result: Result) -> None:
     row = 2
     said = [
         vehicles_words(plan)[0].upper() + vehicles_words(plan)[1:] + ".",
-        *(shown(f.message) for f in plan.findings),
+        *(spoken(f.message, book.units) for f in plan.findings),
         *map(shown, CAUTIONS),
     ]
     for text in said:
@@ -67,7 +67,7 @@ def _not_loaded(sheet: Sheet, plan: Plan, row: int) -> int:
         row += 1
         sheet.texts(row, 0, (None, n.name), "cell wrap")
         sheet.number(row, _KG, None if n.kg is None else rounding.in_mass_unit(n.kg, sheet.book.units), "mass heavy")
-        sheet.long_text(row, (3, len(_WIDTHS) - 1), n.reason)
+        sheet.long_text(row, (3, len(_WIDTHS) - 1), spoken(n.reason, sheet.book.units))
     return row + 2
 
 
@@ -149,10 +149,15 @@ def _load(sheet: Sheet, load: Load, row: int, starts: list[int], *, drawn: bool)
         angle = "" if x.angle_deg is None else f" at {x.angle_deg:g}°"
         spots = (
             "; at " + ", ".join(rounding.length_with_unit(round(s), units) for s in x.positions_mm[:24]) + " from the front"
-            if x.positions_mm
+            if x.positions_mm and not x.anchors_mm
             else ""
         )
-        _line(sheet, row, "Securing", f"{shown(x.piece)}: {x.number} {x.method}{angle}, {x.direction}{spots}. {shown(x.rule)}")
+        _line(
+            sheet,
+            row,
+            "Securing",
+            f"{shown(x.piece)}: {x.number} {x.method}{angle}, {x.direction}{spots}{anchor_words(x, units)}. {spoken(x.rule, units)}",
+        )
         row += 1
     for over in load.over_size:
         value, limit = (
@@ -167,7 +172,7 @@ def _load(sheet: Sheet, load: Load, row: int, starts: list[int], *, drawn: bool)
             sheet,
             row,
             finding.level.capitalize(),
-            shown(finding.message) + (f"; right would be: {shown(finding.right)}" if finding.right else ""),
+            finding_words(finding, units, "; "),
         )
         row += 1
     return row

@@ -1,8 +1,8 @@
 """The sheet of picks drawn to scale: plan and elevation as charts of the workbook itself, their coordinates beside them. Rank 9.
 
 One way through space gives both views (plan takes its x and y, elevation its x and z), so that each place stands in the table
-once. Scale is kept by reckoning the plot's pixels from the axes: a step of the grid is a square. What a mark is, its shape and
-a word say; colour says nothing.
+once. Scale is kept by reckoning the plot's pixels from the axes: a step of the grid is a square. A pick that is upended has its
+curve below. What a mark is, its shape and a word say; colour says nothing.
 """
 
 from __future__ import annotations
@@ -12,8 +12,9 @@ from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
 
-from takeoff.reports import rounding
+from takeoff.reports import picksheet, rounding
 from takeoff.reports.wording import counted, pick_word, shown
+from takeoff.reports.workbook import pickcurves
 from takeoff.reports.workbook.sheet import DRAWINGS, INK, PICKS, QUIET, Book, Sheet, cell_text, place
 
 if TYPE_CHECKING:
@@ -67,6 +68,7 @@ _LOOKS: dict[str, dict[str, Any]] = {
     "axes": {"line": {"color": QUIET, "width": 0.75}, "marker": {"type": "none"}},
     "outline": {"line": {"color": INK, "width": 1.75}, "marker": {"type": "none"}},
     "slings": {"line": {"color": INK, "width": 1, "dash_type": "dash"}, "marker": {"type": "none"}},
+    "bar": {"line": {"color": INK, "width": 3}, "marker": {"type": "none"}},
     "box": {"line": {"color": INK, "width": 1, "dash_type": "round_dot"}, "marker": {"type": "none"}},
     "points": {"line": {"none": True}, "marker": {"type": "diamond", "size": 9, "border": {"color": INK}, "fill": {"color": INK}}},
     "centre": {"line": {"none": True}, "marker": {"type": "x", "size": 10, "border": {"color": INK, "width": 1.5}}},
@@ -103,7 +105,7 @@ def write(book: Book, result: Result) -> dict[int, str]:
     sheet.long_text(
         2, (0, _COLUMNS - 1), "Each view is to scale: a square of its grid is as long across as up. Scale differs from view to view; the "
         "coordinates beside the views are the list's own, and the views follow them. For reading the plan of the lift, not for measuring: "
-        "slings are drawn straight from point to hook, without shackles, spreader or crane.", "quiet wrap",
+        "slings are drawn straight from point to hook, without shackles or crane.", "quiet wrap",
     )
     row = 3
     more = len(_known(result)) - MOST_DRAWN
@@ -192,7 +194,7 @@ def _pick(sheet: Sheet, result: Result, pick: Pick, row: int, blocks: list[int])
             "object_position": 1, "x_offset": 10, "y_offset": 6,
             "description": f"{name} of {shown(pick.name)[:60]}: outline, lifting points, slings, hook and centre of gravity",
         })
-    return row + 1
+    return pickcurves.write(sheet, pick, row + (1 if pick.upend else 0), blocks) + 1
 
 
 def _series(result: Result, pick: Pick) -> Iterator[Series]:
@@ -207,16 +209,20 @@ def _series(result: Result, pick: Pick) -> Iterator[Series]:
     box = _rectangle("centre may lie", *centre.box)
     yield Series("where it may lie", box, "box", "the centre of gravity, while every mass moves within its bounds")
     points = tuple((f"point {shown(p.name)}", p.position_mm) for p in pick.points)
-    if pick.hook_mm is not None and pick.points:
+    slings, hook = picksheet.slings(pick), picksheet.hook_of(pick)
+    if slings:
         legs: list[tuple[str, Vector] | None] = []
-        for p in pick.points:
-            legs += [(f"sling from {shown(p.name)}", p.position_mm), ("to the hook", pick.hook_mm), None]
-        bar = f"; the {pick.spreader.kind} between is not drawn" if pick.spreader else ""
-        yield Series("slings", tuple(legs[:-1]), "slings", f"straight lines from point to hook{bar}")
+        for name, foot, top in slings:
+            legs += [(name, foot), ("to the hook" if top == hook else "to the bar", top), None]
+        yield Series("slings", tuple(legs[:-1]), "slings", "straight lines from point to hook" if not pick.spreader else "straight lines")
+    if pick.spreader and pick.spreader.ends_mm and hook:
+        first, second = pick.spreader.ends_mm
+        yield Series(pick.spreader.kind, (("end", first), ("other end", second)), "bar", "as a line, the piece level")
     if points:
         yield Series("lifting points", points, "points", "as given in the job file")
-    if pick.hook_mm is not None:
-        yield Series("hook", (("hook", pick.hook_mm),), "hook", "above the centre of gravity")
+    if hook is not None:
+        over = "above piece and spreader together" if pick.spreader else "above the centre of gravity"
+        yield Series("hook", (("hook", hook),), "hook", over)
     # From above the hook hides nothing: the cross is drawn over it.
     yield Series("centre of gravity", (("centre of gravity", centre.centre),), "centre", "at nominal masses")
 

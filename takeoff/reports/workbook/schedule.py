@@ -142,29 +142,31 @@ def columns_for(result: Result) -> tuple[Column, ...]:
     if result.members["sheet"].nunique() > 1:
         columns.append(Column("sheet", "Sheet", _fit(frame, "sheet", 7, 18)))
     columns += [
-        Column("row", "Row", 6, figures=True), Column("mark", "Mark", _fit(frame, "mark", 7, 18)),
-        Column("assembly", "Assembly", _fit(frame, "assembly", 10, 22)),
-        Column("quantity", "Pieces", 7.5, figures=True), Column("section", "Section", _fit(frame, "section", 14, 25)),
-        Column("material", "Material", _fit(frame, "material", 13, 25)),
+        Column("row", "Row", 6, figures=True), Column("mark", "Mark", _fit(frame, "mark", 7, 16)),
+        Column("assembly", "Assembly", _fit(frame, "assembly", 10, 16)),
+        Column("quantity", "Pieces", 7.5, figures=True), Column("section", "Section", _fit(frame, "section", 13, 21)),
+        Column("material", "Material", _fit(frame, "material", 13, 23)),
     ]
     for key, heading in _SIZES.items():
         if key == "length_mm" or frame[key].notna().any():
             length = us and key == "length_mm"
             size_unit = "ft-in" if length else "in" if us else "mm"
-            columns.append(Column(key, f"{heading} ({size_unit})", 13 if length else 10.5 if key == "thickness_mm" else 9.5, figures=True))
+            columns.append(Column(key, f"{heading} ({size_unit})", 14.5 if length else 10.5 if key == "thickness_mm" else 9, figures=True))
     for part, heading in (("each", "One piece"), ("total", "All pieces")):
         columns += [
-            Column(f"{part}_{word}_kg", f"{heading}, {word} ({unit})", 10.5 if part == "each" else 11, figures=True) for word in WORDS
+            Column(f"{part}_{word}_kg", f"{heading}, {word} ({unit})", _fit_mass(frame, f"{part}_{word}_kg", result), figures=True)
+            for word in WORDS
         ]
-    if added.kinds(frame):
-        columns.append(Column("of_which", f"Of one piece heavy, added ({unit})", 10.5, figures=True))
     for key, heading in {"weighed_each_kg": "Weighed, one piece", "calculated_nominal_kg": "Calculated, nominal"}.items():
         if key in frame and frame[key].notna().any():
             columns.append(Column(key, f"{heading} ({unit})", 10.5, figures=True))
+    columns += [Column("status", "State", 11), Column("basis", "Basis no.", 6.5), Column("note", "What to know", 26)]
+    # From here on columns are for the screen: on paper they would make all the others too small to read.
+    if added.kinds(frame):
+        columns.append(Column("of_which", f"Of one piece heavy, added ({unit})", 10.5, figures=True))
     if "handling" in frame:
-        columns.append(Column("handling", "Handling", 22))
-    columns += [Column("status", "State", 11), Column("basis", "Basis no.", 7)]
-    columns += [Column("note", "What to know", 36), *_parts_columns(frame, unit)]
+        columns.append(Column("handling", "Handling", 25))
+    columns += _parts_columns(frame, unit)
     columns += [
         Column("where", "Place in the list", 34),
         Column("section_text", "Section in the list", _fit(frame, "section_text", 16, 34)),
@@ -198,6 +200,13 @@ def _fit(frame: pd.DataFrame, key: str, least: float, most: float) -> float:
     if key in BLANKS and frame[key].isna().any():
         lengths.append(len(BLANKS[key]))
     return min(most, max(least, max(lengths, default=0) * 1.06 + 2.5))
+
+
+def _fit_mass(frame: pd.DataFrame, key: str, result: Result) -> float:
+    """Room for the widest mass of a column, which is its total where it is one of all pieces; at least for its heading."""
+    most = max(frame[key].max(skipna=True), getattr(result.totals.mass_kg, key.split("_")[1]) if key.startswith("total_") else 0.0, 0.0)
+    shown_most = rounding.in_mass_unit(float(most), result.job.job.units) if most == most else 0.0  # noqa: PLR0124 - not NaN
+    return max(9.8, len(f"{shown_most:,.1f}") * 1.06 + 2.0)  # totals stand in bold, which is wider
 
 
 def plan_for(result: Result) -> Plan:

@@ -50,7 +50,7 @@ class _Writer:
 
     def top(self) -> None:
         sheet = self.sheet
-        sheet.widths([9, 16, 9, 30, *[15.5] * (self.width - _FIRST)])
+        sheet.widths([7, 14, 7.5, 24, *[11.5] * (self.width - _FIRST)])
         sheet.height(0, 24)
         sheet.text(0, 0, f"{TEMPERATURES}: {sheet.book.title}", "title")
         sheet.text(1, 0, sheet.book.subtitle or None, "subtitle")
