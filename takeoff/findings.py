@@ -164,6 +164,7 @@ KINDS: dict[str, str] = {
     # loads
     "vehicle-limits": "which of a vehicle's figures governs, or one that is not looked at (note)",
     "deck-unknown": "a vehicle without the size of its deck is loaded by mass only (note)",
+    "axles-loose": "a unit without a place is on a vehicle: how its axle loads count it (note)",
     "axles-unknown": "axle loads, or limits, that are not known for want of figures (note)",
     "unit-size-unknown": "a unit without a known size is loaded by mass only (note)",
     "unit-size-at-least": "the size of a unit to load is the least it can be (note)",

@@ -273,7 +273,7 @@ class TransportPart(_Part):
 
     max_bundle_kg: Kilograms = 0.0
     separate: Literal["phase", "none"] = "none"
-    time_limit_s: Annotated[float, Field(gt=0, le=3600, allow_inf_nan=False, strict=True)] = 20.0
+    time_limit_s: Annotated[float, Field(gt=0, le=3600, allow_inf_nan=False, strict=True)] = 60.0
     friction: Annotated[float, Field(gt=0, le=1.5, allow_inf_nan=False, strict=True)] | Text | None = None
     lashing: LashingPart = LashingPart()
     envelope: Literal["96/53/EC", "23 CFR 658", "own"] = "96/53/EC"

@@ -21,6 +21,8 @@ if TYPE_CHECKING:
 
 _MOST_PIECES = 60
 _SKETCH = 60
+#: from so many on, notes of one kind are said together
+_FEW = 4
 
 
 def load_sheet(plan: Plan, width: int = 80, *, units: Units = "si", cautions: Iterable[str] = (), title: str | None = None) -> str:
@@ -156,17 +158,11 @@ def _load(page: Page, load: Load, units: Units) -> None:
             ],
         )
         page.say("Worst: over the masses' bounds and every stage of unloading.", indent=2)
+    alike: dict[str, list[str]] = {}
     for x in load.lashings:
-        angle = "" if x.angle_deg is None else f" at {x.angle_deg:g}°"
-        governs = "in all directions" if x.direction == "all" else f"{shown(x.direction)} governs"
-        friction = "" if x.friction is None else f", friction {x.friction:g}"
-        page.say(
-            f"Hold {shown(x.piece)}: {x.number} {shown(x.method)}{angle} ({governs}{friction})" + anchor_words(x, units)
-            if x.method != "blocking"
-            else f"Hold {shown(x.piece)}: {spoken(x.rule, units)}",
-            indent=2,
-            hang=4,
-        )
+        alike.setdefault(_holding(x, units), []).append(shown(x.piece))
+    for how, held in alike.items():
+        page.say(f"Hold {'each of ' if len(held) > 1 else ''}{'; '.join(held)}: {how}", indent=2, hang=4)
     for over in load.over_size:
         value, most = (
             (rounding.mass_with_unit(over.value, "up", units), rounding.mass_with_unit(over.limit, "down", units))
@@ -174,8 +170,27 @@ def _load(page: Page, load: Load, units: Units) -> None:
             else (rounding.length_with_unit(over.value, units), rounding.length_with_unit(over.limit, units))
         )
         page.say(f"OVER-SIZE, {over.kind}: {shown(over.name)} {value}, over {most} ({shown(over.rule)})", indent=2, hang=4)
+    tilting = [f for f in load.findings if f.kind == "tilting"]
     for finding in load.findings:
-        page.say(f"{finding.level.capitalize()}: {finding_words(finding, units)}.", indent=2, hang=4)
+        if finding.kind != "tilting" or len(tilting) < _FEW:
+            page.say(f"{finding.level.capitalize()}: {finding_words(finding, units)}.", indent=2, hang=4)
+    if len(tilting) >= _FEW:
+        page.say(
+            f"Note: {len(tilting)} stacks or rows can tilt; the lashings above hold them upright too. The page, the workbook and the "
+            "JSON name each, with how many it takes.",
+            indent=2,
+            hang=4,
+        )
+
+
+def _holding(x: Lashing, units: Units) -> str:
+    """How one piece or stack is held: number and kind of lashings, their angle, what governs, anchors; or what blocks it."""
+    if x.method == "blocking":
+        return spoken(x.rule, units)
+    angle = "" if x.angle_deg is None else f" at {x.angle_deg:g}°"
+    governs = "in all directions" if x.direction == "all" else f"{shown(x.direction)} governs"
+    friction = "" if x.friction is None else f", friction {x.friction:g}"
+    return f"{x.number} {shown(x.method)}{angle} ({governs}{friction})" + anchor_words(x, units)
 
 
 def _mm(value: float | None, units: Units) -> str:

@@ -23,16 +23,15 @@ def load_of(name: str, vehicle: Vehicle, arranged: Arranged, job: Job, friction:
     dunnage = job.transport.dunnage_kg
     findings = list(vehicle.findings)
     findings += [f for p in pieces for f in p.unit.findings]
-    whole = all(p.x is not None for p in pieces)
+    placed = any(p.x is not None for p in pieces)
     axles: list[AxleLoad] = []
     steps: list[dict[str, object]] = []
     payload = math.fsum(p.unit.mass.heavy for p in pieces) + dunnage
-    if vehicle.statics is not None and whole:
+    if vehicle.statics is not None and (placed or not pieces) and vehicle.deck is not None:
         axles, steps = _axles(pieces, vehicle, dunnage, name, findings)
         findings += envelope.axle_findings(name, vehicle, axles, job.transport.envelope)
     elif vehicle.statics is not None:
-        held = "; with it in the middle of the deck every axle holds" if any(p.x is not None for p in pieces) else ""
-        findings.append(Finding("note", "axles-unknown", f"{name}: its axle loads are unknown, since a unit on it has no place{held}"))
+        findings.append(Finding("note", "axles-unknown", f"{name}: its axle loads are unknown, since no unit on it has a place"))
     _say_places(name, vehicle, arranged, pieces, findings)
     return Load(
         name=name,
@@ -55,15 +54,24 @@ def _axles(
     name: str,
     findings: list[Finding],
 ) -> tuple[list[AxleLoad], list[dict[str, object]]]:
+    """Axles full, at their worst and at every stage. A unit without a place counts in the middle of the deck, and at the worst
+    at the end of the deck that is worse for the support in question, or no longer aboard.
+    """
     statics = vehicle.statics
     assert statics is not None
-    states = [(label, masses_of(aboard, vehicle, dunnage)) for label, aboard in stages(pieces)]
-    full = states[0][1]
+    assert vehicle.deck is not None
+    loose = [p.unit.mass for p in pieces if p.x is None]
+    middle = [(mass.light, mass.heavy, vehicle.deck[0] / 2) for mass in loose]
+    states = [(label, masses_of([p for p in aboard if p.x is not None], vehicle, dunnage)) for label, aboard in stages(pieces)]
+    full = states[0][1] + middle
+    ends = (0.0, vehicle.deck[0])
     heavy_all = statics.empty_kg + math.fsum(heavy for _, heavy, _ in full)
     found = []
     for s in statics.supports:
         heavy = s.load_kg([(m, x) for _, m, x in full])
-        least = min((extreme_share(s, statics.empty_kg, masses) for _, masses in states), default=0.0) if s.least_share else None
+        low, high = sorted(ends, key=s.share_of)
+        at_low, at_high = ([(0.0, mass.heavy, end) for mass in loose] for end in (low, high))
+        least = min(extreme_share(s, statics.empty_kg, masses + at_low) for _, masses in states) if s.least_share else None
         if least is not None and least < s.least_share * (1 - 1e-9):
             which = "steering" if s.name == "front" else "driving"
             source = rule(f"least {which} share", "", "rigid" if which == "steering" else "any").source
@@ -84,14 +92,32 @@ def _axles(
                 s.load_kg([(m, x) for m, _, x in full]),
                 s.limit_kg,
                 heavy / heavy_all if heavy_all else 0.0,
-                max(worst_kg(s, masses) for _, masses in states),
+                max(worst_kg(s, masses + at_high) for _, masses in states),
                 least,
             )
         )
     steps: list[dict[str, object]] = [
-        {"stage": label, "kg": {s.name: s.load_kg([(m, x) for _, m, x in masses]) for s in statics.supports}} for label, masses in states
+        {"stage": label, "kg": {s.name: s.load_kg([(m, x) for _, m, x in masses + middle]) for s in statics.supports}}
+        for label, masses in states
     ]
+    if loose:
+        _say_loose(name, [p.unit.name for p in pieces if p.x is None], found, findings)
     return found, steps
+
+
+def _say_loose(name: str, units: Sequence[str], axles: Sequence[AxleLoad], findings: list[Finding]) -> None:
+    """How units without a place were counted, and which axle would be over its limit with them at its end of the deck."""
+    which = units[0] if len(units) == 1 else f"{len(units)} units"
+    over = [a.name for a in axles if a.limit_kg is not None and a.worst_kg > a.limit_kg * (1 + 1e-9)]
+    at_end = f"; at an end of the deck the limit of {' and '.join(over)} would be passed: keep it in the middle" if over else ""
+    findings.append(
+        Finding(
+            "note",
+            "axles-loose",
+            f"{name}: {which} without a size: its mass counts in the middle of the deck, in the worst axle loads at the worse end{at_end}",
+            right="sizes for every unit",
+        )
+    )
 
 
 def _say_places(name: str, vehicle: Vehicle, arranged: Arranged, pieces: Sequence[Placed], findings: list[Finding]) -> None:

@@ -94,7 +94,7 @@ class Loader:
     def arranged(self, units: Sequence[LoadUnit], vehicle: Vehicle, tries: int = TRIES, *, quick: bool = False) -> Arranged | None:
         """The best arrangement found, None where none is; the first that holds where it must be `quick`.
 
-        Units without size are loaded by mass only: the axles are then unknown, but hold with those units in the middle of the deck.
+        Units without size are loaded by mass only: the axles hold with those units in the middle of the deck.
         """
         if not self._may(units, vehicle):
             return None
