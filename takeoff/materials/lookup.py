@@ -158,8 +158,8 @@ class _Search:
         return False
 
     def _keys(self, name: NormalName) -> dict[str, bool]:
-        clash = table().clashes.get(fold(name))
-        if clash and (digits_of(name) == digits_of(normal_name(table().clash_names[fold(name)]))):
+        written, clash = table().clashes.get(fold(name), ("", ()))
+        if clash and digits_of(name) == digits_of(normal_name(written)):
             return dict.fromkeys(clash, False)
         return table().index.find(name)
 

@@ -7,7 +7,9 @@ anywhere else. Rows are checked when they are first asked for: a look-up touches
 from __future__ import annotations
 
 import gc
-from functools import cache
+from collections.abc import Iterator
+from contextlib import contextmanager
+from functools import cache, cached_property
 from pathlib import Path
 
 from takeoff.datafiles import data_folder, read_table
@@ -18,33 +20,60 @@ from takeoff.materials.nameindex import NameIndex, fold
 _HEADING = b"key,name,family,designations,"
 
 
+@contextmanager
+def _no_collecting() -> Iterator[None]:
+    """Thousands of small objects that all live on: looking for garbage among them would double the time."""
+    collecting = gc.isenabled()
+    gc.disable()
+    try:
+        yield
+    finally:
+        if collecting:
+            gc.enable()
+
+
 class Table:
-    """Rows by key, and the index of their names."""
+    """Rows by key; and, where a name is asked for, the index of their names and the names that several own."""
 
     def __init__(self, folder: Path) -> None:
+        self.folder = folder
         self.rows: dict[str, tuple[Path, int, dict[str, str]]] = {}
-        self.index = NameIndex(self.names_of)
         for path in sorted(folder.glob("*.csv")):
             with path.open("rb") as handle:
                 if handle.read(len(_HEADING)) != _HEADING:
                     continue
             for line, row in read_table(path):
                 self._add(path, line, row)
-        self.clashes: dict[str, tuple[str, ...]] = {}
-        self.clash_names: dict[str, str] = {}
-        for line, row in read_table(folder / "clashes.csv"):
-            keys = split_names(row["keys"])
-            unknown = [key for key in keys if key not in self.rows]
-            if unknown:
-                raise DataError(f"line {line}: no such material", file=folder / "clashes.csv", read=unknown[0])
-            self.clashes[fold(row["name"])] = keys
-            self.clash_names[fold(row["name"])] = row["name"]
-        for folded, keys_found in self.index.shared():
+
+    @cached_property
+    def index(self) -> NameIndex:
+        """The index of all names. Raises DataError where several materials answer to one name that clashes.csv does not hold."""
+        index = NameIndex(self.names_of)
+        with _no_collecting():
+            for key, (_, _, row) in self.rows.items():
+                index.add(f"{key};{row['name']};{row['designations']}", key, True)
+                if row["name"].endswith(")"):
+                    index.add(row["name"].partition("(")[0], key, True)
+                index.add(row["aliases"], key, False)
+        for folded, keys in index.shared():
             if folded not in self.clashes:
                 raise DataError(
                     "several materials answer to one name",
-                    file=folder, read=f"{folded}: {', '.join(keys_found)}", right="one owner, or a row in clashes.csv",
+                    file=self.folder, read=f"{folded}: {', '.join(keys)}", right="one owner, or a row in clashes.csv",
                 )  # fmt: skip
+        return index
+
+    @cached_property
+    def clashes(self) -> dict[str, tuple[str, tuple[str, ...]]]:
+        """Folded name -> (the name as written, the materials that it may mean)."""
+        found = {}
+        for line, row in read_table(self.folder / "clashes.csv"):
+            keys = split_names(row["keys"])
+            unknown = [key for key in keys if key not in self.rows]
+            if unknown:
+                raise DataError(f"line {line}: no such material", file=self.folder / "clashes.csv", read=unknown[0])
+            found[fold(row["name"])] = (row["name"], keys)
+        return found
 
     def _add(self, path: Path, line: int, row: dict[str, str]) -> None:
         key = row["key"]
@@ -53,11 +82,6 @@ class Table:
         if not row["density_source"]:
             raise DataError(f"line {line}: a density without a source does not load", file=path, read=key)
         self.rows[key] = (path, line, row)
-        add = self.index.add
-        add(f"{key};{row['name']};{row['designations']}", key, True)
-        if row["name"].endswith(")"):
-            add(row["name"].partition("(")[0], key, True)
-        add(row["aliases"], key, False)
 
     def names_of(self, key: str) -> tuple[str, ...]:
         """Every name of a material as it was written."""
@@ -69,14 +93,8 @@ class Table:
 @cache
 def table() -> Table:
     """Our table, read once. Raises DataError on a row that may not load."""
-    # Twenty thousand small objects that all live on: looking for garbage among them would double the time.
-    collecting = gc.isenabled()
-    gc.disable()
-    try:
+    with _no_collecting():
         return Table(data_folder())
-    finally:
-        if collecting:
-            gc.enable()
 
 
 @cache
