@@ -58,8 +58,11 @@ def normal_name(text: str) -> NormalName:
 
     Dots, commas, slashes, plus, percent and hash stay, since ``1.4301``, ``C16/20`` and ``#5`` need them.
     """
-    folded = unicodedata.normalize("NFKD", plain_text(text).casefold())
-    bare = "".join(c for c in folded if not unicodedata.combining(c)).replace("ø", "o").replace("ł", "l")
+    if text.isascii():
+        bare = text.lower()
+    else:
+        folded = unicodedata.normalize("NFKD", plain_text(text).casefold())
+        bare = "".join(c for c in folded if not unicodedata.combining(c)).replace("ø", "o").replace("ł", "l")
     return NormalName(" ".join(_SEPARATORS.sub(" ", bare).split()))
 
 

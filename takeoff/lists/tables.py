@@ -20,7 +20,7 @@ from takeoff.lists.headings import FIELDS, TOLD, Heading, read_heading
 from takeoff.lists.openxml import column_number, letters
 from takeoff.lists.sheets import Cell, Sheet, cell_name
 from takeoff.names import NormalName, normal_name, suggest
-from takeoff.quantities import number_readings, unit_of
+from takeoff.quantities import EVERYDAY, number_readings, unit_of
 
 RowKind = Literal["member", "heading", "total", "blank", "other"]
 
@@ -56,6 +56,10 @@ _KEY_FIELDS = frozenset(
 _COUNTS = frozenset(("quantity", "quantity_per", "quantity_total", "quantity_and_length"))
 _NAMES = frozenset(("mark", "name", "section", "material"))
 _SIZES = _KEY_FIELDS - _NAMES - _COUNTS
+_WHAT_IT_IS = frozenset(("section", "material")) | _SIZES
+#: fields of masses, and what kg/m or kg/m² below such a heading makes of them
+_MASSES = ("mass", "unit_mass", "total_mass")
+_BY_DIMENSION = {"mass per length": "mass_per_length", "mass per area": "mass_per_area"}
 #: a list needs at least one of these, or there is nothing to weigh by
 _WEIGHABLE = frozenset(
     (
@@ -414,6 +418,7 @@ class _Walk:
         if number - 1 in table.heading_rows and _is_unit_row(cells):
             self.kinds[number] = "heading"
             table.units_below = {column: unit for column, cell in enumerate(cells, 1) if isinstance(cell, str) and (unit := unit_of(cell))}
+            _masses_by_their_units(table)
             table.heading_rows.append(number)
             return
         heard = [rowwords.heard(c) for c in cells if type(c) is str or type(c) is Shown]
@@ -432,7 +437,7 @@ class _Walk:
         if (
             kind == "member"
             and any(rowwords.MONEY.match(label) for label in labels)
-            and not _has(table, number, {"section", "material"} | _SIZES)
+            and not _has(table, number, _WHAT_IT_IS)
         ):
             self._is(number, "other")
             self._note(number, "row-of-money", "a row of money or work weighs nothing", labels[0])
@@ -476,7 +481,7 @@ class _Walk:
         if any(rowwords.OPTIONAL.search(label) for label in labels):
             said.append(Finding("note", "optional-row", "the row says it is optional; it is in the totals"))
         is_assembly = any(rowwords.ASSEMBLY_ROW.search(label) for label in labels[:2])
-        bare = not _has(table, number, {"section", "material"} | _SIZES)
+        bare = not _has(table, number, _WHAT_IT_IS)
         if is_assembly and _has(table, number, {"unit_mass", "total_mass", "mass"}) and not _has(table, number, {"section", "length"}):
             said.append(
                 Finding("note", "may-count-twice", "an assembly with a mass of its own: its parts, if they are listed too, count twice")
@@ -500,18 +505,23 @@ class _Walk:
         """An assembly's own row beside those of its parts names no piece: no section, no size, no mass, once."""
         if not {"mark", "assembly"} <= set(table.columns):
             return
-        named = {normal_name(str(table.cell(n, "assembly"))) for n in table.member_rows if not is_blank(table.cell(n, "assembly"))}
-        for n in list(table.member_rows):
-            mark = table.cell(n, "mark")
-            if is_blank(mark) or normal_name(str(mark)) not in named or _has(table, n, {"section", "material"} | _SIZES):
-                continue
+        # Most rows say what they are: only the others are compared with the names of the assemblies.
+        bare = [n for n in table.member_rows if not _has(table, n, _WHAT_IT_IS) and not is_blank(table.cell(n, "mark"))]
+        if not bare:
+            return
+        typed = {str(cell) for cell in (table.cell(n, "assembly") for n in table.member_rows) if not is_blank(cell)}
+        named = {normal_name(name) for name in typed}
+        apart = set()
+        for n in bare:
+            mark = str(table.cell(n, "mark"))
             counts = [str(table.cell(n, name)).strip() for name in _COUNTS if not is_blank(table.cell(n, name))]
-            if all(count in ("1", "1.0", "-") for count in counts):
-                table.member_rows.remove(n)
+            if normal_name(mark) in named and all(count in ("1", "1.0", "-") for count in counts):
+                apart.add(n)
                 table.row_findings.pop(n, None)
                 table.group_of.pop(n, None)
                 self.kinds[n] = "other"
-                self._note(n, "assembly-row", "the row is the assembly of others, and no piece", str(mark))
+                self._note(n, "assembly-row", "the row is the assembly of others, and no piece", mark)
+        table.member_rows[:] = [n for n in table.member_rows if n not in apart]
 
     def _say_what_was_found(self) -> None:
         sheet = self.sheet
@@ -581,6 +591,11 @@ def _ranges(sheet: Sheet, job: Job) -> list[tuple[int, int, int, int]] | None:
             raise JobError("reading.tables: this is no range of cells", file=job.path, read=entry, right="Sheet!A3:F40")
         if not name or name == (sheet.name or ""):
             left, top, right, bottom = parts.groups()
+            if int(top) > int(bottom) or column_number(left) > column_number(right):
+                message = "reading.tables: the range ends before it begins: its upper left cell stands first"
+                fixed = sorted((int(top), int(bottom))), sorted((left, right), key=column_number)
+                right_way = f"{fixed[1][0]}{fixed[0][0]}:{fixed[1][1]}{fixed[0][1]}"
+                raise JobError(message, file=job.path, read=entry, right=f"{name}!{right_way}" if name else right_way)
             found.append((int(top), column_number(left), int(bottom), column_number(right)))
     for number, (top, _, bottom, _) in enumerate(found):
         if any(top <= other[2] and other[0] <= bottom for other in found[:number]):
@@ -645,15 +660,67 @@ def check_told(job: Job) -> None:
             )
 
 
+def not_met(readings: list[SheetReading], job: Job) -> list[Finding]:
+    """What `[reading.columns]` and `[reading] skip` name and no sheet that was read holds: notes, as it changed nothing."""
+    findings = []
+    columns = [column for reading in readings for table in reading.tables for column in table.all_columns]
+    right = "the heading as it stands in the list, or the letter of its column"
+    file = job.path.name if job.path else None
+    for key in job.reading.columns:
+        if not any(_is_told(key, column.number, column.text) for column in columns):
+            message = f"[reading.columns] names {key!r}, and no list that was read has that column"
+            findings.append(Finding("note", "job-not-met", message, file=file, read=key, right=right))
+    for entry in job.reading.skip:
+        name, _, number = entry.rpartition("!")
+        if not any((not name or name == (reading.sheet.name or "")) and int(number) in reading.kinds for reading in readings):
+            message = f"[reading] skip names row {entry}, and no sheet that was read has it"
+            right_row = "the row's number on its sheet, such as Sheet!14"
+            findings.append(Finding("note", "job-not-met", message, file=file, read=entry, right=right_row))
+    return findings
+
+
+def _is_told(key: str, number: int, text: str) -> bool:
+    """Whether a key of `[reading.columns]` is a column's letter or heading."""
+    return (re.fullmatch(r"[A-Z]{1,3}", key) is not None and column_number(key) == number) or normal_name(key) == normal_name(text)
+
+
 def _told(number: int, text: str, job: Job) -> Heading | None:
     """The field that `[reading.columns]` gives a heading or a column letter."""
     for key, named in job.reading.columns.items():
-        by_letter = re.fullmatch(r"[A-Z]{1,3}", key) is not None and column_number(key) == number
-        if by_letter or normal_name(key) == normal_name(text):
+        if _is_told(key, number, text):
             found = read_heading(text)
             unit = found.unit if found else None
             return Heading(text, named, unit, TOLD)
     return None
+
+
+def _masses_by_their_units(table: Table) -> None:
+    """A column of masses over whose cells stands kg/m or kg/m² is one by length or area (``Unit mass`` over ``kg/m``)."""
+    for name in _MASSES:
+        claims = [*([table.columns[name]] if name in table.columns else []), *table.rivals.get(name, [])]
+        by_unit = {}
+        for column in claims:
+            dimension = EVERYDAY[table.units_below[column.number]][0] if column.number in table.units_below else ""
+            wanted = _BY_DIMENSION.get(dimension)
+            if wanted is not None and column.heading is not None and column.heading.unit is None and column.heading.why != TOLD:
+                by_unit[column.number] = wanted
+        left = [column for column in claims if column.number not in by_unit]
+        if not by_unit:
+            continue
+        table.columns.pop(name, None)
+        table.rivals.pop(name, None)
+        if left:
+            table.columns[name] = left[0]
+        if left[1:]:
+            table.rivals[name] = left[1:]
+        for column in claims:
+            wanted = by_unit.get(column.number)
+            if wanted is None:
+                continue
+            column.heading = Heading(column.text, wanted, None, "told by the unit below it")
+            if table.columns.setdefault(wanted, column) is not column:
+                table.rivals.setdefault(wanted, []).append(column)
+        table._key_places.clear()  # noqa: SLF001 - the table's own places, which the columns above change
 
 
 def _is_unit_row(cells: list[Cell]) -> bool:
