@@ -7,6 +7,7 @@ headings start another list below the first.
 from __future__ import annotations
 
 import re
+from collections.abc import Iterable
 from dataclasses import dataclass, field
 from typing import Literal
 
@@ -56,7 +57,8 @@ _KEY_FIELDS = frozenset(
 _COUNTS = frozenset(("quantity", "quantity_per", "quantity_total", "quantity_and_length"))
 _NAMES = frozenset(("mark", "name", "section", "material"))
 _SIZES = _KEY_FIELDS - _NAMES - _COUNTS
-_WHAT_IT_IS = frozenset(("section", "material")) | _SIZES
+#: first the one that nearly every row fills
+_WHAT_IT_IS = ("section", "material", *sorted(_SIZES))
 #: fields of masses, and what kg/m or kg/m² below such a heading makes of them
 _MASSES = ("mass", "unit_mass", "total_mass")
 _BY_DIMENSION = {"mass per length": "mass_per_length", "mass per area": "mass_per_area"}
@@ -571,7 +573,7 @@ def _zip(above: list[Cell], below: list[Cell]) -> list[tuple[Cell, Cell]]:
     return list(zip(one, two, strict=True))
 
 
-def _has(table: Table, number: int, fields: set[str] | frozenset[str]) -> bool:
+def _has(table: Table, number: int, fields: Iterable[str]) -> bool:
     """Whether a row fills any of these fields with more than a dash."""
     return any(
         not is_blank(cell) and str(cell).strip() not in ("-", "–", "—")
