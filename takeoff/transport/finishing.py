@@ -107,14 +107,14 @@ def _axles(
 
 def _say_loose(name: str, units: Sequence[str], axles: Sequence[AxleLoad], findings: list[Finding]) -> None:
     """How units without a place were counted, and which axle would be over its limit with them at its end of the deck."""
-    which = units[0] if len(units) == 1 else f"{len(units)} units"
+    which, mass = (units[0], "its mass counts") if len(units) == 1 else (f"{len(units)} units", "their masses count")
     over = [a.name for a in axles if a.limit_kg is not None and a.worst_kg > a.limit_kg * (1 + 1e-9)]
     at_end = f"; at an end of the deck the limit of {' and '.join(over)} would be passed: keep it in the middle" if over else ""
     findings.append(
         Finding(
             "note",
             "axles-loose",
-            f"{name}: {which} without a size: its mass counts in the middle of the deck, in the worst axle loads at the worse end{at_end}",
+            f"{name}: {which} without a size: {mass} in the middle of the deck, in the worst axle loads at the worse end{at_end}",
             right="sizes for every unit",
         )
     )

@@ -228,6 +228,8 @@ def _base(body: _Body | None) -> Rect:
 def _row_lashing(wholes: Sequence[_Body], figures: _Figures, findings: list[Finding]) -> Lashing | None:
     """Lashings over a row of stacks of which one can tilt sideways; None, and a finding, where that is not decided."""
     names = " + ".join(body.name for body in wholes)
+    # A sentence has no room for a long row.
+    told = names if len(wholes) <= 3 else f"{wholes[0].name} to {wholes[-1].name}, {len(wholes)} from left to right,"
     outer = min(wholes[0].height, wholes[-1].height)
     highest = max(body.height for body in wholes)
     span = max(b.base[0] for b in wholes), min(b.base[2] for b in wholes)
@@ -238,7 +240,7 @@ def _row_lashing(wholes: Sequence[_Body], figures: _Figures, findings: list[Find
             Finding(
                 "note",
                 "tilting-undecided",
-                f"{names} stand side by side and one can tilt sideways; {why}: the lashings are reckoned for each alone, with room "
+                f"{told} stand side by side and one can tilt sideways; {why}: the lashings are reckoned for each alone, with room "
                 "for the legs between them",
                 right="stakes, a block at the side, or a look of someone competent",
             )
@@ -253,7 +255,7 @@ def _row_lashing(wholes: Sequence[_Body], figures: _Figures, findings: list[Find
         return None
     number = max(2, securing.whole(exact))
     findings.append(
-        Finding("note", "tilting", f"{names} stand side by side and can tilt sideways: {number} lashings go over the whole row to hold it")
+        Finding("note", "tilting", f"{told} stand side by side and can tilt sideways: {number} lashings go over the whole row to hold it")
     )
     return Lashing(
         f"row of {names}",

@@ -94,7 +94,8 @@ class Loader:
     def arranged(self, units: Sequence[LoadUnit], vehicle: Vehicle, tries: int = TRIES, *, quick: bool = False) -> Arranged | None:
         """The best arrangement found, None where none is; the first that holds where it must be `quick`.
 
-        Units without size are loaded by mass only: the axles hold with those units in the middle of the deck.
+        Units without size are loaded by mass only. The axles hold with them at either end of the deck where that is to be had,
+        else with them in the middle.
         """
         if not self._may(units, vehicle):
             return None
@@ -106,17 +107,26 @@ class Loader:
         deck = self.deck(vehicle)
         # What has no place counts in the middle of the deck, as dunnage does: a bag of bolts must not lift the axles' limits.
         fixed_kg = self.dunnage_kg + math.fsum(u.mass.heavy for u in bare)
-        best: Arranged | None = None
         ways, attempts = place(sized, deck, tries)
+        best = None
+        if bare:
+            best = self._best(ways, vehicle.with_loose(math.fsum(u.mass.heavy for u in bare)), deck, fixed_kg, quick=quick)
+        if best is None:
+            best = self._best(ways, vehicle, deck, fixed_kg, quick=quick)
         # One for every ten pieces handled, so that the limits mean much the same work for few pieces and for many.
         self.work += 1 + attempts * len(sized) // 10
+        return None if best is None else replace(best, pieces=[*best.pieces, *without])
+
+    @staticmethod
+    def _best(ways: Sequence[Sequence[Placed]], vehicle: Vehicle, deck: Deck, fixed_kg: float, *, quick: bool) -> Arranged | None:
+        best: Arranged | None = None
         for placed in ways:
             found = arrange(placed, vehicle, deck, fixed_kg, quick=quick)
             if found is not None and (best is None or found.rank < best.rank):
                 best = found
             if best is not None and (quick or best.rank[0] == 0):
                 break
-        return None if best is None else replace(best, pieces=[*best.pieces, *without])
+        return best
 
 
 def boxes_of(

@@ -5,7 +5,7 @@ A figure that is absent leaves unknown what rests on it, and says so; figures th
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 
 from takeoff.errors import JobError
@@ -49,6 +49,18 @@ class Vehicle:
     statics: Statics | None
     part: VehiclePart
     findings: tuple[Finding, ...]
+
+    def with_loose(self, mass_kg: float) -> Vehicle:
+        """The same with its axles' limits drawn in, so that they hold wherever on the deck a mass lies that counts in its middle."""
+        if self.statics is None or self.deck is None:
+            return self
+        length = self.deck[0]
+        supports = []
+        for s in self.statics.supports:
+            middle, ends = s.share_of(length / 2), (s.share_of(0.0), s.share_of(length))
+            less, more = mass_kg * (middle - min(ends)), mass_kg * (max(ends) - middle)
+            supports.append(replace(s, empty_kg=s.empty_kg - less, limit_kg=None if s.limit_kg is None else s.limit_kg - less - more))
+        return replace(self, statics=replace(self.statics, supports=tuple(supports)))
 
 
 def vehicles_of(job: Job) -> list[Vehicle]:

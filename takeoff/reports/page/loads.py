@@ -31,7 +31,7 @@ def words(result: Result, units: Units) -> list[str]:
         proven = f"full, and not everything is on them{more_needed(plan)}"
     said = [f"{several}: {proven}." if plan.loads else "Nothing is on a vehicle."]
     if plan.not_loaded:
-        said.append(f"NOT LOADED: {counted(len(plan.not_loaded), 'piece')}, on no vehicle and in no figure below.")
+        said.append(f"NOT LOADED: {counted(len(plan.not_loaded), 'entry', 'entries')}, on no vehicle and in no figure below.")
     said += [f"{f.level.capitalize()}: {finding_words(f, units)}" for f in plan.findings]
     return said
 
