@@ -64,7 +64,7 @@ def read_table(path: Path) -> Iterator[tuple[int, dict[str, str]]]:
                         f"line {reader.line_num} has {len(cells)} cells, the heading {len(heading)}",
                         file=path, read=",".join(cells)[:80], right="as many cells as headings; quote a cell that holds a comma",
                     )
-                yield reader.line_num, dict(zip(heading, (c.strip() for c in cells), strict=True))
+                yield reader.line_num, dict(zip(heading, map(str.strip, cells), strict=True))
         except UnicodeDecodeError as error:
             raise DataError("the table is not UTF-8 text", file=path, right="save it as UTF-8") from error
         except csv.Error as error:

@@ -25,13 +25,17 @@ MORE_THAN_THE_SECTION = (
     "HEA 200 with rail", "HEA 200 + stiffeners", "HEA 200 with end plates", "HEA 200 and bolts", "HEA 200 w/ plate", "HEA 200 c/w brackets",
     "UPN 200 mit Kopfplatte", "UPN 200 avec platine",
     "HEA/HEB 200", "HEA 200?", "glass 6+6x1000",
+    "RD 20 two layers", "T16 pair", "threaded rod M20 twin", "pipe DN100 SCH 40/pipe DN100 SCH 40", "DN 100 x 6.3 (2)", '2/4" SCH 40',
+    "2 Ø20", "4 no Ø16", "Ø20 x2", "Tube 50x5 x2", "tee CHS 114.3x5", "pipe 114.3x6.3 coupling", "pipe 114.3x6.3 insulation",
 )  # fmt: skip
 
 #: Sizes that are not what the first reading makes of them.
 OTHER_SIZES = (
     'CHS 4" x 6.3', 'pipe 4" x 6.3', "Rohr 4in 6.3 wt", 'pipe 2"x0.154"', "pipe inside dia 101.7 x 6.3", "pipe bore 101.7 x 6.3",
     "Rohr Innen 101.7 x 6.3", "plate b200 t10", "b200 t10", "tube 2x2x0.25", "PL 0.375x24x48", "PL .375x24x48", "PL 1.5x12x24",
-    "VSG 2x6x1000", 'PL 600x1200x3/8"',
+    "VSG 2x6x1000", 'PL 600x1200x3/8"', "pipe 4 x 0.237", "tube 2 OD x .120", "tube 12x12x.5", "disc 20x0.375", "Rohr 11,43x0,63",
+    "PL 0.5x48x96", "PL 2x36x60", "PL 4x12x12", "plate 4x8x3/8", "PL 10x200x1,5", "PL 10x200x6", "PL 10x200 6.0", "PL 200x10x1.5",
+    "Ronde Ø500 t10", "HEA 200 L=6", "counterweight 2x1x1", "decking 60x0.9", "roof sheet 0.7x1000",
 )  # fmt: skip
 
 #: Remarks that change no mass.
@@ -64,6 +68,58 @@ def test_remarks_that_weigh_nothing_stay_remarks(text: str) -> None:
     match = sections.read(text, material_kind="metal")
     assert match.section is not None
     assert match.match in ("exact", "alias")
+
+
+#: Blocks, slabs and timber in cm or m, by their material's kind.
+CENTIMETRES = (
+    ("Block 60x40x15", "stone"), ("60x40x15", "stone"), ("step 120x35x15", "stone"), ("slab 60x60x5", "concrete"),
+    ("Platte 50x50x5", "concrete"), ("block 2x1x1", "concrete"), ("1.20x0.60x0.20", "stone"), ("block 120x60x20", "stone"),
+    ("stone 4x2x1 ft", "stone"),
+    ("10/20", "wood"),
+    ("beam 20x20", "wood"), ("solive 7x20", "wood"), ("madrier 8x23", "wood"), ("20x30", "wood"), ("45x195x6", "wood"),
+)  # fmt: skip
+MILLIMETRES = (
+    ("Block 600x300x200", "stone"), ("brick 215x102.5x65", "masonry"), ("slab 600x600x50", "concrete"), ("25x38", "wood"),
+    ("45x195", "wood"),
+    ("2x6", "wood"), ("KVH 6/24", "wood"), ("latte 24x48", "wood"), ("block 20x20x20", "metal"), ("PL 10x200x300", "metal"),
+    ("PL 200x300x6", "metal"), ("Tube 12x1", "metal"), ("pipe 15x0.7", "metal"), ("PL 3x100x100", "metal"),
+)  # fmt: skip
+
+
+@pytest.mark.parametrize(("text", "kind"), CENTIMETRES)
+def test_sizes_in_centimetres_or_metres_ask_for_their_unit(text: str, kind: str) -> None:
+    """A counterweight of 2x1x1 is no crumb of 2 mm: what nobody makes in mm is refused, and says what to write."""
+    match = sections.read(text, material_kind=kind)
+    assert match.section is None
+    assert "unit" in match.reason
+
+
+@pytest.mark.parametrize(("text", "kind"), MILLIMETRES)
+def test_usual_sizes_in_millimetres_are_still_read(text: str, kind: str) -> None:
+    """Sizes that people make stay sizes in mm."""
+    assert sections.read(text, material_kind=kind).section is not None
+
+
+def test_a_bare_nominal_size_of_pipe_is_covered() -> None:
+    """`pipe 100x6.3` may be DN 100, of 114.3 outside: heavy covers it, and the row is assumed."""
+    match = sections.read("pipe 100x6.3", material_kind="metal")
+    assert match.match == "ambiguous"
+    assert match.section is not None
+    mass = match.section.kg_per_m()
+    assert mass is not None
+    assert mass.heavy >= 16.78
+
+
+@pytest.mark.parametrize(
+    ("text", "least"),
+    [("titanium zinc new", 7000), ("glin A", 2600), ("steel fibre reinforced concrete", 2350), ("nichrome", 8000), ("stal saturated", 7000),
+     ("Alu black", 2600), ("PTFE bronze, painted", 3000), ("lead rubber sheet", 3000), ("toughened glass steel", 7000),
+     ("aluminium steel", 7000), ("olive wood steel", 7000), ("plasterboard steel", 7000)],
+)  # fmt: skip
+def test_a_text_that_names_something_heavier_is_never_the_lighter(text: str, least: float) -> None:
+    """Refused, or no lighter than what its words say."""
+    found = materials.lookup(text).material
+    assert found is None or found.density.high >= least
 
 
 def test_a_metre_belongs_to_the_length_only() -> None:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import pytest
-from hypothesis import given
+from hypothesis import example, given
 from hypothesis import strategies as st
 from weighing_rows import BEAM, TUBE, Rows
 
@@ -25,6 +25,7 @@ def test_a_hydrotest_by_hand() -> None:
 
 
 @given(st.floats(-60, 90), st.floats(-60, 90))
+@example(20.0, 20.0)
 def test_heaviest_is_at_least_every_temperature_between(a: float, b: float) -> None:
     """Whatever the coldest and warmest are, no temperature between them has denser or lighter water than what is covered."""
     low, high = sorted((a, b))

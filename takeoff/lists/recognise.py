@@ -24,6 +24,8 @@ if TYPE_CHECKING:
 _LENGTH_BEHIND = re.compile(
     r"(.{2,60}?)\s*(?:[x×*,;-]|\bl\s*=|\blength\b|\blg\b)?\s*(\d{1,6}(?:[.,]\d{1,3})?)\s*(mm|cm|m)(?:\s+long)?", re.IGNORECASE
 )
+#: a length in feet behind a section (``2 x 2 x 1/8 angle x 20'``)
+_FEET_BEHIND = re.compile(r"(.{2,60}?)\s*[x×]\s*(\d{1,3}(?:\.\d{1,3})?)\s?'(?:[- ]?(\d{1,2}(?:\.\d{1,3})?)\")?")
 _MM = {"mm": 1.0, "cm": 10.0, "m": 1000.0}
 #: how the sections answer a word that is a family of theirs
 _FAMILY = "names a family, not a size"
@@ -32,6 +34,14 @@ _SIZES_ONLY = re.compile(r"[\d.,x×*/'\"½¼¾⅛⅜⅝⅞Øø∅+~-]+(?:mm|cm|m
 _WORD = re.compile(r"[^\W_][^\s,;()\[\]]*[^\W_]")
 #: Kinds of material that sections are made of.
 _SECTIONED = frozenset(("metal", "plastic", "composite", "elastomer", "other"))
+#: Families of bars that are metal where nothing says another thing: C45 is also a class of timber.
+_OF_METAL = frozenset(("HEX", "RD", "SQ"))
+_REBAR_GRADE = re.compile(r"40|60|75|80|100|280|300|420|520|550")
+#: Ordinary hull steels, and shapes that are steel beside one.
+_HULL_GRADES = frozenset("ABDE")
+_STEEL_SHAPES = frozenset(("PL", "FL", "RD", "SQ", "L", "T"))
+_STIFFNESS = re.compile(r"\d\.\d\s?E", re.IGNORECASE)
+_ENGINEERED = re.compile(r"\b(?:LVL|PSL|LSL|glulam)\b", re.IGNORECASE)
 #: A metal of the section text is another than the column's where it is heavier by so much.
 _HEAVIER = 1.05
 
@@ -128,13 +138,22 @@ class Recogniser:
             return None
         found = sections.read(text, hollow=self.job.names.hollow, material_kind=kind, heading=heading, own=self.own_sections)
         behind = _LENGTH_BEHIND.fullmatch(text) if found.section is None and len(text) <= 80 else None
+        feet = _FEET_BEHIND.fullmatch(text) if found.section is None and len(text) <= 80 else None
+        if feet is not None:
+            front = sections.read(feet.group(1), hollow=self.job.names.hollow, material_kind=kind, heading=heading, own=self.own_sections)
+            if front.section is not None and front.length_mm is None and "length" in front.section.needs:
+                return replace(front, query=text, length_mm=float(feet.group(2)) * 304.8 + float(feet.group(3) or 0.0) * 25.4)
         if behind is None:
             return found
         # A section with the piece's length behind it (``SHS 40x40x3 x 1200mm``), only where that length has its unit.
         front = sections.read(behind.group(1), hollow=self.job.names.hollow, material_kind=kind, heading=heading, own=self.own_sections)
         if front.section is None or front.length_mm is not None or "length" not in front.section.needs:
             return found
-        return replace(front, query=text, length_mm=float(behind.group(2).replace(",", ".")) * _MM[behind.group(3).lower()])
+        length = float(behind.group(2).replace(",", ".")) * _MM[behind.group(3).lower()]
+        # A size smaller than one in front of it is rather a thickness (``Form panel 150x50 spruce 22 mm``).
+        if length < max((float(n.replace(",", ".")) for n in re.findall(r"\d{1,6}(?:[.,]\d{1,3})?", behind.group(1))), default=0.0):
+            return found
+        return replace(front, query=text, length_mm=length)
 
     def _named_in(self, text: str | None, section: SectionMatch | None, found: Recognition) -> str | None:
         """A material named in the section text (``3/4" plywood``, ``30x30x2 S235 square tube``), where just one is."""
@@ -143,7 +162,8 @@ class Recogniser:
         hint = section.section.material_hint if section and section.section else None
         named: dict[str, str] = {}
         words = [w for w in re.split(r"[\s,;()]+", text) if len(w) > 1 and not _SIZES_ONLY.fullmatch(w)]
-        for word in (" ".join(words), *(" ".join(pair) for pair in itertools.pairwise(words)), *words):
+        parts = [part for word in words if "-" in word for part in word.split("-") if len(part) > 2 and part.isalpha()]
+        for word in (" ".join(words), *(" ".join(pair) for pair in itertools.pairwise(words)), *words, *parts):
             match = materials.lookup(word, hint=hint, own=self.own)
             if match.material is not None and _is_of_section(word, section):
                 continue
@@ -177,8 +197,17 @@ class Recogniser:
     def _look_up(self, text: str | None, section: SectionMatch | None) -> MaterialMatch | None:
         if text is None:
             return None
-        hint = section.section.material_hint if section and section.section else None
-        return materials.lookup(text, hint=hint, own=self.own)
+        known = section.section if section else None
+        hint = known.material_hint if known else None
+        if known is not None and hint is None and known.family in _OF_METAL:
+            hint = "metal"
+        found = materials.lookup(text, hint=hint, own=self.own)
+        if found.match == "none" and section is not None:
+            spelled = _grade_beside(text, known, section.query)
+            again = materials.lookup(spelled, hint=hint, own=self.own) if spelled is not None else found
+            if again.material is not None:
+                return replace(again, query=text, match="similar")  # assumed, and said
+        return found
 
     def _take_section(self, match: SectionMatch | None, text: str | None, found: Recognition) -> None:
         if match is None:
@@ -309,6 +338,19 @@ class Recogniser:
         if match.material.own:
             found.notes.append((Finding("note", "own-material", "the density is from your own table", read=text), "material"))
         found.material = match.material
+
+
+def _grade_beside(text: str, section: Section | None, section_text: str) -> str | None:
+    """A material that only its section makes plain: 60 beside a reinforcing bar, 2.0E beside LVL, hull steel A beside steel."""
+    plain = text.strip()
+    if section is not None and section.family == "REBAR" and _REBAR_GRADE.fullmatch(plain):
+        return f"Grade {plain}"
+    if section is not None and plain in _HULL_GRADES and (section.material_hint == "metal" or section.family in _STEEL_SHAPES):
+        return "S235"
+    engineered = _ENGINEERED.search(section_text)
+    if engineered and _STIFFNESS.fullmatch(plain):
+        return engineered.group(0)
+    return None
 
 
 def _by_density(metal: tuple[str, float, str]) -> float:

@@ -239,7 +239,7 @@ class _Search:
 
     def _suggested(self, name: NormalName) -> MaterialMatch:
         """The nearest names, by likeness of the whole and by known names inside the text."""
-        tokens = name.split()
+        tokens = [token.strip(",") for token in name.split()]
         if words().negations.intersection(tokens):
             return MaterialMatch(self.text, "none", 0.0, None, reason="the text says what it is not")
         if words().more.intersection(tokens):
@@ -249,6 +249,8 @@ class _Search:
         index = table().index
         folded = NormalName(fold(name))
         for suggestion in suggest(folded, index.with_digits(digits_of(folded)), floor=FLOOR, limit=12):
+            if _is_part_of(folded, suggestion.name):
+                continue
             for key in index.keys(suggestion.name):
                 better = suggestion.score > scores.get(key, 0.0)
                 if better and index.same_digits(suggestion.name, key, digits):
@@ -258,7 +260,10 @@ class _Search:
         # One letter more or less in a short designation is another designation: E24 and EN24.
         too_short = len(fold(name)) < (_LONG_CODE if digits else _LONG_WORD)
         # Names of another group among the words: the likeness of the whole says nothing (`stainless oak`).
-        strangers = bool(ranked) and any(not is_general(k) and group_of(k) != group_of(ranked[0][0]) for k in inside)
+        strangers = bool(ranked) and (
+            any(group_of(k) != group_of(ranked[0][0]) and self._counts(k, ranked[0][0]) for k in inside)
+            or any(self._heavier(token, ranked[0][0]) for token in tokens)
+        )
         if ranked and ranked[0][1] >= SIMILAR and not too_short and not strangers:
             fitting = [(k, s) for k, s in ranked if self.hint in (kind_of(k), family_of(k))] if self.hint else []
             lead = (fitting or ranked) if fitting and fitting[0][1] >= SIMILAR else ranked
@@ -282,6 +287,15 @@ class _Search:
             "no material of the table has such a name",
         )  # fmt: skip
 
+    def _heavier(self, token: str, likely: str) -> bool:
+        """Whether one word is the name of something heavier, of another group (`toughened glass steel`)."""
+        keys = self._keys(NormalName(token)) if len(token) > 2 and token not in words().set_aside else {}
+        return bool(keys) and all(group_of(k) != group_of(likely) and _heavy(k) > _heavy(likely) for k in keys)
+
+    def _counts(self, named: str, likely: str) -> bool:
+        """Whether a name among the words speaks against the likeness of the whole: one of a kind, or a general one that is heavier."""
+        return not is_general(named) or _heavy(named) > _heavy(likely)
+
     def _inside(self, tokens: list[str]) -> tuple[dict[str, float], bool]:
         """The longest known names among the words, and whether one may be taken: a single one, no number left over, no
         mere general word such as steel or glass, which an unknown word beside it may turn into something else, and no
@@ -301,8 +315,25 @@ class _Search:
                 rest = tokens[:start] + tokens[start + size :]
                 unread = any(c.isdigit() for token in rest for c in token)
                 other = any(family_of(key) not in groups[t] for t in rest if t in groups for key in keys)
+                other = other or self._others_named(rest, keys)
                 sure = sure and not unread and not other and not (size == 1 and window[0] in groups)
                 found.update(dict.fromkeys(keys, round(100.0 * len("".join(window)) / whole, 1)))
             if found:
                 return found, sure
         return {}, False
+
+    def _others_named(self, rest: list[str], keys: dict[str, bool]) -> bool:
+        """Whether a word beside a known name is itself the name of something of another group (`lead` beside `rubber sheet`)."""
+        groups = {group_of(key) for key in keys}
+        named = [self._keys(NormalName(token)) for token in rest if len(token) > 2 and token not in words().set_aside]
+        return any(found and groups.isdisjoint(group_of(key) for key in found) for found in named)
+
+
+def _heavy(key: str) -> float:
+    return by_key(key).density.high
+
+
+def _is_part_of(asked: str, known: str) -> bool:
+    """Whether a single word is another with letters before it: nichrome is no chrome, ferrosilicon no silicon."""
+    longer, shorter = (asked, known) if len(asked) > len(known) else (known, asked)
+    return len(longer) - len(shorter) > 1 and longer.isalpha() and longer.endswith(shorter)

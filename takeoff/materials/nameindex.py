@@ -74,7 +74,11 @@ class NameIndex:
         """Keys that answer to a name, each with whether it is an exact designation."""
         folded = fold(name)
         found: dict[str, bool] = {}
+        # glin A is no glina: a lone letter belongs to the word before it only where the table writes it so.
+        apart = len(name) > 1 and name[-2] == " " and name[-1].isalpha() and folded.isalpha()
         for key, exact in self._entries.get(folded, ()):
+            if apart and not any(normal_name(t).replace("-", " ") == name for t in self._texts(key)):
+                continue
             if not found.get(key, False) and self.same_digits(folded, key, digits_of(name)):
                 found[key] = exact
         return found

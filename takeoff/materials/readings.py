@@ -44,6 +44,7 @@ def _reduced(tokens: list[str], known: Words) -> Iterator[tuple[list[str], froze
         yield headless, None
     if len(headless) > 1 and re.fullmatch(PRODUCT_STANDARD, headless[0]):
         yield [t for t in headless[1:] if t not in known.standards], METALS
+    yield [t for t in tokens if t not in known.set_aside or t == "zinc"], None  # titanium zinc; elsewhere zinc is a finish
     kept = [t for t in tokens if t not in known.set_aside]
     yield kept, None
     yield [t for t in kept if not re.fullmatch(STRENGTH_CLASS, t)], None
@@ -51,6 +52,8 @@ def _reduced(tokens: list[str], known: Words) -> Iterator[tuple[list[str], froze
     yield plain, None
     groups = [known.groups[t] for t in plain if t in known.groups]
     if groups:
-        allowed = frozenset.intersection(*groups) or frozenset.union(*groups)
+        allowed = frozenset.intersection(*groups)
+        if not allowed:
+            return  # toughened glass steel: two groups, and no word says which is meant
         yield [t for t in plain if t not in known.groups], allowed
         yield [t for t in kept if t not in known.groups], allowed

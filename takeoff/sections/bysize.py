@@ -22,6 +22,8 @@ LEAST_FLAT_MM, LEAST_BAR_MM, LEAST_PLATE_MM, LEAST_THIN_PLATE_MM = 7.0, 3.0, 9.0
 
 #: A plate told whole whose sizes all stay below this, and no thicker than the second, is as likely in inches (1.5x12x24).
 LEAST_PLAN_MM, THIN_MM = 49.0, 3.0
+#: A size up to this in front of another may be the thickness itself.
+MOST_THICKNESS_MM = 40.0
 #: No pane is so narrow; VSG 2x6x1000 is two panes of 6 mm.
 LEAST_PANE_MM = 25.0
 #: Beyond this nobody gives a plate's size in inches.
@@ -124,6 +126,8 @@ def read_sheet(kind: str, p: Parsed, given: Given) -> Answer:
     if len(chains) == 2 and {len(c.numbers) for c in chains} == {1, 2} and thickness is None:
         # "Sheet 1.5 mm | 2x1 m", "12 mm plate 200x450": the lone number is the thickness.
         lone, pair = sorted(chains, key=lambda c: len(c.numbers))
+        if pair is chains[0] and min(pair.mm) <= MOST_THICKNESS_MM and not lone.numbers[0].unit and min(pair.mm) > lone.mm[0]:
+            raise Refused(f"{lone.texts[0]} may be a thickness or a length: write its unit", "ambiguous-section")  # PL 10x200 6.0
         values = [lone.mm[0], *pair.mm]
         if lone.numbers[0].unit == "in" and pair.mm[0] == 4 and pair.mm[1] in (8, 9, 10) and kind == "panel":
             values[1:] = [n * 304.8 for n in pair.mm]  # a US sheet of 4 by 8 feet

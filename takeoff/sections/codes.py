@@ -53,6 +53,8 @@ def read_code(p: Parsed) -> Answer | None:
         raise Refused("several bars or fabrics are named", "ambiguous-section", tuple(Candidate(row.designation, 90.0) for _, row in found))
     letters, row = found[0]
     strange = [f"{c[0]}{c[1]}" for c in p.codes if c[0] != letters and float(c[1]) < _LEAST_STRENGTH]
+    strange += [t.raw for name, t in p.labels.items() if name in ("diameter", "width", "height")]  # Ø500 t10
+    strange += ["Ø" for c in p.chains if c.after_diameter]
     if strange or {"plate", "flat", "sheet"} & set(p.kinds):
         beside = strange[0] if strange else "plate, flat or sheet"  # b200 t10, plate t10: sizes behind their letters
         raise Refused(f"it may be a bar or a fabric, or sizes beside {beside}", "ambiguous-section", (Candidate(row.designation, 80.0),))

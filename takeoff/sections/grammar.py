@@ -14,7 +14,7 @@ from takeoff.sections.catalogue import Table
 from takeoff.sections.parse import Chain, Parsed, parse, words_only
 from takeoff.sections.rolled import HOLLOW_FAMILIES, read_indian_parallel, read_rolled
 from takeoff.sections.section import Candidate, Match, SectionMatch
-from takeoff.sections.words import BEFORE_SIZES, INNER_WORDS
+from takeoff.sections.words import BEFORE_SIZES, INNER_WORDS, PROFILED
 
 #: Families of bars and plates, which may have any size.
 MADE_TO_SIZE = frozenset(("FL", "PL", "RD", "SQ", "HEX"))
@@ -22,6 +22,7 @@ MADE_TO_SIZE = frozenset(("FL", "PL", "RD", "SQ", "HEX"))
 _TUBE_FAMILIES = frozenset((*HOLLOW_FAMILIES, "HSS"))
 #: Nominal pipe sizes whose outside diameter is larger (ASME B36.10M).
 _NOMINAL_INCHES = frozenset((0.125, 0.25, 0.375, 0.5, 0.75, 1, 1.25, 1.5, 2, 2.5, 3, 3.5, 4, 5, 6, 8, 10, 12))
+_SIZED = MADE_TO_SIZE | frozenset(HOLLOW_FAMILIES)
 _TUBE_KINDS = frozenset(("pipe", "round tube", "tube", "box", "square tube", "rectangular tube"))
 
 #: Kinds in the order in which they win over one another when a text holds several ("cap plate", "square bar").
@@ -173,7 +174,13 @@ def _resolve(p: Parsed, cut: list[tokens.Token], text: str, given: Given, headin
     if p.mass is not None and (p.bought or not p.families):
         return stated_mass(p, text)
     families = list(dict.fromkeys(f for f, _ in p.families))
-    if _is_coded(p, families, text):
+    tube = bool(_TUBE_FAMILIES & set(families) or (not families and _TUBE_KINDS & set(p.kinds)))
+    coded = _is_coded(p, families, text)
+    alone = coded and not set(families) - {"M", "T", "HEX"}
+    several = len(families) > 1 and not alone
+    if not several and _kind(p, given) != "tread" and (reason := surplus.why_more(cut, tube=tube, designated=bool(families), coded=alone)):
+        raise Refused(reason, "unknown-section", _near(p, text))
+    if coded:
         from takeoff.sections import kinds
 
         special = kinds.read_special(p, text, families, given)
@@ -197,11 +204,16 @@ def _resolve(p: Parsed, cut: list[tokens.Token], text: str, given: Given, headin
     variants = {variant for _, variant in p.families if variant}
     if len(variants) > 1:
         raise Refused("several sections are named: " + ", ".join(f"{f} {v}" for f, v in p.families), "ambiguous-section")
-    tube = bool(_TUBE_FAMILIES & set(families) or (not families and _TUBE_KINDS & set(p.kinds)))
-    if _kind(p, given) != "tread" and (reason := surplus.why_more(cut, tube=tube, designated=bool(families))):
-        raise Refused(reason, "unknown-section", _near(p, text))
+    metal = given.material == "metal" or (given.material is None and p.metal)
+    if metal and not families and _kind(p, given) in ("board", "sheet", "plate", "panel") and {t.text for t in cut} & PROFILED:
+        raise Refused("profiled sheet is told by its own mass, not by a flat sheet's sizes: give a unit mass", "unknown-section")
     if tube and not {"inner diameter", "outer diameter"} & p.labels.keys() and p.nominal is None:
         _outside_only(p, cut, families)
+    if set(families) <= _SIZED:
+        from takeoff.sections import unitless
+
+        if why := unitless.why_other_unit(p, families, _kind(p, given), given.material):
+            raise Refused(why, "implausible-size", _near(p, text))
     rolled = bool(families) and not tube and not MADE_TO_SIZE & set(families)
     if rolled and "box" in p.kinds:
         raise Refused("a box of rolled sections is more than one of them: give each its row", "unknown-section", _near(p, text))

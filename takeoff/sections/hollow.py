@@ -105,10 +105,21 @@ def read_hollow(families: tuple[str, ...], p: Parsed, given: Given, *, listed_on
         raise Refused(f"no {chosen[0]} of that size in the tables" + _standard_named(p), "unknown-section", (*near(), meant))
     outer = values[0] if len(values) == 2 and chosen == ("CHS",) else (values[0], values[-2])
     section = made.tube(outer, values[-1], note="not a listed size: computed from its sizes")
+    if chosen == ("CHS",) and (nominal := _nominal_outside(keys[0], p)) is not None and numbers and not also:
+        # pipe 100x6.3: 100 may be the nominal size, of 114.3 outside.
+        return Answer(covering([section, made.tube(nominal, values[-1])]), "ambiguous", length)
     if also and len(values) == 2:
         section = covering([section, made.tube((values[0], values[0]), values[1])])
         return Answer(section, "ambiguous", length)
     return Answer(section, "alias", length)
+
+
+def _nominal_outside(size: str, p: Parsed) -> float | None:
+    """The outside diameter, mm, of the pipe whose DN is this bare number; None where no pipe is named, or none has it."""
+    if not {"pipe", "round tube"} & set(p.kinds) or any(t.unit for c in p.chains for t in c.numbers):
+        return None
+    rows = catalogue.find("PIPE", "", (f"DN{size}",))
+    return max((float(row.cells["h_mm"]) for row in rows), default=None)
 
 
 def nearest_hollow(families: tuple[str, ...], values: list[float]) -> Callable[[], tuple[Candidate, ...]]:

@@ -176,6 +176,8 @@ def read_bare(p: Parsed, text: str, given: Given) -> Answer:
     if round_sign and (count or p.labels):
         label = p.labels.get("diameter") or p.labels.get("outer diameter")
         walled = label is not None and count == 1 and chain.mm[0] < label.mm / 2  # 219.1Ø x 6.3
+        if walled and p.counted:
+            raise Refused(f"{chain.texts[0]} may be a count or a wall", "ambiguous-section")
         if count >= 2 or walled or "inner diameter" in p.labels or "wall" in p.labels or "thickness" in p.labels:
             return read_hollow(("CHS",), p, given, listed_only=False)
         return MADE_FAMILIES["RD"](p, given)
@@ -202,7 +204,7 @@ def read_bare(p: Parsed, text: str, given: Given) -> Answer:
         return read_board(p, given)
     if not p.others and "legs" in p.properties and count >= 2:
         return by_numbers(("L",), "", one_chain(p, "angle"), given)
-    if "letter" in p.properties and count:
+    if "letter" in p.properties and p.letters and count:  # a heading's letters (b/h) are no letters of the text
         return read_letter(p, given)
     if given.material is None and not p.metal and plain_lumber and count == 2 and len(p.chains) == 1 and goods.is_timber_size(*chain.mm):
         flats = catalogue.find("FL", "", (catalogue.canonical(f"{max(chain.mm):.4f}"), catalogue.canonical(f"{min(chain.mm):.4f}")))

@@ -104,6 +104,8 @@ _GAUGED = frozenset("sheet sheets plate plates galv galvanised galvanized tube t
 _APPROXIMATE = frozenset("~≈≥≤<>±?")
 #: Two bare sizes beyond this beside a fraction are hardly inches (600x1200x3/8").
 MOST_INCHES = 144.0
+#: A bare length below this is in metres or feet.
+LEAST_PIECE = 20.0
 #: A bare size from here on is in mm, whatever stands behind it in metres.
 LEAST_MM = 10.0
 #: "(" to ")" only repeats sizes in other units, or is a remark.
@@ -116,6 +118,7 @@ class Chain:
 
     numbers: list[Token] = field(default_factory=list)
     joins: list[str] = field(default_factory=list)
+    spaced: list[bool] = field(default_factory=list)
     bracketed: bool = False
     after_diameter: bool = False
     kg: bool = False
@@ -174,6 +177,7 @@ class Parsed:
     stone: bool = False
     others: list[str] = field(default_factory=list)
     problem: str = ""
+    counted: bool = False
 
     @property
     def open_number(self) -> Token | None:
@@ -253,6 +257,7 @@ class Parser:
             if number.kind != "num":
                 break
             chain.joins.append(join.text)
+            chain.spaced.append(not join.glued)
             chain.numbers.append(number)
             self.at += 2
         join = self.peek(1)
@@ -448,8 +453,8 @@ class Parser:
             if words.PROPERTY_WORDS[text] == "round":
                 self.diameter = True
             known = True
-        variant = len(text) <= 2 and text.upper() in _ALL_VARIANTS and not self.small_word(token)
-        if variant or words.PROPERTY_WORDS.get(text) == "letter":
+        lettered = len(text) <= 2 and text.upper() in _ALL_VARIANTS and not self.small_word(token)
+        if lettered or words.PROPERTY_WORDS.get(text) == "letter":
             out.letters.append(text.upper())
             known = True
         before = self.peek(-1)
@@ -538,6 +543,8 @@ class Parser:
                 self.at += letter == (number.text if number is not None else "")
                 return True
         if token.text in words.NOMINAL_WORDS and number is not None and number.kind == "num":
+            if self.out.nominal is not None:
+                self.out.problem = "two pipes are named"
             self.out.nominal = (words.NOMINAL_WORDS[token.text], number)
             self.at += 1
             after, size = self.peek(1), self.peek(2)
@@ -701,6 +708,10 @@ class Parser:
         return True
 
     def label(self, name: str, number: Token) -> None:
+        if name == "length" and not number.unit and number.value < LEAST_PIECE and not self.solid:
+            self.out.problem = f"a length of {number.raw} mm is implausible: write its unit"
+        if name == "diameter" and number.raw and len(self.out.chains) == 1 and len(self.out.chains[0].numbers) == 1:
+            self.out.counted = self.out.chains[0].numbers[0].value.is_integer()  # 4 Ø16: a count, or a wall
         if name in self.out.labels and self.out.labels[name].mm != number.mm:
             self.out.problem = f"the {name} is given twice"
         self.out.labels[name] = number

@@ -32,6 +32,8 @@ def read_pipe(p: Parsed, given: Given) -> Answer:
             p.nominal, p.chains = None, [Chain(numbers, [""] * (len(numbers) - 1))]
             return read_hollow(("CHS",), p, given, listed_only=False)
         wall = numbers.pop(0) if numbers and not p.schedule else None
+        if wall is not None and any(len(c.numbers) == 1 for c in remark):
+            raise Refused("a number in brackets is left over: a count, perhaps", "ambiguous-section")
     else:
         if not numbers and (label := p.labels.get("diameter")) is not None and label.unit == "in":
             numbers.append(p.labels.pop("diameter"))  # 3"Ø SCH 40

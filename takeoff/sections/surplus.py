@@ -12,7 +12,8 @@ from takeoff.sections.words import BOUGHT, FAMILY_WORDS, KIND_WORDS
 #: Several pieces in one, in nine languages.
 SEVERAL: frozenset[str] = frozenset(
     (
-        "assembly weldment doubled twins pairs boxed triple triples tripled quadruple quad bundle bundles bundled pack packs "
+        "weldment doubled twin twins pair layers lagen couches capas strati duo "
+        "pairs boxed triple triples tripled quadruple quad bundle bundles bundled pack packs "
         "packet stack cluster multipack compound plated gekoppelt verdoppelt zusammengesetzt doppel doppelt doppelte doppelter "
         "zwilling zwillings dreifach vierfach paar paarweise bund paket jumele jumeles jumelee jumelees doublee doublees paire "
         "paires fagot paquet doble dobles pareja paquete doppio doppia doppi doppie coppia coppie fascio pacco dubbel dubbele "
@@ -27,6 +28,8 @@ COUNTS: frozenset[str] = frozenset(
         "twee drie vijf dwa dwie trzy cztery duas dois tva fyra fem both couple"
     ).split()
 )
+#: A count wherever it stands.
+COUNTED: frozenset[str] = frozenset("two three four zwei drei deux trois twee drie dwa trzy duas tva".split())
 #: Filled, lined, encased: what is in or round it weighs as well.
 FILLED: frozenset[str] = frozenset(
     (
@@ -37,8 +40,14 @@ FILLED: frozenset[str] = frozenset(
     ).split()
 )
 #: The same, beside a tube only: elsewhere they name boards and panels.
-IN_TUBES: frozenset[str] = frozenset("lining infill fill filling jacket fins insulated traced".split()) | frozenset(
+IN_TUBES: frozenset[str] = frozenset(
+    "lining infill fill filling jacket fins insulated insulation lagged lagging traced "
     "concrete beton betong hormigon calcestruzzo betao grout mortar".split()
+)
+#: Fittings told by the size of their pipe, which weigh more than its length.
+FITTINGS: frozenset[str] = frozenset(
+    "tee tees coupling couplings union socket sockets manifold elbow elbows reducer reducers flange flanges valve valves weldolet olet "
+    "bogen rohrbogen flansch muffe reduzierung coude bride manchon codo brida gomito raccordo flangia kolano kolnierz trojnik".split()
 )
 #: The same, beside a designation of the tables only: `reinforced concrete 300x300` and a shim set have rows of their own.
 WITH_DESIGNATION: frozenset[str] = frozenset(
@@ -69,9 +78,9 @@ _PARTS: frozenset[str] = frozenset(
 _BACKS: frozenset[str] = frozenset("back backs dos rucken ruecken rug ryggen rygg espalda espaldas schiena".split())
 
 
-def why_more(tokens: list[Token], *, tube: bool, designated: bool) -> str:
+def why_more(tokens: list[Token], *, tube: bool, designated: bool, coded: bool = False) -> str:
     """Why the text tells of more than its section; empty where it does not. `tube`: the section is hollow; `designated`: it
-    is named by a family of the tables."""
+    is named by a family of the tables; `coded`: it is a bar or a fastener, whose nuts and washers its own reader knows."""
     said = [(i, t) for i, t in enumerate(tokens) if t.kind == "word"]
     for position, (index, token) in enumerate(said):
         text = token.text
@@ -79,17 +88,24 @@ def why_more(tokens: list[Token], *, tube: bool, designated: bool) -> str:
         lettered = bool(after) and after[0].text in ("t", "te") and text not in ("boxed", "plated")
         if text == "plated" and position and said[position - 1][1].text in _PLATING:
             continue
-        if designated and text in WITH_DESIGNATION:
+        if not coded and text == "assembly":
             return f"{token.raw!r} tells of more than the section: give each part its row, or a unit mass"
-        if (text in SEVERAL and not lettered) or (text in COUNTS and index == 0 and len(said) > 1 and not lettered):
+        if designated and not coded and text in WITH_DESIGNATION:
+            return f"{token.raw!r} tells of more than the section: give each part its row, or a unit mass"
+        counted = text in COUNTED or (text in COUNTS and index == 0 and len(said) > 1)
+        if (text in SEVERAL or counted) and not lettered:
             return f"{token.raw!r} tells of several pieces, or of more than the section: give each its row, or a unit mass"
+        if tube and text in FITTINGS:
+            return f"{token.raw!r} is a fitting, heavier than its pipe is long: give a unit mass"
         if text in FILLED or (tube and text in IN_TUBES) or (text == "full" and after and after[0].text == "of"):
             return f"{token.raw!r} says that more is in or round it than the section: give each its row, or a unit mass"
+        if coded:
+            continue
         if text in WITH and _stands_alone(tokens, index, text) and (_is_part(after) or not {t.text for t in after[:3]} & WEIGHTLESS):
             return f"{token.raw!r} says that something comes with the section: give it its own row, or a unit mass"
         if text in AND and _is_part(after):
             return f"{token.raw!r} says that something comes with the section: give it its own row, or a unit mass"
-    for index, token in enumerate(tokens):
+    for index, token in enumerate([] if coded else tokens):
         beside = tokens[index - 1 : index] + tokens[index + 1 : index + 2]
         if token.text == "+" and len(beside) == 2 and all(t.kind == "num" for t in beside):
             return "a sum of sizes tells of several pieces: give each its row, or a unit mass"

@@ -83,6 +83,9 @@ _SIGNS = str.maketrans(
 #: Ways of writing that one look at the whole text must settle, behind what gives them away: words with a figure or a
 #: stroke in them, and the open bracket that stands for a channel in Asian lists (``[100x50x5x7.5``, ``[20a``).
 _SPELT = (
+    (re.compile(r"\b(?:vkt|4-?kt|vierkant|quadrat)\.?[\s-]{1,3}rohr|\bvkt\.?rohr", re.IGNORECASE), "vierkantrohr"),
+    (re.compile(r"\b(?:rechteck|re)\.?[\s-]{1,3}rohr", re.IGNORECASE), "rechteckrohr"),
+    (re.compile(r"\b(?:rund|rd)\.?[\s-]{1,3}rohr|\brd\.?rohr", re.IGNORECASE), "rundrohr"),
     (re.compile(r"\b4-?kt\b", re.IGNORECASE), "vkt"),
     (re.compile(r"\b6-?kt\b", re.IGNORECASE), "skt"),
     (re.compile(r"\ball[ -]thread", re.IGNORECASE), "allthread"),
@@ -105,7 +108,7 @@ _VULGAR = {
     "⅓": "1/3",
     "⅔": "2/3",
 }
-_SPELT_SIGNS = ("kt", "/d", "strong", "heavy", "thread", "osb", "t&g")
+_SPELT_SIGNS = ("kt", "rohr", "/d", "strong", "heavy", "thread", "osb", "t&g")
 _SCAN = re.compile(r"\d+(?:[.,]\d+)*|[^\W\d_]+|\S")
 _DENOMINATORS = frozenset((2, 4, 8, 16, 32, 64))
 _SEPARATORS = frozenset(("x", "*", "/", "|", "by"))
@@ -249,6 +252,7 @@ def _fractions(tokens: list[Token]) -> list[Token]:
             and "." not in tokens[index + 2].text
             and "." not in token.text
             and token.value < tokens[index + 2].value
+            and token.value % 2 == 1  # 2/4" is two of 4", and no half
             and not (index + 3 < len(tokens) and tokens[index + 3].text == "/" and tokens[index + 3].glued)
             and not (out and out[-1].text == "/" and token.glued)
         ):

@@ -46,7 +46,7 @@ _FAMILIES: dict[str, str] = _by_word(
         "L": "l rsa ea ua uka isa lpn ld",
         "T": "t te ukt",
         "SHS": "shs qro qr",
-        "RHS": "rhs rro",
+        "RHS": "rhs rro rr",
         "CHS": "chs",
         "FL": "fl fb fla flt fms plst bfl isf",
         "PL": "pl plt bl",
@@ -275,6 +275,7 @@ LETTERED: frozenset[str] = frozenset(
 #: Words that change what the piece is, so that the section's own mass would be wrong.
 CHANGED: frozenset[str] = frozenset(
     (
+        "sigma sigmaprofil sigmaprofile sigmaprofiel omega omegaprofil omegaprofiel hutprofil tophat "
         "oval ovale ovalrohr ovaal triangular built bulb bulbe bulbflat wulstflach wulstflachstahl hollandprofil "
         "caillebotis castellated cellular composite corrugated double expanded fabricated "
         "gitterrost grating half halved haunch haunched hollowcore honeycomb insulated laced laminated lip lipped lochblech louvre mesh "
@@ -334,3 +335,7 @@ STONE_WORDS: frozenset[str] = frozenset(
 )
 #: Words that say the piece is of glass.
 GLASS_WORDS: frozenset[str] = frozenset(("glas glass glazing szklo verre vetro vidrio vidro").split())
+#: Sheet of metal for these is profiled, which takes more sheet than the width it covers.
+PROFILED: frozenset[str] = frozenset(
+    "roof roofing cladding decking deck dach dachblech fassade bardage toiture bac cubierta fachada copertura dak gevel cobertura".split()
+)

@@ -72,7 +72,8 @@ def over(vessel: Material | None, contents: Sequence[Material], range_C: tuple[f
     found = [(t, fill) for liquid in contents for t in grid if (fill := fill_kg_m3(vessel, liquid, t)) is not None]
     ends = [materials.density_at(liquid, t) for liquid in contents for t in (low, high)]
     reason = next((end.reason for end in ends if end.density is None), "")
-    if len({t for t, _ in found}) < 2:
+    # One temperature of several says nothing of the range; a job that is at 20 °C throughout has only the one.
+    if len({t for t, _ in found}) < min(2, len(set(grid))):
         return Filled(None, None, REFERENCE_C, REFERENCE_C, reason)
     light = min(found, key=lambda pair: pair[1].low)
     heavy = max(found, key=lambda pair: pair[1].high)
