@@ -33,8 +33,13 @@ SHEETS_FT = frozenset(((4.0, 8.0), (4.0, 10.0), (5.0, 10.0), (4.0, 12.0)))
 _STONY = frozenset(("stone", "concrete", "masonry", "ceramic"))
 _SOLID = frozenset(("block", "plate", "sheet", "panel", "board", "column", "beam"))
 _TUBES = frozenset(("tube", "pipe", "round tube", "square tube", "rectangular tube", "box"))
-#: Words of thin timber, which is small in mm.
-_SLATS = frozenset("batten battens leiste leisten holzleiste holzleisten latte latten liteau liteaux".split())
+#: Words of thin timber, which is small in mm, in the nine languages.
+_SLATS = frozenset(
+    (
+        "batten battens slat slats laths leiste leisten holzleiste holzleisten latte latten liteau liteaux tasseau tasseaux "
+        "liston listones rastrel rastreles listello listelli lat panlat tengel lata laty listwa listwy ripa ripas sarrafo sarrafos lakt"
+    ).split()
+)
 
 
 def why_other_unit(p: Parsed, families: list[str], kind: str | None, material: str | None) -> str:
