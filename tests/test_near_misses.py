@@ -83,7 +83,7 @@ MILLIMETRES = (
     ("45x195", "wood"),
     ("2x6", "wood"), ("KVH 6/24", "wood"), ("latte 24x48", "wood"), ("listello 20x30", "wood"), ("listón 25x25", "wood"),
     ("łata 25x30", "wood"), ("lat 22x32", "wood"), ("sarrafo 20x30", "wood"), ("läkt 25x36", "wood"), ("tasseau 27x27", "wood"),
-     ("block 20x20x20", "metal"), ("PL 10x200x300", "metal"),
+    ("block 20x20x20", "metal"), ("PL 10x200x300", "metal"),
     ("PL 200x300x6", "metal"), ("Tube 12x1", "metal"), ("pipe 15x0.7", "metal"), ("PL 3x100x100", "metal"),
 )  # fmt: skip
 

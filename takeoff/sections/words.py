@@ -169,7 +169,8 @@ KIND_WORDS: dict[str, str] = _by_word(
         ),
         "board": (
             "board boards plank planks decking batten battens slat slats laths listello listelli liston listones rastrel rastreles tasseau "
-            "tasseaux lata laty listwa listwy sarrafo sarrafos ripa ripas lakt lat panlat tengel brett bretter bohle planche tabla tavola deska deski bradda reglar regel "
+            "tasseaux lata laty listwa listwy sarrafo sarrafos ripa ripas lakt lat panlat tengel "
+            "brett bretter bohle planche tabla tavola deska deski bradda reglar regel "
             "rafter rafters purlin purlins stud studs scantling kantholz timber lumber sawn leiste leisten holzleiste holzleisten kvh cls "
             "sparren balken kantholzer solive solives chevron chevrons lambourde lambourdes bastaing bastaings madrier madriers liteau "
             "liteaux krokiew krokwie latte latten"
