@@ -102,6 +102,7 @@ KINDS: dict[str, str] = {
     "row-twice": "the same piece stands in two lists (note)",
     "total-differs": "the list's own total differs from ours (note)",
     "broken-row": "the row's fields do not fit the headings (refused)",
+    "job-not-met": "the job file names a column or a row that no list has (note)",
     "row-skipped": "the row was skipped because the job file says so (note)",
     "text-repaired": "the file's text encoding or stray characters had to be repaired (note)",
     # temperatures

@@ -21,7 +21,7 @@ from takeoff.lists.headings import MEASURES
 from takeoff.lists.log import FindingLog
 from takeoff.lists.recognise import Recogniser, Recognition
 from takeoff.lists.sheets import Sheet, SourceFile, read_file
-from takeoff.lists.tables import SheetReading, Table, check_told, read_sheet
+from takeoff.lists.tables import SheetReading, Table, check_told, not_met, read_sheet
 from takeoff.thermal import CAUTIONS as THERMAL_CAUTIONS
 from takeoff.thermal.members import Temperatures, of_list
 from takeoff.thermal.runs import RunMovement
@@ -161,6 +161,8 @@ def read(paths: Sequence[str | Path], job: Job | None = None, *, job_path: Path 
     leave_out_doubles(sheets, job)
     for file in files:
         _refuse_without_list(file, [s for s in sheets if s.sheet.file == file.file])
+    if sheets:
+        sheets[-1].findings.extend(not_met(sheets, job))
     members = lists_members.build(sheets, job)
     for number, earlier in repeated_rows(members.tables):
         where = f"sheet {earlier.sheet.name}" if earlier.sheet.name else earlier.sheet.file

@@ -11,7 +11,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from takeoff import pipeline
-from takeoff.errors import AccountError, InputError
+from takeoff.errors import AccountError, InputError, JobError
 from takeoff.job import Job, job_from
 from takeoff.lists.account import Account
 from takeoff.lists.headings import read_heading, spellings
@@ -303,3 +303,23 @@ def test_a_sheet_that_reaches_too_far_is_refused(tmp_path: Path) -> None:
     book.save(tmp_path / "far.xlsx")
     with pytest.raises(InputError, match="more than is read"):
         pipeline.schedule([tmp_path / "far.xlsx"])
+
+
+def test_what_the_job_file_names_and_no_list_has(write_list: WriteList) -> None:
+    """A column or a row of the job file that is met nowhere is said by its name; one that is met is not."""
+    path = write_list([BEAM, BEAM])
+    job = job_from({"reading": {"columns": {"Profilo": "section", "Mark": "mark", "ZZ": "width"}, "skip": ["3", "77", "Sheet9!2"],
+                                "tables": ["Sheet9!A1:F9"]}})
+    said = [f for f in pipeline.schedule([path], job).all_findings() if f.kind == "job-not-met"]
+    assert [f.read for f in said] == ["Profilo", "ZZ", "Sheet9!A1:F9", "77", "Sheet9!2"]
+    assert {f.level for f in said} == {"note"}
+    assert "'Profilo'" in said[0].message
+    assert "row 77" in said[3].message
+
+
+@pytest.mark.parametrize(("entry", "right"), [("A9:F1", "A1:F9"), ("F1:A9", "A1:F9"), ("Sheet!F9:A1", "Sheet!A1:F9")])
+def test_a_range_of_the_job_file_that_ends_before_it_begins(write_list: WriteList, entry: str, right: str) -> None:
+    """A reversed range is refused with what is wrong, and with the range the right way round."""
+    with pytest.raises(JobError, match="ends before it begins") as caught:
+        pipeline.schedule([write_list([BEAM])], job_from({"reading": {"tables": [entry]}}))
+    assert right in str(caught.value)

@@ -385,3 +385,88 @@ TRADES = [
 def test_trap_of_the_trades(trap: Trap, tmp_path: Path) -> None:
     """As above."""
     test_trap(trap, tmp_path)
+
+
+DISC = 0.7853981633974483
+#: What lists of the shops met at their first reading; each mass is worked out in its row.
+SHOPS = [
+    Trap(160, "kg/m in the row of units below Unit Mass", "Mark;Qty;Section;Material;Length;Unit Mass;Total Mass\n;;;;(mm);(kg/m);(kg)\nB1;4;" + BEAM + ";6000;25.1;602\n"
+         "G1;12;C20019;G450;5900;5.74;406\n", [W, W], kg=24 * KG + 12 * 5.9 * 5.74),
+    Trap(160, "kg/m below a bare Weight, kg below the other", "Mark;Qty;Section;Material;Length;Weight;Weight\n;;;;mm;kg/m;kg\nB1;4;" + BEAM + ";6000;25.1;602.4\nM;3;Winch;;;;90\n",
+         [W, W], kg=24 * KG + 90),
+    Trap(161, "masses of all pieces, told by the rows with kg/m", "Pos;Qty;Ø (mm);Length (m);Material;kg/m;Weight (kg)\n1;24;12;4.85;X;0.888;103.4\n2;36;10;2.15;X;0.617;47.8\n3;5;;;;;283\n",
+         [W, W, W], kg=24 * 4.85 * 0.888 + 36 * 2.15 * 0.617 + 283),
+    Trap(161, "masses of all pieces, told by their sum", "Name;Qty;Weight (kg)\nWinch;3;90\nHoist;2;50\n;;140\n", [W, W], kg=140, parts={"total": 1}),
+    Trap(161, "masses that nothing settles are of one piece", "Name;Qty;Weight (kg)\nWinch;3;90\nHoist;2;50\n", [A, A], kg=370),
+    Trap(161, "a bare grade beside a reinforcing bar", "Mark;Qty;Size;Length;Grade;Weight\nA1;36;#5;12'-6;60;469\nB1;110;#4;5'-8;60;416\n", [A, A],
+         kg=(36 * 3.81 * 1.552 + 110 * 1.7272 * 0.994)),
+    Trap(162, "names under Material beside a grade", "Item;Qty;Material;Size;Length (mm);Grade\n1;2;Plate stringer;250 x 12;4120;S275\n2;4;Handrail;CHS 48.3x3.2;1000;S275\n3;1;Post;CHS 48.3x3.2;1000;S275\n",
+         [W, W, W], kg=2 * 0.25 * 12 * 4.12 * 7.85 + 5 * 3.56, kinds=("heading-misleads",)),
+    Trap(163, "C45 is steel beside a bar", "Pos;Qty;Section;Material;Length (mm)\n1;6;HEX 24;C45;90\n2;1;RD 30;C45;1000\n3;1;45x95;C24;1000\n", [W, W, W]),
+    Trap(164, "a stiffness beside laminated veneer lumber", "Tag;Qty;Section;Grade;Length (ft)\nB-1;3;LVL 1-3/4 x 11-7/8;2.0E;20\n", [A]),
+    Trap(164, "hull steel", "Item;Qty;Profile;Grade;Length (mm)\n1;3;FB 100x10;A;1000\n2;1;FB 100x10;AH36;1000\n3;1;45x95;A;1000\n", [A, W, N]),
+    Trap(165, "a thickness that says so", "Teil;Anzahl;Blechdicke;Länge (mm);Breite (mm);Werkstoff\nA;4;t=3;1500;640;DC01\nB;2;t=2,5;980;410;DC01\nC;1;s=5/7;980;410;DC01\n",
+         [A, A, N], kg=4 * 1.5 * 0.64 * 3 * 7.85 + 2 * 0.98 * 0.41 * 2.5 * 7.85),
+    Trap(166, "a gauge in a column of its own", "Part;Qty;Gauge;Width (in);Length (in);Material\nDoor;2;16 ga;18;60;CRS\nCover;4;.125;12;12;5052\nShelf;1;16;10;10;304\nLeg;2;14 ga;;20;CRS\n",
+         [A, A, A, N], kg=2 * 1.5189 * 0.4572 * 1.524 * 7.85 + 4 * 3.175 * 0.3048**2 * 2.68 + 1.5875 * 0.254**2 * 7.9),
+    Trap(167, "two sides in the cell of the length", "Name;Qty;Section;Length;Material\nPanel;10;OSB 3 18 mm;2500 x 1250;OSB\nBeam;1;UB 203x133x25;2500 x 1250;S355\n", [W, N]),
+    Trap(168, "a disc by its diameter in the width", "Part;Qty;Thk (mm);Width (mm);Length (mm);Material\nLid;1;5;Ø1200;;S235\nLid;1;5;Ø1200;600;S235\n", [A, N],
+         kg=DISC * 1.2**2 * 5 * 7.85),
+    Trap(169, "timber in cm, by its heading", "Element;Przekrój [cm];Długość [m];Ilość;Klasa\nKrokiew;8x18;5,60;22;C24\n", [W], kg=22 * 0.08 * 0.18 * 5.6 * 420),
+    Trap(169, "timber in cm, by its sizes", "Bauteil;Stk;Querschnitt b/h;Länge;Holzart\nSparren;18;8/20;5,40 m;KVH C24\nStütze;4;14/14;2,60 m;KVH C24\n", [A, A],
+         kg=(18 * 0.08 * 0.2 * 5.4 + 4 * 0.14 * 0.14 * 2.6) * 420),
+    Trap(170, "a bar among panes", "Pos;Qty;Section;Breite mm;Höhe mm;Material\n1;10;L 40x40x4;;2600;S235\n2;1;L 40x40x4;600;2600;S235\n", [A, N], kg=10 * 2.6 * 2.42),
+    Trap(171, "pieces by their total length", "Pos;Section;Material;Length (m);Total length (m)\n1;" + BEAM + ";2;24\n2;" + BEAM + ";2;25\n", [A, N], kg=24 * KG),
+    Trap(171, "a number of bars", "Pos;Ø (mm);N° ferri;Lunghezza (cm);Acciaio\n7;16;24;580;B450C\n8;16;60;580;B450C\n", [A, A], quantity=[24, 60]),
+    Trap(172, "the mass of one metre of a count of metres", "Pos;Qty;Unit;Name;Mass each (kg);Total mass (kg)\n1;12;m;Cable chain;4.2;50.4\n", [A], kg=50.4),
+    Trap(173, "cut lengths under a word of sizes", "N°;Nb;Désignation;Débit (mm);Matière\n1;4;Tube carré 40x40x3;1850;S235\n2;4;Plat 30x6;900;S235\n3;1;Tôle 2 mm 1850x920;;S235\n4;2;Plat 30x6;450;S235\n",
+         [W, W, A, W]),
+    Trap(175, "a shape of thin sheet is no tube, whatever the heading says", "Pos;Anz;Profil;Länge (mm);Werkstoff\n1;30;Sigma 200x1,6;2500;S350GD\n2;1;HEA 160;4000;S235\n"
+         "3;1;Omega 200x1,6;2500;S350GD\n", [N, W, N]),
+    Trap(176, "a thickness behind two sides is no length", "Nr;Artikel;Stück;Gewicht je Stück (kg)\n1;Schaltafel 150x50 Fichte 22 mm;40;8,1\n2;SHS 40x40x3 S235 x 1200mm;1;4\n",
+         [W, A], kg=40 * 8.1 + 1.2 * 3.3),
+    Trap(177, "letters of sizes in the heading of sections", "Pos;Stk;Querschnitt b/h;Länge (mm);Holzart\n1;1;80/200 mm;1000;C24\n2;1;12 mm;1000;C24\n", [W, N]),
+    Trap(178, "names with a hyphen that hold the material", "Pos;Qty;Section;Length (mm)\n1;1;Alu-Winkel 40x40x4;1000\n", [W], kg=307.8628 * 2.7e-3),
+    Trap(178, "short words for tubes", "Pos;Stk;Profil;Länge (mm);Werkstoff\n1;1;Vkt-Rohr 60x60x4;1000;S235\n2;1;RR 60x40x3;1000;S235\n3;1;Rd.-Rohr 48,3x3,2;1000;S235\n4;1;Vkt 20;1000;S235\n",
+         [W, W, W, W]),
+    Trap(179, "bare inches glued to their letters, in a list with feet and inches apart", "MK;SHAPE;QTY;FT;IN;GRADE\nA;PL1X14;4;1;2;A36\nB;W12X19;1;10;0;A992\n", [A, W],
+         kg=4 * 25.4 * 355.6 * 355.6 * 7.85e-6 + 190 * 0.45359237),
+    Trap(180, "sheet in inches, by its gauge or its thousandths", "Item;Qty;Description;Material\n1;4;16GA x 48 x 96 sheet;CRS\n2;3;.125 x 48 x 120 sheet;5052\n", [A, A],
+         kg=4 * 1.5189 * 1.2192 * 2.4384 * 7.85 + 3 * 3.175 * 1.2192 * 3.048 * 2.68),
+    Trap(181, "a length in feet behind the section", "Item;Qty;Description;Material\n1;6;2 x 2 x 1/8 angle x 20';A36\n2;10;1 x 1/4 flat bar x 12'-6\";A36\n", [A, A], length=[6096, 3810]),
+    Trap(182, "what a hoist lifts is not what it weighs", "Item;Description;Qty;Unit mass (kg)\n1;Chain hoist 500 kg;6;28\n2;Counterweight 250 kg;1;\n", [W, W], kg=6 * 28 + 250),
+    Trap(183, "two sizes of a cross-section as a heading", "pos;st;hout;dxb;l\n;;;mm;m\n1;8;vuren C24;45x145;4,50\n", [W], length=[4500]),
+    Trap(184, "levels: an assembly above its parts, and one with a mass", "Level;Part Number;Description;Qty;Length (mm);Material;Mass (kg)\n1;F;Main frame;1;;;\n"
+         "2;F1;SHS 40x40x3;2;1000;S235;3.3\n1;G;Other frame;1;;;8\n2;G1;SHS 40x40x3;2;1000;S235;3.3\n", [W, W, W], kg=4 * 3.3 + 8,
+         parts={"other": 1}, kinds=("assembly-row", "may-count-twice")),
+    Trap(184, "levels: an assembly that is built three times", "Level;Part Number;Description;Qty;Length (mm);Material\n1;F;Main frame;3;;\n"
+         "2;F1;SHS 40x40x3;2;1000;S235\n3;F2;SHS 40x40x3;1;500;S235\n1;G;SHS 40x40x3;1;1000;S235\n", [N, N, W], kinds=("multiplier-above",)),
+    Trap(185, "N° over counts", "Elemento;Sezione;N°;Lungh. mm;kg/m;kg tot;Mat.\nColonna;HEA 260;6;5800;68.2;2373;S275\nTrave;IPE 330;4;9000;49.1;1768;S275\n"
+         "Tubo;IPE 330;4;1000;49.1;196;S275\n", [W, W, W], quantity=[6, 4, 4]),
+    Trap(185, "N° over numbers of the rows", "N°;Quantità;Sezione;Lungh. mm;Mat.\n1;6;HEA 260;5800;S275\n2;4;IPE 330;9000;S275\n3;4;IPE 330;1000;S275\n", [W, W, W],
+         quantity=[6, 4, 4]),
+    Trap(185, "numbers that start again with each group are no counts", "N°;Sezione;Lungh. mm;Mat.\n1;HEA 260;5800;S275\n2;IPE 330;9000;S275\n1;IPE 330;1000;S275\n"
+         "2;IPE 330;1000;S275\n", [A] * 4, quantity=[1, 1, 1, 1]),
+    Trap(194, "thicknesses under a word of sections", "Pos.,Cant.,Chapa (mm),Ancho (mm),Largo (mm),Calidad,Peso\n1,4,12,350,900,S275JR,118.7\n2,8,20,200,200,S275JR,50.2\n",
+         [A, A], kg=(4 * 12 * 0.35 * 0.9 + 8 * 20 * 0.2 * 0.2) * 7.85),
+    Trap(194, "timber by base and height in cm", "Pos;Base (cm);Altezza (cm);Lungh. (m);N. pezzi;Classe\n1;16;32;6,20;4;GL24h\n", [A], kg=4 * 0.16 * 0.32 * 6.2 * 420),
+    Trap(194, "a tube's diameter and its wall in two columns", "Pos;Aant;Buis;Wanddikte (mm);Lengte (mm);Materiaal\n1;3;Ø114,3;3,6;1000;P235GH\n", [W], kg=3 * 9.83),
+    Trap(186, "a gusset by sizes in a column", "Elemento;Perfil;Cantidad;Acero\nCartela;150x150x10;32;S275\n", [A], kg=32 * 0.15 * 0.15 * 10 * 7.85),
+    Trap(187, "the wall in a column of its own", "Part;Section;Wall (mm);Len (mm);Off;Material;Kg\nRail;RHS 150x100;6;1000;2;S355;43.4\nFrame;Angle 50x50;5;1000;4;S355;15.1\n"
+         "Flat;Flat 40x5;;1000;4;S355;6.3\n", [W, W, W], kg=2 * 21.7 + 4 * 3.77 + 4 * 1.57),
+    Trap(188, "a large and a small L", "Pièce;Essence;L (mm);l (mm);ép (mm);Nb\nMontant;C24;2450;145;45;32\n", [A], kg=32 * 2.45 * 0.145 * 0.045 * 420),
+    Trap(189, "codes under a word for pieces, beside the quantity", "PZA.;CANT.;PERFIL;LONG. M;ACERO\nA1;4;UB 203x133x25;1;A36\nA2;3;UB 203x133x25;1;A36\n", [W, W], kg=7 * KG),
+    Trap(190, "masses in ton for each", "Littera;Typ;Antal;Vikt ton/st\nV1;Vägg;12;5,8\n", [W], kg=12 * 5800),
+    Trap(191, "a row of units with a word for the total", "Pos;Anz;Profil;Länge;Werkstoff;kg\n;;;mm;;ges.\n1;2;UB 203x133x25;1000;S355;50,2\n", [W], parts={"heading": 2}, kg=2 * KG),
+    Trap(192, "the mass of 1 m under a heading with kg", "Nazwa;Profil;Dł. [m];Szt;Masa 1 m [kg];Masa [kg]\nSłupek;XY 7;2,2;12;2,93;77,4\nRama;XY 8;1,5;24;1,97;70,9\n",
+         [W, W], kg=12 * 2.2 * 2.93 + 24 * 1.5 * 1.97),
+    Trap(193, "outside diameter and wall as a heading", "Nr;Stück;Benennung;da x s;Werkstoff;Länge mm\n1;1;Rohr;168,3 x 4,5;S235;1000\n", [W], kg=18.2),
+    Trap(186, "a gusset by sizes in a column of sizes", "Rep;Nbre;Désignation;Matière;Dimensions (mm)\n3;4;Gousset;S235;200x200x8\n", [A], kg=4 * 0.2 * 0.2 * 8 * 7.85),
+    Trap(174, "a timber column of materials", "Ref;No;Section (mm);Length;Timber\nJ1;14;47 x 220;4.2m;C24\nP;2;100 x 75;3.6m;C16\n", [W, W]),
+]
+
+
+@pytest.mark.parametrize("trap", SHOPS, ids=lambda t: f"{t.number:03d} {t.what}")
+def test_trap_of_the_shops(trap: Trap, tmp_path: Path) -> None:
+    """As above."""
+    test_trap(trap, tmp_path)

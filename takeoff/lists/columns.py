@@ -54,8 +54,20 @@ _ABOUT = re.compile(rf"{ABOUT}\s*(?=[\d.])", re.IGNORECASE)
 _TWO_UNITS = re.compile(r"([^()]{1,40}?)\s*[(\[]\s*([^()\[\]]{1,40})\s*[)\]]")
 #: so many rows tell whether a list is in feet
 _ENOUGH_ROWS = 200
-#: a length cell may say so itself: ``L=1200``
-_NAMED = re.compile(r"(?:l|lg|len|length|länge|lengte|long)\.?\s*[=:]\s*(?=\d)", re.IGNORECASE)
+#: a cell may name its size itself: ``L=1200`` for a length, ``t=3`` for a thickness
+_NAMED = {
+    "length": re.compile(r"(?:l|lg|len|length|länge|lengte|long)\.?\s*[=:]\s*(?=\d)", re.IGNORECASE),
+    "width": re.compile(r"(?:b|w|br|la|sz)\.?\s*[=:]\s*(?=\d)", re.IGNORECASE),
+    "thickness": re.compile(r"(?:t|s|e|d|th|thk|ep|ép|sp|gr|g)\.?\s*[=:]\s*(?=\d)", re.IGNORECASE),
+    "height": re.compile(r"(?:h|ht)\.?\s*[=:]\s*(?=\d)", re.IGNORECASE),
+    "diameter": re.compile(r"(?:d|dia|od|da)\.?\s*[=:]\s*(?=\d)", re.IGNORECASE),
+}
+#: two sides of a sheet in one cell (``2440 x 1220``), and a disc's diameter (``Ø1200``, ``1200 dia``)
+_TWO_SIDES = re.compile(r"([\d.,/' \"]{1,16}(?:mm|cm|m|in|ft)?)\s*[x×*]\s*([\d.,/' \"]{1,16}(?:mm|cm|m|in|ft)?)", re.IGNORECASE)
+_ROUND = re.compile(
+    r"(?:[Øø∅⌀]|dia\.?\s|d\s?=)\s*([\d.,/ ]{1,12}(?:mm|cm|m|in|\")?)|([\d.,/ ]{1,12}(?:mm|cm|m|in|\")?)\s*(?:[Øø∅⌀]|dia\.?)", re.IGNORECASE)
+_GAUGE = re.compile(r"#?\s?(\d{1,2})\s*(?:ga|gauge|gage)\.?", re.IGNORECASE)
+_GAUGE_HEADING = re.compile(r"(?:gauge|gage|ga)\b", re.IGNORECASE)
 _STRAY = "`´*★☆▲●•"
 #: two statements of one length may differ by this much and still be one
 _SAME_SHARE = 0.005
@@ -86,6 +98,10 @@ class ColumnReader:
         self._dates_said: set[str] = set()
         self._dittos_said: set[str] = set()
         self._faults: dict[str, set[int]] = {}
+        #: cells that hold more than one number can tell: member -> two sides, a disc's diameter (its field, its size), a gauge
+        self.two_sides: dict[int, tuple[float, float, str]] = {}
+        self.rounds: dict[int, tuple[str, float, str]] = {}
+        self.gauges: dict[int, str] = {}
         self._fill_merged()
 
     # --- cells -------------------------------------------------------------------------------------------------------
@@ -272,6 +288,8 @@ class ColumnReader:
         unit, unit_from = unit_of_column(self.table, field, self.job)
         numbers, bad = self._numbers(field, faults, dimension)
         for read, where in bad.items():
+            if self._set_aside(field, read, where, EVERYDAY[unit][1]):
+                continue
             settled = self._settle_by_size(field, read, EVERYDAY[unit][1])
             for i in where if settled else ():
                 numbers[i] = settled
@@ -289,6 +307,36 @@ class ColumnReader:
         for rival in self.table.rivals.get(field, []):
             self._compare_rival(field, rival.number, values)
         return values
+
+    def _set_aside(self, field: str, read: str, where: list[int], factor: float) -> bool:
+        """Keep a cell for `plainpieces` that only a flat piece can hold: two sides, a disc's diameter, a gauge. True where it is kept."""
+        gauge = _GAUGE.fullmatch(read) if field == "thickness" else None
+        if gauge:
+            self.gauges.update(dict.fromkeys(where, gauge.group(1)))
+            return True
+        if field not in ("length", "width"):
+            return False
+        found = _ROUND.fullmatch(read)
+        if found:
+            size = self._side(found.group(1) or found.group(2), factor)
+            if size is not None:
+                self.rounds.update(dict.fromkeys(where, (field, size, read)))
+                return True
+        sides = _TWO_SIDES.fullmatch(read) if field == "length" else None
+        one, two = (self._side(part, factor) for part in sides.groups()) if sides else (None, None)
+        if one is None or two is None:
+            return False
+        self.two_sides.update(dict.fromkeys(where, (max(one, two), min(one, two), read)))
+        return True
+
+    def _side(self, text: str, factor: float) -> float | None:
+        found = self._plain(tidy(text).strip(), "length")
+        size = math.nan if found is None else found.value if found.unit else found.value * factor
+        return size if PLAUSIBLE_MM["width"][0] <= size <= PLAUSIBLE_MM["width"][1] else None
+
+    def put_back(self, field: str, read: str, where: list[int]) -> None:
+        """Refuse a cell that was set aside, and that no flat piece took."""
+        self._refuse_unreadable(field, read, where, "length")
 
     def _compare_rival(self, field: str, number: int, values: list[float]) -> None:
         heading = next(c.heading for c in self.table.all_columns if c.number == number)
@@ -314,9 +362,13 @@ class ColumnReader:
         known: dict[str, Number | None] = {}
         # A bare fraction (``4 1/2``) is a number only where the column is in inches.
         in_inches = dimension == "length" and unit_of_column(self.table, field, self.job)[0] == "in"
+        by_gauge = field == "thickness" and _GAUGE_HEADING.match(self.table.columns[field].text.strip()) is not None
         numbers: list[Number | None] = []
         bad: dict[str, list[int]] = {}
         for i, cell in enumerate(self.cells(field)):
+            if by_gauge and i not in faults and cell is not None and not is_blank(cell):
+                numbers.append(self._of_gauges(i, as_text(cell), bad))
+                continue
             if type(cell) is float or type(cell) is int:
                 numbers.append(Number(cell, None) if math.isfinite(cell) and not (faults and i in faults) else None)
                 continue
@@ -325,7 +377,7 @@ class ColumnReader:
                 continue
             text = as_text(cell)
             if text not in known:
-                known[text] = self.read(cell, dimension)
+                known[text] = self.read(cell, dimension, field)
                 if known[text] is None and in_inches and "/" in text:
                     known[text] = self.read(f'{text}"', dimension)
             found = known[text]
@@ -334,15 +386,31 @@ class ColumnReader:
                 bad.setdefault(text, []).append(i)
         return numbers, bad
 
-    def read(self, cell: Cell, dimension: str) -> Number | None:
+    def _of_gauges(self, i: int, text: str, bad: dict[str, list[int]]) -> Number | None:
+        """A cell below a heading of gauges: a whole number is a gauge, a fraction or a decimal is inches."""
+        if re.fullmatch(r"#?\s?\d{1,2}(?:\.0)?", text):
+            self.gauges[i] = text.strip("# ").removesuffix(".0")
+            return None
+        found = self.read(text, "length")
+        if found is not None and found.unit is None:
+            found = self.read(f'{text}"', "length")
+        if found is None and re.fullmatch(r"[\d ]*\d/\d{1,2}", text):
+            found = self.read(f'{text}"', "length")
+        if found is None and text not in DASHES:
+            bad.setdefault(text, []).append(i)
+        return found
+
+    def read(self, cell: Cell, dimension: str, field: str = "length") -> Number | None:
         """One cell as a number of this dimension, with what there is to say about it; None where it is none."""
         if type(cell) is float or type(cell) is int:
             return Number(cell, None)
         if not isinstance(cell, str):
             return None
         text = tidy(cell)
-        named = _NAMED.match(text) if dimension == "length" else None
+        named = _NAMED[field].match(text) if dimension == "length" and field in _NAMED else None
         text = text[named.end():] if named else text
+        if re.match(r"[.,]\d", text):  # .125 is 0.125
+            text = f"0{text}"
         plain = self._plain(text, dimension)
         if plain is not None:
             if self.mixed and plain.sign is not None:
@@ -525,7 +593,7 @@ def in_feet(table: Table) -> bool:
         column = table.columns.get("length")
         texts = [c for n in table.member_rows[:_ENOUGH_ROWS] if column is not None and not is_blank(c := table.cell(n, "length"))]
         typed = sum(type(c) is str and any(m.unit in ("in", "ft") for m in measure_readings(c)) for c in texts)
-        table.in_feet = any(unit in ("in", "ft") for unit in units) or (typed > 0 and typed * 2 >= len(texts))
+        table.in_feet = "inches" in table.columns or any(unit in ("in", "ft") for unit in units) or (typed > 0 and typed * 2 >= len(texts))
     return table.in_feet
 
 

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cache, lru_cache
 
 from takeoff.datafiles import data_folder, read_table
@@ -52,8 +52,11 @@ _ROLES: dict[str, str] = {word: role for role, words in {
     "each": "each ea per unit pc pce piece one st stk stuck je pro p stuk stuks szt ud un u cad unitaire unitario unitaria "
             "jedn jednostkowa einzel unid",
     "total": "total tot totals all ges gesamt totaal totale totalt calk calkowita razem sum summe suma ext extended complete",
-    "unit": "kg kgs lb lbs mm cm m ft in",
-    "filler": "cut of the reqd required req off approx ca net overall o a oa finished fertig zuschnitt finish",
+    "unit": "kg kgs lb lbs t ton tons tonne tonnes mm cm m ft in",
+    "number": "n no nr nb num number numero anz liczba",
+    "things": "bars ferri barre barras barres stabe varoes pretow staven stanger pezzi piezas pieces teile pecas pozycji tubes tubi rods "
+              "ferros aceros elementos elementi elements elemente elementow delar onderdelen stukken",
+    "filler": "de di des der del av van cut of the reqd required req off approx ca net overall o a oa finished fertig zuschnitt finish",
 }.items() for word in words.split()}
 #: what a base word makes of a heading: alone (or of each and of all), of each, of all
 _COMPOSED = {
@@ -61,6 +64,8 @@ _COMPOSED = {
     "quantity": ("quantity", "quantity", "quantity_total"),
 }
 _BETWEEN = re.compile(r"[\s./()\[\]_,:;'-]+")
+#: letters of sizes behind a heading (``Querschnitt b/h``)
+_LETTERS_BEHIND = re.compile(r"(.{3,}?)[ ,]*[(\[]?\s?\b[bhwdt]\s?[x×*/]\s?[bhwdt]\b\s?[)\]]?\s*(.*)", re.IGNORECASE)
 _BY_LENGTH = re.compile(r"(?:/|\bper |\bpro |\bpar |\bpor |\bje )\s*(?:m|ft|foot|metre|meter|metro|metr|lfm|ml|mb|lm|m2|m²|sqm|m3|m³)\b")
 #: why a heading has its field where `[reading.columns]` gives it
 TOLD = "told by the job file"
@@ -114,6 +119,14 @@ def size_order(text: str) -> tuple[str, ...]:
     return tuple(words) if all(words) and len(set(words)) == len(words) and "l" in words else ()
 
 
+def is_cross_section(text: str) -> bool:
+    """Whether a heading is two sizes of a cross-section and nothing else: ``b x h``, ``dxb``, ``da x s``."""
+    plain = _BESIDE_ORDER.sub(" ", tidy(text).casefold()).strip(" .,:")
+    if re.fullmatch(r"(?:da|od|d|ø|dext)\s*[x×*/]\s*(?:s|t|wt|e)", plain):
+        return True
+    return re.fullmatch(r"[bhwdt]\s*[x×*/]\s*[bhwdt]", plain) is not None and plain[0] != plain[-1]
+
+
 @lru_cache(maxsize=4096)
 def read_heading(text: str) -> Heading | None:
     """The field a heading names, or None. The whole text is tried first, so that ``kg/m`` is a heading of its own."""
@@ -129,11 +142,19 @@ def read_heading(text: str) -> Heading | None:
     if size_order(plain):
         unit = unit_of(next(g for g in split.groups()[1:] if g)) if split else None
         return Heading(text, "size", unit, "an order of sizes")
+    if is_cross_section(plain):
+        unit = unit_of(next(g for g in split.groups()[1:] if g)) if split else None
+        return Heading(text, "size", unit, "an order of two sizes")
+    counted = _counts_things(plain)
+    if counted:
+        return Heading(text, counted, None, "known words of a heading", ("mark",) if counted == "quantity" else ())
     composed = _composed(plain)
     if composed is not None:
         return Heading(text, composed[0], composed[1], "known words of a heading")
     if not split:
-        return None
+        behind = _LETTERS_BEHIND.fullmatch(plain)
+        found = read_heading(f"{behind.group(1)} {behind.group(2)}".strip()) if behind else None
+        return replace(found, text=text) if found is not None and found.field in ("section", "size") else None
     base, unit_text = split.group(1), next(g for g in split.groups()[1:] if g)
     entry = known.get(heading_key(base))
     if not entry:
@@ -146,6 +167,8 @@ def read_heading(text: str) -> Heading | None:
     fitting = [field for field in fields if MEASURES.get(field, EVERYDAY[unit][0]) == EVERYDAY[unit][0]]
     field = fitting[0] if fitting else fields[0]
     dimension = MEASURES.get(field)
+    if EVERYDAY[unit][0] == "mass" and unit in _PER.get(dimension or "", {}):
+        return Heading(text, field, _PER[dimension or ""][unit], "known heading with its unit")  # Masa 1 m [kg]
     if dimension and EVERYDAY[unit][0] != dimension:
         other = {"mass per length": "mass_per_length", "mass per area": "mass_per_area"}.get(EVERYDAY[unit][0])
         return Heading(text, other, unit, f"known heading; its unit makes it {other}") if other and "mass" in field else None
@@ -172,6 +195,15 @@ def _composed(plain: str) -> tuple[str, str | None] | None:
     each, total = "each" in roles, "total" in roles
     plainly, one, all_of_them = _COMPOSED[base]
     return (plainly if each == total else all_of_them if total else one), unit
+
+
+def _counts_things(plain: str) -> str:
+    """The field where a heading is a word for a number and one for pieces (``N° ferri``, ``Nb de barres``), else blank."""
+    words = [word.strip("°º") for word in _BETWEEN.split(normal_name(plain)) if word]
+    roles = {_ROLES.get(word) for word in words}
+    if {"number", "things"} <= roles <= {"number", "things", "filler"}:
+        return "quantity"
+    return "quantity_total" if {"number", "things", "total"} <= roles <= {"number", "things", "filler", "total"} else ""
 
 
 def _own_unit(plain: str, field: str) -> str | None:

@@ -46,6 +46,10 @@ _PIECES = frozenset((
 _RUNNING_METRES = frozenset(("lfm", "lfdm", "lm", "mb", "ml", "mtr", "rm"))
 
 
+#: so many of a column's texts must be materials, and of the column beside it be none
+_SURELY = 0.75
+
+
 @dataclass(slots=True)
 class Members:
     """The members of all lists of a run.
@@ -129,6 +133,8 @@ def _take_sections(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
     table = reader.table
     if table.rivals.get("material") and not {"section", "size"} & set(table.columns):
         _settle_rival_materials(reader)
+    elif table.rivals.get("material"):
+        _set_names_apart(reader)
     names, sizes = reader.texts("name"), reader.texts("size")
     heading = next((table.columns[f] for f in ("section", "size", "name") if f in table.columns), None)
     part["section_heading"] = [heading.text if heading else None] * reader.count
@@ -209,6 +215,31 @@ def _settle_rival_materials(reader: ColumnReader) -> None:
     table.columns["section"], table.columns["material"], table.rivals["material"] = holding[0], left[0], left[1:]
     message = f"the column {holding[0].text!r} holds sections, and was read so"
     reader.say("note", "heading-misleads", message, range(reader.count), "section")
+
+
+def _set_names_apart(reader: ColumnReader) -> None:
+    """Of two columns called material, one that names no material beside one that does is the name (``Material`` | ``Grade``)."""
+    table = reader.table
+    claims = [table.columns["material"], *table.rivals["material"]]
+    shares = [_share_of_materials(reader.texts_at(column.number)) for column in claims]
+    naming = [column for column, share in zip(claims, shares, strict=True) if share >= _SURELY]
+    if len(naming) != 1 or any(share > 1 - _SURELY for column, share in zip(claims, shares, strict=True) if column is not naming[0]):
+        return
+    others = [column for column in claims if column is not naming[0]]
+    table.columns["material"] = naming[0]
+    del table.rivals["material"]
+    if "name" in table.columns or len(others) > 1:
+        return
+    table.columns["name"] = others[0]
+    message = f"the column {others[0].text!r} names no materials, and was read as the names of the pieces"
+    reader.say("note", "heading-misleads", message, range(reader.count), "name")
+
+
+def _share_of_materials(texts: list[str | None]) -> float:
+    """What share of a column's distinct texts is the name of a material."""
+    distinct = [text for text in dict.fromkeys(texts) if text][:60]
+    named = sum(materials.lookup(text).match in ("exact", "alias", "ambiguous") for text in distinct)
+    return named / len(distinct) if distinct else 0.0
 
 
 def _hold_sections(texts: list[str | None]) -> bool:
@@ -377,6 +408,15 @@ def _by_unit(reader: ColumnReader, part: dict[str, list[Any]], i: int, cell: Any
         return True
     amount = number.value * EVERYDAY[unit][1]
     column = {"length": "length_mm", "mass": "stated_each_kg", "area": "stated_area_m2"}[dimension]
+    if dimension == "length" and part["stated_each_kg"][i] > 0:
+        # What a list states for one of a count of metres is a metre's mass.
+        each = part["stated_each_kg"][i] / EVERYDAY[unit][1] * 1000.0
+        part["stated_each_kg"][i] = math.nan
+        if math.isnan(part["stated_kg_per_m"][i]):
+            part["stated_kg_per_m"][i] = each
+        message = f"the quantity is in {unit_text}: the mass of one is taken as that of one {unit_text}"
+        reader.say("assumed", "unit-column", message, [i], "unit", read=unit_text, right="the mass in kg/m under its own heading")
+        reader.members.assumed.setdefault(reader.start + i, set()).add("quantity")
     if not math.isnan(part[column][i]):
         message = f"the quantity is in {unit_text}, and the row has its own {dimension}"
         reader.say("refused", "unit-column", message, [i], "unit", read=unit_text)
@@ -416,9 +456,33 @@ def _one_each(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
     message = "no quantity column, and the name holds a count: is it in the list once or so many times?"
     reader.say("refused", "missing-quantity", message, counted, None, right="a column of quantities")
     reader.bar(counted, "quantity", message)
-    others = sorted(set(range(reader.count)) - set(counted))
+    shared = _pieces_by_lengths(reader, part, set(counted))
+    others = sorted(set(range(reader.count)) - set(counted) - set(shared))
     reader.say("assumed", "quantity-assumed", "there is no quantity column: one each", others, None, right="a column of quantities")
-    part["quantity"] = [math.nan if i in set(counted) else 1.0 for i in range(reader.count)]
+    barred = set(counted)
+    part["quantity"] = [math.nan if i in barred else shared.get(i, 1.0) for i in range(reader.count)]
+
+
+def _pieces_by_lengths(reader: ColumnReader, part: dict[str, list[Any]], barred: set[int]) -> dict[int, float]:
+    """Without a column of quantities, how often the piece's length goes into the row's total length; member -> pieces."""
+    found: dict[int, float] = {}
+    apart = []
+    for i, (length, total) in enumerate(zip(part["length_mm"], part["total_length_mm"], strict=True)):
+        if i in barred or not (length > 0 and total > 0):
+            continue
+        times = total / length
+        if round(times) >= 1 and abs(times - round(times)) <= 0.005 * times:
+            found[i] = float(round(times))
+        else:
+            found[i] = math.nan
+            apart.append(i)
+    counted = [i for i, pieces in found.items() if pieces > 0]
+    message = "there is no quantity column: as many pieces as their length goes into the total length"
+    reader.say("assumed", "quantity-assumed", message, counted, None, right="a column of quantities")
+    message = "there is no quantity column, and the total length is no multiple of the piece's"
+    reader.say("refused", "missing-quantity", message, apart, None, right="a column of quantities")
+    reader.bar(apart, "quantity", message)
+    return found
 
 
 def _take_lengths(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
@@ -435,6 +499,8 @@ def _take_lengths(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
                  and abs(lengths[i] * quantities[i] - totals[i]) > 0.01 * totals[i]]
         reader.say("note", "total-length", "the total length is not quantity × length; the piece length is used", apart, "total_length")
     given = {"length", "quantity_and_length", "total_length", "size", "unit"}
+    if not given & set(table.columns) and {"height", "width"} <= set(table.columns):
+        _heights_as_lengths(reader, part)
     if not given & set(table.columns) and "height" in table.columns and "section" in table.columns and "width" not in table.columns:
         where = [i for i in range(reader.count) if part["height_mm"][i] > 0 and math.isnan(part["length_mm"][i])]
         for i in where:
@@ -442,6 +508,25 @@ def _take_lengths(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
         reader.say("assumed", "height-as-length", "the list has no lengths: the height is taken as the length", where, "height")
         for i in where:
             reader.members.assumed.setdefault(reader.start + i, set()).add("length")
+
+
+def _heights_as_lengths(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
+    """A bar among panes: in a list of widths and heights, the one size of a section that needs a length is that length."""
+    known: dict[str, bool] = {}
+    where = []
+    for i, text in enumerate(part["section_text"]):
+        sized = [name for name in ("width_mm", "height_mm") if part[name][i] > 0]
+        if not text or len(sized) != 1 or part["length_mm"][i] > 0 or part["thickness_mm"][i] > 0:
+            continue
+        if text not in known:
+            found = sections.read(text).section
+            known[text] = found is not None and tuple(found.needs) == ("length",) and any(ch.isdigit() for ch in text)
+        if known[text]:
+            part["length_mm"][i], part[sized[0]][i] = part[sized[0]][i], math.nan
+            where.append(i)
+    reader.say("assumed", "height-as-length", "the row has one size beside its section: taken as the length", where, "height")
+    for i in where:
+        reader.members.assumed.setdefault(reader.start + i, set()).add("length")
 
 
 def _take_packs(reader: ColumnReader, part: dict[str, list[Any]]) -> None:

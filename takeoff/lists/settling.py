@@ -5,6 +5,7 @@ Each rule looks at the first rows of a list. What the job file tells of a column
 
 from __future__ import annotations
 
+import itertools
 import math
 import re
 from collections.abc import Callable, Sequence
@@ -22,16 +23,22 @@ if TYPE_CHECKING:
 
 _COUNTS = frozenset(("quantity", "quantity_per", "quantity_total", "quantity_and_length"))
 _SIZES = frozenset(MEASURES) | {"size"}
-_SIZE_WORDS = re.compile(r"^(?:size|dim|abm|ma(?:sz|ss)|zuschn|cote|taille|medid|misur|maat|afmet|wymiar|matt|tamanho|storlek)")
+_SIZE_WORDS = re.compile(
+    r"^(?:size|dim|abm|ma(?:sz|ss)|zuschn|cote|taille|medid|misur|maat|afmet|wymiar|matt|tamanho|storlek|"
+    r"debit|decoup|corte|taglio|zaag|ciecie|kap)")
 #: bare numbers from here on, in mm, are lengths rather than nominal sizes
 _SMALLEST_SIZE_AS_LENGTH = 100.0
 #: the name of a standard, which is no section: ``EN 10210``, ``DIN 1026-1``; ``ASTM A36`` is a material
 _STANDARD = re.compile(r"(?:DIN|EN|ISO|BS|NF|UNI|PN|UNE|SS|SIS|NEN|JIS)(?:[ -]?(?:EN|ISO))*[ -]?\d{3,6}(?:[-:/]\d{1,4})*", re.IGNORECASE)
 _CODE = re.compile(r"[A-Za-z]{0,4}[-. /]?\d{1,5}[A-Za-z]?(?:[-./]\d{1,4}[A-Za-z]?)?")
+_LETTER = re.compile(r"[A-Za-z]{1,2}")
 _UNIT_WORD = re.compile(rf"{PIECE_WORDS}|ml|rm|lfm|pa|lot|set|kpl", re.IGNORECASE)
 #: sums, repeated headings and notes stand among a column's cells: so many of them must fit
 _MOST = 0.75
 _FEW = 3
+
+#: a sheet or plate is no thicker, in mm
+_THICKEST_SHEET = 150.0
 
 Below = dict[int, list[Cell]]
 
@@ -41,6 +48,9 @@ def settle(columns: list[Column], below: Below) -> None:
     _open_headings(columns, below)
     ours = [column for column in columns if column.heading is not None and column.heading.why != TOLD]
     _units(ours, below)
+    _marks_among_counts(columns, ours, below)
+    _sheet_thicknesses(columns, ours, below)
+    _lower_case_widths(columns, ours)
     _names(columns, ours, below)
     _sections(ours, below)
     _lengths(columns, ours, below)
@@ -71,10 +81,23 @@ def _open_headings(columns: list[Column], below: Below) -> None:
         if heading is None or not heading.otherwise:
             continue
         cells = below.get(column.number, [])
-        fitting = [name for name in (heading.field, *heading.otherwise) if name not in taken and _fits(name, cells)]
+        order = (heading.field, *heading.otherwise)
+        if set(order) == {"mark", "quantity"} and _counts_rather(cells) and not taken & {"quantity", "quantity_total"}:
+            order = ("quantity", "mark")
+        fitting = [name for name in order if name not in taken and _fits(name, cells)]
         field_name = fitting[0] if fitting else "not_used"
         _become(column, field_name, "a heading used for several things, told by its cells", heading.unit)
         taken.add(field_name)
+
+
+def _counts_rather(cells: list[Cell]) -> bool:
+    """Whether numbers are counts rather than marks: whole, and one stands twice or they do not rise; numbers that start again at 1
+    with each group are marks."""
+    numbers = [r[0].value for cell in cells if (r := number_readings(str(cell).strip()))]
+    whole = len(numbers) * 2 > len(cells) and all(n == int(n) for n in numbers)
+    if all(two in (1, one + 1) for one, two in itertools.pairwise(numbers)):
+        return False
+    return whole and (len(set(numbers)) < len(numbers) or numbers != sorted(numbers))
 
 
 def _fits(field_name: str, cells: list[Cell]) -> bool:
@@ -103,6 +126,38 @@ def _units(columns: list[Column], below: Below) -> None:
             _become(column, "unit", "its cells are units")
 
 
+def _marks_among_counts(columns: list[Column], ours: list[Column], below: Below) -> None:
+    """Of two quantity columns, one that holds no counts but codes (``PZA.`` | A1, A2 beside ``CANT.``) is the marks."""
+    counted = [c for c in ours if c.heading and c.heading.field == "quantity"]
+    for column in counted if len(counted) > 1 else ():
+        cells = _texts(column, below)
+        if cells and not any(number_readings(cell) or not math.isnan(read_count(cell).pieces) for cell in cells):
+            _become(column, "not_used" if "mark" in _fields(columns) else "mark", "its cells code the rows and count nothing")
+
+
+def _sheet_thicknesses(columns: list[Column], ours: list[Column], below: Below) -> None:
+    """Small numbers alone under a word of sections (``Chapa (mm)``), beside a width and a length, are the sheet's thickness."""
+    fields = _fields(columns)
+    if not {"width", "length"} <= fields or fields & {"thickness", "height", "diameter"}:
+        return
+    claims = [c for c in ours if c.heading and c.heading.field == "section"]
+    numbers = [r[0].value if (r := number_readings(cell)) else math.inf for cell in _texts(claims[0], below)] if len(claims) == 1 else []
+    if numbers and max(numbers) <= _THICKEST_SHEET:
+        heading = claims[0].heading
+        _become(claims[0], "thickness", "numbers alone beside a width and a length", heading.unit if heading else None)
+
+
+def _lower_case_widths(columns: list[Column], ours: list[Column]) -> None:
+    """``L`` and ``l`` side by side are length and width, as French lists write them."""
+    if "width" in _fields(columns):
+        return
+    letters = {re.split(r"[\s(\[]", column.text.strip())[0].strip("."): column for column in ours
+               if column.heading and column.heading.field == "length"}
+    if {"L", "l"} <= set(letters):
+        heading = letters["l"].heading
+        _become(letters["l"], "width", "a small l beside a large one", heading.unit if heading else None)
+
+
 def _is_unit(cell: str) -> bool:
     return unit_of(cell) is not None or _UNIT_WORD.fullmatch(cell.rstrip(".")) is not None
 
@@ -118,7 +173,7 @@ def _names(columns: list[Column], ours: list[Column], below: Below) -> None:
         alone = len(names) == 1
         if not cells or (alone and ("mark" in fields or len(cells) < _FEW or not fields & _SIZES)):
             continue
-        codes = [cell for cell in cells if _CODE.fullmatch(cell)]
+        codes = [cell for cell in cells if _CODE.fullmatch(cell) or _LETTER.fullmatch(cell)]
         # Marks differ from row to row; beside a mark, numbers may start again with each group.
         coded = len(codes) >= _MOST * len(cells) and ("mark" in fields or len(set(codes)) == len(codes))
         others = [_texts(other, below) for other in names if other is not column]

@@ -6,6 +6,7 @@ headings start another list below the first.
 
 from __future__ import annotations
 
+import itertools
 import re
 from collections.abc import Iterable
 from dataclasses import dataclass, field
@@ -59,6 +60,8 @@ _NAMES = frozenset(("mark", "name", "section", "material"))
 _SIZES = _KEY_FIELDS - _NAMES - _COUNTS
 #: first the one that nearly every row fills
 _WHAT_IT_IS = ("section", "material", *sorted(_SIZES))
+#: headings of the levels of assemblies, accents off
+_LEVELS = frozenset(("level", "lvl", "bom level", "niveau", "ebene", "livello", "nivel", "poziom", "niva", "stufe"))
 #: fields of masses, and what kg/m or kg/m² below such a heading makes of them
 _MASSES = ("mass", "unit_mass", "total_mass")
 _BY_DIMENSION = {"mass per length": "mass_per_length", "mass per area": "mass_per_area"}
@@ -81,7 +84,8 @@ _WEIGHABLE = frozenset(
 )
 #: what stands in a row of units over columns that have none
 _NO_UNIT = re.compile(
-    r"[-–—/#.]|[(\[]?\s*(?:pcs?|pce|ea|each|nos?|off|qty|stk|stck?|st|stück|anz|nb|pz|ud|uds|szt|un|szt|text)\.?\s*[)\]]?", re.IGNORECASE)
+    r"[-–—/#.]|[(\[]?\s*(?:pcs?|pce|ea|each|nos?|off|qty|stk|stck?|st|stück|anz|nb|pz|ud|uds|"
+    r"szt|un|text|ges|gesamt|tot|total)\.?\s*[)\]]?", re.IGNORECASE)
 #: so many known headings are a row of headings, however many others stand beside them
 _PLENTY = 4
 _GROSS = re.compile(r"\b(?:gross|brutto\w*|brut|bruto|lordo|total)\b")
@@ -525,10 +529,48 @@ class _Walk:
                 self._note(n, "assembly-row", "the row is the assembly of others, and no piece", mark)
         table.member_rows[:] = [n for n in table.member_rows if n not in apart]
 
+    def _set_levels_apart(self, table: Table) -> None:
+        """Where a column numbers the levels of assemblies, a row above deeper ones is their assembly: without a mass it is no
+        piece, with one it may count twice, which is said."""
+        column = next((c for c in table.all_columns if normal_name(c.text) in _LEVELS), None)
+        if column is None:
+            return
+        depths = {n: _depth(cells[column.number - 1] if column.number <= len(cells := self.cells(n)) else None) for n in table.member_rows}
+        for n, following in itertools.pairwise(list(table.member_rows)):
+            depth, deeper = depths[n], depths[following]
+            if depth is None or deeper is None or deeper <= depth or _has(table, n, {"section", "length", "size"}):
+                continue
+            if _has(table, n, {"unit_mass", "total_mass", "mass"}):
+                said = table.row_findings.setdefault(n, [])
+                if not any(finding.kind == "may-count-twice" for finding in said):
+                    message = "an assembly with a mass of its own: its parts, if they are listed too, count twice"
+                    said.append(Finding("note", "may-count-twice", message))
+            elif not _has(table, n, {"material", *_SIZES}):
+                table.member_rows.remove(n)
+                table.row_findings.pop(n, None)
+                table.group_of.pop(n, None)
+                self.kinds[n] = "other"
+                self._note(n, "assembly-row", "the row is the assembly of those on the level below it, and no piece")
+            else:
+                continue
+            if any(str(table.cell(n, name)).strip() not in ("1", "1.0", "-") for name in _COUNTS if not is_blank(table.cell(n, name))):
+                after = [row for row in depths if row > n]
+                end = next((row for row in after if (depths[row] or depth + 1) <= depth), None)
+                self._multiply(table, n, [row for row in after if end is None or row < end])
+
+    def _multiply(self, table: Table, above: int, rows: Iterable[int]) -> None:
+        """Refuse the pieces below an assembly that is counted more than once, unless that is said already."""
+        message = f"row {above} above counts an assembly: are these pieces in all, or for each of them?"
+        for n in rows:
+            said = table.row_findings.setdefault(n, [])
+            if not any(finding.kind == "multiplier-above" for finding in said):
+                said.append(Finding("refused", "multiplier-above", message, right="quantities in all, and an Assembly column"))
+
     def _say_what_was_found(self) -> None:
         sheet = self.sheet
         for table in self.tables:
             self._set_assemblies_apart(table)
+            self._set_levels_apart(table)
         if not self.tables and not self.refusals:
             self.findings.append(
                 Finding(
@@ -573,6 +615,18 @@ def _zip(above: list[Cell], below: list[Cell]) -> list[tuple[Cell, Cell]]:
     return list(zip(one, two, strict=True))
 
 
+def _depth(cell: Cell) -> int | None:
+    """How deep a level is: 2, ``.2``, ``1.1`` and ``..1`` tell it; None where it is no level."""
+    text = "" if cell is None else str(cell).strip().removesuffix(".0")
+    dots = len(text) - len(text.lstrip("."))
+    rest = text.lstrip(". ")
+    if re.fullmatch(r"\d{1,3}(?:\.\d{1,3}){1,8}", rest):
+        return dots + rest.count(".") + 1
+    if not re.fullmatch(r"\d{1,3}", rest):
+        return None
+    return dots + 1 if dots else int(rest)
+
+
 def _has(table: Table, number: int, fields: Iterable[str]) -> bool:
     """Whether a row fills any of these fields with more than a dash."""
     return any(
@@ -591,13 +645,13 @@ def _ranges(sheet: Sheet, job: Job) -> list[tuple[int, int, int, int]] | None:
         parts = re.fullmatch(r"\$?([A-Za-z]{1,3})\$?(\d{1,7}):\$?([A-Za-z]{1,3})\$?(\d{1,7})", area)
         if not parts:
             raise JobError("reading.tables: this is no range of cells", file=job.path, read=entry, right="Sheet!A3:F40")
+        left, top, right, bottom = parts.groups()
+        if int(top) > int(bottom) or column_number(left) > column_number(right):
+            rows, columns = sorted((int(top), int(bottom))), sorted((left, right), key=column_number)
+            area = f"{columns[0]}{rows[0]}:{columns[1]}{rows[1]}"
+            message = "reading.tables: the range ends before it begins: its upper left cell stands first"
+            raise JobError(message, file=job.path, read=entry, right=f"{name}!{area}" if name else area)
         if not name or name == (sheet.name or ""):
-            left, top, right, bottom = parts.groups()
-            if int(top) > int(bottom) or column_number(left) > column_number(right):
-                message = "reading.tables: the range ends before it begins: its upper left cell stands first"
-                fixed = sorted((int(top), int(bottom))), sorted((left, right), key=column_number)
-                right_way = f"{fixed[1][0]}{fixed[0][0]}:{fixed[1][1]}{fixed[0][1]}"
-                raise JobError(message, file=job.path, read=entry, right=f"{name}!{right_way}" if name else right_way)
             found.append((int(top), column_number(left), int(bottom), column_number(right)))
     for number, (top, _, bottom, _) in enumerate(found):
         if any(top <= other[2] and other[0] <= bottom for other in found[:number]):
@@ -663,7 +717,7 @@ def check_told(job: Job) -> None:
 
 
 def not_met(readings: list[SheetReading], job: Job) -> list[Finding]:
-    """What `[reading.columns]` and `[reading] skip` name and no sheet that was read holds: notes, as it changed nothing."""
+    """What `[reading.columns]`, `tables` and `skip` name and no sheet that was read holds: notes, as it changed nothing."""
     findings = []
     columns = [column for reading in readings for table in reading.tables for column in table.all_columns]
     right = "the heading as it stands in the list, or the letter of its column"
@@ -672,6 +726,11 @@ def not_met(readings: list[SheetReading], job: Job) -> list[Finding]:
         if not any(_is_told(key, column.number, column.text) for column in columns):
             message = f"[reading.columns] names {key!r}, and no list that was read has that column"
             findings.append(Finding("note", "job-not-met", message, file=file, read=key, right=right))
+    for entry in job.reading.tables:
+        name, _, _ = entry.rpartition("!")
+        if name and not any(name == (reading.sheet.name or "") for reading in readings):
+            message = f"[reading] tables names {entry}, and no sheet of that name was read"
+            findings.append(Finding("note", "job-not-met", message, file=file, read=entry, right="the sheet's name before the !"))
     for entry in job.reading.skip:
         name, _, number = entry.rpartition("!")
         if not any((not name or name == (reading.sheet.name or "")) and int(number) in reading.kinds for reading in readings):
@@ -722,7 +781,7 @@ def _masses_by_their_units(table: Table) -> None:
             column.heading = Heading(column.text, wanted, None, "told by the unit below it")
             if table.columns.setdefault(wanted, column) is not column:
                 table.rivals.setdefault(wanted, []).append(column)
-        table._key_places.clear()  # noqa: SLF001 - the table's own places, which the columns above change
+        table._key_places.clear()
 
 
 def _is_unit_row(cells: list[Cell]) -> bool:

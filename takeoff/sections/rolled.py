@@ -17,7 +17,7 @@ I_FAMILIES = ("UB", "UC", "UBP", "IPE", "IPN", "HE", "HL", "HD", "HP")
 COLUMN_FAMILIES = ("UC", "UB", "UBP", "HE", "HD", "HP", "HL", "IPE", "IPN")
 
 
-CHANNEL_FAMILIES = ("PFC", "UPE", "UPN")
+CHANNEL_FAMILIES = ("PFC", "UPN", "UPE")
 
 
 HOLLOW_FAMILIES = ("SHS", "RHS", "CHS")

@@ -75,13 +75,15 @@ def claims_of(work: Work) -> Claims:
     area = np.where(np.isnan(area), sizes["length"] * sizes["width"] * 1e-6, area)
     per_unit = {
         "unit_mass": np.ones(work.count), "mass_per_length": sizes["length"] / 1000.0, "mass_per_area": area,
-        "total_mass": 1.0 / work.quantity, "mass": _share_of_mass(work),
+        "total_mass": 1.0 / work.quantity,
     }
     each = np.full(work.count, np.nan)
     field = np.full(work.count, None, dtype=object)
     found: dict[str, Floats] = {}
     as_typed: dict[str, Floats] = {}
     for name, column in COLUMNS.items():
+        if name == "mass":  # the others are known by now
+            per_unit[name] = _share_of_mass(work, each)
         if column not in frame:
             continue
         typed = frame[column].to_numpy(dtype=float)
@@ -97,11 +99,12 @@ def claims_of(work: Work) -> Claims:
     return Claims(found, each, field, as_typed, per_unit)
 
 
-def _share_of_mass(work: Work) -> Floats:
+def _share_of_mass(work: Work, otherwise: Floats) -> Floats:
     """What part of a figure under a heading that says neither each nor total is one piece's: 1, or 1 / quantity.
 
-    Each list's column is settled by its own rows of several pieces that we computed: by which of the two more of them agree
-    with. Where none settles it the figure is taken as of one piece, the heavier reading.
+    Each list's column is settled by its own rows of several pieces whose mass we computed or that state it in another column
+    (kg each, kg/m): by which of the two more of them agree with; else by its sum, where that is the sum of the one and not
+    of the other. Where none settles it the figure is taken as of one piece, the heavier reading.
     """
     import numpy as np
 
@@ -112,17 +115,35 @@ def _share_of_mass(work: Work) -> Floats:
     if np.isnan(typed).all():
         return share
     tables = np.asarray(work.members.log.table_of, dtype=np.int64)
-    several = (work.quantity > 1) & (typed > 0) & (work.nominal > 0)
+    ours = np.where(work.nominal > 0, work.nominal, otherwise)
+    several = (work.quantity > 1) & (typed > 0) & (ours > 0)
     with np.errstate(invalid="ignore"):
-        as_each = several & (np.abs(typed - work.nominal) <= _AGREES_SHARE * work.nominal)
-        as_total = several & (np.abs(typed / work.quantity - work.nominal) <= _AGREES_SHARE * work.nominal)
+        as_each = several & (np.abs(typed - ours) <= _AGREES_SHARE * ours)
+        as_total = several & (np.abs(typed / work.quantity - ours) <= _AGREES_SHARE * ours)
     for table in np.unique(tables).tolist():
         here = tables == table
-        if int(as_total[here].sum()) > int(as_each[here].sum()):
+        total, each = int(as_total[here].sum()), int(as_each[here].sum())
+        unsettled = not total and not each
+        if total > each or (unsettled and _sums_to_its_total(work.members.log.tables[table], typed[here], work.quantity[here])):
             share[here] = 1.0 / work.quantity[here]
-        elif not as_each[here].any():
+        elif not each:
             work.mass_open |= here & (work.quantity > 1) & ~np.isnan(typed)
     return share
+
+
+def _sums_to_its_total(table: Table, typed: Floats, quantity: Floats) -> bool:
+    """Whether a row of sums below a list states the sum of its masses, and not that of each mass times its quantity."""
+    import numpy as np
+
+    if np.isnan(typed).any() or np.isnan(quantity).any():
+        return False
+    once, times = float(typed.sum()), float((typed * quantity).sum())
+    column = table.columns["mass"]
+    stated = [r.value for row in table.total_rows if row > table.member_rows[-1]
+              for r in number_readings(str(table.cell(row, "mass") or ""))]
+    unit = EVERYDAY[column.heading.unit][1] if column.heading is not None and column.heading.unit else 1.0
+    near = [value * unit for value in stated if abs(value * unit - once) <= _SAME_SHARE * once]
+    return bool(near) and abs(times - once) > _AGREES_SHARE * once
 
 
 def use(work: Work, claims: Claims) -> None:
