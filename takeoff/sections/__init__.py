@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, Any
 
+from takeoff.sections.answers import IN_CM, NO_SECTION
 from takeoff.sections.catalogue import FAMILIES, Table, all_families, load, rows
 from takeoff.sections.grammar import read
 from takeoff.sections.section import STEEL_DENSITY, Candidate, Section, SectionMatch, Tolerance
@@ -17,6 +18,8 @@ if TYPE_CHECKING:
 
 __all__ = [
     "FAMILIES",
+    "IN_CM",
+    "NO_SECTION",
     "STEEL_DENSITY",
     "Candidate",
     "Section",

@@ -14,6 +14,9 @@ from takeoff.sections.section import Candidate, Form, Match, Section
 
 Hollow = Literal["hot", "cold"]
 
+#: Reasons that a list's other cells may settle: a text that names nothing, and timber whose sizes are too small for mm.
+NO_SECTION = "names no section in the tables"
+IN_CM = "such sizes are usual in cm"
 
 #: From this length on, and beyond twice the section's largest size, one number more is the piece's length.
 LEAST_LENGTH_MM = 500.0

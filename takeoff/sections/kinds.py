@@ -8,7 +8,7 @@ from __future__ import annotations
 from collections.abc import Callable
 
 from takeoff.sections import catalogue, goods, made, nearest
-from takeoff.sections.answers import LEAST_LENGTH_MM, Answer, Given, Refused, key_texts, one_chain
+from takeoff.sections.answers import LEAST_LENGTH_MM, NO_SECTION, Answer, Given, Refused, key_texts, one_chain
 from takeoff.sections.bysize import (
     LEAST_BAR_MM,
     LEAST_FLAT_MM,
@@ -250,4 +250,4 @@ def _refuse_bare(p: Parsed, text: str, chain: Chain) -> None:
         elif len(numbers) == 1:
             readings += [Candidate(f"{f} {shown}", 50.0) for f in (("RD", "SQ", "PL") if chain.mm[0] >= LEAST_BAR_MM else ("PL",))]
         raise Refused("nothing names the kind of section", "ambiguous-section", nearest.unique(readings, 8))
-    raise Refused("names no section in the tables", "unknown-section", nearest.anywhere(text, numbers))
+    raise Refused(NO_SECTION, "unknown-section", nearest.anywhere(text, numbers))

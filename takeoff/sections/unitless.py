@@ -7,6 +7,7 @@ centimetres or metres, the text is refused and asks for its unit.
 from __future__ import annotations
 
 from takeoff.sections import catalogue, goods
+from takeoff.sections.answers import IN_CM
 from takeoff.sections.parse import Chain, Parsed
 from takeoff.sections.words import TIMBER_IN_CM
 
@@ -72,7 +73,7 @@ def _why(chain: Chain, p: Parsed, families: list[str], kind: str | None, materia
         if wall in INCH_WALLS and all(v <= MOST_INCH_TUBE and (2 * v).is_integer() for v in outer):
             return "such a wall is usual in inches"
         if wall < 1 and any(len(t.raw.replace(",", ".").partition(".")[2]) == 2 for t in chain.numbers[:-1]) and max(outer) < 100:
-            return "such sizes are usual in cm"
+            return IN_CM
     if material in _STONY and (kind in _SOLID or kind is None) and not families and len(values) == 3:
         return _stone(sorted(values))
     if kind == "block" and len(values) == 3 and max(values) < LEAST_BLOCK_MM:
@@ -105,7 +106,7 @@ def _stone(values: list[float]) -> str:
     if most < LEAST_BLOCK_MM:
         return "such sizes are usual in m"
     if most < LEAST_STONE_MM or (middle < LEAST_STONE_WIDTH_MM and most < LEAST_STONE_LENGTH_MM):
-        return "such sizes are usual in cm"
+        return IN_CM
     return ""
 
 
@@ -115,7 +116,7 @@ def _timber(values: list[float], p: Parsed, least_mm: float) -> str:
         return "the last may be a length in m"
     named = bool(p.named & (_SLATS | TIMBER_IN_CM))
     if max(values) < least_mm and not named and not goods.is_timber_size(*sizes) and not _is_lumber(values):
-        return "such sizes are usual in cm"
+        return IN_CM
     return ""
 
 
