@@ -8,6 +8,7 @@ from __future__ import annotations
 import contextlib
 import signal
 import sys
+import threading
 import time
 from types import FrameType
 
@@ -15,6 +16,8 @@ from types import FrameType
 _ASKING = [getattr(signal, name) for name in ("SIGINT", "SIGTERM", "SIGHUP") if hasattr(signal, name)]
 #: a second Ctrl-C within this time comes from a hasty finger, and would only disturb the tidying up after the first
 _HASTE_S = 2.0
+#: while a module is being loaded the end is asked for again after so long
+_AGAIN_S = 0.02
 #: (signal, when) of every time the end was asked for
 _asked: list[tuple[int, float]] = []
 
@@ -23,7 +26,21 @@ class Interrupted(BaseException):
     """The end was asked for. Not KeyboardInterrupt, which the command library would turn into another status."""
 
 
-def _stop(number: int, _frame: FrameType | None) -> None:
+def _loading(frame: FrameType | None) -> bool:
+    """Whether a module is being loaded: an exception there may be lost, or end a library's own code in a noisy way."""
+    while frame is not None:
+        if frame.f_code.co_filename.startswith("<frozen importlib"):
+            return True
+        frame = frame.f_back
+    return False
+
+
+def _stop(number: int, frame: FrameType | None) -> None:
+    if _loading(frame):
+        again = threading.Timer(_AGAIN_S, signal.raise_signal, (number,))
+        again.daemon = True
+        again.start()
+        return
     now = time.monotonic()
     hasty = bool(_asked) and now - _asked[-1][1] < _HASTE_S
     _asked.append((number, now))
