@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import gc
 import os
 import pty
 import select
@@ -13,6 +14,7 @@ from pathlib import Path
 import pytest
 
 from takeoff import progress
+from takeoff.cli import progress as line
 
 PROGRAM = """
 import sys, time
@@ -64,6 +66,16 @@ def test_a_long_run_says_what_it_does_and_cleans_up() -> None:
 def test_short_quiet_and_dumb_say_nothing(seconds: float, quiet: bool, term: str) -> None:
     """Under half a second, with --quiet, or on a terminal that cannot go back, nothing is written."""
     assert at_a_terminal(seconds, quiet=quiet, term=term) == ""
+
+
+def test_work_that_is_shown_looks_for_garbage() -> None:
+    """The start of the program puts that off; a long run may not."""
+    gc.disable()
+    try:
+        with line.shown(quiet=True):
+            assert gc.isenabled()
+    finally:
+        gc.enable()
 
 
 def test_no_terminal_no_progress() -> None:

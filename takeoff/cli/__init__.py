@@ -59,7 +59,7 @@ def main() -> None:
             app()
         finally:
             interrupts.settled()
-            # The interpreter looks for garbage as it ends, among all that is loaded: part of a look-up's time, for nothing.
+            # The interpreter looks for garbage as it ends, among all that is loaded, for nothing.
             gc.freeze()
     except BaseException as error:  # noqa: BLE001 - an interrupt comes up as whatever a library made of it; all else is raised again
         interrupts.shut()

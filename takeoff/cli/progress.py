@@ -6,6 +6,7 @@ Silent where standard error is no terminal, or where the terminal cannot go back
 from __future__ import annotations
 
 import contextlib
+import gc
 import os
 import sys
 import threading
@@ -55,7 +56,11 @@ class _Line:
 
 @contextmanager
 def shown(quiet: bool = False, job: Job | None = None) -> Iterator[None]:
-    """Show what the work inside tells, where there is a terminal to show it on; stop it at the job's [guards] seconds."""
+    """Show what the work inside tells, where there is a terminal to show it on; stop it at the job's [guards] seconds.
+
+    Work that is worth showing makes garbage too: from here on it is looked for, which the start of the program puts off.
+    """
+    gc.enable()
     with clock.within(job.guards.seconds) if job else contextlib.nullcontext(), _shown(quiet):
         yield
 

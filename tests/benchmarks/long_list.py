@@ -115,7 +115,7 @@ def main(count: int) -> bool:
     with tempfile.TemporaryDirectory() as folder:
         source, ours, target = (str(Path(folder) / name) for name in ("list.xlsx", "ours.xlsx", "floor.xlsx"))
         write_plain(Path(source), {"List": list_rows(count)})
-        takeoff = [sys.executable, "-c", "from takeoff.cli import main; main()", "schedule", source, "--out", ours, "--replace", "--quiet",
+        takeoff = [sys.executable, "-m", "takeoff", "schedule", source, "--out", ours, "--replace", "--quiet",
                    "--json", str(Path(folder) / "ours.json")]
         mine, memory, floors = [], 0.0, []
         for _ in range(ROUNDS):
