@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 import sys
+from pathlib import Path
 
 import pytest
 from shapely.geometry import Polygon, box
@@ -207,3 +208,26 @@ def test_pressure_tube_is_bounded_by_its_wall(text: str, light: float, heavy: fl
     area = {wall: wall * (d - wall) for wall in (light, t, heavy)}
     assert section.factor.light == pytest.approx(area[light] / area[t], rel=1e-9)
     assert section.factor.heavy == pytest.approx(area[heavy] / area[t], rel=1e-9)
+
+
+@pytest.mark.parametrize(
+    ("change", "said"),
+    [
+        ({"published_kg_per_m": "UB 203x133x25"}, "published_kg_per_m is no number that can be"),
+        ({"published_kg_per_m": "nan"}, "published_kg_per_m is no number that can be"),
+        ({"published_kg_per_m": "-4"}, "published_kg_per_m is no number that can be"),
+        ({"h_mm": "inf"}, "h_mm is no number that can be"),
+        ({"family": "MESH"}, "a size or column that its family or shape needs is not given"),
+        ({"family": "LUMBER"}, "a size or column that its family or shape needs is not given"),
+    ],
+)
+def test_a_wrong_figure_in_an_own_table_is_said_with_its_line(tmp_path: Path, change: dict[str, str], said: str) -> None:
+    """Text, nan, a negative mass, a family whose columns are missing: one message, no traceback."""
+    cells = {
+        "designation": "X 1", "family": "X", "shape": "I parallel", "standard": "", "h_mm": "100", "b_mm": "50", "tw_mm": "5", "tf_mm": "8",
+        "r1_mm": "", "published_kg_per_m": "", "source": "Drawing 7", "clause": "", "evidence": "read",
+    } | change  # fmt: skip
+    path = tmp_path / "own.csv"
+    path.write_text(",".join(cells) + "\n" + ",".join(cells.values()) + "\n", encoding="utf-8")
+    with pytest.raises(DataError, match=f"line 2: {said}"):
+        load(path, own=True)

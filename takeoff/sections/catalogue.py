@@ -6,6 +6,7 @@ A row without a known source does not load. Designations are found by key: famil
 
 from __future__ import annotations
 
+import math
 import re
 from collections.abc import Mapping
 from dataclasses import dataclass, field, replace
@@ -319,20 +320,42 @@ def rows(family: str) -> list[Row]:
     return [row for t in tables(family) for row in t.families.get(family, [])]
 
 
+def _figure(row: Row, column: str, least: float | None = None) -> float | None:
+    """The number in a column of a row, None where it is blank. Raises DataError on any other text, and on one of `least` or below."""
+    text = row.cells.get(column, "")
+    if not text:
+        return None
+    try:
+        value = float(text)
+    except ValueError:
+        value = math.nan
+    if not math.isfinite(value) or (least is not None and value <= least):
+        what = "a plain number" if least is None else f"a number above {least:g}"
+        raise DataError(f"line {row.line}: {column} is no number that can be", file=row.file, read=text, right=what)
+    return value
+
+
+def _needed(row: Row, column: str) -> float:
+    """The same of a column that must be filled, above zero. Raises KeyError where it is not."""
+    value = _figure(row, column, 0)
+    if value is None:
+        raise KeyError(column)
+    return value
+
+
 def sizes(row: Row) -> dict[str, float]:
     """The sizes of a row in mm. Raises DataError on a text that is no number."""
     found: dict[str, float] = {}
-    try:
-        for column, (name, mm) in _COLUMNS.items():
-            if row.cells.get(column):
-                found[name] = float(row.cells[column]) * mm
-        if row.cells.get("web_slope_percent"):
-            found["web_slope"] = float(row.cells["web_slope_percent"]) / 100
-        if row.cells.get("flange_slope_percent"):
-            found["slope"] = float(row.cells["flange_slope_percent"]) / 100
-            found["from_toe"] = shapes.from_toe(row.cells.get("tf_measured_at", ""), found["b"], found.get("tw", 0.0))
-    except ValueError as error:
-        raise DataError(f"line {row.line}: a size is no number ({error})", file=row.file, read=row.designation) from error
+    for column, (name, mm) in _COLUMNS.items():
+        value = _figure(row, column)
+        if value is not None:
+            found[name] = value * mm
+    web, flange = _figure(row, "web_slope_percent"), _figure(row, "flange_slope_percent")
+    if web is not None:
+        found["web_slope"] = web / 100
+    if flange is not None:
+        found["slope"] = flange / 100
+        found["from_toe"] = shapes.from_toe(row.cells.get("tf_measured_at", ""), found["b"], found.get("tw", 0.0))
     return found
 
 
@@ -423,11 +446,22 @@ def _surface(standard: str, shape: str, d: dict[str, float], exact_m2_per_m: flo
 
 
 def _section(row: Row) -> Section:
+    try:
+        return _section_of(row)
+    except KeyError as missing:
+        raise DataError(
+            f"line {row.line}: a size or column that its family or shape needs is not given", file=row.file, read=row.designation,
+            right=f"also {missing.args[0]}",
+        ) from missing
+
+
+def _section_of(row: Row) -> Section:
     d = sizes(row)
     shape, family = row.cells["shape"], row.cells["family"]
-    published = float(row.cells["published_kg_per_m"]) if row.cells.get("published_kg_per_m") else None
-    if row.cells.get("published_lb_per_ft"):
-        published = float(row.cells["published_lb_per_ft"]) * LB_PER_FT
+    published = _figure(row, "published_kg_per_m", 0)
+    per_foot = _figure(row, "published_lb_per_ft", 0)
+    if per_foot is not None:
+        published = per_foot * LB_PER_FT
     note = row.cells.get("note", "")
     if family in _SPECIAL:
         return _SPECIAL[family](row, d, published)
@@ -444,7 +478,7 @@ def _section(row: Row) -> Section:
     factor, tolerance = mass_rule(shape, row.standard, family, d)
     if published:
         factor = cover(factor, g.area * STEEL_DENSITY * 1e-6 / published)
-    design_wall = float(row.cells["design_t_in"]) * 25.4 if row.cells.get("design_t_in") else float(row.cells.get("design_t_mm") or 0)
+    design_wall = (_figure(row, "design_t_in", 0) or 0.0) * 25.4 or _figure(row, "design_t_mm", 0)
     dimensions = {k: round(v, 6) for k, v in d.items() if k not in ("slope", "web_slope", "from_toe")}
     if "slope" in d:
         dimensions["flange_slope_percent"] = d["slope"] * 100
@@ -476,7 +510,7 @@ def _section(row: Row) -> Section:
 def _rebar(row: Row, d: dict[str, float], published: float | None) -> Section:
     """A bar by its nominal diameter; where the standard rounds the area, that area is the mass's."""
     g = shapes.geometry("round bar", d)
-    area = float(row.cells["area_by_standard_mm2"]) if row.cells["area_by_standard_mm2"] else g.area
+    area = _figure(row, "area_by_standard_mm2", 0) or g.area
     factor, tolerance = tolerances.mass_factor("en10080" if row.standard == "EN 10080" else "rebar-other", d["b"])
     return Section(
         designation=row.designation,
@@ -496,14 +530,14 @@ def _rebar(row: Row, d: dict[str, float], published: float | None) -> Section:
         tolerance=tolerance,
         is_steel_standard=True,
         material_hint="metal",
-        note=row.cells["note"],
+        note=row.cells.get("note", ""),
     )
 
 
 def _mesh(row: Row, d: dict[str, float], published: float | None) -> Section:  # noqa: ARG001 (one signature for all special families)
     """A welded fabric: kg/m² by its table."""
     factor, tolerance = tolerances.mass_factor("mesh")
-    wires = {name: float(row.cells[f"{name}_mm"]) for name in ("wire1", "pitch1", "wire2", "pitch2") if row.cells[f"{name}_mm"]}
+    wires = {name: wire for name in ("wire1", "pitch1", "wire2", "pitch2") if (wire := _figure(row, f"{name}_mm", 0)) is not None}
     return Section(
         designation=row.designation,
         family="MESH",
@@ -513,19 +547,19 @@ def _mesh(row: Row, d: dict[str, float], published: float | None) -> Section:  #
         dimensions_mm=wires,
         standard=row.standard,
         needs=("width", "length"),
-        kg_per_m2=float(row.cells["kg_per_m2"]),
+        kg_per_m2=_needed(row, "kg_per_m2"),
         factor=factor,
         tolerance=tolerance,
         is_steel_standard=True,
         material_hint="metal",
-        note=row.cells["note"],
+        note=row.cells.get("note", ""),
     )
 
 
 def _lumber(row: Row, d: dict[str, float], published: float | None) -> Section:  # noqa: ARG001 (one signature for all special families)
     """Lumber by its nominal size: the dressed dry section, heavy at the green one."""
     area = d["b"] * d["tf"]
-    green = float(row.cells["green_b_in"]) * float(row.cells["green_tf_in"]) * 25.4**2
+    green = _needed(row, "green_b_in") * _needed(row, "green_tf_in") * 25.4**2
     found, tolerance = tolerances.mass_factor("ps20")
     return Section(
         designation=row.designation,
@@ -542,7 +576,7 @@ def _lumber(row: Row, d: dict[str, float], published: float | None) -> Section: 
         factor=Bounds(found.light, 1.0, max(1.0, green / area)),
         tolerance=tolerance,
         material_hint="wood",
-        note=row.cells["note"],
+        note=row.cells.get("note", ""),
     )
 
 
