@@ -231,3 +231,13 @@ def test_a_wrong_figure_in_an_own_table_is_said_with_its_line(tmp_path: Path, ch
     path.write_text(",".join(cells) + "\n" + ",".join(cells.values()) + "\n", encoding="utf-8")
     with pytest.raises(DataError, match=f"line 2: {said}"):
         load(path, own=True)
+
+
+def test_a_radius_near_nothing_is_a_sharp_corner(tmp_path: Path) -> None:
+    """So small a radius has no piece to take off: the area is that of sharp corners, and nothing is divided by nothing."""
+    path = tmp_path / "own.csv"
+    heading = "designation,family,shape,standard,h_mm,b_mm,tw_mm,tf_mm,r1_mm,source,evidence"
+    path.write_text(f"{heading}\nX 1,X,I parallel,,100,50,5,8,2.4e-189,Drawing 7,read\n", encoding="utf-8")
+    match = read("X 1", own=load(path, own=True))
+    assert match.section is not None
+    assert match.section.area_mm2 == pytest.approx(2 * 50 * 8 + 84 * 5)

@@ -14,6 +14,8 @@ from typing import NamedTuple
 
 #: x, y and the radius of the corner there, mm. Counter-clockwise.
 Corner = tuple[float, float, float]
+#: a corner of a smaller radius is sharp: its piece would be lost in rounding
+_LEAST_RADIUS_MM = 1e-6
 
 
 class Measures(NamedTuple):
@@ -37,7 +39,7 @@ def measure(corners: Sequence[Corner]) -> Measures:
         moment_x += (x0 + x1) * cross / 6
         moment_y += (y0 + y1) * cross / 6
         perimeter += math.hypot(x1 - x0, y1 - y0)
-        if not radius:
+        if radius < _LEAST_RADIUS_MM:
             continue
         xp, yp, _ = corners[index - 1]
         in_x, in_y = x0 - xp, y0 - yp
@@ -74,7 +76,7 @@ def points(corners: Sequence[Corner], steps: int = 8) -> list[tuple[float, float
         long_in, long_out = math.hypot(x0 - xp, y0 - yp), math.hypot(x1 - x0, y1 - y0)
         ix, iy, ox, oy = (x0 - xp) / long_in, (y0 - yp) / long_in, (x1 - x0) / long_out, (y1 - y0) / long_out
         turn = math.atan2(ix * oy - iy * ox, ix * ox + iy * oy)
-        if not radius or abs(turn) < 1e-12:
+        if radius < _LEAST_RADIUS_MM or abs(turn) < 1e-12:
             found.append((x0, y0))
             continue
         tangent = radius * math.tan(abs(turn) / 2)
