@@ -216,7 +216,11 @@ def test_pressure_tube_is_bounded_by_its_wall(text: str, light: float, heavy: fl
         ({"published_kg_per_m": "UB 203x133x25"}, "published_kg_per_m is no number that can be"),
         ({"published_kg_per_m": "nan"}, "published_kg_per_m is no number that can be"),
         ({"published_kg_per_m": "-4"}, "published_kg_per_m is no number that can be"),
+        ({"h_mm": "8.5e156"}, "h_mm is no number that can be"),
+        ({"tf_mm": "2e-29"}, "tf_mm is no number that can be"),
         ({"h_mm": "inf"}, "h_mm is no number that can be"),
+        ({"shape": "box hollow", "tw_mm": "", "r1_mm": "6000"}, "a radius of 6000 mm is more than the size"),
+        ({"shape": "box hollow", "tw_mm": "", "b_mm": "20", "r1_mm": "99"}, "its radii leave nothing"),
         ({"family": "MESH"}, "a size or column that its family or shape needs is not given"),
         ({"family": "LUMBER"}, "a size or column that its family or shape needs is not given"),
     ],
@@ -233,11 +237,7 @@ def test_a_wrong_figure_in_an_own_table_is_said_with_its_line(tmp_path: Path, ch
         load(path, own=True)
 
 
-def test_a_radius_near_nothing_is_a_sharp_corner(tmp_path: Path) -> None:
+def test_a_radius_near_nothing_is_a_sharp_corner() -> None:
     """So small a radius has no piece to take off: the area is that of sharp corners, and nothing is divided by nothing."""
-    path = tmp_path / "own.csv"
-    heading = "designation,family,shape,standard,h_mm,b_mm,tw_mm,tf_mm,r1_mm,source,evidence"
-    path.write_text(f"{heading}\nX 1,X,I parallel,,100,50,5,8,2.4e-189,Drawing 7,read\n", encoding="utf-8")
-    match = read("X 1", own=load(path, own=True))
-    assert match.section is not None
-    assert match.section.area_mm2 == pytest.approx(2 * 50 * 8 + 84 * 5)
+    sharp = {"h": 100.0, "b": 50.0, "tw": 5.0, "tf": 8.0}
+    assert shapes.geometry("I parallel", sharp | {"r1": 2.4e-189}).area == pytest.approx(2 * 50 * 8 + 84 * 5)

@@ -320,6 +320,10 @@ def rows(family: str) -> list[Row]:
     return [row for t in tables(family) for row in t.families.get(family, [])]
 
 
+#: mm, kg/m and the like beyond which no section's figure lies, nor below but for nought
+_MOST, _LEAST = 1e6, 1e-4
+
+
 def _figure(row: Row, column: str, least: float | None = None) -> float | None:
     """The number in a column of a row, None where it is blank. Raises DataError on any other text, and on one of `least` or below."""
     text = row.cells.get(column, "")
@@ -329,7 +333,7 @@ def _figure(row: Row, column: str, least: float | None = None) -> float | None:
         value = float(text)
     except ValueError:
         value = math.nan
-    if not math.isfinite(value) or (least is not None and value <= least):
+    if not abs(value) <= _MOST or 0 < abs(value) < _LEAST or (least is not None and value <= least):
         what = "a plain number" if least is None else f"a number above {least:g}"
         raise DataError(f"line {row.line}: {column} is no number that can be", file=row.file, read=text, right=what)
     return value
@@ -475,6 +479,8 @@ def _section_of(row: Row) -> Section:
     if why:
         raise DataError(f"line {row.line}: {why}", file=row.file, read=row.designation)
     g = shapes.geometry(shape, d)
+    if not g.area > 0:
+        raise DataError(f"line {row.line}: its radii leave nothing of the shape", file=row.file, read=row.designation)
     factor, tolerance = mass_rule(shape, row.standard, family, d)
     if published:
         factor = cover(factor, g.area * STEEL_DENSITY * 1e-6 / published)

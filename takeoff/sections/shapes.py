@@ -63,6 +63,10 @@ def impossible(shape: str, d: Mapping[str, float]) -> str:
     for name, value in d.items():
         if value < 0 or not math.isfinite(value):
             return f"{name} cannot be {value:g} mm"
+    outer = max(d.get("h", 0.0), d.get("b", 0.0))
+    for name in ("r1", "r2", "r3"):
+        if d.get(name, 0.0) > outer:
+            return f"a radius of {d[name]:g} mm is more than the size of {outer:g} mm"
     h, b, tw, tf = d.get("h", 0.0), d.get("b", 0.0), d.get("tw", 0.0), d.get("tf", 0.0)
     if shape in ("box hollow", "round hollow"):
         least = min(h, b) if shape == "box hollow" else h
