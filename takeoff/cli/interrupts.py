@@ -18,6 +18,8 @@ _ASKING = [getattr(signal, name) for name in ("SIGINT", "SIGTERM", "SIGHUP") if 
 _HASTE_S = 2.0
 #: while a module is being loaded the end is asked for again after so long
 _AGAIN_S = 0.02
+#: signals that came while a module was being loaded, and wait
+_waiting: list[int] = []
 #: (signal, when) of every time the end was asked for
 _asked: list[tuple[int, float]] = []
 
@@ -37,13 +39,15 @@ def _loading(frame: FrameType | None) -> bool:
 
 def _stop(number: int, frame: FrameType | None) -> None:
     if _loading(frame):
+        _waiting.append(number)
         again = threading.Timer(_AGAIN_S, signal.raise_signal, (number,))
         again.daemon = True
         again.start()
         return
     now = time.monotonic()
     hasty = bool(_asked) and now - _asked[-1][1] < _HASTE_S
-    _asked.append((number, now))
+    # The status names what asked first.
+    _asked.append((_waiting[0] if _waiting else number, now))
     # Where the exception comes up in a clean-up of the interpreter it is lost, and printed; `settled` raises it again.
     sys.unraisablehook = lambda _: None
     if not hasty:
