@@ -5,6 +5,7 @@ order of sizes. The text is then written out with its unit, so that the sections
 from __future__ import annotations
 
 import re
+from collections.abc import Callable
 from typing import TYPE_CHECKING, Any
 
 from takeoff import materials, sections
@@ -35,6 +36,15 @@ _INCH_SHEET = re.compile(
 _ZINC = re.compile(r"galv|zinc|\bGI\b|DX5", re.IGNORECASE)
 
 
+def _rewritten(texts: list[str | None], written_out: Callable[[str], str | None]) -> list[int]:
+    """Put what `written_out` makes of each text in its place, each distinct text once; the rows where it made something."""
+    made = {text: written_out(text) for text in dict.fromkeys(texts) if text and len(text) <= LONGEST}
+    where = [i for i, text in enumerate(texts) if text and made.get(text) is not None]
+    for i in where:
+        texts[i] = made[texts[i] or ""]
+    return where
+
+
 def unit_of_the_heading(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
     """Bare sizes below a heading with a unit (``Cross-section [cm]``) are in that unit; without it ``8x18`` would be inches."""
     columns = reader.table.columns
@@ -42,18 +52,7 @@ def unit_of_the_heading(reader: ColumnReader, part: dict[str, list[Any]]) -> Non
     unit = column.heading.unit if column is not None and column.heading is not None else None
     if column is None or unit not in ("mm", "cm", "in"):
         return
-    texts: list[str | None] = part["section_text"]
-    read: dict[str, str | None] = {}
-    where = []
-    for i, text in enumerate(texts):
-        if not text or len(text) > LONGEST:
-            continue
-        if text not in read:
-            read[text] = f"{text} {unit}" if _BARE_SIZES.fullmatch(text) and _two_numbers(text) else None
-        found = read[text]
-        if found is not None:
-            texts[i] = found
-            where.append(i)
+    where = _rewritten(part["section_text"], lambda text: f"{text} {unit}" if _BARE_SIZES.fullmatch(text) and _two_numbers(text) else None)
     message = f"the sizes are in {unit}, as their heading says"
     reader.say("note", "section-note", message, where, "section" if "section" in columns else "size")
 
@@ -106,18 +105,7 @@ def bare_inches(reader: ColumnReader, part: dict[str, list[Any]]) -> None:
     """In a list in feet and inches the bare sizes of a made-to-size section are inches (``ROUND BAR 1 dia``)."""
     if not in_feet(reader.table):
         return
-    texts: list[str | None] = part["section_text"]
-    read: dict[str, str | None] = {}
-    where = []
-    for i, text in enumerate(texts):
-        if not text:
-            continue
-        if text not in read:
-            read[text] = in_inches(text)
-        found = read[text]
-        if found is not None:
-            texts[i] = found
-            where.append(i)
+    where = _rewritten(part["section_text"], in_inches)
     reader.say("assumed", "unit-assumed", "the list is in feet and inches: the bare sizes of the section are taken in inches", where,
                "section" if "section" in reader.table.columns else "name", right='the unit in the text, such as RD 1"')
     for i in where:

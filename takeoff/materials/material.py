@@ -26,7 +26,6 @@ COLUMNS = (
 #: What a user's own row cannot do without.
 REQUIRED = ("key", "name", "family", "density_kg_m3", "density_source", "density_evidence")
 
-ALONG = "along grain"
 #: Densities outside this range are a slip of unit, not a material: aerogels to osmium, kg/m³.
 DENSITY_LIMITS = (1.0, 23_000.0)
 

@@ -29,8 +29,6 @@ STATUS_MEANS = {
     "not weighed": "not in any total: see Not weighed",
 }
 
-LEVEL_WORDS = {"refused": "refused", "assumed": "assumed", "note": "note"}
-
 
 def shown(text: object) -> str:
     """Text from a list as it may be shown on one line: no control signs, no direction or zero-width signs.
